@@ -1,0 +1,1 @@
+"""The library's tables, installed as package data."""

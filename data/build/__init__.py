@@ -1,0 +1,1 @@
+"""Remakes every table of the library from its published sources."""

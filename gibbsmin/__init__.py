@@ -1,0 +1,1 @@
+"""Chemical equilibrium for process and plant engineers."""
