@@ -1,0 +1,35 @@
+"""Units at the edge: quantities as engineers write them, to SI floats and back.
+
+Conventions: gauge pressures (``barg``, ``bar(g)``, ``psig``, ``kPag``) are above the site's
+pressure, all others absolute; Nm3 at 0 °C and 101.325 kPa, Sm3 at 15 °C and 101.325 kPa, scf at
+60 °F and 14.696 psi, each counted as an ideal gas; the calorie is thermochemical, 4.184 J, the Btu
+that of the International Table, 1055.056 J.  A unit that a unit library would take for something
+else (``C``, ``ton``, ``MT``, ``Nm``) is asked about, and a number without a unit is refused.
+"""
+
+from gibbsmin.units.reading import (
+    Measure,
+    read_amount,
+    read_amount_unit,
+    read_heat,
+    read_pressure,
+    read_temperature,
+    read_temperature_difference,
+    shown,
+    to_unit,
+)
+from gibbsmin.units.unit import Dimension, Unit
+
+__all__ = [
+    "Dimension",
+    "Measure",
+    "Unit",
+    "read_amount",
+    "read_amount_unit",
+    "read_heat",
+    "read_pressure",
+    "read_temperature",
+    "read_temperature_difference",
+    "shown",
+    "to_unit",
+]
