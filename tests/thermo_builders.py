@@ -8,7 +8,9 @@ from typing import Any
 from hypothesis import strategies as st
 
 from gibbsmin.thermo.formula import parse_formula
+from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Phase, Piece, Species
+from gibbsmin.thermo.tables import Source
 
 NAN = float("nan")
 
@@ -60,7 +62,9 @@ def species_records(draw: st.DrawFn) -> Species:
                 low,
                 low + width,
                 draw(st.floats(20, 200)),
-                *[draw(coefficient) for _ in range(3)],
+                draw(coefficient),
+                draw(coefficient),
+                draw(coefficient),
                 draw(st.floats(-1, 1)),
                 transition,
                 "melting" if transition else "",
@@ -72,3 +76,36 @@ def species_records(draw: st.DrawFn) -> Species:
         S298=draw(st.floats(0, 500)),
         pieces=tuple(pieces),
     )
+
+
+def small_library() -> Library:
+    """Invented values; names, forms and statuses as they occur in the real one."""
+    named = {
+        "C(graphite)": {"common_name": "graphite", "cas": "7782-42-5"},
+        "C(diamond)": {"common_name": "diamond"},
+        "C(g)": {"common_name": "carbon"},
+        "CH4(g)": {"common_name": "methane", "cas": "74-82-8"},
+        "CH3(g)": {"common_name": "methyl"},
+        "CH2(g)": {"common_name": "methylene"},
+        "CH(g)": {"common_name": "methylidyne"},
+        "C2H5OH(g)": {"common_name": "ethanol", "cas": "64-17-5"},
+        "C2H5OH(l)": {"common_name": "ethanol", "cas": "64-17-5"},
+        "CH3OCH3(g)": {"common_name": "dimethyl ether"},
+        "CO(g)": {"common_name": "carbon monoxide"},
+        "CO2(g)": {"common_name": "carbon dioxide"},
+        "CaSO4·2H2O(cr)": {"common_name": "gypsum"},
+        "FeO(cr)": {"status": "superseded"},
+        "FeO(l)": {},
+        "Fe0.947O(cr)": {"common_name": "wüstite"},
+        "H2O(g)": {"common_name": "water"},
+        "H2O(l)": {"common_name": "water"},
+        "H2SO4(l)": {"common_name": "sulphuric acid"},
+        "NH4Cl(cr)": {"common_name": "ammonium chloride"},
+        "Na+(g)": {},
+        "SiO2(quartz)": {"common_name": "silica"},
+        "SiO2(cristobalite)": {"common_name": "silica"},
+        "SiO2(l)": {"common_name": "silica"},
+        "e-(g)": {"common_name": "electron"},
+    }
+    records = tuple(make_species(name, **changes) for name, changes in named.items())
+    return Library(records, (Source("tables", "A. Author, Tables, 1998.", "published values"),))
