@@ -1,0 +1,89 @@
+"""What a result must say beside its figures: warnings about them, cautions about the outlet."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.minimise import Status
+from gibbsmin.reactor.audit import AuditEntry, SolvedState
+from gibbsmin.reactor.model import StageModel
+from gibbsmin.reactor.streams import Stream
+from gibbsmin.thermo.hazards import hazards
+from gibbsmin.thermo.species import Phase, Species
+
+_MATTERS = 1e-6
+"""A record matters from this share of the outlet's amounts."""
+
+LIMIT_OF_RATE = "Equilibrium is a limit, not a rate: a real outlet may fall short of it."
+PRACTICE = "Design, relief and safety decisions follow local codes and licensed practice."
+
+
+def warnings(
+    model: StageModel,
+    feeds: Sequence[Stream],
+    state: SolvedState,
+    entries: Sequence[AuditEntry],
+    entropy_remark: str,
+    status: Status,
+) -> tuple[str, ...]:
+    """Sentences on what limits the figures, the gravest first."""
+    if status is not Status.CERTIFIED:
+        return (f"Not certified, so no figure is given: {status.sentence}",)
+    sentences = [*_audit_warnings(entries), *_range_warnings(model, feeds, state)]
+    if entropy_remark:
+        sentences.append(f"Entropy: {entropy_remark}.")
+    return tuple(sentences)
+
+
+def cautions(model: StageModel, amounts: FloatArray) -> tuple[str, ...]:
+    """Limits of use, and the toxic and flammable species of the outlet by name."""
+    known = hazards()
+    present = [record for record in _mattering(model.records, amounts) if record.formula in known]
+    toxic = list(dict.fromkeys(r.formula for r in present if known[r.formula].toxic))
+    flammable = list(dict.fromkeys(r.formula for r in present if known[r.formula].flammable))
+    sentences = [LIMIT_OF_RATE]
+    if toxic:
+        sentences.append(f"Toxic in the outlet: {', '.join(toxic)}.")
+    if flammable:
+        sentences.append(f"Flammable in the outlet: {', '.join(flammable)}.")
+    return (*sentences, PRACTICE)
+
+
+def _audit_warnings(entries: Sequence[AuditEntry]) -> Iterator[str]:
+    for entry in entries:
+        if not entry.warns:
+            continue
+        beyond = "" if entry.within_range else " (beyond the range of its heat capacity)"
+        if entry.record.phase is Phase.GAS:
+            yield (
+                f"{entry.record.name} is not considered, yet would reach a mole fraction of "
+                f"{entry.would_reach:.3g} in equilibrium with this outlet{beyond}."
+            )
+        else:
+            yield (
+                f"{entry.record.name} is not considered, yet its activity is "
+                f"{entry.activity:.3g}: it would form{beyond}."
+            )
+
+
+def _range_warnings(
+    model: StageModel, feeds: Sequence[Stream], state: SolvedState
+) -> Iterator[str]:
+    used = [(r, state.temperature) for r in _mattering(model.records, state.amounts)]
+    for feed in feeds:
+        amounts = np.array([feed.amounts.get(r.name, 0.0) for r in model.feed_records])
+        used += [(record, feed.temperature) for record in _mattering(model.feed_records, amounts)]
+    for record, temperature in dict.fromkeys(used):
+        if not record.T_low <= temperature <= record.T_high:
+            yield (
+                f"{record.name} is used at {temperature:.2f} K, beyond the range of its heat "
+                f"capacity ({record.T_low:g}–{record.T_high:g} K), which is continued as constant."
+            )
+
+
+def _mattering(records: Sequence[Species], amounts: FloatArray) -> list[Species]:
+    least = _MATTERS * amounts.sum()
+    return [r for r, amount in zip(records, amounts.tolist(), strict=True) if amount > least]

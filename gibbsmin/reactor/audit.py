@@ -1,0 +1,166 @@
+"""What the multipliers of a solved state say about species that are not in it.
+
+At the optimum a record j would be in equilibrium with the outlet at y_j = exp(a_j·λ − g̃_j) as a
+gas, or with that activity as a pure phase.  The sum a_j·λ is determined only where a_j is a
+combination of the columns of records present; elsewhere nothing is said.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.constants import STANDARD_PRESSURE
+from gibbsmin.reactor.balance import CHARGE, element_counts
+from gibbsmin.reactor.model import StageModel, reduced_energies
+from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.species import Phase, Species
+
+_RANK_TOLERANCE = 1e-9
+_GAS_THRESHOLD = 1e-4
+_PHASE_THRESHOLD = 1.0
+_SATURATION_ROUNDING = 1e-9
+
+_ACTIVITY_RECORDS = {"O": "O2(g)", "C": "C(graphite)", "N": "N2(g)", "S": "S2(g)"}
+
+
+@dataclass(frozen=True)
+class AuditEntry:
+    """One record that is not in the outlet.
+
+    Attributes
+    ----------
+    record : the record
+    would_reach : mole fraction in equilibrium with the outlet (gases, else NaN)
+    activity : activity against the pure phase, 1 when saturated (solids and liquids, else NaN)
+    left_out : whether the user left it out by name, so that it is listed without a warning
+    within_range : whether the temperature is within the record's range
+    """
+
+    record: Species
+    would_reach: float
+    activity: float
+    left_out: bool
+    within_range: bool
+
+    @property
+    def weight(self) -> float:
+        """Value over the threshold of a warning: 1e-4 for gases, saturation for phases."""
+        if self.record.phase is Phase.GAS:
+            return self.would_reach / _GAS_THRESHOLD
+        return self.activity / _PHASE_THRESHOLD
+
+    @property
+    def warns(self) -> bool:
+        """Whether the record is likely to have been forgotten."""
+        return not self.left_out and self.weight > 1.0 + _SATURATION_ROUNDING
+
+
+@dataclass(frozen=True)
+class ElementActivity:
+    """Activity of an element in the outlet against a reference record.
+
+    For a gas the value is its partial pressure in bar, p(O2); for a solid its activity, a(C).
+    """
+
+    element: str
+    label: str
+    record: str
+    value: float
+    unit: str
+
+
+@dataclass(frozen=True)
+class SolvedState:
+    """One solved state: its conditions (K, Pa), amounts (S,) and multipliers (m,)."""
+
+    temperature: float
+    pressure: float
+    amounts: FloatArray
+    multipliers: FloatArray
+
+
+def log_activities(
+    model: StageModel, state: SolvedState, records: Sequence[Species], pressure: float
+) -> FloatArray:
+    """a_j·λ − g̃_j(T, P) of each record; NaN where the outlet does not determine it."""
+    properties = PropertyTable.of(records)
+    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
+    columns = element_counts(records, model.balance.rows)
+    energies = reduced_energies(
+        properties, gas, np.float64(state.temperature), np.float64(pressure)
+    )
+    potentials = np.nan_to_num(state.multipliers, nan=0.0) @ columns
+    return np.where(_determined(model, state, columns), potentials - energies, np.nan)
+
+
+def audit(
+    model: StageModel, state: SolvedState, library: Library, left_out: Sequence[str]
+) -> tuple[AuditEntry, ...]:
+    """Judge every library record of these elements that is not in the outlet.
+
+    Gases that are candidates are in the outlet by their own equilibrium; candidates that are
+    solid or liquid are judged where they are absent.  The most weighty come first.
+    """
+    taking_part = {
+        record.name
+        for record, amount in zip(model.records, state.amounts, strict=True)
+        if record.phase is Phase.GAS or amount > 0.0
+    }
+    symbols = [row for row in model.balance.rows if row != CHARGE and not row.startswith("hold ")]
+    records = [r for r in library.of_elements(symbols) if r.name not in taking_part]
+    if not records:
+        return ()
+    with np.errstate(over="ignore"):
+        values = np.exp(log_activities(model, state, records, state.pressure))
+    entries = (
+        AuditEntry(
+            record=record,
+            would_reach=value if record.phase is Phase.GAS else np.nan,
+            activity=np.nan if record.phase is Phase.GAS else value,
+            left_out=record.name in left_out,
+            within_range=record.T_low <= state.temperature <= record.T_high,
+        )
+        for record, value in zip(records, values.tolist(), strict=True)
+        if not np.isnan(value)
+    )
+    return tuple(sorted(entries, key=lambda entry: (-entry.weight, entry.record.name)))
+
+
+def element_activities(
+    model: StageModel, state: SolvedState, library: Library
+) -> tuple[ElementActivity, ...]:
+    """p(O2), a(C), p(N2) and p(S2), of those elements that the feed brings."""
+    symbols = [symbol for symbol in _ACTIVITY_RECORDS if symbol in model.balance.rows]
+    if not symbols:
+        return ()
+    records = [library[_ACTIVITY_RECORDS[symbol]] for symbol in symbols]
+    with np.errstate(over="ignore"):
+        values = np.exp(log_activities(model, state, records, STANDARD_PRESSURE))
+    return tuple(
+        ElementActivity(
+            element=symbol,
+            label=f"p({record.formula})" if record.phase is Phase.GAS else f"a({record.formula})",
+            record=record.name,
+            value=value,
+            unit="bar" if record.phase is Phase.GAS else "",
+        )
+        for symbol, record, value in zip(symbols, records, values.tolist(), strict=True)
+    )
+
+
+def _determined(model: StageModel, state: SolvedState, columns: FloatArray) -> BoolArray:
+    """Which columns are combinations of the columns of records present.
+
+    Records outside the model take no part in its holds, so their columns are zero there.
+    """
+    present = model.balance.matrix[:, state.amounts > 0.0]
+    basis, sizes, _ = np.linalg.svd(present, full_matrices=False)
+    basis = basis[:, sizes > _RANK_TOLERANCE * sizes[0]]
+    outside = columns - basis @ (basis.T @ columns)
+    determined: BoolArray = np.all(np.abs(outside) <= _RANK_TOLERANCE, axis=0)
+    return determined
