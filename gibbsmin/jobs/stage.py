@@ -43,7 +43,7 @@ def predict_stage(stage: StageCase, feeds: Sequence[Stream], library: Library) -
             np.array([stage.temperature]), np.array([stage.pressure]), inlets.sum(axis=0)[None]
         )
     )
-    status = Status(solution.status[0])
+    status = tuple(Status)[solution.status[0]]
     if status is Status.INFEASIBLE:
         raise BalanceError(
             "found candidates that cannot hold the feed's elements in their proportions",
@@ -59,7 +59,7 @@ def predict_stage(stage: StageCase, feeds: Sequence[Stream], library: Library) -
     return StageOutlet(
         name=stage.name,
         status=status,
-        method=Method(solution.method[0]),
+        method=tuple(Method)[solution.method[0]],
         temperature=stage.temperature,
         pressure=stage.pressure,
         records=model.records,
@@ -88,7 +88,7 @@ def _energy_balance(
     feed_gas = np.array([record.phase is Phase.GAS for record in model.feed_records], dtype=bool)
     T_in = np.array([feed.temperature for feed in feeds])
     P_in = np.array([feed.pressure for feed in feeds])
-    T, P = np.float64(state.temperature), np.float64(state.pressure)
+    T, P = state.temperature, state.pressure
 
     H_in = mixture_enthalpy(table, T_in, inlets).sum()
     S_in = mixture_entropy(table, feed_gas, T_in, P_in, inlets).sum()

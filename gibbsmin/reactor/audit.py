@@ -91,9 +91,7 @@ def log_activities(
     properties = PropertyTable.of(records)
     gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
     columns = element_counts(records, model.balance.rows)
-    energies = reduced_energies(
-        properties, gas, np.float64(state.temperature), np.float64(pressure)
-    )
+    energies = reduced_energies(properties, gas, state.temperature, pressure)
     potentials = np.nan_to_num(state.multipliers, nan=0.0) @ columns
     return np.where(_determined(model, state, columns), potentials - energies, np.nan)
 

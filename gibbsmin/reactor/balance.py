@@ -80,10 +80,10 @@ def element_balance(
         direction[:-1] += max(0.0, *per_atom) if per_atom else 0.0
         direction[-1] = -1.0
 
-    held = np.flatnonzero(inert)
+    held: list[int] = np.flatnonzero(inert).tolist()
     feed_names = [record.name for record in feed]
-    hold_rows = np.zeros((held.size, len(candidates)))
-    hold_feed = np.zeros((held.size, len(feed)))
+    hold_rows = np.zeros((len(held), len(candidates)))
+    hold_feed = np.zeros((len(held), len(feed)))
     for row, column in enumerate(held):
         hold_rows[row, column] = 1.0
         hold_feed[row, feed_names.index(candidates[column].name)] = 1.0
@@ -91,7 +91,7 @@ def element_balance(
         rows=(*rows, *(f"hold {candidates[column].name}" for column in held)),
         matrix=np.vstack([matrix, hold_rows]),
         feed_matrix=np.vstack([feed_matrix, hold_feed]),
-        direction=np.concatenate([direction, np.zeros(held.size)]),
+        direction=np.concatenate([direction, np.zeros(len(held))]),
         atoms=atoms,
     )
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+import numpy.typing as npt
 from scipy.special import xlogy
 
 from gibbsmin.arrays import BoolArray, FloatArray
@@ -13,17 +14,17 @@ from gibbsmin.thermo.properties import PropertyTable
 
 
 def mixture_enthalpy(
-    properties: PropertyTable, temperature: FloatArray, amounts: FloatArray
+    properties: PropertyTable, temperature: npt.ArrayLike, amounts: FloatArray
 ) -> FloatArray:
     """H = Σ nᵢ Hᵢ(T) in J, from the elements at 298.15 K; amounts (..., S) in mol."""
-    return np.sum(amounts * properties.enthalpy(temperature), axis=-1)
+    return np.asarray(np.sum(amounts * properties.enthalpy(temperature), axis=-1))
 
 
 def mixture_entropy(
     properties: PropertyTable,
     gas: BoolArray,
-    temperature: FloatArray,
-    pressure: FloatArray,
+    temperature: npt.ArrayLike,
+    pressure: npt.ArrayLike,
     amounts: FloatArray,
 ) -> FloatArray:
     """S = Σ nᵢ Sᵢ(T) − R Σgas nᵢ ln(yᵢ P/P°) in J/K, absolute, mixing of the gases included."""
@@ -32,7 +33,7 @@ def mixture_entropy(
     total = gases.sum(axis=-1)
     logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
     mixing = np.sum(xlogy(gases, gases), axis=-1) - xlogy(total, total) + total * logarithm
-    return pure - GAS_CONSTANT * mixing
+    return np.asarray(pure - GAS_CONSTANT * mixing)
 
 
 @dataclass(frozen=True)

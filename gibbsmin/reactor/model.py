@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
+import numpy.typing as npt
 
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
@@ -81,7 +82,7 @@ def stage_model(selection: Selection, feed: Sequence[Species], library: Library)
 
 
 def reduced_energies(
-    properties: PropertyTable, gas: BoolArray, temperature: FloatArray, pressure: FloatArray
+    properties: PropertyTable, gas: BoolArray, temperature: npt.ArrayLike, pressure: npt.ArrayLike
 ) -> FloatArray:
     """g̃ = G(T)/RT of every record of a table, for gases + ln(P/P°); shape T.shape + (S,)."""
     T = np.asarray(temperature, dtype=float)

@@ -1,0 +1,104 @@
+"""The outlet as a document of plain values, for JSON; NaN and infinity become null."""
+
+from __future__ import annotations
+
+import math
+from typing import Any
+
+from gibbsmin.present.outlet_view import AUDIT_LENGTH
+from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit
+from gibbsmin.reactor.audit import AuditEntry
+from gibbsmin.results import Outlet, StageOutlet
+
+
+def outlet_document(outlet: Outlet) -> dict[str, Any]:
+    """The whole outlet; one entry of ``stages`` each stage, in order.
+
+    Amounts are in ``unit``; heat is positive into the stage, in kW or kJ; chemical potentials
+    of the elements are in RT.
+    """
+    document = {
+        "title": outlet.title,
+        "status": "certified" if outlet.certified else "not certified",
+        "stages": [_stage(outlet, stage) for stage in outlet.stages],
+    }
+    plain: dict[str, Any] = _without_nan(document)
+    return plain
+
+
+def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
+    unit = amount_unit(outlet.unit, outlet.is_flow)
+    energy = heat_unit(outlet.is_flow)
+    return {
+        "name": stage.name,
+        "status": stage.status.name.lower(),
+        "method": stage.method.name.lower(),
+        "temperature_K": stage.temperature,
+        "pressure_bar": stage.pressure / 1e5,
+        "certificate": {
+            "gap": stage.certificate.gap,
+            "balance": stage.certificate.balance,
+            "stationarity": stage.certificate.stationarity,
+        },
+        "unit": unit,
+        "species": [
+            {
+                "name": record.name,
+                "phase": record.phase.value,
+                "amount": amount,
+                "mole_fraction": wet,
+                "dry_mole_fraction": dry,
+            }
+            for record, amount, wet, dry in zip(
+                stage.records,
+                amounts_in(unit, stage.records, stage.amounts).tolist(),
+                stage.mole_fractions.tolist(),
+                stage.dry_mole_fractions.tolist(),
+                strict=True,
+            )
+        ],
+        "conversion": dict(stage.conversion),
+        "heat": {"value": stage.heat / 1e3, "unit": energy},
+        "entropy_generation": {
+            "value": stage.entropy.value / 1e3,
+            "unit": f"{energy}/K",
+            "boundary_temperature_K": stage.entropy.boundary_temperature,
+        },
+        "lost_work": {
+            "value": stage.entropy.lost_work / 1e3,
+            "unit": energy,
+            "surroundings_temperature_K": stage.entropy.surroundings_temperature,
+        },
+        "element_chemical_potentials": dict(stage.element_potentials),
+        "activities": [
+            {"name": a.label, "record": a.record, "value": a.value, "unit": a.unit}
+            for a in stage.activities
+        ],
+        "warnings": list(stage.warnings),
+        "cautions": list(stage.cautions),
+        "audit": [_audit_entry(entry) for entry in stage.audit[:AUDIT_LENGTH]],
+    }
+
+
+def _audit_entry(entry: AuditEntry) -> dict[str, Any]:
+    value = (
+        {"activity": entry.activity}
+        if math.isnan(entry.would_reach)
+        else {"would_reach": entry.would_reach}
+    )
+    return {
+        "name": entry.record.name,
+        **value,
+        "left_out": entry.left_out,
+        "within_range": entry.within_range,
+    }
+
+
+def _without_nan(value: Any) -> Any:
+    if isinstance(value, dict):
+        return {key: _without_nan(item) for key, item in value.items()}
+    if isinstance(value, list):
+        return [_without_nan(item) for item in value]
+    if isinstance(value, float) and not math.isfinite(value):
+        return None
+    return value
