@@ -263,6 +263,11 @@ def test_heats_and_temperature_differences() -> None:
             'accepted is "min" for the minute.',
         ),
         (
+            read_temperature,
+            "5 K*2",
+            f'found "5 K*2", whose unit "K*2" is not known; {TEMPERATURE}',
+        ),
+        (
             read_heat,
             "5 mol/l",
             'found "5 mol/l", which is a quantity of another kind; '

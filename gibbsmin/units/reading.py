@@ -5,7 +5,8 @@ from __future__ import annotations
 import math
 import re
 from dataclasses import dataclass
-from typing import TYPE_CHECKING
+from numbers import Real
+from typing import TYPE_CHECKING, TypeGuard
 
 from gibbsmin.constants import STANDARD_ATMOSPHERE
 from gibbsmin.errors import UnitError
@@ -109,9 +110,15 @@ def read_heat(given: object) -> Measure:
     return _measure(given, _HEAT, STANDARD_ATMOSPHERE)
 
 
-def read_amount(given: object) -> Measure:
-    """An amount or flow that is not negative: mol, kg or mol of ideal gas (per s if a flow)."""
-    measure = _measure(given, _AMOUNT, STANDARD_ATMOSPHERE)
+def read_amount(given: object, unit: Unit | None = None) -> Measure:
+    """An amount or flow that is not negative: mol, kg or mol of ideal gas (per s if a flow).
+
+    A bare number counts in ``unit`` where that is given.
+    """
+    if unit is not None and _is_number(given):
+        measure = _finite(unit.to_si(_as_float(given)), unit, given, _AMOUNT)
+    else:
+        measure = _measure(given, _AMOUNT, STANDARD_ATMOSPHERE)
     if measure.value < 0.0:
         raise UnitError(f"found {shown(given)}, which is negative", _AMOUNT.accepted)
     return measure
@@ -120,7 +127,8 @@ def read_amount(given: object) -> Measure:
 def read_amount_unit(given: object) -> Unit:
     """A unit of amount or flow."""
     if not isinstance(given, str):
-        raise UnitError(f"found {shown(given)}, which is no unit", _AMOUNT_UNIT.accepted)
+        nothing = "" if given is None else ", which is no unit"
+        raise UnitError(f"found {shown(given)}{nothing}", _AMOUNT_UNIT.accepted)
     return _unit(given, given, _AMOUNT_UNIT, STANDARD_ATMOSPHERE)
 
 
@@ -140,28 +148,36 @@ def shown(given: object) -> str:
         return '"' + "".join(c if c.isprintable() else "?" for c in text) + '"'
     if isinstance(given, bool):
         return str(given).lower()
-    if isinstance(given, int | float):
-        return f"{given:.15g}"
+    if isinstance(given, Real):
+        return f"{_as_float(given):.15g}"
     names = {"dict": "a table", "list": "a list", "tuple": "a list", "NoneType": "nothing"}
     return names.get(type(given).__name__, f"a value of type {type(given).__name__}")
 
 
 def _measure(given: object, kind: _Kind, site_pressure: float) -> Measure:
     found = f"found {shown(given)}"
-    if isinstance(given, int | float) and not isinstance(given, bool):
+    if _is_number(given):
         raise UnitError(f"{found}, a number without a unit", kind.accepted)
     if not isinstance(given, str):
-        raise UnitError(f"{found}, which is no quantity", kind.accepted)
+        nothing = "" if given is None else ", which is no quantity"
+        raise UnitError(f"{found}{nothing}", kind.accepted)
     match = _QUANTITY.fullmatch(given.replace("\N{MINUS SIGN}", "-"))
     if match is None:
         raise UnitError(f"{found}, which does not read as a number and a unit", kind.accepted)
     if match["unit"] is None:
         raise UnitError(f"{found}, a number without a unit", kind.accepted)
     unit = _unit(match["unit"], given, kind, site_pressure)
-    value = unit.to_si(float(match["number"]))
+    return _finite(unit.to_si(float(match["number"])), unit, given, kind)
+
+
+def _finite(value: float, unit: Unit, given: object, kind: _Kind) -> Measure:
     if not math.isfinite(value):
-        raise UnitError(f"{found}, which is not finite", kind.accepted)
+        raise UnitError(f"found {shown(given)}, which is not finite", kind.accepted)
     return Measure(value, unit)
+
+
+def _is_number(given: object) -> TypeGuard[Real]:
+    return isinstance(given, Real) and not isinstance(given, bool)
 
 
 def _unit(text: str, given: str, kind: _Kind, site_pressure: float) -> Unit:
@@ -177,3 +193,10 @@ def _unit(text: str, given: str, kind: _Kind, site_pressure: float) -> Unit:
         phrase = unit.dimension.phrase
         raise UnitError(f"found {shown(given)}, which is {phrase}", kind.accepted)
     return unit
+
+
+def _as_float(number: Real) -> float:
+    try:
+        return float(number)
+    except OverflowError:
+        return math.inf
