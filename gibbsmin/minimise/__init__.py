@@ -1,9 +1,10 @@
 """Minimum of the Gibbs energy over batches of states: arrays only, no chemistry."""
 
 from gibbsmin.minimise.certificate import Certificate
+from gibbsmin.minimise.minimise import minimise
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
 from gibbsmin.minimise.status import Method, Status
 
-__all__ = ["Certificate", "Method", "Programme", "Settings", "Solution", "Status"]
+__all__ = ["Certificate", "Method", "Programme", "Settings", "Solution", "Status", "minimise"]

@@ -116,4 +116,5 @@ def _stationarity(
 
 def _ratio(numerator: FloatArray, denominator: FloatArray) -> FloatArray:
     """Quotient with 0/0 = 0, for states and rows that hold nothing."""
-    return numerator / np.where((numerator == 0) & (denominator == 0), 1.0, denominator)
+    with np.errstate(divide="ignore"):
+        return numerator / np.where((numerator == 0) & (denominator == 0), 1.0, denominator)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, fields
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 import numpy.typing as npt
@@ -65,6 +65,11 @@ class Programme:
     def states(self) -> int:
         """Number of states in the batch."""
         return int(self.supplies.shape[0])
+
+    def subset(self, first: int, count: int = 1) -> Programme:
+        """The programme of some consecutive states."""
+        chosen = slice(first, first + count)
+        return replace(self, supplies=self.supplies[chosen], energies=self.energies[chosen])
 
     def _check_shapes(self) -> None:
         if self.matrix.ndim != 2 or 0 in self.matrix.shape:
