@@ -62,7 +62,7 @@ def resolve(text: str, library: Library) -> Species:
     if (
         record.phase is Phase.GAS
         and record.atoms == 1
-        and record.name != text.strip()
+        and record.formula == text.strip()
         and any(form.phase is not Phase.GAS for form in forms)
     ):
         raise UnknownSpeciesError(
