@@ -8,6 +8,7 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.certificate import Certificate, certify
+from gibbsmin.minimise.closure import close_balance
 from gibbsmin.minimise.conic import ConicProgramme
 from gibbsmin.minimise.faces import Face, find_face
 from gibbsmin.minimise.newton import Reduced
@@ -86,6 +87,7 @@ def _accept(
 ) -> bool:
     """Write an answer if its certificate stands."""
     full_amounts = face.restored_amounts(amounts)
+    full_amounts = close_balance(whole.matrix, whole.supplies[0], full_amounts)
     full_multipliers = face.restored_multipliers(multipliers)
     proof = certify(whole, full_amounts[None], full_multipliers[None], face.species[None])
     if not proof.within(settings)[0]:

@@ -13,7 +13,7 @@ import numpy as np
 from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.minimise.conic import Start
 from gibbsmin.minimise.newton import Point, Reduced, solve_gas
-from gibbsmin.minimise.tableau import independent_columns
+from gibbsmin.minimise.tableau import cheapest_vertex, feasible_vertex, independent_columns
 
 _PRESENT = (1e-6, 1e-9, 1e-3)
 _DRIVING_FORCE = 1e-13
@@ -23,20 +23,16 @@ def polish(state: Reduced, start: Start) -> Iterator[tuple[FloatArray, FloatArra
     """Amounts and multipliers to be tried in turn; the certificate decides.
 
     The start tells the phases only as well as its accuracy allows, so several shares of the
-    total are tried as the least that counts as present, each with a gas and without.
+    total are tried as the least that counts as present.
     """
     total = start.amounts.sum()
     gas_share = start.amounts[state.gas].sum() / total
-    for least in _PRESENT:
-        phases = np.flatnonzero(~state.gas & (start.amounts > least * total))
-        with_gas = state.gas.any() and gas_share > 0
-        if with_gas and gas_share > least:
+    if gas_share < _PRESENT[0]:
+        yield from _without_gas(state, start)
+    if gas_share > 0:
+        for least in _PRESENT:
+            phases = np.flatnonzero(~state.gas & (start.amounts > least * total))
             yield from _with_gas(state, phases, start)
-            yield _without_gas(state, phases, start)
-        else:
-            yield _without_gas(state, phases, start)
-            if with_gas:
-                yield from _with_gas(state, phases, start)
 
 
 def _with_gas(
@@ -93,23 +89,22 @@ def _with_phase(state: Reduced, phases: IntArray, added: int, point: Point) -> I
     return np.sort(np.append(phases, added))
 
 
-def _without_gas(state: Reduced, phases: IntArray, start: Start) -> tuple[FloatArray, FloatArray]:
-    """Condensed phases alone: amounts from the balance, multipliers from their energies.
+def _without_gas(state: Reduced, start: Start) -> Iterator[tuple[FloatArray, FloatArray]]:
+    """Condensed phases alone: a linear programme.
 
-    Both are the smallest corrections of the start, which lies inside the set of optima where
-    that is not a point, so that what it satisfies strictly stays so.
+    Where fewer phases than rows are present the multipliers are not unique, and those of the
+    vertex need not keep the gas away.  The start lies inside the set of optimal multipliers: its
+    smallest correction that puts the phases present at equilibrium stays there.
     """
-    columns = state.matrix[:, phases]
-    weight = start.amounts[phases]
-    size = np.abs(columns) @ weight + np.abs(state.supplies)
-    rows = 1.0 / np.where(size > 0, size, 1.0)
+    condensed = np.flatnonzero(~state.gas)
+    columns = state.matrix[:, condensed]
+    vertex = feasible_vertex(columns, state.supplies)
+    if vertex is None:
+        return
+    vertex = cheapest_vertex(vertex, state.energies[condensed])
     amounts = np.zeros(state.gas.size)
-    amounts[phases] = weight
-    multipliers = start.multipliers
-    for _ in range(2):
-        short = state.supplies - columns @ amounts[phases]
-        scaled = columns * weight * rows[:, None]
-        amounts[phases] += weight * np.linalg.lstsq(scaled, short * rows, rcond=None)[0]
-        excess = state.energies[phases] - multipliers @ columns
-        multipliers = multipliers + np.linalg.lstsq(columns.T, excess, rcond=None)[0]
-    return np.maximum(amounts, 0.0), multipliers
+    amounts[condensed[vertex.basis]] = vertex.values
+    for basis in (vertex.basis[vertex.values > 0], vertex.basis):
+        excess = state.energies[condensed[basis]] - start.multipliers @ columns[:, basis]
+        correction = np.linalg.lstsq(columns[:, basis].T, excess, rcond=None)[0]
+        yield amounts, start.multipliers + correction

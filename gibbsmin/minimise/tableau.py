@@ -111,6 +111,21 @@ def _without_artificials(tableau: Tableau, species: int) -> Tableau:
     )
 
 
+def cheapest_vertex(tableau: Tableau, costs: FloatArray) -> Tableau:
+    """Move a feasible vertex to one of least Σ cost·n, which must be bounded (Bland's rule)."""
+    tolerance = ROUND_OFF * (1.0 + np.abs(costs).max(initial=0.0))
+    while True:
+        reduced = costs - costs[tableau.basis] @ tableau.entries
+        reduced[tableau.basis] = 0.0
+        entering = np.flatnonzero(reduced < -tolerance)
+        if entering.size == 0:
+            return tableau
+        column = int(entering[0])
+        row = tableau.leaving_row(column, np.arange(tableau.basis.size))
+        assert row is not None  # noqa: S101  # the direction of the programme bounds it
+        tableau.pivot(row, column)
+
+
 def independent_columns(matrix: FloatArray, order: Iterable[int]) -> IntArray:
     """The first independent columns met in the given order, by Gram and Schmidt."""
     rows = matrix.shape[0]
