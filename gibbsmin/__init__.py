@@ -1,1 +1,31 @@
-"""Chemical equilibrium for process and plant engineers."""
+"""Chemical equilibrium for process and plant engineers.
+
+:func:`load_case` reads a case, :func:`predict` gives its certified outlet.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from gibbsmin.jobs.case import Case, load_case
+    from gibbsmin.jobs.predict import predict
+    from gibbsmin.results import Outlet, StageOutlet
+
+__all__ = ["Case", "Outlet", "StageOutlet", "load_case", "predict"]
+
+_HOMES = {
+    "Case": "gibbsmin.jobs.case",
+    "Outlet": "gibbsmin.results",
+    "StageOutlet": "gibbsmin.results",
+    "load_case": "gibbsmin.jobs.case",
+    "predict": "gibbsmin.jobs.predict",
+}
+
+
+def __getattr__(name: str) -> Any:
+    # A command that needs none of this, such as --help, does not wait for numpy.
+    if name not in _HOMES:
+        raise AttributeError(f"module 'gibbsmin' has no attribute {name!r}")
+    return getattr(import_module(_HOMES[name]), name)

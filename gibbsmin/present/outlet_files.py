@@ -17,6 +17,11 @@ if TYPE_CHECKING:
 ENDINGS = (".csv", ".xlsx", ".json")
 
 
+def require_ending(path: Path) -> str:
+    """The file's ending, refused before any work is done where no outlet can be written so."""
+    return output_suffix(path, ENDINGS)
+
+
 def write_outlet(outlet: Outlet, path: Path) -> None:
     """Write an outlet in the form that the file's ending names.
 
@@ -25,7 +30,7 @@ def write_outlet(outlet: Outlet, path: Path) -> None:
     OutputError
         for another ending or a file that cannot be written.
     """
-    suffix = output_suffix(path, ENDINGS)
+    suffix = require_ending(path)
     if suffix == ".json":
         document = outlet_document(outlet)
         write_text(path, json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False) + "\n")

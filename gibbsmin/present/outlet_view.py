@@ -6,11 +6,10 @@ from collections.abc import Iterator
 
 import numpy as np
 from rich.console import Group, RenderableType
-from rich.padding import Padding
-from rich.table import Table
 from rich.text import Text
 
 from gibbsmin.minimise import Status
+from gibbsmin.present.layout import heading, pairs, sentences, table
 from gibbsmin.present.quantities import (
     amount_unit,
     amounts_in,
@@ -31,21 +30,18 @@ _SHOWN_FROM = 1e-9
 
 def outlet_view(outlet: Outlet) -> RenderableType:
     """Everything known of an outlet, stage by stage."""
-    parts: list[RenderableType] = [Text(outlet.title, style="bold")]
+    parts: list[RenderableType] = [heading(outlet.title)]
     for stage in outlet.stages:
-        parts += [_heading(stage), Padding(_composition(outlet, stage), (1, 0, 1, 2))]
-        parts.append(Padding(_figures(outlet, stage), (0, 0, 1, 2)))
+        parts += [_conditions(stage), Text(""), _composition(outlet, stage)]
+        parts.append(pairs(_lines(outlet, stage)))
         if stage.audit:
-            parts += [
-                Text("Not in the outlet, yet nearest to it", style="bold"),
-                Padding(_audit(stage), (0, 0, 1, 2)),
-            ]
-        parts += _sentences("Warnings", stage.warnings)
-        parts += _sentences("Cautions", stage.cautions)
+            parts += [heading("Not in the outlet, nearest to it first"), _audit(stage)]
+        parts += sentences("Warnings", stage.warnings)
+        parts += sentences("Cautions", stage.cautions)
     return Group(*parts)
 
 
-def _heading(stage: StageOutlet) -> Text:
+def _conditions(stage: StageOutlet) -> Text:
     certified = stage.status is Status.CERTIFIED
     return Text.assemble(
         f"{stage.name}: {temperature(stage.temperature)}, {pressure(stage.pressure)}, ideal gas, ",
@@ -53,52 +49,37 @@ def _heading(stage: StageOutlet) -> Text:
     )
 
 
-def _composition(outlet: Outlet, stage: StageOutlet) -> Table:
+def _composition(outlet: Outlet, stage: StageOutlet) -> RenderableType:
     """Gases from 1 ppb and every solid or liquid that is there, the largest first."""
     unit = amount_unit(outlet.unit, outlet.is_flow)
     amounts = amounts_in(unit, stage.records, stage.amounts)
     wet, dry = stage.mole_fractions, stage.dry_mole_fractions
-    table = Table(box=None, pad_edge=False, show_edge=False, padding=(0, 3, 0, 0))
-    table.add_column("species")
-    for header in (unit, "wet gas", "dry gas"):
-        table.add_column(header, justify="right")
-    hidden = 0
+    rows = []
     for phase in Phase:
         columns = [i for i, record in enumerate(stage.records) if record.phase is phase]
         for i in sorted(columns, key=lambda i: -np.nan_to_num(stage.amounts[i])):
-            absent = stage.amounts[i] == 0.0 if phase is not Phase.GAS else wet[i] < _SHOWN_FROM
-            if absent:
-                hidden += 1
-                continue
             gas = phase is Phase.GAS
-            table.add_row(
-                stage.records[i].name,
-                significant(float(amounts[i])),
-                fraction(float(wet[i])) if gas else phase.value,
-                fraction(float(dry[i])) if gas else "",
+            if wet[i] < _SHOWN_FROM if gas else stage.amounts[i] == 0.0:
+                continue
+            rows.append(
+                (
+                    stage.records[i].name,
+                    significant(float(amounts[i])),
+                    fraction(float(wet[i])) if gas else "",
+                    fraction(float(dry[i])) if gas else "",
+                    phase.value,
+                )
             )
+    hidden = len(stage.records) - len(rows)
     if hidden:
-        table.caption = f"and {hidden} considered records that are absent or below 1 ppb"
-        table.caption_justify = "left"
-    return table
-
-
-def _figures(outlet: Outlet, stage: StageOutlet) -> Table:
-    table = Table(box=None, pad_edge=False, show_edge=False, show_header=False)
-    table.add_column(style="bold", no_wrap=True)
-    table.add_column(overflow="fold")
-    for label, text in _lines(outlet, stage):
-        table.add_row(label, text)
-    return table
+        rows.append((f"{hidden} more, absent or below 1 ppb", "", "", "", ""))
+    return table(("species", unit, "wet gas", "dry gas", "phase"), rows, words=("species", "phase"))
 
 
 def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
-    converted = [
-        f"{name} {100 * value:.2f} %" for name, value in stage.conversion.items() if not value < 0
-    ]
-    formed = [
-        f"{name} +{-100 * value:.2f} %" for name, value in stage.conversion.items() if value < 0
-    ]
+    shares = {name: round(100 * value, 2) for name, value in stage.conversion.items()}
+    converted = [f"{name} {abs(share):.2f} %" for name, share in shares.items() if share >= 0]
+    formed = [f"{name} +{-share:.2f} %" for name, share in shares.items() if share < 0]
     if converted:
         yield "conversion", ", ".join(converted)
     if formed:
@@ -120,7 +101,9 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
     if stage.activities:
         yield (
             "activities",
-            ", ".join(f"{a.label} {significant(a.value, 4)} {a.unit}" for a in stage.activities),
+            ", ".join(
+                f"{a.label} {significant(a.value, 4)} {a.unit}".rstrip() for a in stage.activities
+            ),
         )
     proof = stage.certificate
     yield (
@@ -130,27 +113,18 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
     )
 
 
-def _audit(stage: StageOutlet) -> Table:
-    table = Table(box=None, pad_edge=False, show_edge=False, padding=(0, 3, 0, 0))
-    table.add_column("record")
-    table.add_column("would reach", justify="right")
-    table.add_column("activity", justify="right")
-    table.add_column("")
+def _audit(stage: StageOutlet) -> RenderableType:
+    rows = []
     for entry in stage.audit[:AUDIT_LENGTH]:
-        remarks = ["left out"] if entry.left_out else ["WARNING"] if entry.warns else []
+        remarks = ["left out by name"] if entry.left_out else ["WARNING"] if entry.warns else []
         remarks += [] if entry.within_range else ["beyond its range"]
         gas = entry.record.phase is Phase.GAS
-        table.add_row(
-            entry.record.name,
-            fraction(entry.would_reach) if gas else "",
-            "" if gas else significant(entry.activity, 4),
-            ", ".join(remarks),
+        rows.append(
+            (
+                entry.record.name,
+                fraction(entry.would_reach) if gas else "",
+                "" if gas else significant(entry.activity, 4),
+                ", ".join(remarks),
+            )
         )
-    return table
-
-
-def _sentences(title: str, sentences: tuple[str, ...]) -> Iterator[RenderableType]:
-    if sentences:
-        yield Text(title, style="bold")
-        for sentence in sentences:
-            yield Padding(Text(sentence), (0, 0, 0, 2))
+    return table(("record", "would reach", "activity", "remark"), rows, words=("record", "remark"))

@@ -6,7 +6,6 @@ from dataclasses import dataclass
 
 import numpy as np
 import numpy.typing as npt
-from scipy.special import xlogy
 
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
@@ -32,8 +31,13 @@ def mixture_entropy(
     gases = np.where(gas, amounts, 0.0)
     total = gases.sum(axis=-1)
     logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
-    mixing = np.sum(xlogy(gases, gases), axis=-1) - xlogy(total, total) + total * logarithm
+    mixing = np.sum(_x_log_x(gases), axis=-1) - _x_log_x(total) + total * logarithm
     return np.asarray(pure - GAS_CONSTANT * mixing)
+
+
+def _x_log_x(x: FloatArray) -> FloatArray:
+    """x ln x, 0 at 0.  scipy has it too, but takes half a second to load."""
+    return np.asarray(x * np.log(np.where(x > 0.0, x, 1.0)))
 
 
 @dataclass(frozen=True)

@@ -1,0 +1,182 @@
+"""gibbsmin predict as a user runs it: tables, JSON, files, mistakes."""
+
+from __future__ import annotations
+
+import csv
+import json
+from pathlib import Path
+
+import openpyxl
+import pytest
+from typer.testing import CliRunner
+
+from gibbsmin.cli import app
+
+CASE = """
+title = "Invented test case"
+[feed.gas]
+temperature = "520 degC"
+pressure = "30 bar"
+unit = "kmol/h"
+amounts = { CH4 = 100, N2 = 2 }
+[feed.steam]
+temperature = "520 degC"
+pressure = "30 bar"
+unit = "kmol/h"
+amounts = { H2O = 300 }
+[outlet]
+temperature = "850 degC"
+pressure = "25 bar"
+[species]
+consider = ["CH4", "H2O", "CO", "CO2", "H2", "N2", "C(graphite)"]
+"""
+
+
+@pytest.fixture
+def case(tmp_path: Path) -> Path:
+    path = tmp_path / "case.toml"
+    path.write_text(CASE, encoding="utf-8")
+    return path
+
+
+def run(*arguments: str | Path) -> tuple[int, str, str]:
+    result = CliRunner().invoke(app, [str(argument) for argument in arguments])
+    return result.exit_code, result.stdout, result.stderr
+
+
+def document(case: Path) -> dict:
+    code, out, err = run("predict", case, "--json")
+    assert (code, err) == (0, "")
+    return json.loads(out)
+
+
+def test_json_has_the_promised_keys(case: Path) -> None:
+    found = document(case)
+    assert set(found) == {"title", "status", "stages"}
+    assert found["status"] == "certified"
+    (stage,) = found["stages"]
+    assert set(stage) == {
+        "name", "status", "method", "temperature_K", "pressure_bar", "certificate", "unit",
+        "species", "conversion", "heat", "entropy_generation", "lost_work",
+        "element_chemical_potentials", "activities", "warnings", "cautions", "audit",
+    }  # fmt: skip
+    assert set(stage["certificate"]) == {"gap", "balance", "stationarity"}
+    assert set(stage["species"][0]) == {
+        "name", "phase", "amount", "mole_fraction", "dry_mole_fraction"
+    }  # fmt: skip
+    assert stage["heat"]["unit"] == "kW"
+    assert stage["entropy_generation"]["unit"] == "kW/K"
+    assert stage["unit"] == "kmol/h"
+
+
+def test_balance_closes_in_the_users_unit(case: Path) -> None:
+    (stage,) = document(case)["stages"]
+    amounts = {entry["name"]: entry["amount"] for entry in stage["species"]}
+    carbon = amounts["CH4(g)"] + amounts["CO(g)"] + amounts["CO2(g)"] + amounts["C(graphite)"]
+    oxygen = amounts["H2O(g)"] + amounts["CO(g)"] + 2 * amounts["CO2(g)"]
+    assert carbon == pytest.approx(100, rel=1e-12)
+    assert oxygen == pytest.approx(300, rel=1e-12)
+
+
+def test_fractions_add_up_wet_and_dry(case: Path) -> None:
+    (stage,) = document(case)["stages"]
+    wet = [e["mole_fraction"] for e in stage["species"] if e["mole_fraction"] is not None]
+    dry = [e["dry_mole_fraction"] for e in stage["species"] if e["dry_mole_fraction"] is not None]
+    assert sum(wet) == pytest.approx(1, abs=1e-14)
+    assert sum(dry) == pytest.approx(1, abs=1e-14)
+    assert len(wet) == len(dry) + 1
+
+
+def test_forgotten_ammonia_is_seen_and_left_out_ammonia_is_not_warned_of(case: Path) -> None:
+    (stage,) = document(case)["stages"]
+    (ammonia,) = [entry for entry in stage["audit"] if entry["name"] == "NH3(g)"]
+    assert ammonia["would_reach"] > 1e-4
+    assert [text.split(" ")[0] for text in stage["warnings"]] == ["NH3(g)"]
+
+    left_out = CASE + 'leave_out = ["NH3"]\n'
+    case.write_text(left_out, encoding="utf-8")
+    (stage,) = document(case)["stages"]
+    (ammonia,) = [entry for entry in stage["audit"] if entry["name"] == "NH3(g)"]
+    assert ammonia["left_out"]
+    assert stage["warnings"] == []
+
+
+def test_table_says_what_an_engineer_reads(case: Path) -> None:
+    code, out, err = run("predict", case)
+    assert (code, err) == (0, "")
+    for text in (
+        "Invented test case",
+        "850.00 °C (1123.15 K), 25.000 bar, ideal gas, certified",
+        "heat added",
+        "boundary at 1123.15 K",
+        "a(C)",
+        "Toxic in the outlet: CO.",
+        "Equilibrium is a limit, not a rate",
+    ):
+        assert text in out
+
+
+@pytest.mark.parametrize("ending", ["json", "csv", "xlsx"])
+def test_files_hold_the_outlet(case: Path, tmp_path: Path, ending: str) -> None:
+    out = tmp_path / f"outlet.{ending}"
+    code, _, err = run("predict", case, "--out", out)
+    assert (code, err) == (0, "")
+    expected = [entry["name"] for entry in document(case)["stages"][0]["species"]]
+    if ending == "json":
+        assert json.loads(out.read_text(encoding="utf-8")) == document(case)
+    elif ending == "csv":
+        with out.open(encoding="utf-8", newline="") as file:
+            assert [row["species"] for row in csv.DictReader(file)] == expected
+    else:
+        book = openpyxl.load_workbook(out)
+        assert book.sheetnames == ["composition", "figures", "audit", "remarks"]
+        names = [row[1] for row in book["composition"].iter_rows(min_row=2, values_only=True)]
+        assert names == expected
+    assert sorted(path.name for path in tmp_path.iterdir()) == ["case.toml", out.name]
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "sentence"),
+    [
+        (
+            'consider = ["CH4", "H2O", "CO", "CO2", "H2", "N2", "C(graphite)"]',
+            'consider = ["CH4", "H2O", "CO", "CO2", "H2"]',
+            '{file}: species.consider: found the element N in the feed (from "N2(g)"), which no '
+            'candidate can hold; accepted is a list with a record of N, for instance "N2(g)" or '
+            '"N(g)".',
+        ),
+        (
+            'consider = ["CH4", "H2O", "CO", "CO2", "H2", "N2", "C(graphite)"]',
+            'consider = ["CO2", "H2O", "N2"]',
+            "{file}: species.consider: found candidates that cannot hold the feed's elements in "
+            "their proportions; accepted is a list that can, for instance one with CH4(g), N2(g), "
+            "H2O(g).",
+        ),
+    ],
+)
+def test_candidates_that_cannot_hold_the_feed(
+    case: Path, tmp_path: Path, old: str, new: str, sentence: str
+) -> None:
+    case.write_text(CASE.replace(old, new), encoding="utf-8")
+    code, out, err = run("predict", case, "--out", tmp_path / "outlet.json")
+    assert (code, out, err) == (2, "", sentence.format(file=case) + "\n")
+    assert [path.name for path in tmp_path.iterdir()] == ["case.toml"]
+
+
+def test_output_with_another_ending_is_refused_before_any_work(tmp_path: Path) -> None:
+    out = tmp_path / "outlet.pdf"
+    assert run("predict", tmp_path / "absent.toml", "--out", out) == (
+        2,
+        "",
+        f'{out}: found the ending ".pdf"; accepted is a file that ends in .csv, .xlsx, .json.\n',
+    )
+
+
+def test_output_that_cannot_be_written(case: Path, tmp_path: Path) -> None:
+    out = tmp_path / "absent" / "outlet.csv"
+    assert run("predict", case, "--out", out) == (
+        2,
+        "",
+        f"{out}: found that it cannot be written (no such file or directory); accepted is a file "
+        "in a folder that exists and may be written.\n",
+    )
