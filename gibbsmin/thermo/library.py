@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Collection, Iterable, Mapping
 from dataclasses import dataclass
 from functools import cache, cached_property
 from importlib.resources import files
 from importlib.resources.abc import Traversable
-from typing import Self
+from typing import Final, Self
 
 from gibbsmin.errors import InputError, UnknownSpeciesError
 from gibbsmin.thermo.elements import SYMBOLS, atomic_weights
@@ -15,6 +16,8 @@ from gibbsmin.thermo.formula import plain_text
 from gibbsmin.thermo.index import Index, current, split_name
 from gibbsmin.thermo.species import Phase, Species
 from gibbsmin.thermo.tables import Source, read_sources, read_species
+
+_CAS: Final = re.compile(r"\d{2,7}-\d\d-\d")
 
 
 @dataclass(frozen=True, eq=False)
@@ -67,7 +70,7 @@ class Library:
         """The record of that exact name; any other raises :class:`UnknownSpeciesError`."""
         record = self._index.by_name.get(plain_text(name))
         if record is None:
-            raise self._unknown(name)
+            raise self.unknown(name)
         return record
 
     def forms(self, formula: str) -> tuple[Species, ...]:
@@ -105,7 +108,7 @@ class Library:
         else:
             hits = current(self._index.called(wanted))
         if not hits:
-            raise self._unknown(text)
+            raise self.unknown(text)
         if len(hits) > 1:
             raise UnknownSpeciesError(
                 f'found "{text}", which names several records', f"accepted is one of {_names(hits)}"
@@ -133,7 +136,7 @@ class Library:
         if not forms:
             formulas = sorted({record.formula for record in self._index.called(wanted)})
             if not formulas:
-                raise self._unknown(text)
+                raise self.unknown(text)
             if len(formulas) > 1:
                 raise UnknownSpeciesError(
                     f'found "{text}", which names several substances',
@@ -208,10 +211,16 @@ class Library:
         """The records whose names are most like the text, one of each formula, best first."""
         return self._index.nearest(plain_text(text), count)
 
-    def _unknown(self, text: str) -> UnknownSpeciesError:
+    def unknown(self, text: str) -> UnknownSpeciesError:
+        """The error for a text that names no record, with those that it might mean."""
         if not text.strip():
             return UnknownSpeciesError(
                 "found an empty name", "accepted is a library record such as CO2(g)"
+            )
+        if _CAS.fullmatch(text.strip()):
+            return UnknownSpeciesError(
+                f'found "{text}", a CAS number that no record bears',
+                "accepted is the number, name or formula of a library record",
             )
         formula, state = split_name(plain_text(text))
         forms = self.forms(formula)

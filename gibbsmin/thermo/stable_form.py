@@ -24,8 +24,8 @@ _SHARPNESS: Final = 1e-8
 
 _NAMES: Final = {
     (Phase.SOLID, Phase.LIQUID): "melting",
-    (Phase.LIQUID, Phase.GAS): "evaporation at 1 bar",
-    (Phase.SOLID, Phase.GAS): "sublimation at 1 bar",
+    (Phase.LIQUID, Phase.GAS): "evaporation to the ideal gas at 1 bar",
+    (Phase.SOLID, Phase.GAS): "sublimation to the ideal gas at 1 bar",
 }
 
 

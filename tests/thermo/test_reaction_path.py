@@ -47,9 +47,9 @@ def test_phase_changes_on_the_way_are_those_between_298_K_and_T() -> None:
     assert kinds == [
         [],
         [],
-        ["evaporation at 1 bar"],
-        ["alpha–gamma", "evaporation at 1 bar"],
-        ["alpha–gamma", "evaporation at 1 bar"],
+        ["evaporation to the ideal gas at 1 bar"],
+        ["alpha–gamma", "evaporation to the ideal gas at 1 bar"],
+        ["alpha–gamma", "evaporation to the ideal gas at 1 bar"],
     ]
     assert [dict(row.forms)["H2O"] for row in rows] == ["H2O(l)", "H2O(l)", *["H2O(g)"] * 3]
 

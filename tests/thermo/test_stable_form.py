@@ -39,7 +39,7 @@ def test_changes_are_named_in_the_order_of_heating() -> None:
     assert (boiling.lower, boiling.upper, boiling.kind) == (
         "H2O(l)",
         "H2O(g)",
-        "evaporation at 1 bar",
+        "evaporation to the ideal gas at 1 bar",
     )
     assert_allclose([melting.temperature, boiling.temperature], [MELTING, BOILING], atol=1e-6)
     assert_allclose([melting.enthalpy, boiling.enthalpy], [6000.0, 40000.0], rtol=1e-12)
@@ -102,4 +102,4 @@ def test_a_transition_counts_only_where_its_form_is_stable() -> None:
     pieces = (Piece(200.0, 500.0, 40.0), Piece(500.0, 900.0, 40.0, transition=1.0, label="x"))
     liquid = make_species("H2O(l)", dfH298=6000.0, S298=62.0, pieces=pieces)
     changes = Substance("H2O", (STEAM, liquid)).phase_changes(298.15, 1000.0)
-    assert [change.kind for change in changes] == ["evaporation at 1 bar"]
+    assert [change.kind for change in changes] == ["evaporation to the ideal gas at 1 bar"]

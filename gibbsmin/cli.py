@@ -1,0 +1,210 @@
+"""The command line: arguments, exit codes, and everything that is printed.
+
+Bad input ends with one sentence on standard error and exit code 2.  Commands import what they
+need when they run, so that help and errors come at once.
+"""
+
+from __future__ import annotations
+
+import json
+import sys
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated, Any, Final
+
+import typer
+from typer.core import TyperGroup
+
+from gibbsmin.errors import GibbsminError, InputError, UnknownSpeciesError
+
+if TYPE_CHECKING:
+    from rich.console import RenderableType
+
+    from gibbsmin.arrays import FloatArray
+    from gibbsmin.thermo.library import Library
+
+NOT_CERTIFIED: Final = 1
+INPUT_ERROR: Final = 2
+
+# Wide enough that a table sent to a file or another program is not broken.
+_PIPED_WIDTH: Final = 200
+
+
+class _Commands(TyperGroup):
+    """Turns the project's own errors into one sentence and an exit code."""
+
+    def invoke(self, ctx: Any) -> Any:  # the context's class differs between versions of typer
+        try:
+            return super().invoke(ctx)
+        except GibbsminError as error:
+            typer.echo(str(error), err=True)
+            raise typer.Exit(INPUT_ERROR) from None
+
+
+app = typer.Typer(
+    cls=_Commands,
+    add_completion=False,
+    no_args_is_help=True,
+    rich_markup_mode=None,
+    pretty_exceptions_enable=False,
+    help="Chemical equilibrium for process and plant engineers.",
+)
+
+Temperatures = Annotated[
+    list[str] | None,
+    typer.Option(
+        "--temperature",
+        "-t",
+        metavar="TEXT",
+        help='"850 degC", "600, 700, 800 K" or "300 K to 1500 K step 100 K"; may be repeated.',
+    ),
+]
+AsJson = Annotated[bool, typer.Option("--json", help="Print JSON for programs to read.")]
+
+
+@app.callback()
+def commands() -> None:
+    """Chemical equilibrium for process and plant engineers."""
+
+
+@app.command(short_help="Give the outlet of a case at equilibrium.")
+def predict(
+    case: Annotated[str, typer.Argument(metavar="CASE", help="A case file in TOML.")],
+    as_json: AsJson = False,
+    out: Annotated[
+        str, typer.Option(metavar="FILE", help="Write to a .csv, .xlsx or .json file as well.")
+    ] = "",
+) -> None:
+    """Give the outlet of a case at equilibrium, with its certificate and audit.
+
+    Exit code 1 means that the state could not be certified.
+    """
+    from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.predict import predict as predict_case
+    from gibbsmin.present.outlet_document import outlet_document
+    from gibbsmin.present.outlet_files import require_ending, write_outlet
+    from gibbsmin.present.outlet_view import outlet_view
+
+    if out:
+        require_ending(Path(out))
+    outlet = predict_case(load_case(case))
+    if out:
+        write_outlet(outlet, Path(out))
+    if as_json:
+        _print_json(outlet_document(outlet))
+    else:
+        _print(outlet_view(outlet))
+    if not outlet.certified:
+        raise typer.Exit(NOT_CERTIFIED)
+
+
+@app.command(short_help="Find species records, and show one in full.")
+def species(
+    text: Annotated[
+        str, typer.Argument(metavar="TEXT", help="A record, formula, name or CAS number.")
+    ] = "",
+    name: Annotated[str, typer.Option(help="A common name or a part of one.")] = "",
+    cas: Annotated[str, typer.Option("--cas", help="A CAS registry number.")] = "",
+    elements: Annotated[
+        str, typer.Option(help='Records made of these elements alone, such as "C,H,O".')
+    ] = "",
+    temperature: Temperatures = None,
+    as_json: AsJson = False,
+) -> None:
+    """Find species records, and show one in full: values, uncertainties, range, sources."""
+    from gibbsmin.present.species_view import species_document, species_list_view, species_view
+    from gibbsmin.thermo.library import load_library
+    from gibbsmin.thermo.temperatures import read_temperatures
+
+    if not (text or name or cas or elements):
+        raise InputError(
+            "found nothing to look for",
+            'accepted is a formula, a name or a CAS number, or --elements "C,H,O"',
+        )
+    library = load_library()
+    temperatures = read_temperatures(temperature or ())
+    records = library.find(
+        text, name=name, cas=cas, elements=elements.split(",") if elements else ()
+    )
+    if not records:
+        raise _nothing_found(library, text, name, cas)
+    if as_json:
+        chosen = [temperatures if temperature else _usual(r.T_low, r.T_high) for r in records]
+        documents = [
+            species_document(record, T, library) for record, T in zip(records, chosen, strict=True)
+        ]
+        _print_json({"species": documents})
+    elif len(records) > 1:
+        _print(species_list_view(records))
+    else:
+        (record,) = records
+        chosen_T = temperatures if temperature else _usual(record.T_low, record.T_high)
+        _print(species_view(record, chosen_T, library))
+
+
+@app.command(short_help="Show a reaction's enthalpy, entropy and constant.")
+def reaction(
+    text: Annotated[
+        str, typer.Argument(metavar="REACTION", help='Such as "CH4 + 2 H2O = CO2 + 4 H2".')
+    ],
+    temperature: Temperatures = None,
+    as_json: AsJson = False,
+) -> None:
+    """Show ΔrH, ΔrS, ΔrG and log10 K of a reaction, and its path by way of 298.15 K.
+
+    H2O(g) means that form at all temperatures, H2O whichever form is stable.
+    """
+    from gibbsmin.present.reaction_view import reaction_document, reaction_view
+    from gibbsmin.thermo.library import load_library
+    from gibbsmin.thermo.reaction import Reaction
+    from gibbsmin.thermo.reaction_path import study_reaction
+    from gibbsmin.thermo.temperatures import read_temperatures
+
+    temperatures = read_temperatures(temperature) if temperature else _usual(298.15, 1500.0)
+    study = study_reaction(Reaction.read(text, load_library()), temperatures)
+    if as_json:
+        _print_json(reaction_document(study))
+    else:
+        _print(reaction_view(study))
+
+
+def _nothing_found(library: Library, text: str, name: str, cas: str) -> UnknownSpeciesError:
+    """Blames the first condition that no record meets by itself, or all of them together."""
+    if text and not library.find(text):
+        return library.unknown(text)
+    if name and not library.find(name=name):
+        return library.unknown(name)
+    if cas and not library.find(cas=cas):
+        return library.unknown(cas)
+    return UnknownSpeciesError(
+        "found no record that meets all the conditions", "accepted are fewer conditions"
+    )
+
+
+def _usual(T_low: float, T_high: float) -> FloatArray:
+    """Temperatures in K that are shown where none is asked for, within a range."""
+    import numpy as np
+
+    T = np.array([298.15, 400, 500, 600, 800, 1000, 1200, 1500, 2000, 2500, 3000])
+    kept = T[(T_low <= T) & (T_high >= T)]
+    return kept if kept.size else np.array([T_low])
+
+
+def _print(renderable: RenderableType) -> None:
+    from rich.console import Console
+
+    if sys.stdout.isatty():
+        Console(highlight=False, markup=False).print(renderable)
+        return
+    console = Console(width=_PIPED_WIDTH, highlight=False, markup=False)
+    with console.capture() as capture:
+        console.print(renderable)
+    typer.echo("\n".join(line.rstrip() for line in capture.get().splitlines()))
+
+
+def _print_json(document: dict[str, Any]) -> None:
+    typer.echo(json.dumps(document, ensure_ascii=False, indent=2, allow_nan=False))
+
+
+def main() -> None:
+    """Entry point of the console command."""
+    app()
