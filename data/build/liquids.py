@@ -11,7 +11,7 @@ from gibbsmin.data.build.boiling import (
     with_boiling_point,
     with_vaporization,
 )
-from gibbsmin.data.build.enthalpies import active_enthalpy, main_enthalpy
+from gibbsmin.data.build.enthalpies import JANAF, active_enthalpy, main_enthalpy
 from gibbsmin.data.build.main_records import fitted, identities
 from gibbsmin.data.build.record import BuildRecord
 from gibbsmin.data.build.reference_tables import Row, curated_list
@@ -23,7 +23,7 @@ from gibbsmin.thermo.species import Phase, Piece
 def liquid_records() -> Iterator[BuildRecord]:
     """The liquids of the list, in its order."""
     for row in curated_list("liquids"):
-        gas = main_gas(row["formula"])
+        gas = main_record(f"{row['formula']}(g)")
         pieces, error = _heat_capacity(row)
         liquid = BuildRecord(
             formula=row["formula"],
@@ -45,25 +45,27 @@ def liquid_records() -> Iterator[BuildRecord]:
         yield with_boiling_point(liquid, gas, float(row["T_boil_K"]))
 
 
-def main_gas(formula: str) -> BuildRecord:
-    """A gas of the main tables by its formula, without what only the written record needs."""
-    identity = next(i for i in identities() if i.name == f"{formula}(g)")
+def main_record(name: str) -> BuildRecord:
+    """A record of the main tables by its name, without what only the written one needs.
+
+    Enthalpies that move along with a gas's stay as the tables print them.
+    """
+    identity = next(i for i in identities() if i.name == name)
     table = identity.table
-    enthalpy = active_enthalpy(formula, table, identity.cas) or main_enthalpy(
-        identity.name, table, {}
-    )
+    enthalpy = active_enthalpy(identity.formula, table, identity.cas)
+    enthalpy = enthalpy or main_enthalpy(name, table, {})
     pieces, error = fitted(table)
     return BuildRecord(
-        formula=formula,
-        state="g",
-        phase=Phase.GAS,
+        formula=identity.formula,
+        state=identity.state,
+        phase=identity.phase,
         common_name="",
         dfH298=enthalpy.value,
         S298=table.S298,
         pieces=pieces,
         source_enthalpy=enthalpy.source,
-        source_entropy="",
-        source_heat_capacity="",
+        source_entropy=JANAF,
+        source_heat_capacity=JANAF,
         fit_error=error,
     )
 
