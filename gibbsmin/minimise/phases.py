@@ -17,6 +17,7 @@ from gibbsmin.minimise.tableau import cheapest_vertex, feasible_vertex, independ
 
 _PRESENT = (1e-6, 1e-9, 1e-3)
 _DRIVING_FORCE = 1e-13
+_SHARE = 1e-9
 
 
 def polish(state: Reduced, start: Start) -> Iterator[tuple[FloatArray, FloatArray]]:
@@ -33,6 +34,8 @@ def polish(state: Reduced, start: Start) -> Iterator[tuple[FloatArray, FloatArra
         for least in _PRESENT:
             phases = np.flatnonzero(~state.gas & (start.amounts > least * total))
             yield from _with_gas(state, phases, start)
+    if gas_share >= _PRESENT[0]:
+        yield from _without_gas(state, start)
 
 
 def _with_gas(
@@ -50,12 +53,13 @@ def _with_gas(
             return
         held = point.amounts[phases]
         if point.wanted is not None:
-            phases = _with_phase(state, phases, point.wanted, point)
+            phases = np.sort(np.append(phases, point.wanted))
+            multipliers = point.multipliers
         elif (held < 0).any():
             phases = np.delete(phases, np.argmin(held))
-        elif not point.converged:
-            return
-        else:
+            if point.converged:
+                multipliers, log_total = point.multipliers, point.log_total
+        elif point.converged:
             forces = point.multipliers @ state.matrix - state.energies
             forces[state.gas] = -np.inf
             forces[phases] = -np.inf
@@ -63,9 +67,10 @@ def _with_gas(
             if forces[worst] <= tolerance:
                 yield point.amounts, point.multipliers
                 return
-            phases = _with_phase(state, phases, worst, point)
-        if point.converged or point.wanted is not None:
-            multipliers, log_total = point.multipliers, point.log_total
+            phases, multipliers = _with_phase(state, phases, worst, point)
+            log_total = point.log_total
+        else:
+            return
 
 
 def _independent(state: Reduced, phases: IntArray, amounts: FloatArray) -> IntArray:
@@ -75,18 +80,24 @@ def _independent(state: Reduced, phases: IntArray, amounts: FloatArray) -> IntAr
     return np.sort(chosen[: state.supplies.size - 1])
 
 
-def _with_phase(state: Reduced, phases: IntArray, added: int, point: Point) -> IntArray:
-    """Add a phase; where it is made of those present, the first to run out leaves."""
-    columns = state.matrix[:, phases]
-    shares, *_ = np.linalg.lstsq(columns, state.matrix[:, added], rcond=None)
-    rest = np.linalg.norm(state.matrix[:, added] - columns @ shares)
-    made_of_present = rest < 1e-8 * np.linalg.norm(state.matrix[:, added])
-    if made_of_present or phases.size == state.supplies.size - 1:
-        giving = np.flatnonzero(shares > 1e-9)
-        if giving.size:
-            ratios = point.amounts[phases[giving]] / shares[giving]
-            phases = np.delete(phases, giving[np.argmin(ratios)])
-    return np.sort(np.append(phases, added))
+def _with_phase(
+    state: Reduced, phases: IntArray, added: int, point: Point
+) -> tuple[IntArray, FloatArray]:
+    """Add a phase; the basis species that it uses up first leaves, or its potential falls.
+
+    The multipliers move along that species' potential until the phase is at equilibrium.
+    """
+    gas = np.flatnonzero(state.gas)
+    order = np.r_[phases, gas[np.argsort(-point.amounts[gas], kind="stable")]]
+    basis = independent_columns(state.matrix, order)
+    inverse = np.linalg.inv(state.matrix[:, basis])
+    shares = inverse @ state.matrix[:, added]
+    able = np.flatnonzero(shares > _SHARE)
+    leaving = able[np.argmin(point.amounts[basis[able]] / shares[able])]
+    force = point.multipliers @ state.matrix[:, added] - state.energies[added]
+    kept = phases[phases != basis[leaving]]
+    multipliers = point.multipliers - inverse[leaving] * force / shares[leaving]
+    return np.sort(np.append(kept, added)), multipliers
 
 
 def _without_gas(state: Reduced, start: Start) -> Iterator[tuple[FloatArray, FloatArray]]:
