@@ -17,6 +17,7 @@ from typing import Final
 from gibbsmin.data.build.evaluate import properties_of
 from gibbsmin.data.build.record import BuildRecord
 from gibbsmin.data.build.reference_tables import Row, curated_list
+from gibbsmin.data.build.sources import MAIN_SOURCES
 
 from gibbsmin.thermo.species import Phase, Piece
 
@@ -30,7 +31,25 @@ def solid_records() -> Iterator[BuildRecord]:
     for row in curated_list("solids"):
         record = _melt(row, known[row["melts_from"]]) if row["melts_from"] else _given(row)
         known[record.name] = record
-        yield record
+        yield replace(record, remark="; ".join(filter(None, (record.remark, _recalled(record)))))
+
+
+def _recalled(record: BuildRecord) -> str:
+    """Which of a record's values were recalled from memory, by the status of their sources."""
+    values = {
+        "enthalpy": record.source_enthalpy,
+        "entropy": record.source_entropy,
+        "heat capacity": record.source_heat_capacity,
+    }
+    recalled = [value for value, source in values.items() if source in _recalled_sources()]
+    return f"{', '.join(recalled)} recalled from memory" if recalled else ""
+
+
+@cache
+def _recalled_sources() -> frozenset[str]:
+    listed = {row["key"]: row["status"] for row in curated_list("sources")}
+    listed |= {source.key: source.status for source in MAIN_SOURCES}
+    return frozenset(k for k, status in listed.items() if status.startswith("recalled"))
 
 
 @cache

@@ -327,3 +327,12 @@ def test_every_source_that_is_cited_is_listed_once() -> None:
     assert len(listed) == len(set(listed))
     assert cited <= set(listed)
     assert {source.key for source in curated_sources()} <= cited
+
+
+def test_recalled_values_say_so() -> None:
+    status = {s.key: s.status for s in (*MAIN_SOURCES, *curated_sources())}
+    for row in tables.curated_list("solids"):
+        record = records()[f"{row['formula']}({row['state']})"]
+        keys = (record.source_enthalpy, record.source_entropy, record.source_heat_capacity)
+        recalled = any(status[key].startswith("recalled from memory") for key in keys)
+        assert ("recalled from memory" in record.remark) == recalled, record.name
