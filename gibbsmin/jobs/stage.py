@@ -12,6 +12,7 @@ from gibbsmin.jobs.case import StageCase
 from gibbsmin.jobs.remarks import cautions, warnings
 from gibbsmin.minimise import Method, Solution, Status, minimise
 from gibbsmin.reactor.audit import SolvedState, audit, element_activities
+from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.energy import (
     EntropyGeneration,
     entropy_generation,
@@ -37,7 +38,7 @@ def predict_stage(stage: StageCase, feeds: Sequence[Stream], library: Library) -
     names = list(dict.fromkeys(name for feed in feeds for name in feed.amounts))
     records = [library[name] for name in names]
     inlets = np.array([[feed.amounts.get(name, 0.0) for name in names] for feed in feeds])
-    model = stage_model(stage.selection, records, library)
+    model = stage_model(Chemistry(selection=stage.selection), records, library)
     solution = minimise(
         model.programme(
             np.array([stage.temperature]), np.array([stage.pressure]), inlets.sum(axis=0)[None]
@@ -118,8 +119,8 @@ def _certificate(solution: Solution) -> StateCertificate:
 
 def _element_potentials(model: StageModel, state: SolvedState) -> Mapping[str, float]:
     """λ of the element and charge rows; holds are no elements."""
-    rows = zip(model.balance.rows, state.multipliers.tolist(), strict=True)
-    return {row: value for row, value in rows if not row.startswith("hold ")}
+    potentials = state.multipliers[: len(model.balance.elements)]
+    return dict(zip(model.balance.elements, potentials.tolist(), strict=True))
 
 
 def _conversion(model: StageModel, feed: FloatArray, outlet: FloatArray) -> Mapping[str, float]:

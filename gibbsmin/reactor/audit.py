@@ -109,7 +109,7 @@ def audit(
         for record, amount in zip(model.records, state.amounts, strict=True)
         if record.phase is Phase.GAS or amount > 0.0
     }
-    symbols = [row for row in model.balance.rows if row != CHARGE and not row.startswith("hold ")]
+    symbols = [symbol for symbol in model.balance.elements if symbol != CHARGE]
     records = [r for r in library.of_elements(symbols) if r.name not in taking_part]
     if not records:
         return ()
@@ -133,7 +133,7 @@ def element_activities(
     model: StageModel, state: SolvedState, library: Library
 ) -> tuple[ElementActivity, ...]:
     """p(O2), a(C), p(N2) and p(S2), of those elements that the feed brings."""
-    symbols = [symbol for symbol in _ACTIVITY_RECORDS if symbol in model.balance.rows]
+    symbols = [symbol for symbol in _ACTIVITY_RECORDS if symbol in model.balance.elements]
     if not symbols:
         return ()
     records = [library[_ACTIVITY_RECORDS[symbol]] for symbol in symbols]

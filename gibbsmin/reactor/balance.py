@@ -1,43 +1,73 @@
-"""The element balance: element counts (and charge) of the candidates against the feed's totals."""
+"""The balance of a stage: what the amounts of its outlet must add up to.
+
+In general elements (and charge) are conserved; where nothing reacts substances are, and where only
+named reactions run every combination of amounts that these leave alone.  Holds are further rows.
+"""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
-from itertools import chain
+from dataclasses import dataclass, replace
 
 import numpy as np
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import BalanceError
+from gibbsmin.reactor.holds import Hold
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
 CHARGE = "charge"
+_RANK_TOLERANCE = 1e-10
 
 
 @dataclass(frozen=True)
-class ElementBalance:
-    """Rows A n = b of a stage: elements, then charge where ions take part, then holds.
+class Balance:
+    """Rows A n = b of a stage.
 
     Attributes
     ----------
-    rows : names of the m rows: element symbols, ``charge``, and one ``hold <record>`` each inert
-    matrix : (m, S) counts of the candidates
-    feed_matrix : (m, F) counts of the feed's records, so that b = feed_matrix @ feed amounts
+    elements : symbols of the first rows (and ``charge``); empty where elements have no rows
+    rows : names of all m rows
+    matrix : (m, S) coefficients of the candidates
+    feed_matrix : (m, F) coefficients of the feed's records, so that b = feed_matrix @ feed
     direction : (m,) a dual direction d with Aᵀd ≥ 1 for every candidate
     atoms : (S,) element atoms of each candidate
     """
 
+    elements: tuple[str, ...]
     rows: tuple[str, ...]
     matrix: FloatArray
     feed_matrix: FloatArray
     direction: FloatArray
     atoms: FloatArray
 
+    @property
+    def held(self) -> bool:
+        """Whether more than elements is conserved, so that routes to a record may disagree."""
+        return len(self.rows) > len(self.elements)
+
     def supplies(self, feed: FloatArray) -> FloatArray:
         """b of feed amounts; (..., F) to (..., m)."""
         return feed @ self.feed_matrix.T
+
+    def with_holds(
+        self, candidates: Sequence[Species], feed: Sequence[Species], holds: Sequence[Hold]
+    ) -> Balance:
+        """The balance with a row for each hold, on which the dual direction is 0."""
+        if not holds:
+            return self
+        return replace(
+            self,
+            rows=(*self.rows, *(hold.label for hold in holds)),
+            matrix=np.vstack(
+                [self.matrix, [[h.outlet.get(r.name, 0.0) for r in candidates] for h in holds]]
+            ),
+            feed_matrix=np.vstack(
+                [self.feed_matrix, [[h.feed.get(r.name, 0.0) for r in feed] for h in holds]]
+            ),
+            direction=np.concatenate([self.direction, np.zeros(len(holds))]),
+        )
 
 
 def element_counts(records: Sequence[Species], rows: Sequence[str]) -> FloatArray:
@@ -58,40 +88,74 @@ def elements_of(records: Sequence[Species]) -> tuple[str, ...]:
     return tuple(sorted({symbol for record in records for symbol, _ in record.elements}))
 
 
-def element_balance(
-    candidates: Sequence[Species], feed: Sequence[Species], inert: BoolArray
-) -> ElementBalance:
-    """Build the balance of a stage.
+def element_balance(candidates: Sequence[Species], feed: Sequence[Species]) -> Balance:
+    """Elements are conserved, and charge where ions take part.
 
-    Each inert candidate adds a row that holds it at its inlet amount.  The dual direction is 1 on
-    element rows and 0 on hold rows; with ions it is 1 + Z on elements and −1 on charge, Z being
-    the largest positive charge per atom, because an electron has no atoms.
+    The dual direction is 1 on element rows; with ions it is 1 + Z on elements and −1 on charge,
+    Z being the largest positive charge per atom, because an electron has no atoms.
     """
     elements = elements_of([*candidates, *feed])
     charged = any(record.charge for record in [*candidates, *feed])
     rows = (*elements, CHARGE) if charged else elements
-    matrix = element_counts(candidates, rows)
-    feed_matrix = element_counts(feed, rows)
-
-    atoms = element_counts(candidates, elements).sum(axis=0)
+    atoms = np.array([record.atoms for record in candidates])
     direction = np.ones(len(rows))
     if charged:
-        per_atom = [r.charge / a for r, a in zip(candidates, atoms, strict=True) if a > 0]
-        direction[:-1] += max(0.0, *per_atom) if per_atom else 0.0
+        largest = max((r.charge / r.atoms for r in candidates if r.atoms > 0), default=0.0)
+        direction[:-1] += max(0.0, largest)
         direction[-1] = -1.0
+    return Balance(
+        elements=rows,
+        rows=rows,
+        matrix=element_counts(candidates, rows),
+        feed_matrix=element_counts(feed, rows),
+        direction=direction,
+        atoms=atoms,
+    )
 
-    held: list[int] = np.flatnonzero(inert).tolist()
-    feed_names = [record.name for record in feed]
-    hold_rows = np.zeros((len(held), len(candidates)))
-    hold_feed = np.zeros((len(held), len(feed)))
-    for row, column in enumerate(held):
-        hold_rows[row, column] = 1.0
-        hold_feed[row, feed_names.index(candidates[column].name)] = 1.0
-    return ElementBalance(
-        rows=(*rows, *(f"hold {candidates[column].name}" for column in held)),
-        matrix=np.vstack([matrix, hold_rows]),
-        feed_matrix=np.vstack([feed_matrix, hold_feed]),
-        direction=np.concatenate([direction, np.zeros(len(held))]),
+
+def substance_balance(candidates: Sequence[Species], feed: Sequence[Species]) -> Balance:
+    """Nothing reacts: each substance is conserved, though its forms may change."""
+    substances = tuple(dict.fromkeys(record.formula for record in [*feed, *candidates]))
+
+    def membership(records: Sequence[Species]) -> FloatArray:
+        return np.array([[float(r.formula == name) for r in records] for name in substances])
+
+    return Balance(
+        elements=(),
+        rows=tuple(f"substance {name}" for name in substances),
+        matrix=membership(candidates),
+        feed_matrix=membership(feed),
+        direction=np.ones(len(substances)),
+        atoms=np.array([record.atoms for record in candidates]),
+    )
+
+
+def reaction_balance(
+    candidates: Sequence[Species], feed: Sequence[Species], stoichiometry: FloatArray
+) -> Balance:
+    """Only named reactions run: what they leave alone is conserved.
+
+    The rows are a basis of the null space of ν (R, S): unit rows for candidates in no named
+    reaction, an orthonormal basis for the rest.  Every feed record must be a candidate.
+    """
+    names = [record.name for record in candidates]
+    taking_part = np.flatnonzero(np.any(stoichiometry != 0.0, axis=0)).tolist()
+    others = [j for j in range(len(names)) if j not in taking_part]
+    _, sizes, directions = np.linalg.svd(stoichiometry[:, taking_part])
+    kept = directions[np.count_nonzero(sizes > _RANK_TOLERANCE * sizes[0]) :]
+    matrix = np.zeros((len(others) + len(kept), len(names)))
+    matrix[range(len(others)), others] = 1.0
+    matrix[len(others) :, taking_part] = kept
+    atoms = np.array([record.atoms for record in candidates])
+    direction = np.linalg.lstsq(matrix.T, atoms, rcond=None)[0]
+    return Balance(
+        elements=(),
+        rows=tuple(
+            [f"{names[j]} frozen" for j in others] + [f"kept {i}" for i in range(len(kept))]
+        ),
+        matrix=matrix,
+        feed_matrix=matrix[:, [names.index(record.name) for record in feed]],
+        direction=direction,
         atoms=atoms,
     )
 
@@ -106,7 +170,7 @@ def require_every_element_held(
     BalanceError
         names the element, the feed record that brings it and a record that could hold it.
     """
-    held = set(chain.from_iterable(dict(record.elements) for record in candidates))
+    held = set(elements_of(candidates))
     for record in feed:
         for symbol, _ in record.elements:
             if symbol not in held:
@@ -118,4 +182,5 @@ def require_every_element_held(
                     "candidate can hold",
                     f'accepted is a list with a record of {symbol}, for instance "{record.name}"'
                     + (f' or "{simplest.name}"' if simplest.name != record.name else ""),
+                    key="species.consider",
                 )

@@ -6,9 +6,6 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Literal
 
-import numpy as np
-
-from gibbsmin.arrays import BoolArray
 from gibbsmin.errors import InputError
 from gibbsmin.reactor.balance import elements_of
 from gibbsmin.thermo.library import Library
@@ -28,25 +25,13 @@ class Selection:
     inert: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True)
-class Candidates:
-    """The records that may appear in an outlet, gases first, and which of them are inert."""
-
-    records: tuple[Species, ...]
-    inert: BoolArray
-
-    @property
-    def gas(self) -> BoolArray:
-        return np.array([record.phase is Phase.GAS for record in self.records], dtype=bool)
-
-
 def choose_candidates(
     selection: Selection, feed: Sequence[Species], library: Library
-) -> Candidates:
-    """Apply a selection to a feed.
+) -> tuple[Species, ...]:
+    """The records that may appear in an outlet, gases first.
 
     A considered record with an element that the feed does not bring is left away, since it cannot
-    form.  Gases come first; otherwise the user's (or the library's) order is kept.
+    form.  Otherwise the user's (or the library's) order is kept.
 
     Raises
     ------
@@ -58,21 +43,19 @@ def choose_candidates(
         considered = list(library.of_elements(elements))
     else:
         considered = [library[name] for name in selection.consider]
-    feed_names = {record.name for record in feed}
+    fed = {record.name for record in feed}
     for name in selection.inert:
-        if name not in feed_names:
+        if name not in fed:
             raise InputError(
                 f'found "{name}", which is not in the feed',
-                f"accepted is a record of the feed: {', '.join(sorted(feed_names))}",
+                f"accepted is a record of the feed: {', '.join(sorted(fed))}",
                 key="species.inert",
             )
-    names = {record.name for record in considered}
-    considered += [library[name] for name in selection.inert if name not in names]
-    left_out = set(selection.leave_out)
+    considered += [library[name] for name in selection.inert]
     kept = [
         record
-        for record in considered
-        if record.name not in left_out and set(dict(record.elements)) <= set(elements)
+        for record in dict.fromkeys(considered)
+        if record.name not in selection.leave_out and set(dict(record.elements)) <= set(elements)
     ]
     if not kept:
         raise InputError(
@@ -80,6 +63,31 @@ def choose_candidates(
             "accepted is a list with at least one, or all",
             key="species.consider",
         )
-    ordered = tuple(sorted(kept, key=lambda record: record.phase is not Phase.GAS))
-    inert = np.array([record.name in selection.inert for record in ordered], dtype=bool)
-    return Candidates(ordered, inert)
+    return gases_first(kept)
+
+
+def forms_of_feed(
+    condense: Sequence[str], feed: Sequence[Species], library: Library
+) -> tuple[Species, ...]:
+    """Where nothing reacts: the feed's records, and all forms of the substances that condense.
+
+    Raises
+    ------
+    InputError
+        when a substance that should condense is not in the feed.
+    """
+    fed = {record.formula for record in feed}
+    for formula in condense:
+        if formula not in fed:
+            raise InputError(
+                f'found "{formula}", which is not in the feed',
+                f"accepted is a substance of the feed: {', '.join(sorted(fed))}",
+                key="condense",
+            )
+    forms = [form for formula in condense for form in library.forms(formula)]
+    return gases_first(list(dict.fromkeys([*feed, *(f for f in forms if not f.superseded)])))
+
+
+def gases_first(records: Sequence[Species]) -> tuple[Species, ...]:
+    """The records in their order, the gases before the others."""
+    return tuple(sorted(records, key=lambda record: record.phase is not Phase.GAS))

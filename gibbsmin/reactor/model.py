@@ -11,41 +11,46 @@ import numpy.typing as npt
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
 from gibbsmin.minimise import Programme
+from gibbsmin.reactor.approach import Shift, shift_of
 from gibbsmin.reactor.balance import (
-    ElementBalance,
+    Balance,
     element_balance,
+    reaction_balance,
     require_every_element_held,
+    substance_balance,
 )
-from gibbsmin.reactor.candidates import Selection, choose_candidates
+from gibbsmin.reactor.candidates import choose_candidates, forms_of_feed, gases_first
+from gibbsmin.reactor.chemistry import Chemistry, holds_of
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
-from gibbsmin.thermo.species import Species
+from gibbsmin.thermo.species import Phase, Species
 
 
 @dataclass(frozen=True)
 class StageModel:
-    """The candidates of a stage with their properties and balance.
+    """The candidates of a stage with their properties, balance and shifts of energy.
 
     Attributes
     ----------
     records : the S candidates, gases first
     gas : (S,) which of them share the gas mixture
-    inert : (S,) which of them pass through unchanged
     properties : Cp, H, S and G of the candidates
     feed_records : the F records that enter
-    balance : the element balance between both
+    balance : what is conserved between both
+    shift : what is added to the candidates' energies
     """
 
     records: tuple[Species, ...]
     gas: BoolArray
-    inert: BoolArray
     properties: PropertyTable
     feed_records: tuple[Species, ...]
-    balance: ElementBalance
+    balance: Balance
+    shift: Shift
 
-    def energies(self, temperature: FloatArray, pressure: FloatArray) -> FloatArray:
-        """g̃ = G/RT, for gases + ln(P/P°); (B,) and (B,) to (B, S)."""
-        return reduced_energies(self.properties, self.gas, temperature, pressure)
+    def energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
+        """g̃ = G/RT + δ, for gases + ln(P/P°); T.shape + (S,)."""
+        energies = reduced_energies(self.properties, self.gas, temperature, pressure)
+        return energies + self.shift.at(temperature)
 
     def programme(
         self, temperature: FloatArray, pressure: FloatArray, feed: FloatArray
@@ -61,23 +66,38 @@ class StageModel:
         )
 
 
-def stage_model(selection: Selection, feed: Sequence[Species], library: Library) -> StageModel:
+def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library) -> StageModel:
     """Choose the candidates for a feed and build their balance.
 
     Raises
     ------
     BalanceError
         when the feed holds an element that no candidate contains.
+    InputError
+        when the chemistry names records or reactions that do not fit.
     """
-    candidates = choose_candidates(selection, feed, library)
-    require_every_element_held(candidates.records, feed, library)
+    if chemistry.reactions == "none":
+        records = forms_of_feed(chemistry.condense, feed, library)
+    else:
+        records = choose_candidates(chemistry.selection, feed, library)
+        require_every_element_held(records, feed, library)
+    if chemistry.others == "frozen":
+        records = gases_first(list(dict.fromkeys([*records, *feed])))
+    shift = shift_of(records, chemistry.approaches, chemistry.offsets, chemistry.activities)
+    if chemistry.reactions == "none":
+        balance = substance_balance(records, feed)
+    elif chemistry.others == "frozen":
+        balance = reaction_balance(records, feed, shift.stoichiometry)
+    else:
+        balance = element_balance(records, feed)
+    holds = holds_of(chemistry, records, feed, library)
     return StageModel(
-        records=candidates.records,
-        gas=candidates.gas,
-        inert=candidates.inert,
-        properties=PropertyTable.of(candidates.records),
+        records=records,
+        gas=np.array([record.phase is Phase.GAS for record in records], dtype=bool),
+        properties=shift.properties,
         feed_records=tuple(feed),
-        balance=element_balance(candidates.records, feed, candidates.inert),
+        balance=balance.with_holds(records, feed, holds),
+        shift=shift,
     )
 
 

@@ -1,0 +1,177 @@
+"""Temperature approach to equilibrium, and other shifts of a record's energy.
+
+An approach of ΔT to a reaction (positive: short of equilibrium as written) sets it to equilibrium
+at T_s = T − sgn(ΔrH) ΔT.  Either the shift δ falls on one key record of each named reaction,
+
+    δ_K = ν_K⁻¹ (ν g̃(T_s) − ν g̃(T)),
+
+so that every reaction without a key record is at equilibrium; or all other reactions are frozen.
+A least-norm δ is never taken: it would move the reactions that nobody named.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.constants import GAS_CONSTANT
+from gibbsmin.errors import InputError
+from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.species import Species
+
+
+@dataclass(frozen=True)
+class Approach:
+    """One named reaction.
+
+    Attributes
+    ----------
+    text : the reaction as the user wrote it
+    coefficients : ν by record name, products positive
+    difference : ΔT in K, positive when short of equilibrium as written
+    key : the record that takes the shift, empty for the reaction's record with most atoms
+    """
+
+    text: str
+    coefficients: Mapping[str, float]
+    difference: float
+    key: str = ""
+
+
+@dataclass(frozen=True)
+class Shift:
+    """What is added to g̃ of the candidates: approaches, and offsets of single records.
+
+    Attributes
+    ----------
+    properties : of the S candidates
+    stoichiometry : (R, S) ν of the named reactions
+    differences : (R,) ΔT in K
+    keys : (R,) columns of the key records
+    offsets : (S,) energies in J/mol, such as that of whisker carbon over graphite
+    log_activities : (S,) ln a of records whose activity is fixed, such as carbon in an alloy
+    texts : (R,) the reactions as written
+    """
+
+    properties: PropertyTable
+    stoichiometry: FloatArray
+    differences: FloatArray
+    keys: tuple[int, ...]
+    offsets: FloatArray
+    log_activities: FloatArray
+    texts: tuple[str, ...]
+
+    def at(self, temperature: npt.ArrayLike) -> FloatArray:
+        """δ of each candidate, T.shape + (S,).
+
+        Raises
+        ------
+        InputError
+            when a reaction's enthalpy changes sign between T and T_s.
+        """
+        T = np.asarray(temperature, dtype=float)
+        shift = self.offsets / (GAS_CONSTANT * T)[..., np.newaxis] + self.log_activities
+        if not self.keys:
+            return np.asarray(shift)
+        missing = np.stack([self._constants_gap(r, T) for r in range(len(self.keys))], axis=-1)
+        nu_keys = self.stoichiometry[:, self.keys]
+        shift[..., list(self.keys)] += np.linalg.solve(nu_keys, missing[..., np.newaxis])[..., 0]
+        return np.asarray(shift)
+
+    def shifted_temperature(self, reaction: int, temperature: npt.ArrayLike) -> FloatArray:
+        """T_s of one reaction."""
+        T = np.asarray(temperature, dtype=float)
+        nu, difference = self.stoichiometry[reaction], self.differences[reaction]
+        enthalpy = self.properties.enthalpy(T) @ nu
+        shifted = T - np.sign(enthalpy) * difference
+        if np.any(shifted <= 0.0):
+            raise InputError(
+                f'found an approach of {difference:g} K for "{self.texts[reaction]}", which '
+                "leads below absolute zero",
+                "accepted is a smaller approach",
+            )
+        if np.any(np.sign(self.properties.enthalpy(shifted) @ nu) != np.sign(enthalpy)):
+            raise InputError(
+                f'found an approach of {difference:g} K for "{self.texts[reaction]}", whose '
+                "enthalpy changes sign within it",
+                "accepted is a smaller approach, or a fixed conversion in its place",
+            )
+        return np.asarray(shifted)
+
+    def _constants_gap(self, reaction: int, T: FloatArray) -> FloatArray:
+        """ln K(T) − ln K(T_s) = ν g̃(T_s) − ν g̃(T) of one reaction."""
+        nu = self.stoichiometry[reaction]
+        shifted = self.shifted_temperature(reaction, T)
+        here = self.properties.gibbs_energy(T) @ nu / (GAS_CONSTANT * T)
+        there = self.properties.gibbs_energy(shifted) @ nu / (GAS_CONSTANT * shifted)
+        return np.asarray(there - here)
+
+
+def shift_of(
+    records: Sequence[Species],
+    approaches: Sequence[Approach],
+    offsets: Mapping[str, float],
+    activities: Mapping[str, float],
+) -> Shift:
+    """Lay out approaches, offsets (J/mol) and activities over the candidates.
+
+    Raises
+    ------
+    InputError
+        for a reaction with a record that is no candidate, a key that is not in its reaction or
+        is not unique, or dependent reactions.
+    """
+    names = [record.name for record in records]
+    stoichiometry = np.zeros((len(approaches), len(names)))
+    keys = []
+    for row, approach in enumerate(approaches):
+        for name, coefficient in approach.coefficients.items():
+            if name not in names:
+                raise InputError(
+                    f'found "{name}" in "{approach.text}", which is no candidate',
+                    "accepted is a reaction between records to consider",
+                )
+            stoichiometry[row, names.index(name)] = coefficient
+        keys.append(names.index(approach.key or _default_key(approach, records)))
+    if approaches and np.linalg.matrix_rank(stoichiometry) < len(approaches):
+        raise InputError(
+            f"found reactions that depend on each other: {_listed(approaches)}",
+            "accepted are independent reactions",
+        )
+    if approaches and np.linalg.matrix_rank(stoichiometry[:, keys]) < len(approaches):
+        raise InputError(
+            f"found the key records {', '.join(names[k] for k in keys)}, which cannot tell the "
+            f"reactions apart: {_listed(approaches)}",
+            "accepted is a key of its own for each reaction",
+        )
+    return Shift(
+        properties=PropertyTable.of(records),
+        stoichiometry=stoichiometry,
+        differences=np.array([approach.difference for approach in approaches]),
+        keys=tuple(keys),
+        offsets=np.array([offsets.get(name, 0.0) for name in names]),
+        log_activities=np.log([activities.get(name, 1.0) for name in names]),
+        texts=tuple(approach.text for approach in approaches),
+    )
+
+
+def _default_key(approach: Approach, records: Sequence[Species]) -> str:
+    """The reaction's record with most atoms; a tie is refused."""
+    taking_part = [record for record in records if record.name in approach.coefficients]
+    most = max(record.atoms for record in taking_part)
+    largest = [record.name for record in taking_part if record.atoms == most]
+    if len(largest) > 1:
+        raise InputError(
+            f'found no key for "{approach.text}", in which {" and ".join(largest)} are equally '
+            "large",
+            "accepted is a key, the record that the approach holds back",
+        )
+    return largest[0]
+
+
+def _listed(approaches: Sequence[Approach]) -> str:
+    return ", ".join(f'"{approach.text}"' for approach in approaches)
