@@ -9,10 +9,11 @@ from typing import Final
 
 from gibbsmin.data.build.record import BuildRecord
 from gibbsmin.data.build.write import table_text
+
 from gibbsmin.thermo.formula import parse_formula
 from gibbsmin.thermo.species import Phase
 
-HEADER = "symbol name atomic_weight reference_forms source".split()
+HEADER = ["symbol", "name", "atomic_weight", "reference_forms", "source"]
 SOURCE: Final = "IUPAC-2021"
 
 # Allotropes that are no reference state, although they are forms of the element: the reference
@@ -20,7 +21,7 @@ SOURCE: Final = "IUPAC-2021"
 _NO_REFERENCE: Final = frozenset({"P(red)", "P(red-iv)", "P(black)", "C(diamond)"})
 _GAS_OF: Final = {"P": "P2", "S": "S2"}
 _WITHOUT_GAS: Final = frozenset({"C", "W"})
-_DIATOMIC: Final = frozenset("H D N O F Cl Br I".split())
+_DIATOMIC: Final = frozenset(["H", "D", "N", "O", "F", "Cl", "Br", "I"])
 
 
 def elements_table(records: Sequence[BuildRecord]) -> str:

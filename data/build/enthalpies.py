@@ -23,6 +23,7 @@ from typing import Final
 from gibbsmin.data.build.identities import composition
 from gibbsmin.data.build.reference_tables import ATCT_GAS, ATCT_LIQUID, Row, table
 from gibbsmin.data.build.tables import MainTable
+
 from gibbsmin.errors import FormulaError
 
 JANAF: Final = "JANAF"

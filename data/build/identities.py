@@ -16,6 +16,7 @@ from pathlib import Path
 
 from gibbsmin.data.build.names import overrides
 from gibbsmin.data.build.tables import MainTable
+
 from gibbsmin.errors import FormulaError, GibbsminError
 from gibbsmin.thermo.formula import parse_formula
 

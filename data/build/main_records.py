@@ -9,8 +9,6 @@ from functools import cache
 from typing import Final
 
 import numpy as np
-
-from gibbsmin.constants import REFERENCE_TEMPERATURE
 from gibbsmin.data.build.enthalpies import (
     JANAF,
     Enthalpy,
@@ -22,24 +20,45 @@ from gibbsmin.data.build.identities import registry_numbers
 from gibbsmin.data.build.names import common_name, form_word, trade_formula
 from gibbsmin.data.build.record import BuildRecord
 from gibbsmin.data.build.tables import MainTable, read_main_tables
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.constants import REFERENCE_TEMPERATURE
 from gibbsmin.thermo.fit import Table, fit_heat_capacity, gibbs_errors
 from gibbsmin.thermo.species import Phase, Piece
 
 LOWEST: Final = 200.0
-"""K; where a fit from here misses ``GOOD_FIT``, a condensed record begins at 298.15 K."""
+"""K; where a fit from here misses ``FAIR_FIT`` below 298.15 K or ``GOOD_FIT`` above, a record
+begins at 298.15 K."""
 
 GOOD_FIT: Final = 2e-4
+FAIR_FIT: Final = 1e-3
 AIM: Final = 1.2e-4
 """|ΔG/RT|; the tables' rounding alone makes about 1e-4."""
 
 # Elements whose only form in the tables is the reference form.
 _REFERENCE_TABLES: Final = frozenset(
-    "Ar-001 C-002 Cl-073 D-012 D-020 F-054 H-050 He-001 Kr-001 N-023 Ne-001 O-029 Rn-001 "
-    "Xe-001".split()
+    [
+        "Ar-001",
+        "C-002",
+        "Cl-073",
+        "D-012",
+        "D-020",
+        "F-054",
+        "H-050",
+        "He-001",
+        "Kr-001",
+        "N-023",
+        "Ne-001",
+        "O-029",
+        "Rn-001",
+        "Xe-001",
+    ]
 )
 
 # Composites of crystal and liquid that exist nowhere else.
-_COMPOSITES: Final = frozenset("Br-039 H-075 H-092 H-094 H-095 H-096 H-097 Hg-002".split())
+_COMPOSITES: Final = frozenset(
+    ["Br-039", "H-075", "H-092", "H-094", "H-095", "H-096", "H-097", "Hg-002"]
+)
 
 _REMARKS: Final = {
     "FeO(cr)": "stoichiometric, off measured gas ratios by a factor of 2 to 3; wustite is Fe0.947O",
@@ -112,13 +131,13 @@ def main_records() -> Iterator[BuildRecord]:
 
 def _record(identity: Identity, enthalpy: Enthalpy) -> BuildRecord:
     table, name = identity.table, identity.name
-    pieces, error, fit_remark = fitted(table)
+    pieces, error = fitted(table)
     u_dfH298, u_S298 = key_uncertainties(name, enthalpy.value, table.S298)
     remarks = (
         _REMARKS.get(name, ""),
         _COMPOSITE_REMARK if table.key in _COMPOSITES else "",
         enthalpy.remark,
-        fit_remark,
+        table.remark,
     )
     return BuildRecord(
         formula=identity.formula,
@@ -140,25 +159,25 @@ def _record(identity: Identity, enthalpy: Enthalpy) -> BuildRecord:
     )
 
 
+def fitted(table: MainTable) -> tuple[tuple[Piece, ...], float]:
+    """Pieces of a table and their largest |ΔG/RT|, from 200 K on or else from 298.15 K on."""
+    pieces, T, errors = _fit(table.between(LOWEST))
+    good = np.all(errors <= np.where(T < REFERENCE_TEMPERATURE, FAIR_FIT, GOOD_FIT))
+    if not good and T[0] < REFERENCE_TEMPERATURE and table.key not in _COMPOSITES:
+        shorter, _, smaller = _fit(table.between(REFERENCE_TEMPERATURE))
+        if np.max(smaller) < np.max(errors):
+            pieces, errors = shorter, smaller
+    return pieces, float(np.max(errors))
+
+
 def fit_columns(table: MainTable) -> Table:
-    """The table's columns as the fit reads them, from :data:`LOWEST` on."""
-    cut = table.between(LOWEST)
+    """The table's columns as the fit reads them."""
     S298 = table.S298
-    return Table.read(cut.T, cut.Cp, cut.H, cut.S - S298, cut.gibbs_function - S298)
+    return Table.read(table.T, table.Cp, table.H, table.S - S298, table.gibbs_function - S298)
 
 
-def fitted(table: MainTable) -> tuple[tuple[Piece, ...], float, str]:
-    """Pieces of a table, their largest |ΔG/RT|, and what there is to say of the table."""
-    pieces, error = _fit(table.between(LOWEST))
-    if table.state in ("cr", "l") and error > GOOD_FIT and table.T[0] < REFERENCE_TEMPERATURE:
-        shorter, smaller = _fit(table.between(REFERENCE_TEMPERATURE))
-        if smaller < error:
-            pieces, error = shorter, smaller
-    return pieces, error, ""
-
-
-def _fit(table: MainTable) -> tuple[tuple[Piece, ...], float]:
+def _fit(table: MainTable) -> tuple[tuple[Piece, ...], FloatArray, FloatArray]:
     S298 = table.S298
     columns = (table.T, table.Cp, table.H, table.S - S298, table.gibbs_function - S298)
     pieces = fit_heat_capacity(*columns, tolerance=AIM, labels=dict(table.labels))
-    return pieces, float(np.max(np.abs(gibbs_errors(pieces, Table.read(*columns)))))
+    return pieces, table.T, np.abs(gibbs_errors(pieces, fit_columns(table)))

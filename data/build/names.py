@@ -28,19 +28,30 @@ _SPELLING = (
 )
 
 _FORM_WORDS: Final = {"orthorhombic": "rhombic", "alpha-delta": "alpha"}
-_ANIONS = "bromide carbide chloride fluoride hydride iodide nitride oxide silicide sulfide".split()
+_ANIONS = [
+    "bromide",
+    "carbide",
+    "chloride",
+    "fluoride",
+    "hydride",
+    "iodide",
+    "nitride",
+    "oxide",
+    "silicide",
+    "sulfide",
+]
 _PREFIXES = ("", "", "di", "tri", "tetra", "penta", "hexa", "hepta", "octa", "nona", "deca")
 # Metals of one valence: their salts need no multiplying prefix.
 _VALENCES = {
-    **dict.fromkeys("H Li Na K Rb Cs".split(), 1),
-    **dict.fromkeys("Be Mg Ca Sr Ba Zn".split(), 2),
+    **dict.fromkeys(["H", "Li", "Na", "K", "Rb", "Cs"], 1),
+    **dict.fromkeys(["Be", "Mg", "Ca", "Sr", "Ba", "Zn"], 2),
     "Al": 3,
 }
 _VALENCE_OF_ANION = {"oxide": 2, "sulfide": 2, "nitride": 3, "carbide": 4, "silicide": 4}
 _WITHOUT_MONO = ("carbide", "nitride", "sulfide", "silicide")
 _OLIGOMERS = {2: "dimer", 3: "trimer", 4: "tetramer", 5: "pentamer", 6: "hexamer"}
-_DIATOMIC = frozenset("H2 D2 N2 O2 F2 Cl2 Br2 I2".split())
-_NOBLE = frozenset("He Ne Ar Kr Xe Rn".split())
+_DIATOMIC = frozenset(["H2", "D2", "N2", "O2", "F2", "Cl2", "Br2", "I2"])
+_NOBLE = frozenset(["He", "Ne", "Ar", "Kr", "Xe", "Rn"])
 
 
 @cache
@@ -70,8 +81,7 @@ def _by_rule(formula: str) -> str:
             for symbol, number in re.findall(r"([A-Z][a-z]?)(\d*)", multiple["unit"])
         )
     formula = _OXYGEN_FIRST.sub(r"\1O\2", formula)
-    formula = _CENTRAL_CARBON.sub(r"CH3Si\1", formula)
-    return formula
+    return _CENTRAL_CARBON.sub(r"CH3Si\1", formula)
 
 
 def form_word(key: str, words: str) -> str:

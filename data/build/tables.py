@@ -12,6 +12,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass, replace
 from importlib.util import find_spec
 from pathlib import Path
+from typing import Final
 
 import numpy as np
 
@@ -23,13 +24,56 @@ _CODE = re.compile(r"(?P<formula>.+)\((?P<state>[a-z,]+)\)$")
 _TITLE = re.compile(r"(?P<words>.+?)\s*\((?P<formula>\S+)\)$")
 _LABEL = re.compile(r"(?P<lower>\w+) <--> (?P<upper>\w+)")
 
-# Single cells that contradict the rest of their row or column: (table, T, column).
-_FAULTY_CELLS = {
-    ("B-116", 1900.0, "S"),
-    ("B-133", 600.0, "S"),
-    ("B-133", 300.0, "S"),
-    ("B-065", 1220.0, "gibbs_function"),
-    ("Hf-004", 2500.0, "H"),
+# Cells that contradict the rest of their row or column, by table, temperature and column.  Most
+# are entropies at 200 K that disagree with Cp and H; the Gibbs function is made from them.
+_FAULTY_ROWS_AT_200: Final = [
+    "C-016",
+    "C-021",
+    "C-041",
+    "C-052",
+    "C-056",
+    "C-094",
+    "C-123",
+    "C-127",
+    "Cl-061",
+    "Cl-117",
+    "D-008",
+    "D-017",
+    "D-018",
+    "D-019",
+    "H-080",
+    "N-024",
+    "O-034",
+    "O-056",
+]
+FAULTY_CELLS: Final = frozenset(
+    {
+        ("Al-053", 836.0, "H"),
+        ("Al-053", 836.0, "gibbs_function"),
+        ("B-065", 1220.0, "gibbs_function"),
+        ("B-116", 1900.0, "S"),
+        ("B-133", 300.0, "S"),
+        ("B-133", 300.0, "gibbs_function"),
+        ("B-133", 600.0, "S"),
+        ("H-034", 596.0, "H"),
+        ("H-034", 596.0, "gibbs_function"),
+        ("Li-024", 1820.0, "H"),
+        ("Li-024", 1820.0, "gibbs_function"),
+        *((table, 200.0, "S") for table in _FAULTY_ROWS_AT_200),
+        *((table, 200.0, "gibbs_function") for table in _FAULTY_ROWS_AT_200),
+    }
+)
+
+# Gaseous atoms whose H and S fall behind their Cp, step by step, above these temperatures in K.
+CONSISTENT_TO: Final = {
+    "Ba-005": 4600.0,
+    "Cr-005": 5000.0,
+    "Cs-005": 3200.0,
+    "K-005": 4300.0,
+    "Mn-005": 4400.0,
+    "Na-005": 4300.0,
+    "Rb-005": 3200.0,
+    "Sr-006": 4500.0,
 }
 
 
@@ -58,9 +102,20 @@ class MainTable:
     def S298(self) -> float:
         return float(self.S[self.T == REFERENCE_TEMPERATURE][0])
 
+    @property
+    def remark(self) -> str:
+        """What the user should know of faults of the table that this reading leaves out."""
+        if self.key in CONSISTENT_TO:
+            return (
+                f"the table's H and S fall behind its Cp above {CONSISTENT_TO[self.key]:.0f} K; "
+                "the range ends there"
+            )
+        rows = sorted({T for table, T, _ in FAULTY_CELLS if table == self.key})
+        return f"the table's entropy or enthalpy at {rows[0]:.0f} K is left out" if rows else ""
+
     def between(self, T_low: float, T_high: float = np.inf) -> MainTable:
         """The table cut to a range of temperatures."""
-        kept = (self.T >= T_low) & (self.T <= T_high)
+        kept = (T_low <= self.T) & (T_high >= self.T)
         columns = {
             name: getattr(self, name)[kept] for name in ("T", "Cp", "S", "gibbs_function", "H")
         }
@@ -91,15 +146,18 @@ def read_table(key: str, text: str) -> MainTable:
     rows = [line.split("\t") for line in lines if line.strip()]
     values = np.array([[_number(cell) for cell in row[:5]] for row in rows])
     kept = (values[:, 0] > 0.0) & (values[:, 1] > 0.0) & ~np.isnan(values).any(axis=1)
-    # The marker of a melting point in a table that runs on is a row like any other.
-    T, Cp, S, function, H = values[kept].T
+    values, printed = values[kept], np.array([_is_number(row[5]) for row in rows])[kept]
+    # A marker at a printed temperature repeats that row; doubled markers are a transition.
+    same = np.all(np.abs(np.diff(values[:, :3], axis=0)) <= [0.0, 0.002, 0.002], axis=1)
+    repeats = same & printed[:-1]
+    T, Cp, S, function, H = values[np.append(True, ~repeats)].T
     home = next(row for row in rows if _number(row[0]) == REFERENCE_TEMPERATURE)
     columns = {"S": S, "gibbs_function": function, "H": 1000 * H}
     function[T == REFERENCE_TEMPERATURE] = float(home[2])
-    for table, faulty_T, column in _FAULTY_CELLS:
-        if table == key:
-            columns[column][T == faulty_T] = np.nan
-    return MainTable(
+    for faulty_key, faulty_T, column in FAULTY_CELLS:
+        if faulty_key == key:
+            columns[column][faulty_T == T] = np.nan
+    table = MainTable(
         key=key,
         words=in_title["words"],
         formula=in_title["formula"],
@@ -111,6 +169,7 @@ def read_table(key: str, text: str) -> MainTable:
         labels=tuple(_labels(rows)),
         **columns,
     )
+    return table.between(0.0, CONSISTENT_TO.get(key, np.inf))
 
 
 def _number(cell: str) -> float:
@@ -118,10 +177,18 @@ def _number(cell: str) -> float:
     return float(cell) if cell and not cell.endswith("inf") else float("nan")
 
 
+def _is_number(cell: str) -> bool:
+    return not cell.strip() or cell.strip()[-1] in "0123456789.f"
+
+
 def _labels(rows: list[list[str]]) -> Iterator[tuple[float, str]]:
     for row in rows:
-        label = _LABEL.match(row[5].strip()) if len(row) > 5 else None
-        if label is not None:
+        label = _LABEL.match(row[5].strip())
+        if row[5].startswith("Cp "):
+            yield float(row[0]), "lambda"
+        elif row[5].strip() == "UNDEFINED":
+            yield float(row[0]), "undefined"
+        elif label is not None:
             lower, upper = label["lower"].lower(), label["upper"].lower()
             word = "melting" if (lower, upper) == ("crystal", "liquid") else f"{lower}–{upper}"
             yield float(row[0]), word

@@ -7,15 +7,42 @@ from collections.abc import Iterable, Sequence
 from io import StringIO
 from pathlib import Path
 
+from gibbsmin.data.build.critical import CriticalRow
 from gibbsmin.data.build.record import BuildRecord, SourceEntry
 
-SPECIES_HEADER = (
-    "name formula state phase common_name cas dfH298_kJ_per_mol u_dfH298_kJ_per_mol "
-    "S298_J_per_mol_K u_S298_J_per_mol_K molar_volume_cm3_per_mol source_enthalpy "
-    "source_entropy source_heat_capacity status fit_error_G_RT remark"
-).split()
-HEAT_CAPACITY_HEADER = "name T_low_K T_high_K A B C D E transition_kJ_per_mol transition".split()
-SOURCES_HEADER = "key citation status".split()
+SPECIES_HEADER = [
+    "name",
+    "formula",
+    "state",
+    "phase",
+    "common_name",
+    "cas",
+    "dfH298_kJ_per_mol",
+    "u_dfH298_kJ_per_mol",
+    "S298_J_per_mol_K",
+    "u_S298_J_per_mol_K",
+    "molar_volume_cm3_per_mol",
+    "source_enthalpy",
+    "source_entropy",
+    "source_heat_capacity",
+    "status",
+    "fit_error_G_RT",
+    "remark",
+]
+HEAT_CAPACITY_HEADER = [
+    "name",
+    "T_low_K",
+    "T_high_K",
+    "A",
+    "B",
+    "C",
+    "D",
+    "E",
+    "transition_kJ_per_mol",
+    "transition",
+]
+CRITICAL_HEADER = ["name", "Tc_K", "Pc_bar", "acentric_factor", "source"]
+SOURCES_HEADER = ["key", "citation", "status"]
 
 
 def species_table(records: Iterable[BuildRecord]) -> str:
@@ -60,6 +87,17 @@ def heat_capacity_table(records: Iterable[BuildRecord]) -> str:
             )
             for record in records
             for p in record.pieces
+        ),
+    )
+
+
+def critical_table(rows: Iterable[CriticalRow]) -> str:
+    """Text of ``critical.csv``."""
+    return table_text(
+        CRITICAL_HEADER,
+        (
+            (row.name, _number(row.Tc), _number(row.Pc), _number(row.acentric_factor), row.source)
+            for row in rows
         ),
     )
 

@@ -9,17 +9,23 @@ it lowers the largest error in G most, until the tolerance is met.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Self
 
 import numpy as np
 import numpy.typing as npt
 
 from gibbsmin.arrays import FloatArray, IntArray
-from gibbsmin.constants import GAS_CONSTANT, REFERENCE_TEMPERATURE
-from gibbsmin.errors import InputError
+from gibbsmin.thermo.fit_table import (
+    Matrices,
+    Table,
+    errors_of,
+    gibbs_errors,
+    heat_capacities,
+)
 from gibbsmin.thermo.species import Piece
+
+__all__ = ["Table", "fit_heat_capacity", "gibbs_errors"]
 
 MOST_JOINTS = 6
 """Joints beyond which a table that still misses the tolerance is left as it is."""
@@ -31,12 +37,14 @@ _SIGMA_FUNCTION = 0.0005
 _SIGMA_ENTHALPY = 0.5
 
 # A piece gets no more coefficients than its width T_high/T_low can tell apart.
-_COEFFICIENTS_BY_WIDTH = ((1.03, 2), (1.2, 3), (1.6, 4), (np.inf, 5))
+_COEFFICIENTS_BY_WIDTH = ((1.02, 2), (1.1, 3), (1.45, 4), (np.inf, 5))
+# Joints are chosen by the sum of this power of the errors, smoother than their maximum.
 _NORM = 4
+_COARSE_TRIALS = 30
+_LARGEST_BEND = 0.32
+_BETWEEN = np.array([0.15, 0.5, 0.85])
 _CONSTANT_WITHIN = 0.0021
 _NEGLIGIBLE_CP = 2e-5
-
-_Primitive = Callable[[FloatArray], FloatArray]
 
 
 def fit_heat_capacity(
@@ -83,81 +91,12 @@ def fit_heat_capacity(
     table = Table.read(T, Cp, enthalpy, entropy, gibbs_function)
     best = found = _solve(table, ())
     while best.error > tolerance and len(best.joints) < MOST_JOINTS:
-        trials = [
-            _solve(table, tuple(sorted((*best.joints, joint))))
-            for joint in table.possible_joints(best.joints)
-        ]
-        if not trials:
+        further = _with_joint(table, best)
+        if further is None:
             break
-        best = min(trials, key=lambda solution: solution.misfit)
+        best = further
         found = min(found, best, key=lambda solution: solution.error)
     return _pieces(table, found, labels or {})
-
-
-def gibbs_errors(pieces: tuple[Piece, ...], table: Table) -> FloatArray:
-    """ΔG/RT of pieces against a table's points, shape (n,).
-
-    G − H(Tr) is taken from the table's Gibbs function; where that is not known, from H and S;
-    and where they are not known either, the error in Cp is integrated by the trapezoidal rule.
-    """
-    limits = np.array([[piece.T_low, piece.T_high] for piece in pieces])
-    coefficients = np.array([[p.A, p.B, p.C, p.D, p.E] for p in pieces])
-    return _errors(table, _Matrices.of(table, limits), coefficients.ravel())
-
-
-@dataclass(frozen=True)
-class Table:
-    """Columns of a heat capacity table with the steps at its transitions taken out of H and S.
-
-    Fields as the arguments of :func:`fit_heat_capacity`; ``segment`` counts the transitions
-    below each row, ``steps`` are the transition enthalpies in J/mol.
-    """
-
-    T: FloatArray
-    Cp: FloatArray
-    enthalpy: FloatArray
-    entropy: FloatArray
-    gibbs_function: FloatArray
-    segment: IntArray
-    steps: FloatArray
-
-    @classmethod
-    def read(
-        cls,
-        T: npt.ArrayLike,
-        Cp: npt.ArrayLike,
-        enthalpy: npt.ArrayLike | None = None,
-        entropy: npt.ArrayLike | None = None,
-        gibbs_function: npt.ArrayLike | None = None,
-    ) -> Self:
-        T = np.asarray(T, dtype=np.float64)
-        Cp = np.asarray(Cp, dtype=np.float64)
-        H, S, function = (
-            np.full(T.shape, np.nan) if column is None else np.asarray(column, dtype=np.float64)
-            for column in (enthalpy, entropy, gibbs_function)
-        )
-        _check(T, Cp, H, S, function)
-        upper = np.flatnonzero(np.diff(T) == 0.0) + 1
-        segment = np.zeros(T.shape, dtype=np.int64)
-        segment[upper] = 1
-        segment = np.cumsum(segment)
-        steps = np.nan_to_num(H[upper] - H[upper - 1])
-        # Rows below a transition that lies below Tr miss its step, rows above one above Tr have it.
-        home = np.searchsorted(T[upper], REFERENCE_TEMPERATURE)
-        in_H = np.concatenate([[0.0], np.cumsum(steps)])
-        in_S = np.concatenate([[0.0], np.cumsum(steps / T[upper])])
-        taken_H = (in_H - in_H[home])[segment]
-        taken_S = (in_S - in_S[home])[segment]
-        function = function - taken_S + taken_H / T
-        return cls(T, Cp, H - taken_H, S - taken_S, function, segment, steps)
-
-    def possible_joints(self, joints: tuple[int, ...]) -> list[int]:
-        """Rows where a further joint may stand: two rows or more from all ends and joints."""
-        rows = np.arange(1, len(self.T) - 1)
-        free = (self.segment[rows - 1] == self.segment[rows]) & (
-            self.segment[rows + 1] == self.segment[rows]
-        )
-        return [int(row) for row in rows[free] if row not in joints]
 
 
 @dataclass(frozen=True)
@@ -170,83 +109,11 @@ class _Solution:
     misfit: float
 
 
-@dataclass(frozen=True)
-class _Matrices:
-    """Cp, H − H(Tr) and S − S(Tr) at the rows as linear functions of the coefficients."""
-
-    heat_capacity: FloatArray
-    enthalpy: FloatArray
-    entropy: FloatArray
-
-    @classmethod
-    def of(cls, table: Table, limits: FloatArray) -> Self:
-        low, high = limits.T
-        T = table.T
-        above = np.searchsorted(low, T, side="right") - 1
-        # The lower row of a transition belongs to the piece below.
-        above[:-1] -= np.diff(T) == 0.0
-        within = np.arange(len(low)) == above[:, None]
-        cp = within[:, :, None] * _heat_capacities(T)[:, None, :]
-        reference = np.clip(REFERENCE_TEMPERATURE, low, high)
-        inside = np.clip(T[:, None], low, high)
-        H, S = (f(inside) - f(reference) for f in (_enthalpies, _entropies))
-        n = len(T)
-        return cls(cp.reshape(n, -1), H.reshape(n, -1), S.reshape(n, -1))
-
-
-def _check(T: FloatArray, Cp: FloatArray, *columns: FloatArray) -> None:
-    if T.ndim != 1 or len(T) < 2 or any(column.shape != T.shape for column in (Cp, *columns)):
-        raise InputError(
-            "found columns of different lengths, or less than two rows",
-            "accepted are two or more temperatures and one value of each column for each",
-        )
-    if not (np.all(np.diff(T) >= 0.0) and T[0] > 0.0):
-        raise InputError("found temperatures that fall", "accepted are rising temperatures in K")
-    if np.any(Cp <= 0.0) or np.isnan(Cp[[0, -1]]).any():
-        raise InputError(
-            "found a heat capacity that is no positive number",
-            "accepted are heat capacities in J/mol/K above zero",
-        )
-
-
-def _heat_capacities(T: FloatArray) -> FloatArray:
-    t = T / 1000
-    return np.stack([np.ones_like(t), t, t**2, t**3, t**-2], axis=-1)
-
-
-def _enthalpies(T: FloatArray) -> FloatArray:
-    t = T / 1000
-    return 1000 * np.stack([t, t**2 / 2, t**3 / 3, t**4 / 4, -1 / t], axis=-1)
-
-
-def _entropies(T: FloatArray) -> FloatArray:
-    t = T / 1000
-    return np.stack([np.log(t), t, t**2 / 2, t**3 / 3, -(t**-2) / 2], axis=-1)
-
-
-def _errors(table: Table, matrices: _Matrices, x: FloatArray) -> FloatArray:
-    T = table.T
-    function = matrices.entropy @ x - matrices.enthalpy @ x / T
-    tabulated = np.where(
-        np.isnan(table.gibbs_function), table.entropy - table.enthalpy / T, table.gibbs_function
-    )
-    in_Cp = matrices.heat_capacity @ x - table.Cp
-    integrated = _integral(in_Cp / T, T) - _integral(in_Cp, T) / T
-    error = np.where(np.isnan(tabulated), integrated, function - tabulated)
-    return np.asarray(-error / GAS_CONSTANT)
-
-
-def _integral(values: FloatArray, T: FloatArray) -> FloatArray:
-    steps = (values[1:] + values[:-1]) / 2 * np.diff(T)
-    from_start = np.concatenate([[0.0], np.cumsum(steps)])
-    return np.asarray(from_start - np.interp(REFERENCE_TEMPERATURE, T, from_start))
-
-
 def _solve(table: Table, joints: tuple[int, ...]) -> _Solution:
     """Least squares for the coefficients of all pieces, Cp continuous at the joints."""
     limits, segments, counts = _layout(table, joints)
     free = _continuous(limits, segments, counts)
-    matrices = _Matrices.of(table, limits)
+    matrices = Matrices.of(table, limits)
     T = table.T
     rows = np.concatenate(
         [
@@ -269,15 +136,48 @@ def _solve(table: Table, joints: tuple[int, ...]) -> _Solution:
     scale = np.sqrt(np.sum(system**2, axis=0))
     y = np.linalg.lstsq(system / scale, right[known], rcond=1e-13)[0] / scale
     x = free @ y
-    errors = _errors(table, matrices, x)
+    errors = errors_of(table, matrices, x)
     error, misfit = float(np.max(np.abs(errors))), float(np.sum(errors**_NORM))
-    return _Solution(joints, limits, segments, x.reshape(-1, 5), error, misfit)
+    coefficients = x.reshape(-1, 5)
+    if joints and not _smooth(table, limits, coefficients):
+        error = misfit = np.inf
+    return _Solution(joints, limits, segments, coefficients, error, misfit)
+
+
+def _smooth(table: Table, limits: FloatArray, coefficients: FloatArray) -> bool:
+    """Whether Cp stays near the chords of the table; a lambda peak bends as far as is allowed."""
+    lower = np.flatnonzero(np.diff(table.T) > 0.0)
+    T, chord = (
+        (np.outer(1 - _BETWEEN, values[lower]) + np.outer(_BETWEEN, values[lower + 1])).ravel()
+        for values in (table.T, table.Cp)
+    )
+    piece = np.searchsorted(limits[:, 0], T) - 1
+    Cp = np.sum(heat_capacities(T) * coefficients[piece], axis=1)
+    return not np.any(np.abs(Cp - chord) > _LARGEST_BEND * chord)
+
+
+def _with_joint(table: Table, solution: _Solution) -> _Solution | None:
+    """The best solution with one joint more, sought on a coarse grid and then beside its best."""
+    rows = table.possible_joints(solution.joints)
+    if not rows:
+        return None
+
+    def trial(place: int) -> tuple[float, int, _Solution]:
+        further = _solve(table, tuple(sorted((*solution.joints, rows[place]))))
+        return further.misfit, place, further
+
+    stride = 1 + len(rows) // _COARSE_TRIALS
+    coarse = min(trial(place) for place in range(0, len(rows), stride))
+    near = range(max(coarse[1] - stride + 1, 0), min(coarse[1] + stride, len(rows)))
+    return min([coarse, *(trial(place) for place in near if place != coarse[1])])[2]
 
 
 def _layout(table: Table, joints: tuple[int, ...]) -> tuple[FloatArray, IntArray, list[int]]:
     """Limits and segment of each piece, and how many coefficients it may have."""
     upper = np.flatnonzero(np.diff(table.segment)) + 1
     starts = sorted({0, *upper.tolist(), *joints})
+    # H and S tell of the shape of Cp between two rows, too.
+    spare = 2 if table.has_functions else 0
     limits, counts = [], []
     for start, following in zip(starts, [*starts[1:], len(table.T)], strict=True):
         end = following if following in joints else following - 1
@@ -286,19 +186,19 @@ def _layout(table: Table, joints: tuple[int, ...]) -> tuple[FloatArray, IntArray
         width = table.T[end] / table.T[start]
         widest = next(count for limit, count in _COEFFICIENTS_BY_WIDTH if width <= limit)
         constant = np.nanmax(values) - np.nanmin(values) <= _CONSTANT_WITHIN
-        counts.append(1 if constant else min(widest, len(values)))
+        counts.append(1 if constant else min(widest, len(values) + spare))
     return np.array(limits), table.segment[starts], counts
 
 
 def _continuous(limits: FloatArray, segments: IntArray, counts: list[int]) -> FloatArray:
     """Matrix from free unknowns to all coefficients; A follows from Cp at each ordinary joint."""
-    at_joint = _heat_capacities(limits[:, 0])
+    at_joint = heat_capacities(limits[:, 0])
     pieces, following = len(counts), np.diff(segments, prepend=-1) == 0
     unknowns = [(k, j) for k in range(pieces) for j in range(counts[k]) if j or not following[k]]
     free = np.zeros((pieces, 5, len(unknowns)))
     for column, (k, j) in enumerate(unknowns):
         free[k, j, column] = 1.0
-    for k in np.flatnonzero(following):
+    for k in np.flatnonzero(following).tolist():
         free[k, 0] = at_joint[k] @ free[k - 1] - at_joint[k, 1:] @ free[k, 1:]
     return free.reshape(pieces * 5, -1)
 
@@ -308,22 +208,30 @@ def _pieces(table: Table, solution: _Solution, labels: Mapping[float, str]) -> t
     steps = dict(zip(table.T[np.flatnonzero(np.diff(table.segment)) + 1], table.steps, strict=True))
     pieces: list[Piece] = []
     for (low, high), coefficients in zip(solution.limits, solution.coefficients, strict=True):
-        size = np.maximum(*_heat_capacities(np.array([low, high])))
+        size = np.maximum(*heat_capacities(np.array([low, high])))
         digits = -np.floor(np.log10(_NEGLIGIBLE_CP / size)).astype(int)
-        rounded = [round(float(c), int(d)) + 0.0 for c, d in zip(coefficients, digits, strict=True)]
+        rounded = [
+            round(float(coefficient), int(places)) + 0.0
+            for coefficient, places in zip(coefficients, digits, strict=True)
+        ]
         if pieces and low not in steps:
-            below, here = pieces[-1], _heat_capacities(np.array(low)).tolist()
+            below, here = pieces[-1], heat_capacities(np.array(low)).tolist()
             at_joint = sum(
                 c * f
                 for c, f in zip((below.A, below.B, below.C, below.D, below.E), here, strict=True)
             )
             others = sum(c * f for c, f in zip(rounded[1:], here[1:], strict=True))
             rounded[0] = round(at_joint - others, 9)
+        A, B, C, D, E = rounded
         pieces.append(
             Piece(
                 float(low),
                 float(high),
-                *rounded,
+                A,
+                B,
+                C,
+                D,
+                E,
                 transition=float(steps.get(low, 0.0)),
                 label=labels.get(float(low), ""),
             )
