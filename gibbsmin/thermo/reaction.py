@@ -19,6 +19,8 @@ from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.errors import ReactionError
 from gibbsmin.thermo.balance import CHARGE, balances, composition, imbalance, simplest
 from gibbsmin.thermo.equation import read_equation, written_equation, written_number
+from gibbsmin.thermo.formula import plain_text
+from gibbsmin.thermo.index import split_name
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.stable_form import Substance
 
@@ -88,9 +90,7 @@ class Reaction:
         """
         terms = []
         for number, name in read_equation(text):
-            forms = library.substance(name)
-            named = len(forms) == 1 and name.endswith(")") and not library.forms(name)
-            terms.append((number, Substance(forms[0].name if named else forms[0].formula, forms)))
+            terms.append((number, _substance(name, library)))
         return cls.of(terms)
 
     def __str__(self) -> str:
@@ -140,6 +140,14 @@ class Reaction:
         """Decimal logarithm of the equilibrium constant."""
         RT = GAS_CONSTANT * np.asarray(T, dtype=np.float64)
         return -self.gibbs_energy(T) / (RT * math.log(10))
+
+
+def _substance(name: str, library: Library) -> Substance:
+    forms = library.substance(name)
+    formula = forms[0].formula
+    if split_name(plain_text(name))[1]:
+        return Substance(forms[0].name, forms)
+    return Substance(formula, forms, tuple(r for r in library.forms(formula) if r not in forms))
 
 
 def weighted_sum(terms: Sequence[Term], values: Callable[[Substance], FloatArray]) -> FloatArray:

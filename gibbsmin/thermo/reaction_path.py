@@ -123,7 +123,7 @@ def study_reaction(reaction: Reaction, temperatures: npt.ArrayLike) -> ReactionS
         )
         for k in range(T.size)
     )
-    warnings = (*_range_warnings(reaction, T), *_other_warnings(reaction, changes))
+    warnings = (*_range_warnings(reaction, T), *_form_warnings(reaction, T, changes))
     return ReactionStudy(reaction, rows, reference_values(reaction), warnings)
 
 
@@ -193,13 +193,19 @@ def range_warning(record: Species, outside: FloatArray) -> str:
     )
 
 
-def _other_warnings(reaction: Reaction, changes: Sequence[PathChange]) -> list[str]:
-    warnings = [
-        f"{record.name} is superseded. {record.remark}".rstrip()
-        for _, substance in reaction.terms
-        for record in substance.forms
-        if record.superseded
-    ]
+def _form_warnings(reaction: Reaction, T: FloatArray, changes: Sequence[PathChange]) -> list[str]:
+    warnings = []
+    for _, substance in reaction.terms:
+        warnings += [
+            f"{record.name} is superseded{_because(record)}."
+            for record in substance.forms
+            if record.superseded
+        ]
+        warnings += [
+            f"{record.name} would be the stable form of {substance.text} but is superseded"
+            f"{_because(record)}; to use it all the same, name it."
+            for record in substance.preferred_left_out(np.append(T, REFERENCE_TEMPERATURE))
+        ]
     for item in changes:
         change = item.change
         if abs(change.gibbs_step) > _IN_BALANCE:
@@ -209,3 +215,7 @@ def _other_warnings(reaction: Reaction, changes: Sequence[PathChange]) -> list[s
                 "balance of the two."
             )
     return warnings
+
+
+def _because(record: Species) -> str:
+    return f" ({record.remark.rstrip('.')})" if record.remark else ""

@@ -69,10 +69,13 @@ class Substance:
         How a reaction writes it: a formula, or the name of its one record.
     forms
         The records that compete, at least one.
+    left_out
+        Superseded forms, which do not compete.
     """
 
     text: str
     forms: tuple[Species, ...]
+    left_out: tuple[Species, ...] = ()
 
     @cached_property
     def _table(self) -> PropertyTable:
@@ -90,6 +93,13 @@ class Substance:
         outside = np.maximum(np.maximum(self._table.T_low - T, T - self._table.T_high), 0.0)
         nearest = outside == outside.min(axis=-1, keepdims=True)
         return np.asarray(np.where(nearest, energies, np.inf).argmin(axis=-1))
+
+    def preferred_left_out(self, T: FloatArray) -> tuple[Species, ...]:
+        """The superseded forms that would be stable at some of the temperatures, shape (N,)."""
+        table = PropertyTable.of(self.left_out)
+        lower = table.gibbs_energy(T) < self.gibbs_energy(T)[:, np.newaxis]
+        preferred = np.any(lower & table.within_range(T), axis=0)
+        return tuple(r for r, is_so in zip(self.left_out, preferred.tolist(), strict=True) if is_so)
 
     def enthalpy(self, T: npt.ArrayLike) -> FloatArray:
         """H of the stable form, which includes its enthalpy of formation at 298.15 K."""

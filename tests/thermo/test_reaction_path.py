@@ -23,7 +23,7 @@ library = Library(
         make_species("H2O(l)", dfH298=-285830.0, S298=69.95, pieces=(Piece(273.15, 600.0, 75.3),)),
         make_species("Fe(cr)", dfH298=0.0, S298=27.3, pieces=IRON),
         make_species(
-            "FeO(cr)", dfH298=-272000.0, S298=60.8, status="superseded", remark="Use Fe0.947O(cr)."
+            "FeO(cr)", dfH298=-272000.0, S298=60.8, status="superseded", remark="use Fe0.947O(cr)"
         ),
     )
 )
@@ -89,13 +89,26 @@ def test_warnings_name_range_and_superseded_records() -> None:
         "at 2000, 2500 K its heat capacity is continued as a constant.",
         "H2O(l) is tabulated from 273.15 K to 600 K; "
         "at 2000, 2500 K its heat capacity is continued as a constant.",
-        "FeO(cr) is superseded. Use Fe0.947O(cr).",
+        "FeO(cr) is superseded (use Fe0.947O(cr)).",
     )
     many = study_reaction(Reaction.read("H2O(l) = H2O(g)", library), np.linspace(700, 800, 5))
     assert many.warnings == (
         "H2O(l) is tabulated from 273.15 K to 600 K; "
         "at 700, 725, 750, … K its heat capacity is continued as a constant.",
     )
+
+
+def test_a_superseded_form_is_left_out_but_not_in_silence() -> None:
+    melt = make_species("FeO(l)", dfH298=-250000.0, S298=75.0)
+    with_melt = Library((*library.records, melt))
+    study = study_reaction(Reaction.read("FeO + H2 = Fe + H2O(g)", with_melt), 900.0)
+    assert dict(study.rows[0].forms)["FeO"] == "FeO(l)"
+    assert study.warnings == (
+        "FeO(cr) would be the stable form of FeO but is superseded (use Fe0.947O(cr)); "
+        "to use it all the same, name it.",
+    )
+    named = study_reaction(Reaction.read("FeO(l) + H2 = Fe + H2O(g)", with_melt), 900.0)
+    assert named.warnings == ()
 
 
 def test_a_form_whose_range_ends_early_is_named() -> None:
