@@ -10,7 +10,14 @@ from __future__ import annotations
 import csv
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cache
 from pathlib import Path
+
+import janaf
+import numpy as np
+import numpy.typing as npt
+
+from gibbsmin.constants import REFERENCE_TEMPERATURE
 
 TABLES = Path(__file__).parent / "published"
 PROVENANCES = ("read", "recalled", "solved")
@@ -51,6 +58,35 @@ def amounts(text: str) -> dict[str, float]:
     """Read ``"CH4 2; H2O 3"``."""
     pairs = (part.rsplit(maxsplit=1) for part in text.split(";"))
     return {name.strip(): float(amount) for name, amount in pairs}
+
+
+@dataclass(frozen=True)
+class MainTable:
+    """Columns of one published table of the main source, in its own units."""
+
+    T: npt.NDArray[np.float64]
+    S: npt.NDArray[np.float64]
+    dfH: npt.NDArray[np.float64]
+    log10_Kf: npt.NDArray[np.float64]
+
+    def line(self, T: float) -> int:
+        """The line of a tabulated temperature; a transition stands there twice and is refused."""
+        (line,) = np.flatnonzero(T == self.T)
+        return int(line)
+
+    @property
+    def dfH298(self) -> float:
+        """kJ/mol"""
+        return float(self.dfH[self.line(REFERENCE_TEMPERATURE)])
+
+
+@cache
+def main_table(record: str) -> MainTable:
+    """The published table of a record (or of a bare formula's reference state)."""
+    (index,) = (row["table"] for row in rows("main_tables") if row["record"] == record)
+    frame = janaf.Table(index=index).df
+    columns = ("T(K)", "S", "delta-f H", "log Kf")
+    return MainTable(*(frame[name].to_numpy() for name in columns))
 
 
 def _check_value(row: dict[str, str]) -> CheckValue:
