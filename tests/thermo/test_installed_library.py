@@ -8,6 +8,7 @@ from importlib.resources import files
 import pytest
 
 from gibbsmin.constants import REFERENCE_TEMPERATURE
+from gibbsmin.thermo.formula import parse_formula
 from gibbsmin.thermo.library import Library, load_library
 from gibbsmin.thermo.reaction import Reaction
 from gibbsmin.thermo.reaction_path import study_reaction
@@ -16,6 +17,7 @@ from gibbsmin.thermo.reaction_path import study_reaction
 def test_it_loads_in_a_quarter_of_a_second() -> None:
     durations = []
     for _ in range(5):
+        parse_formula.cache_clear()
         begin = time.perf_counter()
         Library.read(files("gibbsmin.data"))
         durations.append(time.perf_counter() - begin)
