@@ -14,7 +14,8 @@ import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
 
-_TOLERANCE = 1e-11
+_TOLERANCES = (1e-11, 1e-8)
+"""Tried in turn: a start that is loose is better than none."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -31,15 +32,20 @@ class ConicProgramme:
     def __init__(self, matrix: FloatArray, gas: BoolArray) -> None:
         import cvxpy as cp  # slow to import, and seldom needed
 
-        self._matrix = matrix
+        # Amounts count in the species' atoms: where C16H34 stands beside H2 in moles, the solver
+        # gives up.
+        self._size = np.maximum(np.abs(matrix).sum(axis=0), 1.0)
+        self._matrix = matrix / self._size
         self._amounts = cp.Variable(matrix.shape[1], nonneg=True)
         self._costs = cp.Parameter(matrix.shape[1])
         self._supplies = cp.Parameter(matrix.shape[0])
-        self._balance = matrix @ self._amounts == self._supplies
+        self._balance = self._matrix @ self._amounts == self._supplies
         objective = self._costs @ self._amounts
         if gas.any():
-            fractions = self._amounts[np.flatnonzero(gas)]
-            total = cp.sum(fractions)  # type: ignore[attr-defined]  # exported by a star import
+            gases = np.flatnonzero(gas)
+            moles = cp.multiply(1.0 / self._size, self._amounts)  # type: ignore[attr-defined]  # likewise
+            fractions = moles[gases]
+            total = cp.sum(fractions)  # type: ignore[attr-defined]  # likewise
             entropy = cp.rel_entr(fractions, total)  # type: ignore[attr-defined]  # likewise
             objective += cp.sum(entropy)  # type: ignore[attr-defined]  # likewise
         self._problem = cp.Problem(cp.Minimize(objective), [self._balance])
@@ -50,27 +56,31 @@ class ConicProgramme:
         The supplies are scaled to one mole, and the energies are shifted along the rows of A,
         which moves the multipliers by the same and leaves the amounts unchanged.
         """
+        scale = np.abs(supplies).max()
+        costs = energies / self._size
+        shift = np.linalg.lstsq(self._matrix.T, costs, rcond=None)[0]
+        self._supplies.value = supplies / scale
+        self._costs.value = costs - shift @ self._matrix
+        if not any(self._solved(tolerance) for tolerance in _TOLERANCES):
+            return None
+        return Start(
+            amounts=np.maximum(self._amounts.value / self._size, 0.0) * scale,
+            multipliers=shift - self._balance.dual_value,
+        )
+
+    def _solved(self, tolerance: float) -> bool:
         import cvxpy as cp
 
-        scale = np.abs(supplies).max()
-        shift = np.linalg.lstsq(self._matrix.T, energies, rcond=None)[0]
-        self._supplies.value = supplies / scale
-        self._costs.value = energies - shift @ self._matrix
         try:
             with warnings.catch_warnings():
                 # An inaccurate answer is still a start; the certificate judges what comes of it.
                 warnings.filterwarnings("ignore", message="Solution may be inaccurate")
                 self._problem.solve(  # type: ignore[no-untyped-call]  # cvxpy types it not
                     solver=cp.CLARABEL,
-                    tol_gap_abs=_TOLERANCE,
-                    tol_gap_rel=_TOLERANCE,
-                    tol_feas=_TOLERANCE,
+                    tol_gap_abs=tolerance,
+                    tol_gap_rel=tolerance,
+                    tol_feas=tolerance,
                 )
         except cp.error.SolverError:
-            return None
-        if self._amounts.value is None:
-            return None
-        return Start(
-            amounts=np.maximum(self._amounts.value, 0.0) * scale,
-            multipliers=shift - self._balance.dual_value,
-        )
+            return False
+        return self._amounts.value is not None

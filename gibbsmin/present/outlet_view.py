@@ -32,8 +32,9 @@ def outlet_view(outlet: Outlet) -> RenderableType:
     """Everything known of an outlet, stage by stage."""
     parts: list[RenderableType] = [heading(outlet.title)]
     for stage in outlet.stages:
-        parts += [_conditions(stage), Text(""), _composition(outlet, stage)]
-        parts.append(pairs(_lines(outlet, stage)))
+        parts += [_conditions(stage), Text("")]
+        if stage.status is Status.CERTIFIED:
+            parts += [_composition(outlet, stage), pairs(_lines(outlet, stage))]
         if stage.audit:
             parts += [heading("Not in the outlet, nearest to it first"), _audit(stage)]
         parts += sentences("Warnings", stage.warnings)

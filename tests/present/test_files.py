@@ -24,8 +24,8 @@ def test_no_formula_in_csv(tmp_path: Path) -> None:
 
 
 def test_no_formula_in_workbook(tmp_path: Path) -> None:
-    write_tables(tmp_path / "a.xlsx", {"sheet": HARMFUL})
-    cells = list(openpyxl.load_workbook(tmp_path / "a.xlsx")["sheet"]["A"])[1:]
+    write_tables(tmp_path / "a.xlsx", {"values": HARMFUL})
+    cells = list(openpyxl.load_workbook(tmp_path / "a.xlsx")["values"]["A"])[1:]
     assert [cell.value for cell in cells] == HARMLESS
     assert {cell.data_type for cell in cells} == {"s"}
 

@@ -1,0 +1,196 @@
+"""The unknown conditions of a stage: temperature from heat or entropy, pressure from volume.
+
+At equilibrium of an ideal gas with condensed phases G(T, P) and A(T, V) are concave in T, so
+enthalpy, energy and entropy never fall as T rises: there is at most one temperature, bracketed and
+closed in on with all states together.  Where condensed forms meet, the enthalpy jumps; the heat is
+then taken up at that temperature, and the answer is a mixture of the states on its two sides.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray, IntArray
+from gibbsmin.constants import GAS_CONSTANT
+from gibbsmin.minimise import Solution, minimise
+from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
+from gibbsmin.reactor.model import StageModel
+
+LOWEST_TEMPERATURE = 100.0
+HIGHEST_TEMPERATURE = 6000.0
+"""K; where a temperature is looked for."""
+
+_LOWEST_PRESSURE, _HIGHEST_PRESSURE = 1e-4, 1e10
+_RELATIVE_RESOLUTION = 4 * np.finfo(float).eps
+_JUMP = 1e-9
+"""A residual of this share that is left at full resolution of T is a plateau."""
+
+Residual = Callable[..., FloatArray]
+"""Of x (k,) and the indices (k,) of the states that are still open."""
+
+
+@dataclass(frozen=True)
+class Equilibria:
+    """B solved states at their conditions.
+
+    Attributes
+    ----------
+    temperature, pressure : (B,) K and Pa; NaN where none was found
+    amounts : (B, S), on a plateau the mixture of its two sides
+    solution : the certified solution (of the lower side on a plateau)
+    upper_share : (B,) share of the upper side; NaN off a plateau
+    """
+
+    temperature: FloatArray
+    pressure: FloatArray
+    amounts: FloatArray
+    solution: Solution
+    upper_share: FloatArray
+
+
+def at_temperature(
+    model: StageModel, temperature: FloatArray, pressure: FloatArray, feed: FloatArray
+) -> Equilibria:
+    """Equilibria of B states at given temperature and pressure."""
+    solution = minimise(model.programme(temperature, pressure, feed))
+    return Equilibria(
+        temperature, pressure, solution.amounts, solution, np.full(temperature.shape, np.nan)
+    )
+
+
+def at_enthalpy(
+    model: StageModel,
+    enthalpy: FloatArray,
+    pressure: FloatArray,
+    feed: FloatArray,
+    start: FloatArray,
+) -> Equilibria:
+    """Equilibria whose enthalpy (B,) in J is given, such as those of an adiabatic stage."""
+
+    def content(found: Equilibria) -> FloatArray:
+        return mixture_enthalpy(model.properties, found.temperature, found.amounts)
+
+    return _at_content(model, enthalpy, content, pressure, feed, start)
+
+
+def at_entropy(
+    model: StageModel,
+    entropy: FloatArray,
+    pressure: FloatArray,
+    feed: FloatArray,
+    start: FloatArray,
+) -> Equilibria:
+    """Equilibria whose entropy (B,) in J/K is given, such as those of a reversible expansion."""
+
+    def content(found: Equilibria) -> FloatArray:
+        return mixture_entropy(
+            model.properties, model.gas, found.temperature, found.pressure, found.amounts
+        )
+
+    return _at_content(model, entropy, content, pressure, feed, start)
+
+
+def at_volume(
+    model: StageModel, temperature: FloatArray, volume: FloatArray, feed: FloatArray
+) -> Equilibria:
+    """Equilibria in a closed vessel: P V = N_gas R T; solids and liquids take up no room.
+
+    N_gas(P)/P falls as P rises, so that there is at most one pressure.
+    """
+
+    def solved(P: FloatArray, index: IntArray) -> Equilibria:
+        return at_temperature(model, temperature[index], P, feed[index])
+
+    def residual(log_P: FloatArray, index: IntArray) -> FloatArray:
+        P = np.exp(log_P)
+        moles = solved(P, index).amounts[:, model.gas].sum(axis=1)
+        filled = moles * GAS_CONSTANT * temperature[index]
+        return np.asarray(np.log(P * volume[index]) - np.log(np.maximum(filled, 1e-300)))
+
+    start = np.log(np.maximum(feed.sum(axis=1), 1e-300) * GAS_CONSTANT * temperature / volume)
+    limits = np.log(_LOWEST_PRESSURE), np.log(_HIGHEST_PRESSURE)
+    log_P, _, _ = _root(residual, start, 1.0, limits)
+    return solved(np.exp(log_P), np.arange(log_P.size))
+
+
+def at_energy_and_volume(
+    model: StageModel, energy: FloatArray, volume: FloatArray, feed: FloatArray, start: FloatArray
+) -> Equilibria:
+    """Equilibria of a closed rigid vessel whose internal energy U = H − P V (B,) in J is given."""
+
+    def solved(T: FloatArray, index: IntArray) -> Equilibria:
+        return at_volume(model, T, volume[index], feed[index])
+
+    def content(found: Equilibria, index: IntArray) -> FloatArray:
+        enthalpy = mixture_enthalpy(model.properties, found.temperature, found.amounts)
+        return enthalpy - found.pressure * volume[index]
+
+    return _between(solved, content, energy, start)
+
+
+def _at_content(
+    model: StageModel,
+    wanted: FloatArray,
+    content: Callable[[Equilibria], FloatArray],
+    pressure: FloatArray,
+    feed: FloatArray,
+    start: FloatArray,
+) -> Equilibria:
+    def solved(T: FloatArray, index: IntArray) -> Equilibria:
+        return at_temperature(model, T, pressure[index], feed[index])
+
+    return _between(solved, lambda found, _: content(found), wanted, start)
+
+
+def _between(
+    solved: Callable[[FloatArray, IntArray], Equilibria],
+    content: Callable[[Equilibria, IntArray], FloatArray],
+    wanted: FloatArray,
+    start: FloatArray,
+) -> Equilibria:
+    """The states whose content meets what is wanted, mixed of both sides where it jumps."""
+
+    def residual(T: FloatArray, index: IntArray) -> FloatArray:
+        return content(solved(T, index), index) - wanted[index]
+
+    everything = np.arange(wanted.size)
+    T, low, high = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
+    scale = np.abs(residual(LOWEST_TEMPERATURE + 0.0 * T, everything))
+    jumps = np.abs(residual(T, everything)) > _JUMP * scale
+    found = solved(np.where(jumps, low, T), everything)
+    if not jumps.any():
+        return found
+    upper = solved(np.where(jumps, high, T), everything)
+    below, above = content(found, everything), content(upper, everything)
+    with np.errstate(invalid="ignore", divide="ignore"):
+        share = np.where(jumps, (wanted - below) / (above - below), np.nan)
+    mixed = found.amounts + share[:, np.newaxis] * (upper.amounts - found.amounts)
+    amounts = np.where(jumps[:, np.newaxis], mixed, found.amounts)
+    return replace(found, amounts=amounts, upper_share=share)
+
+
+def _root(
+    residual: Residual, start: FloatArray, step: float, limits: tuple[float, float]
+) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Root of a rising function near ``start`` and the ends of its last bracket; NaN for none."""
+    # scipy.optimize takes a while to load, which a stage of given temperature need not wait for.
+    from scipy.optimize.elementwise import bracket_root, find_root
+
+    index = np.arange(start.size)
+    lowest, highest = limits
+    inside = np.clip(start, lowest + step, highest - step)
+    bracket = bracket_root(
+        residual, inside - step / 2, inside + step / 2, xmin=lowest, xmax=highest, args=(index,)
+    )
+    left, right = (np.where(bracket.success, end, np.nan) for end in bracket.bracket)
+    root = find_root(
+        residual,
+        (left, right),
+        args=(index,),
+        tolerances={"xatol": 0.0, "xrtol": _RELATIVE_RESOLUTION, "fatol": 0.0, "frtol": 0.0},
+    )
+    low, high = root.bracket
+    return np.where(bracket.success, root.x, np.nan), low, high
