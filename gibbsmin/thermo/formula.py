@@ -80,37 +80,40 @@ def parse_formula(text: str) -> Formula:
         return Formula(formula, (), -1.0)
     charge = _CHARGE.search(formula)
     signs = charge.group() if charge else ""
-    counts = _Reader(formula, len(formula) - len(signs)).read()
+    counts = _Reader(formula, formula.removesuffix(signs)).read()
     elements = tuple(sorted(counts.items()))
     return Formula(formula, elements, float(signs.count("+") - signs.count("-")))
 
 
 class _Reader:
-    """Recursive descent over ``text[:end]``; each method reads one rule of the grammar."""
+    """Recursive descent; each method reads one rule of the grammar.
 
-    def __init__(self, text: str, end: int) -> None:
+    ``text`` is what errors quote, ``body`` the same without its charge.
+    """
+
+    def __init__(self, text: str, body: str) -> None:
         self.text = text
-        self.end = end
-        prefix = _PREFIX.match(text, 0, end)
+        self.body = body
+        prefix = _PREFIX.match(body)
         self.position = prefix.end() if prefix else 0
 
     def read(self) -> dict[str, float]:
         counts: dict[str, float] = {}
         # A number in front is the reader's own only where it counts one part of several.
-        factor = self.number() if "·" in self.text else 1.0
+        factor = self.number() if "·" in self.body else 1.0
         _add(counts, self.part(""), factor)
         while self.next() == "·":
             self.position += 1
             factor = self.number()
             _add(counts, self.part(""), factor)
-        if self.position < self.end:
+        if self.position < len(self.body):
             raise self.error(f'"{self.next()}" is out of place')
         return counts
 
     def part(self, closing: str) -> dict[str, float]:
         start = self.position
         counts: dict[str, float] = {}
-        while self.position < self.end and self.next() not in (")", "]", "·"):
+        while self.position < len(self.body) and self.next() not in (")", "]", "·"):
             group = self.group()
             _add(counts, group, self.number())
         if closing and self.next() != closing:
@@ -127,7 +130,7 @@ class _Reader:
             counts = self.part(_CLOSING[character])
             self.position += 1
             return counts
-        symbol = _SYMBOL.match(self.text, self.position, self.end)
+        symbol = _SYMBOL.match(self.body, self.position)
         if symbol is None:
             raise self.error(f'"{character}" is out of place')
         name = symbol.group()
@@ -137,7 +140,7 @@ class _Reader:
         return {name: 1.0}
 
     def number(self) -> float:
-        number = _NUMBER.match(self.text, self.position, self.end)
+        number = _NUMBER.match(self.body, self.position)
         if number is None:
             return 1.0
         value = float(number.group())
@@ -147,12 +150,14 @@ class _Reader:
         return value
 
     def next(self) -> str:
-        return self.text[self.position : min(self.position + 1, self.end)]
+        return self.body[self.position : self.position + 1]
 
     def error(self, problem: str) -> FormulaError:
         if not self.text:
             return FormulaError("found an empty formula", ACCEPTED)
-        where = f"at position {self.position + 1}" if self.position < self.end else "at the end"
+        where = (
+            f"at position {self.position + 1}" if self.position < len(self.body) else "at the end"
+        )
         return FormulaError(f'found "{self.text}", where {problem} {where}', ACCEPTED)
 
 
