@@ -1,0 +1,48 @@
+"""Every example gives the result that stands beside it."""
+
+from __future__ import annotations
+
+import json
+from pathlib import Path
+from typing import Any
+
+import pytest
+
+import gibbsmin
+from gibbsmin.present.outlet_document import outlet_document
+
+EXAMPLES = Path(__file__).parent.parent / "examples"
+CASES = sorted(EXAMPLES.glob("*/case.toml"))
+
+
+def assert_same(found: Any, expected: Any, place: str) -> None:
+    """Figures agree to 1e-7 relative: far more than rounding moves and less than anyone reads."""
+    if isinstance(expected, dict):
+        assert set(found) == set(expected), place
+        for key in expected:
+            if key not in ("certificate", "method"):  # these depend on the path to the answer
+                assert_same(found[key], expected[key], f"{place}.{key}")
+    elif isinstance(expected, list):
+        assert len(found) == len(expected), place
+        for index, (a, b) in enumerate(zip(found, expected, strict=True)):
+            assert_same(a, b, f"{place}[{index}]")
+    elif isinstance(expected, float):
+        assert found == pytest.approx(expected, rel=1e-7, abs=1e-12), place
+    else:
+        assert found == expected, place
+
+
+def test_there_are_examples() -> None:
+    assert [path.parent.name for path in CASES]
+
+
+@pytest.mark.parametrize("path", CASES, ids=lambda path: path.parent.name)
+def test_example(path: Path) -> None:
+    expected = json.loads((path.parent / "expected.json").read_text(encoding="utf-8"))
+    outlet = gibbsmin.predict(gibbsmin.load_case(path))
+    assert_same(json.loads(json.dumps(outlet_document(outlet))), expected, path.parent.name)
+
+
+@pytest.mark.parametrize("path", CASES, ids=lambda path: path.parent.name)
+def test_example_says_that_its_data_are_invented(path: Path) -> None:
+    assert "invented" in (path.parent / "README.md").read_text(encoding="utf-8")
