@@ -6,28 +6,23 @@ the library resolves them.
 
 from __future__ import annotations
 
-import difflib
 from collections.abc import Mapping
 from typing import Annotated, Any, Literal
 
-from pydantic import (
-    BaseModel,
-    BeforeValidator,
-    ConfigDict,
-    Field,
-    ValidationError,
-    ValidationInfo,
-    model_validator,
-)
+from pydantic import BeforeValidator, ValidationError
 
 from gibbsmin.constants import REFERENCE_TEMPERATURE, STANDARD_ATMOSPHERE
 from gibbsmin.errors import InputError
+from gibbsmin.jobs.table_schema import (
+    MISSING,
+    Names,
+    Pressure,
+    Table,
+    Temperature,
+    UnknownKeyError,
+    read_names,
+)
 from gibbsmin.units import Unit, read_amount_unit, read_pressure, read_temperature, shown
-
-
-def _pressure(given: object, info: ValidationInfo) -> float:
-    context: Any = info.context
-    return read_pressure(given, context["site_pressure"])
 
 
 def _title(given: object) -> str:
@@ -55,14 +50,6 @@ def _streams(given: object) -> Mapping[str, Any]:
     return given
 
 
-def _names(given: object) -> tuple[str, ...]:
-    if not isinstance(given, list | tuple) or not all(isinstance(name, str) for name in given):
-        raise InputError(
-            f"found {_shown_list(given)}", 'accepted is a list of species, such as ["CH4", "H2O"]'
-        )
-    return tuple(given)
-
-
 def _names_or_all(given: object) -> Literal["all"] | tuple[str, ...]:
     if given == "all":
         return "all"
@@ -71,70 +58,27 @@ def _names_or_all(given: object) -> Literal["all"] | tuple[str, ...]:
             "found an empty list" if given == [] else f"found {shown(given)}",
             'accepted is "all" or a list of species, such as ["CH4", "H2O"]',
         )
-    return _names(given)
-
-
-def _shown_list(given: object) -> str:
-    """The element that is no text, or the value itself."""
-    if isinstance(given, list | tuple):
-        return next(f"{shown(name)} in the list" for name in given if not isinstance(name, str))
-    return shown(given)
+    return read_names(given)
 
 
 Title = Annotated[str, BeforeValidator(_title)]
-Temperature = Annotated[float, BeforeValidator(read_temperature)]
 SitePressure = Annotated[float, BeforeValidator(read_pressure)]
-Pressure = Annotated[float, BeforeValidator(_pressure)]
-Names = Annotated[tuple[str, ...], BeforeValidator(_names)]
-_MISSING: Any = Field(default=None, validate_default=True)
-"""A key that must be there: its reader refuses None and says what it accepts."""
-
-
-class Table(BaseModel):
-    """A table of the case file: its own keys and no others."""
-
-    model_config = ConfigDict(
-        extra="forbid", frozen=True, strict=True, arbitrary_types_allowed=True
-    )
-
-    @model_validator(mode="before")
-    @classmethod
-    def _known_keys(cls, given: object) -> object:
-        if not isinstance(given, Mapping):
-            raise InputError(
-                "found nothing" if given is None else f"found {shown(given)}",
-                f"accepted is a table with {_listed(list(cls.model_fields))}",
-            )
-        for key in given:
-            if key not in cls.model_fields:
-                near = difflib.get_close_matches(str(key), cls.model_fields, n=1)
-                hint = f' (nearest: "{near[0]}")' if near else ""
-                raise UnknownKeyError(
-                    f"found an unknown key{hint}",
-                    f"accepted is {_listed(list(cls.model_fields), 'or')}",
-                    key=str(key),
-                )
-        return given
-
-
-class UnknownKeyError(InputError):
-    """A key that the case file does not have."""
 
 
 class FeedTable(Table):
     """``[feed.NAME]``: one stream."""
 
-    temperature: Temperature = _MISSING
-    pressure: Pressure = _MISSING
+    temperature: Temperature = MISSING
+    pressure: Pressure = MISSING
     unit: Annotated[Unit | None, BeforeValidator(read_amount_unit)] = None
-    amounts: Annotated[Mapping[str, Any], BeforeValidator(_amounts)] = _MISSING
+    amounts: Annotated[Mapping[str, Any], BeforeValidator(_amounts)] = MISSING
 
 
 class OutletTable(Table):
     """``[outlet]``: the one stage."""
 
-    temperature: Temperature = _MISSING
-    pressure: Pressure = _MISSING
+    temperature: Temperature = MISSING
+    pressure: Pressure = MISSING
     boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
     surroundings_temperature: Temperature = REFERENCE_TEMPERATURE
 
@@ -152,8 +96,8 @@ class CaseTable(Table):
 
     title: Title = ""
     site_pressure: SitePressure = STANDARD_ATMOSPHERE
-    feed: Annotated[dict[str, FeedTable], BeforeValidator(_streams)] = _MISSING
-    outlet: OutletTable = _MISSING
+    feed: Annotated[dict[str, FeedTable], BeforeValidator(_streams)] = MISSING
+    outlet: OutletTable = MISSING
     species: SpeciesTable = SpeciesTable()
 
 
@@ -188,7 +132,3 @@ def _fault(details: Any) -> InputError:
         )
     cause.key = ".".join([*place, *filter(None, [cause.key])])
     return cause
-
-
-def _listed(words: list[str], conjunction: str = "and") -> str:
-    return f"{', '.join(words[:-1])} {conjunction} {words[-1]}" if len(words) > 1 else words[0]
