@@ -1,7 +1,7 @@
 """Minimum of the Gibbs energy over batches of states: arrays only, no chemistry."""
 
 from gibbsmin.minimise.certificate import Certificate
-from gibbsmin.minimise.minimise import minimise
+from gibbsmin.minimise.dispatch import minimise
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
