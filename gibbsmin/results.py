@@ -19,6 +19,12 @@ if TYPE_CHECKING:
 
 WATER = "H2O(g)"
 
+CAUTIONS = (
+    "Equilibrium is a limit, not a rate: a real outlet may fall short of it.",
+    "Design, relief and safety decisions follow local codes and licensed practice.",
+)
+"""What every report ends with."""
+
 
 @dataclass(frozen=True)
 class StateCertificate:
@@ -50,14 +56,17 @@ class StageOutlet:
     temperature, pressure : K and Pa
     records : candidates, gases first
     amounts : (S,) amounts of the candidates
+    removed : amounts of them that are taken out and do not go on
     certificate : the proof
     element_potentials : chemical potential of each element in RT
     conversion : share of each feed record's substance that is used up; negative is formation
     heat : heat added, or removed when negative
+    shaft_work : work put in by the shaft, or gained when negative
     entropy : entropy generation and lost work
     activities : p(O2), a(C), … of the elements present
     audit : records that are not in the outlet, the most weighty first
-    warnings, cautions : sentences for the user
+    warnings, notes, hazards : sentences on what limits the figures, on how they came about, and
+        on what is toxic or flammable in the outlet
     """
 
     name: str
@@ -67,15 +76,23 @@ class StageOutlet:
     pressure: float
     records: tuple[Species, ...]
     amounts: FloatArray
+    removed: Mapping[str, float]
     certificate: StateCertificate
     element_potentials: Mapping[str, float]
     conversion: Mapping[str, float]
     heat: float
+    shaft_work: float
     entropy: EntropyGeneration
     activities: tuple[ElementActivity, ...]
     audit: tuple[AuditEntry, ...]
     warnings: tuple[str, ...]
-    cautions: tuple[str, ...]
+    notes: tuple[str, ...]
+    hazards: tuple[str, ...]
+
+    @property
+    def certified(self) -> bool:
+        """Whether the state is proved."""
+        return self.status is Status.CERTIFIED
 
     @property
     def mole_fractions(self) -> FloatArray:
@@ -137,7 +154,7 @@ class Outlet:
     @property
     def certified(self) -> bool:
         """Whether every stage is certified."""
-        return all(stage.status is Status.CERTIFIED for stage in self.stages)
+        return all(stage.certified for stage in self.stages)
 
     def to_frame(self) -> pd.DataFrame:
         """The stages' tables under one another, each row with its stage's name."""

@@ -52,13 +52,13 @@ def document(case: Path) -> dict:
 
 def test_json_has_the_promised_keys(case: Path) -> None:
     found = document(case)
-    assert set(found) == {"title", "status", "stages"}
+    assert set(found) == {"title", "status", "stages", "cautions"}
     assert found["status"] == "certified"
     (stage,) = found["stages"]
     assert set(stage) == {
         "name", "status", "method", "temperature_K", "pressure_bar", "certificate", "unit",
-        "species", "conversion", "heat", "entropy_generation", "lost_work",
-        "element_chemical_potentials", "activities", "warnings", "cautions", "audit",
+        "species", "removed", "conversion", "heat", "shaft_work", "entropy_generation", "lost_work",
+        "element_chemical_potentials", "activities", "warnings", "notes", "hazards", "audit",
     }  # fmt: skip
     assert set(stage["certificate"]) == {"gap", "balance", "stationarity"}
     assert set(stage["species"][0]) == {
@@ -110,7 +110,7 @@ def test_table_says_what_an_engineer_reads(case: Path) -> None:
         "heat added",
         "boundary at 1123.15 K",
         "a(C)",
-        "Toxic in the outlet: CO.",
+        "Toxic: CO.",
         "Equilibrium is a limit, not a rate",
     ):
         assert text in out

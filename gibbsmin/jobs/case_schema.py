@@ -7,22 +7,15 @@ the library resolves them.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from typing import Annotated, Any, Literal
+from typing import Annotated, Any, Self
 
-from pydantic import BeforeValidator, ValidationError
+from pydantic import BeforeValidator, ValidationError, model_validator
 
-from gibbsmin.constants import REFERENCE_TEMPERATURE, STANDARD_ATMOSPHERE
+from gibbsmin.constants import STANDARD_ATMOSPHERE
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.table_schema import (
-    MISSING,
-    Names,
-    Pressure,
-    Table,
-    Temperature,
-    UnknownKeyError,
-    read_names,
-)
-from gibbsmin.units import Unit, read_amount_unit, read_pressure, read_temperature, shown
+from gibbsmin.jobs.stage_schema import OutletTable, SpeciesTable, StageTable
+from gibbsmin.jobs.table_schema import MISSING, Pressure, Table, Temperature, UnknownKeyError
+from gibbsmin.units import Unit, read_amount_unit, read_pressure, shown
 
 
 def _title(given: object) -> str:
@@ -50,15 +43,10 @@ def _streams(given: object) -> Mapping[str, Any]:
     return given
 
 
-def _names_or_all(given: object) -> Literal["all"] | tuple[str, ...]:
-    if given == "all":
-        return "all"
-    if not given or not isinstance(given, list | tuple):
-        raise InputError(
-            "found an empty list" if given == [] else f"found {shown(given)}",
-            'accepted is "all" or a list of species, such as ["CH4", "H2O"]',
-        )
-    return read_names(given)
+def _stages(given: object) -> tuple[Any, ...]:
+    if not isinstance(given, list | tuple) or not given:
+        raise InputError(f"found {shown(given)}", "accepted are [[stage]] tables in order")
+    return tuple(given)
 
 
 Title = Annotated[str, BeforeValidator(_title)]
@@ -74,31 +62,25 @@ class FeedTable(Table):
     amounts: Annotated[Mapping[str, Any], BeforeValidator(_amounts)] = MISSING
 
 
-class OutletTable(Table):
-    """``[outlet]``: the one stage."""
-
-    temperature: Temperature = MISSING
-    pressure: Pressure = MISSING
-    boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
-    surroundings_temperature: Temperature = REFERENCE_TEMPERATURE
-
-
-class SpeciesTable(Table):
-    """``[species]``: the candidates."""
-
-    consider: Annotated[Literal["all"] | tuple[str, ...], BeforeValidator(_names_or_all)] = "all"
-    leave_out: Names = ()
-    inert: Names = ()
-
-
 class CaseTable(Table):
     """The whole file."""
 
     title: Title = ""
     site_pressure: SitePressure = STANDARD_ATMOSPHERE
     feed: Annotated[dict[str, FeedTable], BeforeValidator(_streams)] = MISSING
-    outlet: OutletTable = MISSING
+    outlet: OutletTable | None = None
+    stage: Annotated[tuple[StageTable, ...], BeforeValidator(_stages)] = ()
     species: SpeciesTable = SpeciesTable()
+
+    @model_validator(mode="after")
+    def _outlet_or_stages(self) -> Self:
+        if (self.outlet is None) == (not self.stage):
+            raise InputError(
+                "found both" if self.stage else "found neither",
+                "accepted is one [outlet], or [[stage]] tables in order",
+                key="outlet",
+            )
+        return self
 
 
 def validate(tables: Mapping[str, Any]) -> CaseTable:

@@ -1,33 +1,53 @@
-"""Predict: the outlet of a case's stages at equilibrium."""
+"""Predict: the outlets of a case's stages at equilibrium."""
 
 from __future__ import annotations
 
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
-from gibbsmin.jobs.stage import predict_stage
-from gibbsmin.results import Outlet
+from gibbsmin.jobs.case_stage import StageCase
+from gibbsmin.jobs.stage import leaving_stream, predict_stage
+from gibbsmin.reactor.streams import Stream
+from gibbsmin.results import Outlet, StageOutlet
 from gibbsmin.thermo.library import load_library
+
+_AT_TOP = "species."
 
 
 def predict(case: Case) -> Outlet:
-    """The certified outlet of a case at equilibrium.
+    """The certified outlets of a case's stages; each stage takes the outlet of the one before.
 
-    A state that cannot be certified comes back with that status and NaN in every figure.
+    A state that cannot be certified comes back with that status and NaN in every figure, and
+    ends the train.
 
     Raises
     ------
     InputError
-        when the candidates cannot hold the feed; the sentence names file and key.
+        when the candidates cannot hold the feed or a specification cannot be met; the sentence
+        names file and key.
     """
     library = load_library()
-    (stage,) = case.stages
-    try:
-        outlet = predict_stage(stage, case.feeds, library)
-    except InputError as error:
-        raise error.at(file=case.file) from None
+    by_name = {stream.name: stream for stream in case.feeds}
+    outlets: list[StageOutlet] = []
+    passing: list[Stream] = []
+    for stage in case.stages:
+        streams = [*passing, *(by_name[name] for name in stage.feeds)]
+        try:
+            outlets += predict_stage(stage, streams, library)
+        except InputError as error:
+            raise _placed(error, stage, case) from None
+        if not outlets[-1].certified:
+            break
+        passing = [leaving_stream(outlets[-1], case.feeds[0])]
     return Outlet(
         title=case.title,
         unit=case.feeds[0].unit,
         is_flow=case.feeds[0].is_flow,
-        stages=(outlet,),
+        stages=tuple(outlets),
     )
+
+
+def _placed(error: InputError, stage: StageCase, case: Case) -> InputError:
+    """The error at its key: within the stage, unless the case's own species table is meant."""
+    if not error.key.startswith(_AT_TOP) or stage.own_species:
+        error.key = f"{stage.key}.{error.key}".rstrip(".")
+    return error.at(file=case.file)

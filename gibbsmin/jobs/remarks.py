@@ -1,4 +1,4 @@
-"""What a result must say beside its figures: warnings about them, cautions about the outlet."""
+"""What a result must say beside its figures: their limits, and the outlet's hazards."""
 
 from __future__ import annotations
 
@@ -8,7 +8,7 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise import Status
-from gibbsmin.reactor.audit import AuditEntry, SolvedState
+from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry, SolvedState
 from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.hazards import hazards
@@ -16,9 +16,6 @@ from gibbsmin.thermo.species import Phase, Species
 
 _MATTERS = 1e-6
 """A record matters from this share of the outlet's amounts."""
-
-LIMIT_OF_RATE = "Equilibrium is a limit, not a rate: a real outlet may fall short of it."
-PRACTICE = "Design, relief and safety decisions follow local codes and licensed practice."
 
 
 def warnings(
@@ -32,24 +29,20 @@ def warnings(
     """Sentences on what limits the figures, the gravest first."""
     if status is not Status.CERTIFIED:
         return (f"Not certified, so no figure is given: {status.sentence}",)
-    sentences = [*_audit_warnings(entries), *_range_warnings(model, feeds, state)]
+    sentences = [*_audit_warnings(entries[:AUDIT_LENGTH]), *_range_warnings(model, feeds, state)]
     if entropy_remark:
         sentences.append(f"Entropy: {entropy_remark}.")
     return tuple(sentences)
 
 
-def cautions(model: StageModel, amounts: FloatArray) -> tuple[str, ...]:
-    """Limits of use, and the toxic and flammable species of the outlet by name."""
+def outlet_hazards(model: StageModel, amounts: FloatArray) -> tuple[str, ...]:
+    """The toxic and flammable species of the outlet by name."""
     known = hazards()
     present = [record for record in _mattering(model.records, amounts) if record.formula in known]
     toxic = list(dict.fromkeys(r.formula for r in present if known[r.formula].toxic))
     flammable = list(dict.fromkeys(r.formula for r in present if known[r.formula].flammable))
-    sentences = [LIMIT_OF_RATE]
-    if toxic:
-        sentences.append(f"Toxic in the outlet: {', '.join(toxic)}.")
-    if flammable:
-        sentences.append(f"Flammable in the outlet: {', '.join(flammable)}.")
-    return (*sentences, PRACTICE)
+    named = (("Toxic", toxic), ("Flammable", flammable))
+    return tuple(f"{kind}: {', '.join(formulas)}." for kind, formulas in named if formulas)
 
 
 def _audit_warnings(entries: Sequence[AuditEntry]) -> Iterator[str]:

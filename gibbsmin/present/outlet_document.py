@@ -5,10 +5,12 @@ from __future__ import annotations
 import math
 from typing import Any
 
-from gibbsmin.present.outlet_view import AUDIT_LENGTH
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit
-from gibbsmin.reactor.audit import AuditEntry
-from gibbsmin.results import Outlet, StageOutlet
+from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
+from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 
 
 def outlet_document(outlet: Outlet) -> dict[str, Any]:
@@ -21,6 +23,7 @@ def outlet_document(outlet: Outlet) -> dict[str, Any]:
         "title": outlet.title,
         "status": "certified" if outlet.certified else "not certified",
         "stages": [_stage(outlet, stage) for stage in outlet.stages],
+        "cautions": list(CAUTIONS),
     }
     plain: dict[str, Any] = _without_nan(document)
     return plain
@@ -57,8 +60,10 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
                 strict=True,
             )
         ],
+        "removed": dict(zip(stage.removed, _removed(unit, stage).tolist(), strict=True)),
         "conversion": dict(stage.conversion),
         "heat": {"value": stage.heat / 1e3, "unit": energy},
+        "shaft_work": {"value": stage.shaft_work / 1e3, "unit": energy},
         "entropy_generation": {
             "value": stage.entropy.value / 1e3,
             "unit": f"{energy}/K",
@@ -75,9 +80,15 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
             for a in stage.activities
         ],
         "warnings": list(stage.warnings),
-        "cautions": list(stage.cautions),
+        "notes": list(stage.notes),
+        "hazards": list(stage.hazards),
         "audit": [_audit_entry(entry) for entry in stage.audit[:AUDIT_LENGTH]],
     }
+
+
+def _removed(unit: str, stage: StageOutlet) -> FloatArray:
+    records = [record for record in stage.records if record.name in stage.removed]
+    return amounts_in(unit, records, np.array([stage.removed[r.name] for r in records]))
 
 
 def _audit_entry(entry: AuditEntry) -> dict[str, Any]:
@@ -91,6 +102,7 @@ def _audit_entry(entry: AuditEntry) -> dict[str, Any]:
         **value,
         "left_out": entry.left_out,
         "within_range": entry.within_range,
+        "routes": [{"reaction": route.text, "value": route.activity} for route in entry.routes],
     }
 
 

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 from gibbsmin.present.files import output_suffix, write_csv, write_tables, write_text
 from gibbsmin.present.outlet_document import outlet_document
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit
-from gibbsmin.results import Outlet, StageOutlet
+from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -112,7 +112,12 @@ def _remarks(outlet: Outlet) -> pd.DataFrame:
     rows = [
         (stage.name, kind, sentence)
         for stage in outlet.stages
-        for kind, sentences in (("warning", stage.warnings), ("caution", stage.cautions))
+        for kind, sentences in (
+            ("warning", stage.warnings),
+            ("note", stage.notes),
+            ("hazard", stage.hazards),
+            ("caution", CAUTIONS),
+        )
         for sentence in sentences
     ]
     return pd.DataFrame(rows, columns=["stage", "kind", "sentence"])

@@ -19,13 +19,12 @@ from gibbsmin.present.quantities import (
     significant,
     temperature,
 )
-from gibbsmin.results import Outlet, StageOutlet
+from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
+from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 from gibbsmin.thermo.species import Phase
 
-AUDIT_LENGTH = 10
-"""The audit's entries that are shown: the most weighty ones."""
-
 _SHOWN_FROM = 1e-9
+_ROUTES_AGREE = 1e-6
 
 
 def outlet_view(outlet: Outlet) -> RenderableType:
@@ -38,7 +37,9 @@ def outlet_view(outlet: Outlet) -> RenderableType:
         if stage.audit:
             parts += [heading("Not in the outlet, nearest to it first"), _audit(stage)]
         parts += sentences("Warnings", stage.warnings)
-        parts += sentences("Cautions", stage.cautions)
+        parts += sentences("Notes", stage.notes)
+        parts += sentences("Hazards of the outlet", stage.hazards)
+    parts += sentences("Cautions", CAUTIONS)
     return Group(*parts)
 
 
@@ -85,8 +86,17 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
         yield "conversion", ", ".join(converted)
     if formed:
         yield "formation", ", ".join(formed) + " of what was fed"
+    if stage.removed:
+        unit = amount_unit(outlet.unit, outlet.is_flow)
+        records = [record for record in stage.records if record.name in stage.removed]
+        taken = amounts_in(unit, records, np.array([stage.removed[r.name] for r in records]))
+        pairs_taken = zip(records, taken.tolist(), strict=True)
+        yield "taken out", ", ".join(f"{r.name} {significant(n)} {unit}" for r, n in pairs_taken)
     added = "removed" if stage.heat < 0 else "added"
     yield f"heat {added}", heat(abs(stage.heat), outlet.is_flow)
+    if stage.shaft_work:
+        gained = "gained" if stage.shaft_work < 0 else "put in"
+        yield f"shaft work {gained}", heat(abs(stage.shaft_work), outlet.is_flow)
     entropy = stage.entropy
     if not np.isnan(entropy.value):
         yield (
@@ -103,7 +113,9 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
         yield (
             "activities",
             ", ".join(
-                f"{a.label} {significant(a.value, 4)} {a.unit}".rstrip() for a in stage.activities
+                f"{a.label} {significant(a.value, 4)} {a.unit}".rstrip()
+                for a in stage.activities
+                if not np.isnan(a.value)
             ),
         )
     proof = stage.certificate
@@ -119,6 +131,7 @@ def _audit(stage: StageOutlet) -> RenderableType:
     for entry in stage.audit[:AUDIT_LENGTH]:
         remarks = ["left out by name"] if entry.left_out else ["WARNING"] if entry.warns else []
         remarks += [] if entry.within_range else ["beyond its range"]
+        remarks += _route_remark(entry)
         gas = entry.record.phase is Phase.GAS
         rows.append(
             (
@@ -129,3 +142,14 @@ def _audit(stage: StageOutlet) -> RenderableType:
             )
         )
     return table(("record", "would reach", "activity", "remark"), rows, words=("record", "remark"))
+
+
+def _route_remark(entry: AuditEntry) -> list[str]:
+    """The routes' own figures, where they disagree."""
+    if len(entry.routes) < 2:
+        return []
+    first, last = entry.routes[0], entry.routes[-1]
+    if first.log_activity - last.log_activity < _ROUTES_AGREE:
+        return []
+    plainest = sorted(entry.routes, key=lambda route: route.awkwardness)[:3]
+    return ["; ".join(f"{route.text}: {significant(route.activity, 3)}" for route in plainest)]

@@ -93,12 +93,14 @@ class Shift:
                 f'found an approach of {difference:g} K for "{self.texts[reaction]}", which '
                 "leads below absolute zero",
                 "accepted is a smaller approach",
+                key="approach",
             )
         if np.any(np.sign(self.properties.enthalpy(shifted) @ nu) != np.sign(enthalpy)):
             raise InputError(
                 f'found an approach of {difference:g} K for "{self.texts[reaction]}", whose '
                 "enthalpy changes sign within it",
                 "accepted is a smaller approach, or a fixed conversion in its place",
+                key="approach",
             )
         return np.asarray(shifted)
 
@@ -134,6 +136,7 @@ def shift_of(
                 raise InputError(
                     f'found "{name}" in "{approach.text}", which is no candidate',
                     "accepted is a reaction between records to consider",
+                    key="approach",
                 )
             stoichiometry[row, names.index(name)] = coefficient
         keys.append(names.index(approach.key or _default_key(approach, records)))
@@ -141,12 +144,14 @@ def shift_of(
         raise InputError(
             f"found reactions that depend on each other: {_listed(approaches)}",
             "accepted are independent reactions",
+            key="approach",
         )
     if approaches and np.linalg.matrix_rank(stoichiometry[:, keys]) < len(approaches):
         raise InputError(
             f"found the key records {', '.join(names[k] for k in keys)}, which cannot tell the "
             f"reactions apart: {_listed(approaches)}",
             "accepted is a key of its own for each reaction",
+            key="approach",
         )
     return Shift(
         properties=PropertyTable.of(records),
@@ -169,6 +174,7 @@ def _default_key(approach: Approach, records: Sequence[Species]) -> str:
             f'found no key for "{approach.text}", in which {" and ".join(largest)} are equally '
             "large",
             "accepted is a key, the record that the approach holds back",
+            key="approach",
         )
     return largest[0]
 

@@ -2,7 +2,8 @@
 
 At the optimum a record j would be in equilibrium with the outlet at y_j = exp(a_j·λ − g̃_j) as a
 gas, or with that activity as a pure phase.  The sum a_j·λ is determined only where a_j is a
-combination of the columns of records present; elsewhere nothing is said.
+combination of the columns of records present; elsewhere nothing is said.  Where more than the
+elements is held, records are judged by routes from the actual partial pressures instead.
 """
 
 from __future__ import annotations
@@ -14,11 +15,15 @@ import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import STANDARD_PRESSURE
-from gibbsmin.reactor.balance import CHARGE, element_counts
+from gibbsmin.reactor.balance import element_counts, elements_of
 from gibbsmin.reactor.model import StageModel, reduced_energies
+from gibbsmin.reactor.routes import Route, routes_to
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Phase, Species
+
+AUDIT_LENGTH = 10
+"""The audit's entries that people are shown and warned of: the most weighty ones."""
 
 _RANK_TOLERANCE = 1e-9
 _GAS_THRESHOLD = 1e-4
@@ -39,6 +44,7 @@ class AuditEntry:
     activity : activity against the pure phase, 1 when saturated (solids and liquids, else NaN)
     left_out : whether the user left it out by name, so that it is listed without a warning
     within_range : whether the temperature is within the record's range
+    routes : where routes disagree, each with its own figure, the most favourable first
     """
 
     record: Species
@@ -46,6 +52,7 @@ class AuditEntry:
     activity: float
     left_out: bool
     within_range: bool
+    routes: tuple[Route, ...] = ()
 
     @property
     def weight(self) -> float:
@@ -88,12 +95,25 @@ def log_activities(
     model: StageModel, state: SolvedState, records: Sequence[Species], pressure: float
 ) -> FloatArray:
     """a_j·λ − g̃_j(T, P) of each record; NaN where the outlet does not determine it."""
-    properties = PropertyTable.of(records)
-    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
     columns = element_counts(records, model.balance.rows)
-    energies = reduced_energies(properties, gas, state.temperature, pressure)
+    energies = _energies(records, state.temperature, pressure)
     potentials = np.nan_to_num(state.multipliers, nan=0.0) @ columns
     return np.where(_determined(model, state, columns), potentials - energies, np.nan)
+
+
+def routes_at(
+    model: StageModel, state: SolvedState, records: Sequence[Species], pressure: float
+) -> list[tuple[Route, ...]]:
+    """Routes to each record from the partial pressures of a state."""
+    present = model.gas & (state.amounts > 0.0)
+    gas_total = state.amounts[present].sum()
+    logs = np.zeros(state.amounts.shape)
+    logs[present] = np.log(state.amounts[present] / gas_total)
+    potentials = logs + reduced_energies(
+        model.properties, model.gas, state.temperature, state.pressure
+    )
+    energies = _energies(records, state.temperature, pressure)
+    return routes_to(records, energies, model.records, state.amounts, potentials)
 
 
 def audit(
@@ -109,12 +129,24 @@ def audit(
         for record, amount in zip(model.records, state.amounts, strict=True)
         if record.phase is Phase.GAS or amount > 0.0
     }
-    symbols = [symbol for symbol in model.balance.elements if symbol != CHARGE]
-    records = [r for r in library.of_elements(symbols) if r.name not in taking_part]
+    supplied = elements_of(
+        [r for r, amount in zip(model.records, state.amounts, strict=True) if amount > 0.0]
+    )
+    records = [
+        record
+        for record in library.of_elements(supplied)
+        if record.name not in taking_part and _is_judged(model, record)
+    ]
     if not records:
         return ()
+    if model.restrained:
+        routes = routes_at(model, state, records, state.pressure)
+        logs = np.array([r[0].log_activity if r else np.nan for r in routes])
+    else:
+        routes = [()] * len(records)
+        logs = log_activities(model, state, records, state.pressure)
     with np.errstate(over="ignore"):
-        values = np.exp(log_activities(model, state, records, state.pressure))
+        values = np.exp(logs)
     entries = (
         AuditEntry(
             record=record,
@@ -122,23 +154,48 @@ def audit(
             activity=np.nan if record.phase is Phase.GAS else value,
             left_out=record.name in left_out,
             within_range=record.T_low <= state.temperature <= record.T_high,
+            routes=ways,
         )
-        for record, value in zip(records, values.tolist(), strict=True)
+        for record, value, ways in zip(records, values.tolist(), routes, strict=True)
         if not np.isnan(value)
     )
     return tuple(sorted(entries, key=lambda entry: (-entry.weight, entry.record.name)))
 
 
+def _is_judged(model: StageModel, record: Species) -> bool:
+    """Whether the audit looks at a record.
+
+    Where nothing reacts, only other forms of the stage's substances may appear.  Where the stage
+    is held short of equilibrium, gases and organic records are held by the same slowness, and
+    would be supersaturated beyond sense; phases such as carbon, sulphur and salts are judged.
+    """
+    if not model.reacts:
+        return any(record.formula == other.formula for other in model.records)
+    if model.restrained:
+        organic = {"C", "H"} <= {symbol for symbol, _ in record.elements}
+        return record.phase is not Phase.GAS and not organic
+    return True
+
+
 def element_activities(
     model: StageModel, state: SolvedState, library: Library
 ) -> tuple[ElementActivity, ...]:
-    """p(O2), a(C), p(N2) and p(S2), of those elements that the feed brings."""
+    """p(O2), a(C), p(N2) and p(S2), of those elements that the feed brings.
+
+    They are given where the outlet determines them: not where routes disagree.
+    """
     symbols = [symbol for symbol in _ACTIVITY_RECORDS if symbol in model.balance.elements]
     if not symbols:
         return ()
     records = [library[_ACTIVITY_RECORDS[symbol]] for symbol in symbols]
     with np.errstate(over="ignore"):
         values = np.exp(log_activities(model, state, records, STANDARD_PRESSURE))
+    gas_total = state.amounts[model.gas].sum()
+    for i, record in enumerate(records):
+        # A reference gas that is held apart from the others still shows its own pressure.
+        if np.isnan(values[i]) and record in model.records and gas_total > 0.0:
+            share = state.amounts[model.records.index(record)] / gas_total
+            values[i] = share * state.pressure / STANDARD_PRESSURE
     return tuple(
         ElementActivity(
             element=symbol,
@@ -149,6 +206,11 @@ def element_activities(
         )
         for symbol, record, value in zip(symbols, records, values.tolist(), strict=True)
     )
+
+
+def _energies(records: Sequence[Species], temperature: float, pressure: float) -> FloatArray:
+    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
+    return reduced_energies(PropertyTable.of(records), gas, temperature, pressure)
 
 
 def _determined(model: StageModel, state: SolvedState, columns: FloatArray) -> BoolArray:

@@ -42,11 +42,6 @@ class Balance:
     direction: FloatArray
     atoms: FloatArray
 
-    @property
-    def held(self) -> bool:
-        """Whether more than elements is conserved, so that routes to a record may disagree."""
-        return len(self.rows) > len(self.elements)
-
     def supplies(self, feed: FloatArray) -> FloatArray:
         """b of feed amounts; (..., F) to (..., m)."""
         return feed @ self.feed_matrix.T

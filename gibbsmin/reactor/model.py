@@ -38,6 +38,7 @@ class StageModel:
     feed_records : the F records that enter
     balance : what is conserved between both
     shift : what is added to the candidates' energies
+    reacts : whether anything but the form of substances may change
     """
 
     records: tuple[Species, ...]
@@ -46,6 +47,12 @@ class StageModel:
     feed_records: tuple[Species, ...]
     balance: Balance
     shift: Shift
+    reacts: bool
+
+    @property
+    def restrained(self) -> bool:
+        """Whether the outlet is short of full equilibrium, so that routes may disagree."""
+        return len(self.balance.rows) > len(self.balance.elements) or bool(self.shift.keys)
 
     def energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
         """g̃ = G/RT + δ, for gases + ln(P/P°); T.shape + (S,)."""
@@ -98,6 +105,7 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
         feed_records=tuple(feed),
         balance=balance.with_holds(records, feed, holds),
         shift=shift,
+        reacts=chemistry.reactions == "equilibrium",
     )
 
 

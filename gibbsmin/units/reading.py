@@ -56,6 +56,9 @@ _HEAT = _Kind(
     frozenset({Dimension.ENERGY, Dimension.POWER}),
     'accepted is a heat such as "1.5 MW", "2 Gcal/h" or "30 kJ"',
 )
+_VOLUME = _Kind(frozenset({Dimension.VOLUME}), 'accepted is a volume such as "2 m3" or "500 L"')
+_SHARE = 'accepted is a share from 0 to 1, such as 0.8 or "80 %"'
+_MOLAR_ENERGY = 'accepted is an energy of one mole such as "5 kJ/mol"'
 _AMOUNT_DIMENSIONS = frozenset(
     {
         Dimension.MOLAR_AMOUNT,
@@ -122,6 +125,43 @@ def read_amount(given: object, unit: Unit | None = None) -> Measure:
     if measure.value < 0.0:
         raise UnitError(f"found {shown(given)}, which is negative", _AMOUNT.accepted)
     return measure
+
+
+def read_volume(given: object) -> float:
+    """A positive volume in m³."""
+    cubic_metres = _measure(given, _VOLUME, STANDARD_ATMOSPHERE).value
+    if cubic_metres <= 0.0:
+        raise UnitError(f"found {shown(given)}, which is not above zero", _VOLUME.accepted)
+    return cubic_metres
+
+
+def read_share(given: object) -> float:
+    """A share from 0 to 1: a bare number, or a text in per cent or ppm."""
+    number = given
+    factor = 1.0
+    if isinstance(given, str):
+        match = re.fullmatch(r"\s*([-+.\deE]+)\s*(%|ppm)?\s*", given)
+        number = _number(match[1]) if match else None
+        factor = {"%": 1e-2, "ppm": 1e-6}.get((match[2] if match else "") or "", 1.0)
+    if not _is_number(number):
+        raise UnitError(f"found {shown(given)}, which is no share", _SHARE)
+    share = _as_float(number) * factor
+    if not 0.0 <= share <= 1.0:
+        raise UnitError(f"found {shown(given)}, which is not between 0 and 1", _SHARE)
+    return share
+
+
+def read_molar_energy(given: object) -> float:
+    """An energy of one mole in J/mol, of either sign."""
+    text, _, per = given.rpartition("/") if isinstance(given, str) else ("", "", "")
+    moles = {"mol": 1.0, "kmol": 1e3}.get(per.strip())
+    if moles is None:
+        raise UnitError(f"found {shown(given)}, which is no energy of one mole", _MOLAR_ENERGY)
+    try:
+        energy = _measure(text, _HEAT, STANDARD_ATMOSPHERE)
+    except UnitError:
+        raise UnitError(f"found {shown(given)}", _MOLAR_ENERGY) from None
+    return energy.value / moles
 
 
 def read_amount_unit(given: object) -> Unit:
@@ -193,6 +233,13 @@ def _unit(text: str, given: str, kind: _Kind, site_pressure: float) -> Unit:
         phrase = unit.dimension.phrase
         raise UnitError(f"found {shown(given)}, which is {phrase}", kind.accepted)
     return unit
+
+
+def _number(text: str) -> float | None:
+    try:
+        return float(text)
+    except ValueError:
+        return None
 
 
 def _as_float(number: Real) -> float:

@@ -1,0 +1,250 @@
+"""Turns a case's tables of stages into what the reactor layer takes."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Literal, TypeVar
+
+from gibbsmin.errors import InputError, UnitError
+from gibbsmin.jobs.case_feed import placed, resolve
+from gibbsmin.reactor.approach import Approach
+from gibbsmin.reactor.candidates import Selection
+from gibbsmin.reactor.chemistry import Chemistry, HeldFraction
+from gibbsmin.reactor.specification import Specification
+from gibbsmin.reactor.streams import Stream
+from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.reaction import Reaction
+from gibbsmin.thermo.species import Phase, Species
+
+if TYPE_CHECKING:
+    from gibbsmin.jobs.case_schema import CaseTable
+    from gibbsmin.jobs.stage_schema import ApproachTable, OutletTable, SpeciesTable
+
+
+Value = TypeVar("Value")
+
+
+@dataclass(frozen=True)
+class StageCase:
+    """One stage of a case.
+
+    Parameters
+    ----------
+    name
+        As reports call it.
+    key
+        Where it stands in the case file.
+    feeds
+        Names of the streams that enter here, beside the outlet of the stage before.
+    chemistry
+        Which records may appear in the outlet, and what holds them back.
+    specification
+        Its two given conditions.
+    boundary_temperature
+        Where heat crosses into the stage, K; None means at the outlet's temperature.
+    surroundings_temperature
+        For lost work, K.
+    bypass
+        Share of what enters that goes around the reaction and joins its outlet.
+    removed
+        Share of each record that is taken out of the outlet.
+    own_species
+        Whether it names its candidates itself, in place of the case's.
+    """
+
+    name: str
+    key: str
+    feeds: tuple[str, ...]
+    chemistry: Chemistry
+    specification: Specification
+    boundary_temperature: float | None
+    surroundings_temperature: float
+    bypass: float
+    removed: Mapping[str, float]
+    own_species: bool = False
+
+
+def read_stages(
+    table: CaseTable, streams: Sequence[Stream], library: Library
+) -> tuple[StageCase, ...]:
+    """The stages in order; streams that no stage names enter the first.
+
+    Raises
+    ------
+    InputError
+        for names that are no streams, records or reactions, and for a heat that does not count
+        like the feeds (per time, or not).
+    """
+    names = [stream.name for stream in streams]
+    named = [name for stage in table.stage for name in stage.feeds or ()]
+    if table.outlet is not None:
+        return (
+            _stage("outlet", "outlet", tuple(names), table.outlet, None, table, streams, library),
+        )
+    stages = []
+    for index, stage in enumerate(table.stage):
+        key = f"stage.{index}"
+        for name in stage.feeds or ():
+            if name not in names or named.count(name) > 1:
+                raise InputError(
+                    f'found "{name}", which '
+                    + ("two stages name" if name in names else "is no stream"),
+                    f"accepted is each stream once: {', '.join(names)}",
+                    key=f"{key}.feeds",
+                )
+        feeds = stage.feeds or ()
+        if index == 0:
+            feeds = (*feeds, *(name for name in names if name not in named))
+            if not feeds:
+                raise InputError(
+                    "found no stream for the first stage",
+                    f"accepted is at least one: {', '.join(names)}",
+                    key=f"{key}.feeds",
+                )
+        stages.append(_stage(stage.name, key, feeds, stage, stage.species, table, streams, library))
+    return tuple(stages)
+
+
+def _stage(
+    name: str,
+    key: str,
+    feeds: tuple[str, ...],
+    stage: OutletTable,
+    species: SpeciesTable | None,
+    table: CaseTable,
+    streams: Sequence[Stream],
+    library: Library,
+) -> StageCase:
+    selection_key = "species" if species is None else f"{key}.species"
+    selection = _selection(selection_key, species or table.species, library)
+    return StageCase(
+        name=name,
+        key=key,
+        feeds=feeds,
+        chemistry=_chemistry(key, stage, selection, library),
+        specification=_specification(key, stage, streams[0]),
+        boundary_temperature=stage.boundary_temperature,
+        surroundings_temperature=stage.surroundings_temperature,
+        bypass=stage.bypass,
+        removed=_by_record(f"{key}.remove", stage.remove, library),
+        own_species=species is not None,
+    )
+
+
+def _specification(key: str, stage: OutletTable, stream: Stream) -> Specification:
+    heat = None
+    if stage.heat is not None:
+        if stage.heat.value and stage.heat.unit.dimension.is_flow != stream.is_flow:
+            kind = "a flow, such as kW" if stream.is_flow else "a quantity, such as kJ"
+            raise UnitError(
+                f'found a heat in "{stage.heat.unit.text}", while the feeds are in "{stream.unit}"',
+                f"accepted is {kind}",
+                key=f"{key}.heat",
+            )
+        heat = stage.heat.value
+    return Specification(
+        temperature=stage.temperature,
+        heat=heat,
+        entropy_of_feed=stage.entropy == "feed",
+        pressure=stage.pressure,
+        pressure_drop=stage.pressure_drop,
+        volume=stage.volume,
+    )
+
+
+def _chemistry(key: str, stage: OutletTable, selection: Selection, library: Library) -> Chemistry:
+    fractions = _by_record(f"{key}.held_fraction", stage.held_fraction, library)
+    with placed(f"{key}.condense"):
+        condense = tuple(resolve(text, library).formula for text in stage.condense)
+    return Chemistry(
+        selection=selection,
+        reactions=stage.reactions,
+        condense=condense,
+        conversions=_by_record(f"{key}.conversion", stage.conversion, library),
+        fractions=tuple(
+            HeldFraction(name, share, basis) for name, (share, basis) in fractions.items()
+        ),
+        approaches=tuple(
+            _approach(f"{key}.approach.{index}", approach, library)
+            for index, approach in enumerate(stage.approach)
+        ),
+        others=stage.others,
+        offsets=_by_record(f"{key}.offset", stage.offset, library),
+        activities=_by_record(f"{key}.activity", stage.activity, library),
+    )
+
+
+def _approach(key: str, table: ApproachTable, library: Library) -> Approach:
+    with placed(f"{key}.reaction"):
+        reaction = Reaction.read(table.reaction, library)
+        coefficients = {
+            _form(substance.text, substance.forms): float(number)
+            for number, substance in reaction.terms
+        }
+    chosen = ""
+    if table.key is not None:
+        with placed(f"{key}.key"):
+            chosen = resolve(table.key, library).name
+            if chosen not in coefficients:
+                raise InputError(
+                    f'found "{table.key}", which is not in "{table.reaction}"',
+                    f"accepted is one of {', '.join(coefficients)}",
+                )
+    return Approach(table.reaction, coefficients, table.approach, chosen)
+
+
+def _form(text: str, forms: Sequence[Species]) -> str:
+    """A record of a reaction: the gas where there is one, else the only form."""
+    gases = [form for form in forms if form.phase is Phase.GAS]
+    if len(gases) == 1 or len(forms) == 1:
+        return (gases or list(forms))[0].name
+    raise InputError(
+        f'found "{text}", which has several forms',
+        f"accepted is one of {', '.join(form.name for form in forms)}",
+    )
+
+
+def _selection(key: str, table: SpeciesTable, library: Library) -> Selection:
+    """The candidates' names as records, each in one list only."""
+    consider: Literal["all"] | tuple[str, ...] = "all"
+    if table.consider != "all":
+        consider = _record_names(f"{key}.consider", table.consider, library)
+    leave_out = _record_names(f"{key}.leave_out", table.leave_out, library)
+    inert = _record_names(f"{key}.inert", table.inert, library)
+    _refuse_both(f"{key}.leave_out", leave_out, f"{key}.inert", inert)
+    if consider != "all":
+        _refuse_both(f"{key}.leave_out", leave_out, f"{key}.consider", consider)
+    return Selection(consider=consider, leave_out=leave_out, inert=inert)
+
+
+def _by_record(key: str, values: Mapping[str, Value], library: Library) -> dict[str, Value]:
+    found = {}
+    for text, value in values.items():
+        with placed(f"{key}.{text}"):
+            found[resolve(text, library).name] = value
+    return found
+
+
+def _record_names(key: str, texts: tuple[str, ...], library: Library) -> tuple[str, ...]:
+    written: dict[str, str] = {}
+    with placed(key):
+        for text in texts:
+            name = resolve(text, library).name
+            if name in written:
+                raise InputError(
+                    f'found {name} twice, as "{written[name]}" and as "{text}"',
+                    "accepted is each record once",
+                )
+            written[name] = text
+    return tuple(written)
+
+
+def _refuse_both(key: str, names: tuple[str, ...], other_key: str, others: tuple[str, ...]) -> None:
+    for name in names:
+        if name in others:
+            raise InputError(
+                f'found "{name}", which {other_key} lists too',
+                "accepted is a record in one of the two",
+                key=key,
+            )

@@ -1,0 +1,184 @@
+"""The case file's tables of stages: ``[outlet]`` for one stage, ``[[stage]]`` for a train."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from typing import Annotated, Any, Literal, Self
+
+from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
+
+from gibbsmin.constants import REFERENCE_TEMPERATURE
+from gibbsmin.errors import InputError
+from gibbsmin.jobs.table_schema import MISSING, Names, Table, Temperature, read_names, site_pressure
+from gibbsmin.units import (
+    Measure,
+    read_heat,
+    read_molar_energy,
+    read_pressure,
+    read_share,
+    read_temperature,
+    read_temperature_difference,
+    read_volume,
+    shown,
+)
+
+_OF_ENERGY = ("temperature", "heat", "entropy")
+_OF_ROOM = ("pressure", "pressure_drop", "volume")
+
+
+def _names_or_all(given: object) -> Literal["all"] | tuple[str, ...]:
+    if given == "all":
+        return "all"
+    if not given or not isinstance(given, list | tuple):
+        raise InputError(
+            "found an empty list" if given == [] else f"found {shown(given)}",
+            'accepted is "all" or a list of species, such as ["CH4", "H2O"]',
+        )
+    return read_names(given)
+
+
+def _pressure(given: object, info: ValidationInfo) -> float:
+    return read_pressure(given, site_pressure(info))
+
+
+def _text(given: object) -> str:
+    if not isinstance(given, str) or not given.strip():
+        raise InputError(f"found {shown(given)}", "accepted is text")
+    return given.strip()
+
+
+def _word(*accepted: str) -> BeforeValidator:
+    def read(given: object) -> object:
+        if given not in accepted:
+            words = " or ".join(f'"{word}"' for word in accepted)
+            raise InputError(f"found {shown(given)}", f"accepted is {words}")
+        return given
+
+    return BeforeValidator(read)
+
+
+def _each(read: Callable[[object], Any], example: str) -> BeforeValidator:
+    """A table of species, each value read alike."""
+
+    def values(given: object) -> Mapping[str, Any]:
+        if not isinstance(given, Mapping):
+            raise InputError(
+                f"found {shown(given)}", f"accepted is a table of species, such as {example}"
+            )
+        read_values = {}
+        for name, value in given.items():
+            try:
+                read_values[str(name)] = read(value)
+            except InputError as error:
+                raise error.at(key=str(name)) from None
+        return read_values
+
+    return BeforeValidator(values)
+
+
+def _activity(given: object) -> float:
+    if isinstance(given, bool) or not isinstance(given, int | float) or not 0.0 < given < 1e30:
+        raise InputError(f"found {shown(given)}", "accepted is an activity above 0, such as 0.6")
+    return float(given)
+
+
+def _held(given: object) -> tuple[float, str]:
+    """A share of the gas, or of an element fed: "0.5 % dry", "2 % of C"."""
+    accepted = (
+        'accepted is a share and what it is of, such as "0.5 % dry", "0.5 % wet" or "2 % of C"'
+    )
+    if isinstance(given, str):
+        share, _, basis = given.strip().rpartition(" ")
+        share = share.removesuffix(" of")
+        if basis in ("wet", "dry") or (basis.isalpha() and given.strip().endswith(f"of {basis}")):
+            return read_share(share), basis
+    raise InputError(f"found {shown(given)}", accepted)
+
+
+def _tables(given: object) -> tuple[Any, ...]:
+    if not isinstance(given, list | tuple):
+        raise InputError(f"found {shown(given)}", "accepted are [[stage.approach]] tables")
+    return tuple(given)
+
+
+NOTHING: Any = Field(default_factory=dict)
+"""A table that may be left away."""
+
+_Shares = Annotated[Mapping[str, float], _each(read_share, '{ CH4 = "80 %" }')]
+
+
+class SpeciesTable(Table):
+    """``[species]`` or ``[stage.species]``: the candidates."""
+
+    consider: Annotated[Literal["all"] | tuple[str, ...], BeforeValidator(_names_or_all)] = "all"
+    leave_out: Names = ()
+    inert: Names = ()
+
+
+class ApproachTable(Table):
+    """``[[stage.approach]]``: one named reaction and its distance from equilibrium."""
+
+    reaction: Annotated[str, BeforeValidator(_text)] = MISSING
+    approach: Annotated[float, BeforeValidator(read_temperature_difference)] = MISSING
+    key: Annotated[str, BeforeValidator(_text)] | None = None
+
+
+class OutletTable(Table):
+    """``[outlet]``: the one stage, or what every ``[[stage]]`` may say."""
+
+    temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
+    heat: Annotated[Measure | None, BeforeValidator(read_heat)] = None
+    entropy: Annotated[Literal["feed"] | None, _word("feed")] = None
+    pressure: Annotated[float | None, BeforeValidator(_pressure)] = None
+    pressure_drop: Annotated[float | None, BeforeValidator(read_pressure)] = None
+    volume: Annotated[float | None, BeforeValidator(read_volume)] = None
+    boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
+    surroundings_temperature: Temperature = REFERENCE_TEMPERATURE
+    reactions: Annotated[Literal["equilibrium", "none"], _word("equilibrium", "none")] = (
+        "equilibrium"
+    )
+    condense: Names = ()
+    conversion: _Shares = NOTHING
+    held_fraction: Annotated[
+        Mapping[str, tuple[float, str]], _each(_held, '{ CH4 = "0.5 % dry" }')
+    ] = NOTHING
+    approach: Annotated[tuple[ApproachTable, ...], BeforeValidator(_tables)] = ()
+    others: Annotated[Literal["equilibrium", "frozen"], _word("equilibrium", "frozen")] = (
+        "equilibrium"
+    )
+    offset: Annotated[
+        Mapping[str, float], _each(read_molar_energy, '{ "C(graphite)" = "5 kJ/mol" }')
+    ] = NOTHING
+    activity: Annotated[Mapping[str, float], _each(_activity, '{ "C(graphite)" = 0.6 }')] = NOTHING
+    remove: _Shares = NOTHING
+    bypass: Annotated[float, BeforeValidator(read_share)] = 0.0
+
+    @model_validator(mode="after")
+    def _two_conditions(self) -> Self:
+        self._one_condition(_OF_ENERGY)
+        self._one_condition(_OF_ROOM)
+        if self.entropy and self.volume:
+            raise InputError(
+                'found entropy = "feed" with a volume',
+                "accepted is a pressure with it, or a heat in its place",
+                key="volume",
+            )
+        return self
+
+    def _one_condition(self, keys: tuple[str, ...]) -> None:
+        given = [key for key in keys if getattr(self, key) is not None]
+        listed = f"{', '.join(keys[:-1])} and {keys[-1]}"
+        if not given:
+            raise InputError("found nothing", f"accepted is one of {listed}", key=keys[0])
+        if len(given) > 1:
+            raise InputError(
+                f"found {given[1]} beside {given[0]}", f"accepted is one of {listed}", key=given[1]
+            )
+
+
+class StageTable(OutletTable):
+    """``[[stage]]``: one stage of a train."""
+
+    name: Annotated[str, BeforeValidator(_text)] = MISSING
+    feeds: Names | None = None
+    species: SpeciesTable | None = None

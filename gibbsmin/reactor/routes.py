@@ -1,0 +1,105 @@
+"""Activities of absent records by each route that could form them.
+
+Where more than the elements is held, the outlet's species are not at equilibrium with each other,
+and a record has no single activity: methane may deposit carbon that carbon monoxide would take
+up.  A substance that is present in another form is judged by that form alone.  For others each
+route j = Σ x_i i from up to three of the main species gives its own
+
+    ln a_j = Σ x_i μ_i/RT − g̃_j,   μ_i/RT = g̃_i + ln y_i  of the actual partial pressures.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from itertools import combinations
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.reactor.balance import element_counts, elements_of
+from gibbsmin.thermo.species import Species
+
+_LONGEST = 3
+_MAIN_SPECIES = 8
+_LEAST_SHARE = 1e-6
+_TOLERANCE = 1e-9
+
+
+@dataclass(frozen=True)
+class Route:
+    """One way to form a record, and its activity (or mole fraction, for a gas) by that way.
+
+    ``awkwardness`` counts its species, and ten for each that takes a fraction of a mole.
+    """
+
+    text: str
+    log_activity: float
+    awkwardness: int
+
+    @property
+    def activity(self) -> float:
+        """Activity of a solid or liquid, mole fraction of a gas."""
+        return float(np.exp(min(self.log_activity, 700.0)))
+
+
+def routes_to(
+    targets: Sequence[Species],
+    target_energies: FloatArray,
+    present: Sequence[Species],
+    amounts: FloatArray,
+    potentials: FloatArray,
+) -> list[tuple[Route, ...]]:
+    """Routes to each target from the main species present, the most favourable first.
+
+    Parameters
+    ----------
+    targets : the records to judge, with their g̃ (T,)
+    present : the outlet's records, with their amounts and μ/RT, each (S,)
+    """
+    main = _main_species(amounts)
+    rows = elements_of([*present, *targets])
+    wanted = element_counts(targets, rows)
+    columns = element_counts(present, rows)
+    substances = {present[i].formula for i in main}
+    itself = np.array([target.formula in substances for target in targets])
+    found: list[list[Route]] = [[] for _ in targets]
+    for size in range(1, _LONGEST + 1):
+        for subset in combinations(main, size):
+            chosen = list(subset)
+            shares, _, rank, _ = np.linalg.lstsq(columns[:, chosen], wanted, rcond=None)
+            if rank < size:
+                continue
+            misses = np.abs(columns[:, chosen] @ shares - wanted).max(axis=0)
+            fits = (misses < _TOLERANCE) & (np.abs(shares) > _TOLERANCE).all(axis=0)
+            fits &= ~itself if size > 1 else True
+            values = shares.T @ potentials[chosen] - target_energies
+            for j in np.flatnonzero(fits).tolist():
+                species = [present[i] for i in chosen]
+                found[j].append(_route(targets[j], species, shares[:, j].tolist(), values[j]))
+    return [tuple(sorted(routes, key=lambda route: -route.log_activity)) for routes in found]
+
+
+def _main_species(amounts: FloatArray) -> list[int]:
+    largest = np.argsort(-amounts, kind="stable")[:_MAIN_SPECIES]
+    return [i for i in largest.tolist() if amounts[i] > _LEAST_SHARE * amounts.sum()]
+
+
+def _route(
+    target: Species, species: Sequence[Species], shares: Sequence[float], value: float
+) -> Route:
+    """The route as a reaction that makes one mole of the target."""
+    terms = [
+        (Fraction(share).limit_denominator(1000), record.formula)
+        for share, record in zip(shares, species, strict=True)
+    ]
+    left = [_term(share, formula) for share, formula in terms if share > 0]
+    right = [_term(-share, formula) for share, formula in terms if share < 0]
+    text = f"{' + '.join(left)} = {' + '.join([target.formula, *right])}"
+    fractions = sum(share.denominator > 1 for share, _ in terms)
+    return Route(text, float(value), len(terms) + 10 * fractions)
+
+
+def _term(share: Fraction, formula: str) -> str:
+    return formula if share == 1 else f"{share} {formula}"

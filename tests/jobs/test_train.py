@@ -1,0 +1,317 @@
+"""Stages as plants run them: adiabatic, held, in trains; published cases and round trips."""
+
+from __future__ import annotations
+
+from copy import deepcopy
+from typing import Any
+
+import numpy as np
+import pytest
+
+import gibbsmin
+from gibbsmin.errors import InputError
+from gibbsmin.results import Outlet, StageOutlet
+
+COMBUSTION = ["CH4", "O2", "N2", "CO", "CO2", "H2O", "H2", "OH", "O", "H", "NO", "N", "HO2"]
+
+
+def stream(
+    amounts: dict[str, float], temperature: str = "298.15 K", pressure: str = "1 atm"
+) -> Any:
+    return {"temperature": temperature, "pressure": pressure, "unit": "mol", "amounts": amounts}
+
+
+def case(feed: dict[str, Any], *stages: dict[str, Any], consider: Any = "all") -> dict[str, Any]:
+    return {
+        "feed": feed,
+        "stage": [{"name": f"stage {i + 1}", **stage} for i, stage in enumerate(stages)],
+        "species": {"consider": consider},
+    }
+
+
+def predict(tables: dict[str, Any]) -> Outlet:
+    return gibbsmin.predict(gibbsmin.load_case(tables))
+
+
+def only(tables: dict[str, Any]) -> StageOutlet:
+    (stage,) = predict(tables).stages
+    return stage
+
+
+def amount(stage: StageOutlet, name: str) -> float:
+    return dict(zip((r.name for r in stage.records), stage.amounts.tolist(), strict=True))[name]
+
+
+REFORMER = case(
+    {
+        "gas": stream({"CH4": 1.0, "N2": 0.02}, "520 degC", "29 bar"),
+        "steam": stream({"H2O": 3.0}, "520 degC", "29 bar"),
+    },
+    {"temperature": "850 degC", "pressure": "25 bar"},
+    consider=["CH4", "H2O", "CO", "CO2", "H2", "N2"],
+)
+
+
+def reformer(**stage: Any) -> dict[str, Any]:
+    tables = deepcopy(REFORMER)
+    tables["stage"][0] |= stage
+    return tables
+
+
+def flame(feed: dict[str, float]) -> dict[str, Any]:
+    return case(
+        {"mixture": stream(feed)}, {"heat": "0 kJ", "pressure": "1 atm"}, consider=COMBUSTION
+    )
+
+
+# Turns, An Introduction to Combustion, Table B.1, and Law, Combustion Physics; recalled from
+# memory.  The books differ by 5-10 K among each other, hence 12 K.
+FLAMES = [
+    ({"CH4": 1.0, "O2": 2.0, "N2": 2.0 * 3.76}, 2226.0),
+    ({"H2": 1.0, "O2": 0.5, "N2": 0.5 * 3.76}, 2390.0),
+    ({"CO": 1.0, "O2": 0.5, "N2": 0.5 * 3.76}, 2385.0),
+    ({"C2H2": 1.0, "O2": 2.5, "N2": 2.5 * 3.76}, 2539.0),
+    ({"C2H4": 1.0, "O2": 3.0, "N2": 3.0 * 3.76}, 2369.0),
+    ({"C3H8": 1.0, "O2": 5.0, "N2": 5.0 * 3.76}, 2267.0),
+]
+
+
+@pytest.mark.parametrize(("feed", "published"), FLAMES, ids=lambda x: str(x)[:12])
+def test_adiabatic_flame(feed: dict[str, float], published: float) -> None:
+    flame = case(
+        {"mixture": stream(feed)}, {"heat": "0 kJ", "pressure": "1 atm"}, consider=COMBUSTION
+    )
+    assert only(flame).temperature == pytest.approx(published, abs=12.0)
+
+
+def test_adiabatic_temperature_fed_back_needs_no_heat() -> None:
+    flame = case(
+        {"mixture": stream(FLAMES[0][0])},
+        {"heat": "0 kJ", "pressure": "1 atm"},
+        consider=COMBUSTION,
+    )
+    adiabatic = only(flame)
+    flame["stage"][0] |= {"temperature": f"{adiabatic.temperature!r} K"}
+    del flame["stage"][0]["heat"]
+    isothermal = only(flame)
+    released = 802.3e3  # J, lower heating value of a mole of methane: the scale of the change
+    assert abs(isothermal.heat) < 1e-9 * released
+    np.testing.assert_allclose(isothermal.amounts, adiabatic.amounts, rtol=1e-9)
+
+
+def test_reversible_stage_generates_no_entropy() -> None:
+    turbine = case(
+        {"gas": stream({"N2": 0.7, "CO2": 0.1, "H2O": 0.2}, "1500 K", "10 bar")},
+        {"entropy": "feed", "pressure": "1 bar"},
+        consider=["N2", "CO2", "H2O", "CO", "H2", "O2", "OH", "NO"],
+    )
+    stage = only(turbine)
+    entering = 250.0  # J/K, the order of the stream's entropy
+    assert abs(stage.entropy.value) < 1e-9 * entering
+    assert stage.heat == 0.0
+    assert stage.shaft_work < -10e3
+    assert stage.temperature < 1100.0
+
+
+def test_heat_is_taken_up_at_the_melting_point() -> None:
+    # Alumina melts at 2327 K and takes up about 111 kJ/mol (NIST-JANAF Tables, 4th ed., 1998).
+    def heated(kilojoule: float) -> StageOutlet:
+        return only(
+            case(
+                {"alumina": stream({"Al2O3(alpha)": 1.0}, "2300 K")},
+                {"heat": f"{kilojoule} kJ", "pressure": "1 atm"},
+                consider=["Al2O3(alpha)", "Al2O3(l)"],
+            )
+        )
+
+    third, half = heated(40.0), heated(60.0)
+    assert third.temperature == pytest.approx(2327.0, abs=0.5)
+    assert half.temperature == pytest.approx(third.temperature, abs=1e-6)
+    melting = 20e3 / (amount(half, "Al2O3(l)") - amount(third, "Al2O3(l)"))
+    assert melting == pytest.approx(111e3, rel=0.01)
+    assert half.notes[0].startswith("Heat is taken up at constant temperature: ")
+
+
+def test_closed_vessel_meets_its_volume_and_its_energy() -> None:
+    # Constant-volume combustion is hotter than at constant pressure, and the pressure rises.
+    feed = {"mixture": stream(FLAMES[1][0])}
+    moles = sum(FLAMES[1][0].values())
+    volume = moles * 8.31446261815324 * 298.15 / 101325.0
+    stage = only(case(feed, {"heat": "0 kJ", "volume": f"{volume!r} m3"}, consider=COMBUSTION))
+    gas = stage.amounts.sum()
+    assert stage.pressure * volume == pytest.approx(gas * 8.31446261815324 * stage.temperature)
+    open_flame = only(flame(FLAMES[1][0]))
+    assert stage.temperature > open_flame.temperature + 200.0
+    assert stage.heat == 0.0
+    assert stage.entropy.value > 0.0
+
+
+def log_quotient(stage: StageOutlet, reaction: dict[str, float]) -> float:
+    pressures = dict(zip((r.name for r in stage.records), stage.mole_fractions, strict=True))
+    return sum(nu * np.log(pressures[name] * stage.pressure / 1e5) for name, nu in reaction.items())
+
+
+REFORMING = {"CH4(g)": -1.0, "H2O(g)": -1.0, "CO(g)": 1.0, "H2(g)": 3.0}
+SHIFT = {"CO(g)": -1.0, "H2O(g)": -1.0, "CO2(g)": 1.0, "H2(g)": 1.0}
+
+
+def log_constant(reaction: dict[str, float], kelvin: float) -> float:
+    from gibbsmin.thermo.library import load_library
+    from gibbsmin.thermo.properties import PropertyTable
+
+    table = PropertyTable.of([load_library()[name] for name in reaction])
+    energy = table.gibbs_energy(kelvin) @ np.array(list(reaction.values()))
+    return float(-energy / (8.31446261815324 * kelvin))
+
+
+def test_an_approach_sets_its_reaction_and_leaves_the_other_at_equilibrium() -> None:
+    stage = only(reformer(approach=[{"reaction": "CH4 + H2O = CO + 3 H2", "approach": "15 K"}]))
+    assert log_quotient(stage, REFORMING) == pytest.approx(
+        log_constant(REFORMING, 1108.15), abs=1e-10
+    )
+    assert log_quotient(stage, SHIFT) == pytest.approx(log_constant(SHIFT, 1123.15), abs=1e-10)
+    assert stage.notes == (
+        '"CH4 + H2O = CO + 3 H2" is set to equilibrium at 1108.15 K, an approach of 15 K; its '
+        "key is CH4(g).",
+    )
+
+
+def test_an_approach_of_nothing_is_equilibrium() -> None:
+    plain = only(REFORMER)
+    held = only(reformer(approach=[{"reaction": "CH4 + H2O = CO + 3 H2", "approach": "0 K"}]))
+    np.testing.assert_allclose(held.amounts, plain.amounts, rtol=1e-12, atol=1e-14)
+
+
+def test_with_the_others_frozen_only_the_named_reaction_runs() -> None:
+    tables = case(
+        {"gas": stream({"CO": 1.0, "H2O": 2.0, "CO2": 0.2, "H2": 1.0, "CH4": 0.3})},
+        {
+            "temperature": "700 K",
+            "pressure": "20 atm",
+            "others": "frozen",
+            "approach": [{"reaction": "CO + H2O = CO2 + H2", "approach": "10 K", "key": "CO"}],
+        },
+        consider=["CO", "H2O", "CO2", "H2", "CH4"],
+    )
+    stage = only(tables)
+    assert amount(stage, "CH4(g)") == pytest.approx(0.3, rel=1e-12)
+    # shift is exothermic: short of equilibrium means at equilibrium 10 K hotter
+    assert log_quotient(stage, SHIFT) == pytest.approx(log_constant(SHIFT, 710.0), abs=1e-10)
+
+
+def test_fixed_conversion_and_held_slip() -> None:
+    converted = only(reformer(conversion={"CH4": "10 %"}))
+    assert converted.conversion["CH4(g)"] == pytest.approx(0.1, rel=1e-12)
+    slipping = only(reformer(held_fraction={"CH4": "8 % dry"}))
+    dry = dict(zip((r.name for r in slipping.records), slipping.dry_mole_fractions, strict=True))
+    assert dry["CH4(g)"] == pytest.approx(0.08, rel=1e-10)
+
+
+def test_carbon_margin_inside_the_tube_is_told_by_each_route() -> None:
+    # At 10 % conversion and 1000 K the cracking of methane asks for carbon, though the exit does
+    # not: the figures are the two constants with the gas's own pressures.
+    stage = only(reformer(conversion={"CH4": "10 %"}, temperature="1000 K"))
+    (carbon,) = [entry for entry in stage.audit if entry.record.name == "C(graphite)"]
+    routes = {route.text: route.log_activity for route in carbon.routes}
+    cracking = {"CH4(g)": -1.0, "H2(g)": 2.0}
+    boudouard = {"CO(g)": -2.0, "CO2(g)": 1.0}
+    for text, gas, solid in (
+        ("CH4 = C + 2 H2", cracking, {**cracking, "C(graphite)": 1.0}),
+        ("2 CO = C + CO2", boudouard, {**boudouard, "C(graphite)": 1.0}),
+    ):
+        expected = log_constant(solid, 1000.0) - log_quotient(stage, gas)
+        assert routes[text] == pytest.approx(expected, abs=1e-9)
+    assert routes["CH4 = C + 2 H2"] > 0.0 > routes["2 CO = C + CO2"]
+
+
+def test_a_train_passes_on_what_is_left() -> None:
+    tables = case(
+        {"gas": stream({"CO2": 1.0, "H2O": 2.0, "N2": 1.0}, "500 K", "10 bar"),
+         "air": stream({"air": 1.0}, "300 K", "10 bar")},
+        {"temperature": "320 K", "pressure_drop": "0.5 bar", "reactions": "none",
+         "condense": ["H2O"], "remove": {"H2O(l)": 1.0, "CO2": "95 %"}},
+        {"heat": "0 kJ", "pressure": "9 bar", "reactions": "none", "feeds": ["air"]},
+    )  # fmt: skip
+    dried, mixed = predict(tables).stages
+    assert dried.pressure == pytest.approx(9.5e5)
+    assert dried.removed["CO2(g)"] == pytest.approx(0.95)
+    assert amount(mixed, "CO2(g)") == pytest.approx(0.05 + 0.000314, abs=2e-4)
+    assert amount(mixed, "H2O(g)") == pytest.approx(amount(dried, "H2O(g)"), rel=1e-12)
+    assert amount(mixed, "H2O(g)") < 0.05
+    assert 300.0 < mixed.temperature < 320.0
+    assert mixed.entropy.value > 0.0
+
+
+def test_a_bypass_joins_the_outlet() -> None:
+    through, joined = predict(reformer(bypass="20 %")).stages
+    whole = only(REFORMER)
+    np.testing.assert_allclose(through.amounts, 0.8 * whole.amounts, rtol=1e-10)
+    assert amount(joined, "CH4(g)") == pytest.approx(amount(through, "CH4(g)") + 0.2, rel=1e-12)
+    assert joined.temperature < through.temperature
+    assert joined.heat == 0.0
+
+
+@pytest.mark.parametrize(
+    ("changes", "sentence"),
+    [
+        (
+            {"heat": "0 kJ"},
+            "stage.0.heat: found heat beside temperature; accepted is one of temperature, heat "
+            "and entropy.",
+        ),
+        (
+            {"pressure": None},
+            "stage.0.pressure: found nothing; accepted is one of pressure, pressure_drop and "
+            "volume.",
+        ),
+        (
+            {"temperature": None, "heat": "-9000 kJ"},
+            "stage.0.heat: found a heat of -9000 kJ (per second in a flow), which no temperature "
+            "between 100 K and 6000 K meets; accepted is another heat, or a temperature in its "
+            "place.",
+        ),
+        (
+            {"temperature": None, "heat": "5 kW"},
+            'stage.0.heat: found a heat in "kW", while the feeds are in "mol"; accepted is a '
+            "quantity, such as kJ.",
+        ),
+        (
+            {"approach": [{"reaction": "CH4 + H2O = CO + 3 H2", "approach": "9 K"}] * 2},
+            "stage.0.approach: found reactions that depend on each other: "
+            '"CH4 + H2O = CO + 3 H2", "CH4 + H2O = CO + 3 H2"; accepted are independent '
+            "reactions.",
+        ),
+        (
+            {"approach": [{"reaction": "CO + H2O = CO2 + H2", "approach": "9 K"}]},
+            'stage.0.approach: found no key for "CO + H2O = CO2 + H2", in which H2O(g) and '
+            "CO2(g) are equally large; accepted is a key, the record that the approach holds "
+            "back.",
+        ),
+        (
+            {"conversion": {"CO": 0.5}},
+            'stage.0.conversion: found "CO(g)", which does not enter the stage; accepted is a '
+            "record that does: CH4(g), H2O(g), N2(g).",
+        ),
+        (
+            {"conversion": {"CH4": "180 %"}},
+            'stage.0.conversion.CH4: found "180 %", which is not between 0 and 1; accepted is a '
+            'share from 0 to 1, such as 0.8 or "80 %".',
+        ),
+        (
+            {"feeds": ["oil"]},
+            'stage.0.feeds: found "oil", which is no stream; accepted is each stream once: gas, '
+            "steam.",
+        ),
+        (
+            {"pressure": None, "pressure_drop": "40 bar"},
+            "stage.0.pressure_drop: found a drop of 40 bar from 29 bar; accepted is a drop that "
+            "leaves a pressure above zero.",
+        ),
+    ],
+)  # fmt: skip
+def test_faults_of_stages_read_as_one_sentence(changes: dict[str, Any], sentence: str) -> None:
+    tables = reformer(**changes)
+    tables["stage"][0] = {k: v for k, v in tables["stage"][0].items() if v is not None}
+    with pytest.raises(InputError) as caught:
+        predict(tables)
+    assert str(caught.value) == sentence
