@@ -138,18 +138,35 @@ class Outlet:
     title : the case's title
     unit : the user's unit of amounts, in which reports are written
     is_flow : whether amounts are flows (mol/s, W) or quantities (mol, J)
+    conversion : share of each substance of the case's streams that the last outlet holds no more
     stages : one outlet a stage
     """
 
     title: str
     unit: str
     is_flow: bool
+    conversion: Mapping[str, float]
     stages: tuple[StageOutlet, ...]
 
     @property
     def final(self) -> StageOutlet:
         """The outlet of the last stage."""
         return self.stages[-1]
+
+    @property
+    def heat(self) -> float:
+        """Heat added over all stages, J or W."""
+        return sum(stage.heat for stage in self.stages)
+
+    @property
+    def entropy_generation(self) -> float:
+        """Entropy generated over all stages, J/K or W/K; NaN where one has no figure."""
+        return sum(stage.entropy.value for stage in self.stages)
+
+    @property
+    def lost_work(self) -> float:
+        """Work lost over all stages, J or W; NaN where one has no figure."""
+        return sum(stage.entropy.lost_work for stage in self.stages)
 
     @property
     def certified(self) -> bool:

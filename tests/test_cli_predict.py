@@ -52,7 +52,7 @@ def document(case: Path) -> dict:
 
 def test_json_has_the_promised_keys(case: Path) -> None:
     found = document(case)
-    assert set(found) == {"title", "status", "stages", "cautions"}
+    assert set(found) == {"title", "status", "stages", "total", "cautions"}
     assert found["status"] == "certified"
     (stage,) = found["stages"]
     assert set(stage) == {

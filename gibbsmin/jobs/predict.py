@@ -5,7 +5,8 @@ from __future__ import annotations
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.stage import leaving_stream, predict_stage
+from gibbsmin.jobs.stage import conversion, leaving_stream, predict_stage
+from gibbsmin.reactor.inlet import inlet_of
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.results import Outlet, StageOutlet
 from gibbsmin.thermo.library import load_library
@@ -38,10 +39,13 @@ def predict(case: Case) -> Outlet:
         if not outlets[-1].certified:
             break
         passing = [leaving_stream(outlets[-1], case.feeds[0])]
+    last = outlets[-1]
+    inlet = inlet_of(case.feeds, library)
     return Outlet(
         title=case.title,
         unit=case.feeds[0].unit,
         is_flow=case.feeds[0].is_flow,
+        conversion=conversion(inlet, last.records, last.amounts),
         stages=tuple(outlets),
     )
 

@@ -28,6 +28,9 @@ from gibbsmin.reactor.specification import Specification, solve
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.results import StageOutlet, StateCertificate
 from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.species import Species
+
+_TRACE = 1e-6
 
 
 def predict_stage(
@@ -114,7 +117,7 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
         removed=removed,
         certificate=_certificate(found),
         element_potentials=_element_potentials(model, state),
-        conversion=_conversion(inlet, model, state.amounts),
+        conversion=conversion(inlet, model.records, state.amounts),
         heat=heat,
         shaft_work=work,
         entropy=entropy,
@@ -183,19 +186,22 @@ def _element_potentials(model: StageModel, state: SolvedState) -> Mapping[str, f
     return dict(zip(model.balance.elements, potentials.tolist(), strict=True))
 
 
-def _conversion(inlet: Inlet, model: StageModel, outlet: FloatArray) -> Mapping[str, float]:
-    """Share of each substance of the feed that is used up; its forms count as one substance."""
+def conversion(inlet: Inlet, records: Sequence[Species], outlet: FloatArray) -> Mapping[str, float]:
+    """Share of each substance of the feed that is used up; its forms count as one substance.
+
+    Traces below a millionth of the feed, such as a former stage's radicals, are left away.
+    """
     entering: dict[str, float] = {}
     leaving: dict[str, float] = {}
     for record, amount in zip(inlet.records, inlet.amounts.tolist(), strict=True):
         entering[record.formula] = entering.get(record.formula, 0.0) + amount
-    for record, amount in zip(model.records, outlet.tolist(), strict=True):
+    for record, amount in zip(records, outlet.tolist(), strict=True):
         leaving[record.formula] = leaving.get(record.formula, 0.0) + amount
     missing = float("nan") if np.isnan(outlet).any() else 0.0
     return {
         record.name: 1.0 - leaving.get(record.formula, missing) / entering[record.formula]
         for record in inlet.records
-        if entering[record.formula] > 0.0
+        if entering[record.formula] > _TRACE * inlet.amounts.sum()
     }
 
 

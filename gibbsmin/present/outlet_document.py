@@ -23,10 +23,21 @@ def outlet_document(outlet: Outlet) -> dict[str, Any]:
         "title": outlet.title,
         "status": "certified" if outlet.certified else "not certified",
         "stages": [_stage(outlet, stage) for stage in outlet.stages],
+        "total": _total(outlet),
         "cautions": list(CAUTIONS),
     }
     plain: dict[str, Any] = _without_nan(document)
     return plain
+
+
+def _total(outlet: Outlet) -> dict[str, Any]:
+    energy = heat_unit(outlet.is_flow)
+    return {
+        "conversion": dict(outlet.conversion),
+        "heat": {"value": outlet.heat / 1e3, "unit": energy},
+        "entropy_generation": {"value": outlet.entropy_generation / 1e3, "unit": f"{energy}/K"},
+        "lost_work": {"value": outlet.lost_work / 1e3, "unit": energy},
+    }
 
 
 def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:

@@ -39,8 +39,27 @@ def outlet_view(outlet: Outlet) -> RenderableType:
         parts += sentences("Warnings", stage.warnings)
         parts += sentences("Notes", stage.notes)
         parts += sentences("Hazards of the outlet", stage.hazards)
+    if len(outlet.stages) > 1:
+        parts += [heading("All stages together"), _totals(outlet)]
     parts += sentences("Cautions", CAUTIONS)
     return Group(*parts)
+
+
+def _totals(outlet: Outlet) -> RenderableType:
+    """A line a stage, so that it shows where heat goes and work is lost; then the sums."""
+    rows = [
+        (
+            stage.name,
+            f"{stage.temperature - 273.15:.1f}",
+            heat(stage.heat, outlet.is_flow),
+            heat(stage.entropy.lost_work, outlet.is_flow),
+        )
+        for stage in outlet.stages
+    ]
+    rows.append(
+        ("total", "", heat(outlet.heat, outlet.is_flow), heat(outlet.lost_work, outlet.is_flow))
+    )
+    return table(("stage", "outlet, °C", "heat added", "lost work"), rows, words=("stage",))
 
 
 def _conditions(stage: StageOutlet) -> Text:
@@ -80,6 +99,8 @@ def _composition(outlet: Outlet, stage: StageOutlet) -> RenderableType:
 
 def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
     shares = {name: round(100 * value, 2) for name, value in stage.conversion.items()}
+    if not any(shares.values()):
+        shares = {}
     converted = [f"{name} {abs(share):.2f} %" for name, share in shares.items() if share >= 0]
     formed = [f"{name} +{-share:.2f} %" for name, share in shares.items() if share < 0]
     if converted:

@@ -2,10 +2,13 @@
 
 Where more than the elements is held, the outlet's species are not at equilibrium with each other,
 and a record has no single activity: methane may deposit carbon that carbon monoxide would take
-up.  A substance that is present in another form is judged by that form alone.  For others each
-route j = Σ x_i i from up to three of the main species gives its own
+up.  Each route j = Σ x_i i from up to three of the main species gives its own
 
     ln a_j = Σ x_i μ_i/RT − g̃_j,   μ_i/RT = g̃_i + ln y_i  of the actual partial pressures.
+
+A substance that is present in another form is judged by that form alone, an element by every
+route, and a compound by those that only combine (NH₃ + HCl, SO₃ + H₂O): what a held gas could
+form by trading oxygen or hydrogen around is held like the gas itself.
 """
 
 from __future__ import annotations
@@ -63,6 +66,7 @@ def routes_to(
     wanted = element_counts(targets, rows)
     columns = element_counts(present, rows)
     substances = {present[i].formula for i in main}
+    elementary = np.array([len(target.elements) == 1 for target in targets])
     itself = np.array([target.formula in substances for target in targets])
     found: list[list[Route]] = [[] for _ in targets]
     for size in range(1, _LONGEST + 1):
@@ -74,6 +78,7 @@ def routes_to(
             misses = np.abs(columns[:, chosen] @ shares - wanted).max(axis=0)
             fits = (misses < _TOLERANCE) & (np.abs(shares) > _TOLERANCE).all(axis=0)
             fits &= ~itself if size > 1 else True
+            fits &= elementary | (shares > 0.0).all(axis=0)
             values = shares.T @ potentials[chosen] - target_energies
             for j in np.flatnonzero(fits).tolist():
                 species = [present[i] for i in chosen]
