@@ -25,6 +25,9 @@ HIGHEST_TEMPERATURE = 6000.0
 
 _LOWEST_PRESSURE, _HIGHEST_PRESSURE = 1e-4, 1e10
 _RELATIVE_RESOLUTION = 4 * np.finfo(float).eps
+_SIDE = 1e-10
+"""Share of T by which the two sides of a jump are solved apart from it, where forms tie."""
+
 _JUMP = 1e-9
 """A residual of this share that is left at full resolution of T is a plateau."""
 
@@ -112,7 +115,7 @@ def at_volume(
 
     start = np.log(np.maximum(feed.sum(axis=1), 1e-300) * GAS_CONSTANT * temperature / volume)
     limits = np.log(_LOWEST_PRESSURE), np.log(_HIGHEST_PRESSURE)
-    log_P, _, _ = _root(residual, start, 1.0, limits)
+    log_P = _root(residual, start, 1.0, limits)
     return solved(np.exp(log_P), np.arange(log_P.size))
 
 
@@ -157,13 +160,14 @@ def _between(
         return content(solved(T, index), index) - wanted[index]
 
     everything = np.arange(wanted.size)
-    T, low, high = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
+    T = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
     scale = np.abs(residual(LOWEST_TEMPERATURE + 0.0 * T, everything))
     jumps = np.abs(residual(T, everything)) > _JUMP * scale
-    found = solved(np.where(jumps, low, T), everything)
+    found = solved(np.where(jumps, T * (1.0 - _SIDE), T), everything)
     if not jumps.any():
         return found
-    upper = solved(np.where(jumps, high, T), everything)
+    beyond = solved(np.where(jumps, T * (1.0 + _SIDE), T), everything)
+    upper = replace(beyond, temperature=found.temperature)
     below, above = content(found, everything), content(upper, everything)
     with np.errstate(invalid="ignore", divide="ignore"):
         share = np.where(jumps, (wanted - below) / (above - below), np.nan)
@@ -174,8 +178,8 @@ def _between(
 
 def _root(
     residual: Residual, start: FloatArray, step: float, limits: tuple[float, float]
-) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Root of a rising function near ``start`` and the ends of its last bracket; NaN for none."""
+) -> FloatArray:
+    """Root of a rising function near ``start``, or the place of its jump; NaN for none."""
     # scipy.optimize takes a while to load, which a stage of given temperature need not wait for.
     from scipy.optimize.elementwise import bracket_root, find_root
 
@@ -192,5 +196,4 @@ def _root(
         args=(index,),
         tolerances={"xatol": 0.0, "xrtol": _RELATIVE_RESOLUTION, "fatol": 0.0, "frtol": 0.0},
     )
-    low, high = root.bracket
-    return np.where(bracket.success, root.x, np.nan), low, high
+    return np.where(bracket.success, root.x, np.nan)
