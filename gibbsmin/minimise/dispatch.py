@@ -1,4 +1,4 @@
-"""The one entry: a batch goes through face reduction, a method and the certificate."""
+"""The one entry: the compiled method and its recovery steps, then cones with polish."""
 
 from __future__ import annotations
 
@@ -9,6 +9,7 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.certificate import Certificate, certify
 from gibbsmin.minimise.closure import close_balance
+from gibbsmin.minimise.compiled import answer_batch
 from gibbsmin.minimise.conic import ConicProgramme
 from gibbsmin.minimise.faces import Face, find_face
 from gibbsmin.minimise.newton import Reduced
@@ -27,19 +28,24 @@ def minimise(programme: Programme, settings: Settings = _DEFAULT) -> Solution:
     A state that fails is flagged in ``status`` and carries NaN; the others are untouched.
     """
     solution = _unanswered(programme)
+    _flag_invalid(programme, solution)
+    if settings.compiled:
+        answer_batch(programme, settings, solution)
     method = ConicMethod(programme, settings)
-    values = np.hstack([programme.supplies, programme.energies])
-    finite = np.asarray(np.isfinite(values).all(axis=1))
-    for state in range(programme.states):
-        if not finite[state]:
-            solution.status[state] = Status.INVALID
-            continue
+    for state in np.flatnonzero(solution.status == Status.UNCERTIFIED).tolist():
         face = find_face(programme.matrix, programme.supplies[state])
         if face is None:
             solution.status[state] = Status.INFEASIBLE
             continue
         method.answer(solution, state, face)
     return solution
+
+
+def _flag_invalid(programme: Programme, solution: Solution) -> None:
+    """Mark states whose values are not all finite."""
+    finite = np.isfinite(programme.supplies).all(axis=1)
+    finite &= np.isfinite(programme.energies).all(axis=1)
+    solution.status[~finite] = Status.INVALID
 
 
 class ConicMethod:

@@ -21,19 +21,38 @@ class Settings:
     stationarity_tolerance
         Largest difference between a present species' potential and that of its elements, in RT
         (default 1e-10): the relative error of each mole fraction.
+    compiled
+        Whether the compiled method goes first (default), the conic one taking what it leaves;
+        otherwise the conic method answers every state.
+    warm_start
+        Whether the compiled method starts a state from the one before it in the batch where
+        that is near (default).  The answer is the same to 1e-10.
+    threads
+        Threads of the compiled method; 0 (default) for as many as there are processors.
 
     Raises
     ------
     InputError
-        A tolerance is not a positive finite number.
+        A tolerance is not a positive finite number, or the threads are no whole number ≥ 0.
     """
 
     gap_tolerance: float = 1e-10
     balance_tolerance: float = 1e-12
     stationarity_tolerance: float = 1e-10
+    compiled: bool = True
+    warm_start: bool = True
+    threads: int = 0
 
     def __post_init__(self) -> None:
+        if type(self.threads) is not int or self.threads < 0:
+            raise InputError(
+                f"found {self.threads!r}",
+                "accepted is a whole number, 0 or more",
+                key="settings.threads",
+            )
         for field in fields(self):
+            if not field.name.endswith("_tolerance"):
+                continue
             value = getattr(self, field.name)
             if not (isinstance(value, int | float) and isfinite(value) and value > 0):
                 raise InputError(

@@ -31,6 +31,14 @@ class Method(IntEnum):
 
     NONE = 0, "No method answered."
     CONIC = 1, "An interior-point solution of the conic programme, polished by Newton's method."
+    COMPILED = (
+        2,
+        "The compiled Newton method on log balances, from a linear programme or neighbours.",
+    )
+    RECOVERY = (
+        3,
+        "The compiled method by one of its recovery steps: another start, other exchanges.",
+    )
 
     sentence: str
 

@@ -1,0 +1,87 @@
+"""The kernel over a batch: blocks of states on all cores."""
+
+from __future__ import annotations
+
+import os
+from concurrent.futures import ThreadPoolExecutor
+
+import numpy as np
+
+from gibbsmin.minimise.kernel.form import forms
+from gibbsmin.minimise.kernel.storage import Answers, network_of, scratch_for
+from gibbsmin.minimise.programme import Programme
+from gibbsmin.minimise.settings import Settings
+from gibbsmin.minimise.solution import Solution
+from gibbsmin.minimise.status import Method, Status
+
+_BLOCK = 4096
+
+
+def answer_batch(programme: Programme, settings: Settings, solution: Solution) -> None:
+    """Write what the kernel can prove into the solution; leave the rest unanswered.
+
+    A block of consecutive states is one chain of warm starts and one worker's task; the kernel
+    releases the interpreter lock, so that threads share the cores.
+    """
+    if programme.states == 0:
+        return
+    network = network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
+    solve = forms.choose(network, programme.states)
+    tolerances = np.array(
+        [settings.gap_tolerance, settings.balance_tolerance, settings.stationarity_tolerance]
+    )
+    figures = np.full((programme.states, 3), np.nan)
+    answers = Answers(
+        solution.amounts,
+        solution.multipliers,
+        solution.certificate.driving_forces,
+        figures,
+        solution.status,
+        solution.method,
+    )
+    workers = min(settings.threads or os.cpu_count() or 1, programme.states)
+    block = min(_BLOCK, -(-programme.states // workers))
+
+    def run(first: int) -> None:
+        part = slice(first, first + block)
+        solve(
+            network,
+            scratch_for(network),
+            programme.energies[part],
+            programme.supplies[part],
+            tolerances,
+            settings.warm_start,
+            Answers._make(array[part] for array in answers),
+        )
+
+    firsts = range(0, programme.states, block)
+    if len(firsts) == 1:
+        run(0)
+    else:
+        with ThreadPoolExecutor(workers) as pool:
+            list(pool.map(run, firsts))
+    _settle(programme, solution, figures)
+
+
+def _settle(programme: Programme, solution: Solution, figures: np.ndarray) -> None:
+    """Keep the proofs of certified states; leave the others to the next method."""
+    certified = solution.status == Status.CERTIFIED
+    figures[~certified] = np.nan
+    certificate = solution.certificate
+    certificate.gap[:] = figures[:, 0]
+    certificate.balance[:] = figures[:, 1]
+    certificate.stationarity[:] = figures[:, 2]
+    solution.method[~certified] = Method.NONE
+    # Whether supplies are infeasible is for the exact search for the face to say.
+    solution.status[solution.status == Status.INFEASIBLE] = Status.UNCERTIFIED
+    _unbound(programme, solution)
+
+
+def _unbound(programme: Programme, solution: Solution) -> None:
+    """NaN for the multiplier of each row that holds no species of the face."""
+    off = np.flatnonzero(np.isneginf(solution.certificate.driving_forces).any(axis=1))
+    if off.size == 0:
+        return
+    used = (programme.matrix != 0).astype(float)
+    face = np.isfinite(solution.certificate.driving_forces[off]).astype(float)
+    solution.multipliers[off] = np.where(face @ used.T > 0, solution.multipliers[off], np.nan)

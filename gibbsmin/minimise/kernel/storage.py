@@ -1,0 +1,169 @@
+"""What the kernel's functions share: the fixed part of a batch, and a worker's scratch memory.
+
+Plain named tuples of arrays, because both the interpreter and the compiler take them.  They are
+small on purpose: each function receives the few arrays it works on.  The kernel orders species
+with the gases first; ``order`` leads back to the programme's columns.
+"""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+import numpy as np
+import numpy.typing as npt
+
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
+
+ZERO = 1e-9
+"""Tableau entries below this are no pivots."""
+
+FORBIDDEN = 1e30
+"""g̃ of a species that the supplies force to zero: its fraction underflows to exactly 0."""
+
+
+class Network(NamedTuple):
+    """The part of a programme that all its states share.
+
+    ``matrix`` is A (rows, species) with the gases first, ``gases`` their number.  ``first``,
+    ``row``, ``entry`` and ``log_entry`` list the nonzero entries of A column by column (a, and
+    ln|a|).  ``sign`` of a row is +1 or −1 when all its entries have that sign, else 0.
+    """
+
+    matrix: FloatArray
+    gases: int
+    order: IntArray
+    direction: FloatArray
+    atoms: FloatArray
+    lift: FloatArray
+    sign: IntArray
+    first: IntArray
+    row: IntArray
+    entry: FloatArray
+    log_entry: FloatArray
+
+
+class State(NamedTuple):
+    """One state: g̃, b, and whether the supplies allow each species to be positive."""
+
+    energies: FloatArray
+    supplies: FloatArray
+    face: BoolArray
+
+
+class Tableau(NamedTuple):
+    """A basis B: ``entries`` ν = B⁻¹[A | I], ``supply`` B⁻¹b, ``reduced`` g̃ − νᵀg̃_B.
+
+    ``basis[j]`` is the member of row j: a species or, from ``species`` on, the artificial variable
+    of a row.  ``rank[0]`` rows bind; those beyond are dependent or forced to zero.
+    """
+
+    entries: FloatArray
+    basis: IntArray
+    supply: FloatArray
+    reduced: FloatArray
+    rank: IntArray
+
+
+class Point(NamedTuple):
+    """Where the iteration stands.
+
+    ``log_fraction`` is u_j = ln y of the gas members, 0 for condensed ones; ``exponent`` is ln y
+    of every gas; ``amounts`` is n; ``condensed`` the amount of each row's condensed member.
+    """
+
+    log_fraction: FloatArray
+    exponent: FloatArray
+    amounts: FloatArray
+    condensed: FloatArray
+
+
+class Equations(NamedTuple):
+    """The log balances of the rows listed in ``unknown`` and their linearisation."""
+
+    unknown: IntArray
+    gain: FloatArray
+    loss: FloatArray
+    weight: FloatArray
+    jacobian: FloatArray
+    step: FloatArray
+
+
+class Proof(NamedTuple):
+    """λ, a·λ − g̃, and for each row b − A n and |b| + |A| n."""
+
+    multipliers: FloatArray
+    forces: FloatArray
+    residual: FloatArray
+    size: FloatArray
+
+
+class Scratch(NamedTuple):
+    """One worker's memory, reused from state to state; ``log_totals`` are the last three ln N."""
+
+    state: State
+    tableau: Tableau
+    point: Point
+    equations: Equations
+    proof: Proof
+    log_totals: FloatArray
+
+
+class Answers(NamedTuple):
+    """Where a block's answers go, state by state; ``figures`` are gap, balance, stationarity."""
+
+    amounts: FloatArray
+    multipliers: FloatArray
+    forces: FloatArray
+    figures: FloatArray
+    status: npt.NDArray[np.int8]
+    method: npt.NDArray[np.int8]
+
+
+def network_of(
+    matrix: FloatArray, gas: BoolArray, direction: FloatArray, atoms: FloatArray
+) -> Network:
+    """Order the species with the gases first and list the nonzero entries of each column."""
+    order = np.argsort(~gas, kind="stable").astype(np.int64)
+    A = np.ascontiguousarray(matrix[:, order])
+    columns, rows = np.nonzero(A.T)
+    entry = A[rows, columns]
+    sign = np.where((A >= 0).all(axis=1), 1, np.where((A <= 0).all(axis=1), -1, 0))
+    return Network(
+        matrix=A,
+        gases=int(gas.sum()),
+        order=order,
+        direction=direction,
+        atoms=np.ascontiguousarray(atoms[order]),
+        lift=direction @ A,
+        sign=sign.astype(np.int64),
+        first=np.searchsorted(columns, np.arange(A.shape[1] + 1)).astype(np.int64),
+        row=rows.astype(np.int64),
+        entry=entry,
+        log_entry=np.log(np.abs(entry)),
+    )
+
+
+def scratch_for(network: Network) -> Scratch:
+    """Memory for one worker, of order rows × (species + rows)."""
+    rows, species = network.matrix.shape
+    return Scratch(
+        State(np.zeros(species), np.zeros(rows), np.ones(species, dtype=np.bool_)),
+        Tableau(
+            entries=np.zeros((rows, species + rows)),
+            basis=np.zeros(rows, dtype=np.int64),
+            supply=np.zeros(rows),
+            reduced=np.zeros(species),
+            rank=np.zeros(1, dtype=np.int64),
+        ),
+        Point(np.zeros(rows), np.zeros(species), np.zeros(species), np.zeros(rows)),
+        Equations(
+            unknown=np.zeros(rows, dtype=np.int64),
+            gain=np.zeros(rows),
+            loss=np.zeros(rows),
+            weight=np.zeros(species),
+            jacobian=np.zeros((rows + 1, rows + 1)),
+            step=np.zeros(rows + 1),
+        ),
+        Proof(np.zeros(rows), np.zeros(species), np.zeros(rows), np.zeros(rows)),
+        log_totals=np.zeros(3),
+    )
