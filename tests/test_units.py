@@ -3,6 +3,7 @@
 import contextlib
 import csv
 import math
+from collections.abc import Callable
 from importlib.resources import files
 from typing import Any
 
@@ -19,9 +20,12 @@ from gibbsmin.units import (
     read_amount,
     read_amount_unit,
     read_heat,
+    read_molar_energy,
     read_pressure,
+    read_share,
     read_temperature,
     read_temperature_difference,
+    read_volume,
     to_unit,
 )
 from gibbsmin.units.vocabulary import UnclearUnitError, find_unit
@@ -196,7 +200,7 @@ def test_heats_and_temperature_differences() -> None:
 
 
 @pytest.mark.parametrize(
-    ("read", "given", "sentence"),
+    ("read", "value", "sentence"),
     [
         (read_temperature, "850 bar", f'found "850 bar", which is a pressure; {TEMPERATURE}'),
         (read_temperature, 850, f"found 850, a number without a unit; {TEMPERATURE}"),
@@ -287,9 +291,9 @@ def test_heats_and_temperature_differences() -> None:
         ),
     ],
 )
-def test_refusals_read_as_one_sentence(read: Any, given: object, sentence: str) -> None:
+def test_refusals_read_as_one_sentence(read: Any, value: object, sentence: str) -> None:
     with pytest.raises(UnitError) as caught:
-        read(given)
+        read(value)
     assert str(caught.value) == sentence
 
 
@@ -316,3 +320,59 @@ def test_any_text_is_read_or_refused(text: str) -> None:
             value = read(text)
             assert math.isfinite(value)
             assert value > 0.0
+
+
+@pytest.mark.parametrize(
+    ("given", "expected"),
+    [("2 m3", 2.0), ("500 L", 0.5), ("1 ft3", 0.028316846592)],
+)
+def test_volumes(given: str, expected: float) -> None:
+    assert read_volume(given) == pytest.approx(expected, rel=1e-12)
+
+
+@pytest.mark.parametrize(
+    ("given", "expected"),
+    [(0.8, 0.8), (1, 1.0), ("80 %", 0.8), ("80%", 0.8), ("0.5", 0.5), ("250 ppm", 2.5e-4)],
+)
+def test_shares(given: object, expected: float) -> None:
+    assert read_share(given) == pytest.approx(expected, rel=1e-15)
+
+
+@pytest.mark.parametrize(
+    ("given", "expected"),
+    [("5 kJ/mol", 5e3), ("-1 kcal/mol", -4184.0), ("7 MJ/kmol", 7e3)],
+)
+def test_molar_energies(given: str, expected: float) -> None:
+    assert read_molar_energy(given) == pytest.approx(expected, rel=1e-12)
+
+
+SHARE = 'accepted is a share from 0 to 1, such as 0.8 or "80 %".'
+MOLAR_ENERGY = 'accepted is an energy of one mole such as "5 kJ/mol".'
+VOLUME = 'accepted is a volume such as "2 m3" or "500 L".'
+
+
+@pytest.mark.parametrize(
+    ("read", "value", "sentence"),
+    [
+        (read_share, 1.2, f"found 1.2, which is not between 0 and 1; {SHARE}"),
+        (read_share, "-3 %", f'found "-3 %", which is not between 0 and 1; {SHARE}'),
+        (read_share, "half", f'found "half", which is no share; {SHARE}'),
+        (read_share, True, f"found true, which is no share; {SHARE}"),
+        (read_share, float("nan"), f"found nan, which is not between 0 and 1; {SHARE}"),
+        (
+            read_molar_energy,
+            "5 kJ",
+            f'found "5 kJ", which is no energy of one mole; {MOLAR_ENERGY}',
+        ),
+        (read_molar_energy, 5, f"found 5, which is no energy of one mole; {MOLAR_ENERGY}"),
+        (read_molar_energy, "5 bar/mol", f'found "5 bar/mol"; {MOLAR_ENERGY}'),
+        (read_volume, "0 m3", f'found "0 m3", which is not above zero; {VOLUME}'),
+        (read_volume, "2 Nm3", f'found "2 Nm3", which is a normal volume; {VOLUME}'),
+    ],
+)
+def test_what_is_no_volume_share_or_molar_energy(
+    read: Callable[[object], float], value: object, sentence: str
+) -> None:
+    with pytest.raises(UnitError) as caught:
+        read(value)
+    assert str(caught.value) == sentence
