@@ -55,6 +55,13 @@ _PCL5_REMARK: Final = (
     "28 times a measured one; the NBS value is used"
 )
 
+_CORRECTED: Final = {
+    "HgCl2(l)": (-216_926.0, -213.222, 550),
+    "ZrF2(l)": (-930_951.0, -936.951, 1175),
+}
+"""Liquids whose table prints an enthalpy (kJ/mol, second) that contradicts its own composite with
+the crystal, which melts at the temperature that stands last (K); the first value agrees."""
+
 
 @dataclass(frozen=True, slots=True)
 class Enthalpy:
@@ -90,6 +97,10 @@ def main_enthalpy(name: str, main: MainTable, moved: Mapping[str, float]) -> Ent
     """
     if name == "PCl5(g)":
         return Enthalpy(_PCL5_ENTHALPY, None, NBS, _PCL5_REMARK)
+    if name in _CORRECTED:
+        value, printed, T_melt = _CORRECTED[name]
+        remark = f"the table prints {printed} kJ/mol, with which it would not melt at {T_melt} K"
+        return Enthalpy(value, None, JANAF, remark)
     gases = _MOVED_WITH.get(name)
     if gases is None:
         return Enthalpy(main.dfH298, None, JANAF)

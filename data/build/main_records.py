@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Iterator
+from collections.abc import Container, Iterator
 from dataclasses import dataclass
 from functools import cache
 from typing import Final
@@ -60,10 +60,23 @@ _COMPOSITES: Final = frozenset(
     ["Br-039", "H-075", "H-092", "H-094", "H-095", "H-096", "H-097", "Hg-002"]
 )
 
+_METASTABLE: Final = (
+    "metastable; the table's extrapolation would make it the stable form, against the source's "
+    "own sequence V, IV, I, liquid"
+)
 _REMARKS: Final = {
     "FeO(cr)": "stoichiometric, off measured gas ratios by a factor of 2 to 3; wustite is Fe0.947O",
+    "Na2SO4(delta)": _METASTABLE,
+    "Na2SO4(iii)": _METASTABLE,
 }
-_SUPERSEDED: Final = frozenset({"FeO(cr)"})
+_SUPERSEDED: Final = frozenset({"FeO(cr)", "Na2SO4(delta)", "Na2SO4(iii)"})
+_CORRECTED_ENTROPIES: Final = {
+    "TiCl4(l)": (
+        252.377,
+        "the table prints 221.925 J/mol/K; this value follows from the crystal's entropy and the "
+        "enthalpy of melting, 9.966 kJ/mol at 249.046 K",
+    ),
+}
 _COMPOSITE_REMARK: Final = "crystal below its melting point"
 
 
@@ -111,8 +124,8 @@ def _state(table: MainTable, several_forms: bool) -> str:
     return table.state
 
 
-def main_records() -> Iterator[BuildRecord]:
-    """Records of the main tables, in the order of their keys."""
+def main_records(names: Container[str] | None = None) -> Iterator[BuildRecord]:
+    """Records of the main tables in the order of their keys, all or those of some names."""
     active = {
         identity.table.key: enthalpy
         for identity in identities()
@@ -124,6 +137,8 @@ def main_records() -> Iterator[BuildRecord]:
         if identity.state == "g" and identity.table.key in active
     }
     for identity in identities():
+        if names is not None and identity.name not in names:
+            continue
         table = identity.table
         enthalpy = active.get(table.key) or main_enthalpy(identity.name, table, moved)
         yield _record(identity, enthalpy)
@@ -132,11 +147,13 @@ def main_records() -> Iterator[BuildRecord]:
 def _record(identity: Identity, enthalpy: Enthalpy) -> BuildRecord:
     table, name = identity.table, identity.name
     pieces, error = fitted(table)
-    u_dfH298, u_S298 = key_uncertainties(name, enthalpy.value, table.S298)
+    S298, entropy_remark = _CORRECTED_ENTROPIES.get(name, (table.S298, ""))
+    u_dfH298, u_S298 = key_uncertainties(name, enthalpy.value, S298)
     remarks = (
         _REMARKS.get(name, ""),
         _COMPOSITE_REMARK if table.key in _COMPOSITES else "",
         enthalpy.remark,
+        entropy_remark,
         table.remark,
     )
     return BuildRecord(
@@ -147,7 +164,7 @@ def _record(identity: Identity, enthalpy: Enthalpy) -> BuildRecord:
         cas=identity.cas,
         dfH298=enthalpy.value,
         u_dfH298=u_dfH298 if enthalpy.uncertainty is None else enthalpy.uncertainty,
-        S298=table.S298,
+        S298=S298,
         u_S298=u_S298,
         pieces=pieces,
         source_enthalpy=enthalpy.source,

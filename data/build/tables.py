@@ -76,6 +76,28 @@ CONSISTENT_TO: Final = {
     "Sr-006": 4500.0,
 }
 
+# Crystals whose tables run on beyond the range in which they are stable, with a heat capacity so
+# steep that, continued, it would make them the stable form again; cut where that range ends, in K.
+STABLE_TO: Final = {
+    "Br-108": 559.0,
+    "C-073": 1174.0,
+    "Ca-003": 1115.0,
+    "Cl-169": 467.0,
+    "Cs-002": 301.55,
+    "Cs-022": 1278.0,
+    "Cs-023": 940.0,
+    "Fe-023": 1463.0,
+    "K-002": 336.35,
+    "K-017": 857.0,
+    "K-022": 1221.0,
+    "Mg-002": 923.0,
+    "Mg-018": 1400.0,
+    "Na-020": 1157.0,
+    "Na-031": 1445.0,
+    "Rb-002": 312.65,
+    "Ti-002": 1166.0,
+}
+
 
 @dataclass(frozen=True, slots=True)
 class MainTable:
@@ -109,6 +131,11 @@ class MainTable:
             return (
                 f"the table's H and S fall behind its Cp above {CONSISTENT_TO[self.key]:.0f} K; "
                 "the range ends there"
+            )
+        if self.key in STABLE_TO:
+            return (
+                "the table runs on beyond the form's stable range, where its Cp, continued, would "
+                "bring it back; the range ends there"
             )
         rows = sorted({T for table, T, _ in FAULTY_CELLS if table == self.key})
         return f"the table's entropy or enthalpy at {rows[0]:.0f} K is left out" if rows else ""
@@ -169,7 +196,7 @@ def read_table(key: str, text: str) -> MainTable:
         labels=tuple(_labels(rows)),
         **columns,
     )
-    return table.between(0.0, CONSISTENT_TO.get(key, np.inf))
+    return table.between(0.0, (CONSISTENT_TO | STABLE_TO).get(key, np.inf))
 
 
 def _number(cell: str) -> float:

@@ -55,6 +55,7 @@ def fit_heat_capacity(
     gibbs_function: npt.ArrayLike | None = None,
     *,
     tolerance: float = 1e-4,
+    heat_capacity_tolerance: float = 1e-3,
     labels: Mapping[float, str] | None = None,
 ) -> tuple[Piece, ...]:
     """Fit heat capacities by as many pieces as the tolerance needs.
@@ -73,6 +74,8 @@ def fit_heat_capacity(
         zero without it.
     tolerance
         Largest |ΔG/RT| to aim at, see :func:`gibbs_errors`.
+    heat_capacity_tolerance
+        Largest relative error in Cp at the rows to aim at; G goes first where the two disagree.
     labels
         Names of the transitions by temperature.
 
@@ -89,14 +92,21 @@ def fit_heat_capacity(
         two rows are given.
     """
     table = Table.read(T, Cp, enthalpy, entropy, gibbs_function)
-    best = found = _solve(table, ())
-    while best.error > tolerance and len(best.joints) < MOST_JOINTS:
-        further = _with_joint(table, best)
+    aim = _Aim(tolerance, heat_capacity_tolerance)
+    best = found = _solve(table, (), aim)
+    while not best.meets(aim) and len(best.joints) < MOST_JOINTS:
+        further = _with_joint(table, best, aim)
         if further is None:
             break
         best = further
-        found = min(found, best, key=lambda solution: solution.error)
+        found = min(found, best, key=lambda solution: solution.rank(aim))
     return _pieces(table, found, labels or {})
+
+
+@dataclass(frozen=True)
+class _Aim:
+    gibbs: float
+    heat_capacity: float
 
 
 @dataclass(frozen=True)
@@ -106,10 +116,18 @@ class _Solution:
     segments: IntArray
     coefficients: FloatArray
     error: float
+    heat_capacity_error: float
     misfit: float
 
+    def meets(self, aim: _Aim) -> bool:
+        return self.error <= aim.gibbs and self.heat_capacity_error <= aim.heat_capacity
 
-def _solve(table: Table, joints: tuple[int, ...]) -> _Solution:
+    def rank(self, aim: _Aim) -> tuple[float, float]:
+        """Smaller is better: G down to its aim, then both together."""
+        return max(self.error, aim.gibbs), self.misfit
+
+
+def _solve(table: Table, joints: tuple[int, ...], aim: _Aim) -> _Solution:
     """Least squares for the coefficients of all pieces, Cp continuous at the joints."""
     limits, segments, counts = _layout(table, joints)
     free = _continuous(limits, segments, counts)
@@ -136,12 +154,15 @@ def _solve(table: Table, joints: tuple[int, ...]) -> _Solution:
     scale = np.sqrt(np.sum(system**2, axis=0))
     y = np.linalg.lstsq(system / scale, right[known], rcond=1e-13)[0] / scale
     x = free @ y
-    errors = errors_of(table, matrices, x)
-    error, misfit = float(np.max(np.abs(errors))), float(np.sum(errors**_NORM))
     coefficients = x.reshape(-1, 5)
     if joints and not _smooth(table, limits, coefficients):
-        error = misfit = np.inf
-    return _Solution(joints, limits, segments, coefficients, error, misfit)
+        return _Solution(joints, limits, segments, coefficients, np.inf, np.inf, np.inf)
+    errors = np.abs(errors_of(table, matrices, x))
+    in_Cp = np.abs(np.nan_to_num(matrices.heat_capacity @ x / table.Cp - 1))
+    misfit = float(np.sum((errors / aim.gibbs) ** _NORM + (in_Cp / aim.heat_capacity) ** _NORM))
+    return _Solution(
+        joints, limits, segments, coefficients, float(errors.max()), float(in_Cp.max()), misfit
+    )
 
 
 def _smooth(table: Table, limits: FloatArray, coefficients: FloatArray) -> bool:
@@ -156,14 +177,14 @@ def _smooth(table: Table, limits: FloatArray, coefficients: FloatArray) -> bool:
     return not np.any(np.abs(Cp - chord) > _LARGEST_BEND * chord)
 
 
-def _with_joint(table: Table, solution: _Solution) -> _Solution | None:
+def _with_joint(table: Table, solution: _Solution, aim: _Aim) -> _Solution | None:
     """The best solution with one joint more, sought on a coarse grid and then beside its best."""
     rows = table.possible_joints(solution.joints)
     if not rows:
         return None
 
     def trial(place: int) -> tuple[float, int, _Solution]:
-        further = _solve(table, tuple(sorted((*solution.joints, rows[place]))))
+        further = _solve(table, tuple(sorted((*solution.joints, rows[place]))), aim)
         return further.misfit, place, further
 
     stride = 1 + len(rows) // _COARSE_TRIALS
