@@ -68,7 +68,8 @@ def _range_warnings(
     used = [(r, state.temperature) for r in _mattering(model.records, state.amounts)]
     for feed in feeds:
         amounts = np.array([feed.amounts.get(r.name, 0.0) for r in model.feed_records])
-        used += [(record, feed.temperature) for record in _mattering(model.feed_records, amounts)]
+        T = float(feed.temperature)
+        used += [(record, T) for record in _mattering(model.feed_records, amounts)]
     for record, temperature in dict.fromkeys(used):
         if not record.T_low <= temperature <= record.T_high:
             yield (

@@ -8,25 +8,20 @@ from dataclasses import replace
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.constants import GAS_CONSTANT
-from gibbsmin.errors import BalanceError
+from gibbsmin.errors import BalanceError, InputError
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.minimise import Method, Status
 from gibbsmin.reactor.audit import SolvedState, audit, element_activities
 from gibbsmin.reactor.chemistry import Chemistry
-from gibbsmin.reactor.conditions import Equilibria
-from gibbsmin.reactor.energy import (
-    EntropyGeneration,
-    entropy_generation,
-    mixture_enthalpy,
-    mixture_entropy,
-)
-from gibbsmin.reactor.inlet import Inlet, inlet_of
-from gibbsmin.reactor.model import StageModel, stage_model
-from gibbsmin.reactor.specification import Specification, solve
+from gibbsmin.reactor.conditions import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, Equilibria
+from gibbsmin.reactor.energy import EnergyBalance
+from gibbsmin.reactor.inlet import Inlet
+from gibbsmin.reactor.model import StageModel
+from gibbsmin.reactor.specification import Specification
+from gibbsmin.reactor.stage import StageStates, solve_stage
 from gibbsmin.reactor.streams import Stream
-from gibbsmin.results import StageOutlet, StateCertificate
+from gibbsmin.results import EntropyGeneration, StageOutlet, StateCertificate
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
@@ -80,17 +75,12 @@ def leaving_stream(outlet: StageOutlet, fed: Stream) -> Stream:
 
 
 def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> StageOutlet:
-    inlet = inlet_of(streams, library)
-    model = stage_model(stage.chemistry, inlet.records, library)
-    found = solve(model, stage.specification, inlet)
+    states = solve_stage(
+        stage.chemistry, stage.specification, stage.boundary_temperature, streams, library
+    )
+    model, found = states.model, states.equilibria
     status = tuple(Status)[found.solution.status[0]]
-    if status is Status.INFEASIBLE:
-        names = ", ".join(record.name for record in inlet.records)
-        raise BalanceError(
-            "found candidates that cannot hold the feed's elements in their proportions",
-            f"accepted is a list that can, for instance one with {names}",
-            key="species.consider",
-        )
+    _require_an_answer(stage, states, status)
     state = SolvedState(
         temperature=float(found.temperature[0]),
         pressure=float(found.pressure[0]),
@@ -98,7 +88,7 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
         multipliers=found.solution.multipliers[0],
     )
     certified = status is Status.CERTIFIED
-    heat, work, entropy = _energy_balance(stage, inlet, model, state)
+    entropy = _entropy_generation(stage, states.energy)
     left_out = stage.chemistry.selection.leave_out
     entries = audit(model, state, library, left_out) if certified else ()
     removed = {
@@ -117,9 +107,9 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
         removed=removed,
         certificate=_certificate(found),
         element_potentials=_element_potentials(model, state),
-        conversion=conversion(inlet, model.records, state.amounts),
-        heat=heat,
-        shaft_work=work,
+        conversion=conversion(states.inlet, model.records, state.amounts),
+        heat=float(states.energy.heat[0]),
+        shaft_work=float(states.energy.shaft_work[0]),
         entropy=entropy,
         activities=element_activities(model, state, library) if certified else (),
         audit=entries,
@@ -129,45 +119,51 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
     )
 
 
-def _share(stream: Stream, share: float) -> Stream:
-    return replace(
-        stream, amounts={name: share * amount for name, amount in stream.amounts.items()}
+def _require_an_answer(stage: StageCase, states: StageStates, status: Status) -> None:
+    """Refuse a single state that has none: no temperature, or candidates that cannot hold it."""
+    specification = stage.specification
+    if np.isnan(states.equilibria.temperature[0]):
+        wanted, key = "the feed's entropy to be kept", "entropy"
+        if not specification.entropy_of_feed:
+            heat = 0.0 if specification.heat is None else float(specification.heat)
+            wanted, key = f"a heat of {heat / 1e3:g} kJ (per second in a flow)", "heat"
+        raise InputError(
+            f"found {wanted}, which no temperature between {LOWEST_TEMPERATURE:g} K and "
+            f"{HIGHEST_TEMPERATURE:g} K meets",
+            f"accepted is another {key}, or a temperature in its place",
+            key=key,
+        )
+    if status is Status.INFEASIBLE:
+        names = ", ".join(record.name for record in states.inlet.records)
+        raise BalanceError(
+            "found candidates that cannot hold the feed's elements in their proportions",
+            f"accepted is a list that can, for instance one with {names}",
+            key="species.consider",
+        )
+
+
+def _entropy_generation(stage: StageCase, energy: EnergyBalance) -> EntropyGeneration:
+    remark = ""
+    if energy.needs_compressor[0]:
+        remark = (
+            "the outlet's pressure is above a feed's: a compressor is needed, "
+            "so no entropy generation is given"
+        )
+    elif energy.impossible[0]:
+        remark = "impossible as specified: the entropy generation is negative"
+    value = float(energy.entropy_generation[0])
+    return EntropyGeneration(
+        value=value,
+        lost_work=stage.surroundings_temperature * value,
+        boundary_temperature=float(energy.boundary_temperature[0]),
+        surroundings_temperature=stage.surroundings_temperature,
+        remark=remark,
     )
 
 
-def _energy_balance(
-    stage: StageCase, inlet: Inlet, model: StageModel, state: SolvedState
-) -> tuple[float, float, EntropyGeneration]:
-    """Heat and shaft work into the stage (J or W), and the entropy they leave unaccounted for.
-
-    A reversible stage takes up its enthalpy change as shaft work, a closed vessel its change of
-    internal energy as heat.
-    """
-    T, P = state.temperature, state.pressure
-    change = float(mixture_enthalpy(model.properties, T, state.amounts)) - inlet.enthalpy
-    heat, work = change, 0.0
-    needs_compressor = bool(inlet.carries_gas and inlet.lowest_pressure < P)
-    if stage.specification.entropy_of_feed:
-        heat, work = 0.0, change
-        needs_compressor = False
-    elif stage.specification.volume is not None:
-        room = float(state.amounts[model.gas].sum()) * GAS_CONSTANT * T
-        heat = change + inlet.enthalpy - room - inlet.internal_energy
-        needs_compressor = stage.specification.volume < inlet.volume
-    if stage.specification.heat is not None:
-        heat = stage.specification.heat
-    boundary = stage.boundary_temperature
-    return (
-        heat,
-        work,
-        entropy_generation(
-            outlet=float(mixture_entropy(model.properties, model.gas, T, P, state.amounts)),
-            inlet=inlet.entropy,
-            heat=heat,
-            boundary_temperature=T if boundary is None else boundary,
-            surroundings_temperature=stage.surroundings_temperature,
-            needs_compressor=needs_compressor,
-        ),
+def _share(stream: Stream, share: float) -> Stream:
+    return replace(
+        stream, amounts={name: share * amount for name, amount in stream.amounts.items()}
     )
 
 
@@ -193,7 +189,7 @@ def conversion(inlet: Inlet, records: Sequence[Species], outlet: FloatArray) -> 
     """
     entering: dict[str, float] = {}
     leaving: dict[str, float] = {}
-    for record, amount in zip(inlet.records, inlet.amounts.tolist(), strict=True):
+    for record, amount in zip(inlet.records, inlet.amounts[0].tolist(), strict=True):
         entering[record.formula] = entering.get(record.formula, 0.0) + amount
     for record, amount in zip(records, outlet.tolist(), strict=True):
         leaving[record.formula] = leaving.get(record.formula, 0.0) + amount
@@ -201,7 +197,7 @@ def conversion(inlet: Inlet, records: Sequence[Species], outlet: FloatArray) -> 
     return {
         record.name: 1.0 - leaving.get(record.formula, missing) / entering[record.formula]
         for record in inlet.records
-        if entering[record.formula] > _TRACE * inlet.amounts.sum()
+        if entering[record.formula] > _TRACE * inlet.amounts[0].sum()
     }
 
 

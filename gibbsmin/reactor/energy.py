@@ -41,51 +41,46 @@ def _x_log_x(x: FloatArray) -> FloatArray:
 
 
 @dataclass(frozen=True)
-class EntropyGeneration:
-    """S_gen = Σ S_out − Σ S_in − Q/T_boundary and the work lost by it.
+class EnergyBalance:
+    """Heat, work and entropy of B states of a stage.
 
-    ``value`` (J/K) and ``lost_work`` (J) are NaN where the outlet's pressure is above that of a
-    feed with gas, since then a compressor is needed whose work is not given.
-    ``remark`` is empty, or says why there is no figure or why it is impossible as specified.
+    Attributes
+    ----------
+    heat, shaft_work : (B,) J or W into the stage
+    entropy_generation : (B,) J/K, S_gen = Σ S_out − Σ S_in − Q/T_boundary; NaN where a compressor
+        is needed, whose work is not given
+    boundary_temperature : (B,) K
+    impossible : (B,) whether the entropy generation is negative beyond rounding, that is beyond
+        1e-9 of the entropies it is the difference of
+    needs_compressor : (B,) whether the outlet's pressure is above that of a feed with gas
     """
 
-    value: float
-    lost_work: float
-    boundary_temperature: float
-    surroundings_temperature: float
-    remark: str
+    heat: FloatArray
+    shaft_work: FloatArray
+    entropy_generation: FloatArray
+    boundary_temperature: FloatArray
+    impossible: BoolArray
+    needs_compressor: BoolArray
 
 
-def entropy_generation(
+def energy_balance(
     *,
-    outlet: float,
-    inlet: float,
-    heat: float,
-    boundary_temperature: float,
-    surroundings_temperature: float,
-    needs_compressor: bool,
-) -> EntropyGeneration:
-    """Judge the entropy balance of a stage; entropies in J/K, heat in J, positive into the stage.
-
-    A negative value beyond rounding (1e-9 of the entropies it is the difference of) is reported
-    as impossible as specified.
-    """
+    heat: FloatArray,
+    shaft_work: FloatArray,
+    entropy_in: FloatArray,
+    entropy_out: FloatArray,
+    boundary_temperature: FloatArray,
+    needs_compressor: BoolArray,
+) -> EnergyBalance:
+    """Close the entropy balance of B states, each (B,)."""
     transferred = heat / boundary_temperature
-    value = outlet - inlet - transferred
-    scale = max(abs(outlet), abs(inlet), abs(transferred))
-    remark = ""
-    if needs_compressor:
-        value = float("nan")
-        remark = (
-            "the outlet's pressure is above a feed's: a compressor is needed, "
-            "so no entropy generation is given"
-        )
-    elif value < -1e-9 * scale:
-        remark = "impossible as specified: the entropy generation is negative"
-    return EntropyGeneration(
-        value=value,
-        lost_work=surroundings_temperature * value,
+    value = entropy_out - entropy_in - transferred
+    scale = np.maximum(np.maximum(np.abs(entropy_out), np.abs(entropy_in)), np.abs(transferred))
+    return EnergyBalance(
+        heat=heat,
+        shaft_work=shaft_work,
+        entropy_generation=np.where(needs_compressor, np.nan, value),
         boundary_temperature=boundary_temperature,
-        surroundings_temperature=surroundings_temperature,
-        remark=remark,
+        impossible=~needs_compressor & (value < -1e-9 * scale),
+        needs_compressor=needs_compressor,
     )

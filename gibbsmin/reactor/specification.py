@@ -6,10 +6,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError
 from gibbsmin.reactor.conditions import (
-    HIGHEST_TEMPERATURE,
-    LOWEST_TEMPERATURE,
     Equilibria,
     at_energy_and_volume,
     at_enthalpy,
@@ -19,6 +18,7 @@ from gibbsmin.reactor.conditions import (
 )
 from gibbsmin.reactor.inlet import Inlet
 from gibbsmin.reactor.model import StageModel
+from gibbsmin.reactor.streams import Values
 
 
 @dataclass(frozen=True)
@@ -35,28 +35,32 @@ class Specification:
     volume : m³ of a closed rigid vessel
     """
 
-    temperature: float | None = None
-    heat: float | None = None
+    temperature: Values | None = None
+    heat: Values | None = None
     entropy_of_feed: bool = False
-    pressure: float | None = None
-    pressure_drop: float | None = None
-    volume: float | None = None
+    pressure: Values | None = None
+    pressure_drop: Values | None = None
+    volume: Values | None = None
 
-    def outlet_pressure(self, inlet: Inlet) -> float | None:
-        """Pa; None in a closed vessel.
+    def outlet_pressure(self, inlet: Inlet) -> FloatArray | None:
+        """Pa, (B,); None in a closed vessel.
 
         Raises
         ------
         InputError
             when the drop leaves no pressure.
         """
+        if self.pressure is not None:
+            return _each(self.pressure, inlet)
         if self.pressure_drop is None:
-            return self.pressure
-        pressure = inlet.lowest_pressure - self.pressure_drop
-        if pressure <= 0.0:
+            return None
+        drop = _each(self.pressure_drop, inlet)
+        pressure = inlet.lowest_pressure - drop
+        if np.any(pressure <= 0.0):
+            state = int(np.argmin(pressure))
             raise InputError(
-                f"found a drop of {self.pressure_drop / 1e5:g} bar from "
-                f"{inlet.lowest_pressure / 1e5:g} bar",
+                f"found a drop of {drop[state] / 1e5:g} bar from "
+                f"{inlet.lowest_pressure[state] / 1e5:g} bar",
                 "accepted is a drop that leaves a pressure above zero",
                 key="pressure_drop",
             )
@@ -64,47 +68,22 @@ class Specification:
 
 
 def solve(model: StageModel, specification: Specification, inlet: Inlet) -> Equilibria:
-    """The one equilibrium (a batch of one) that meets the specification.
-
-    Raises
-    ------
-    InputError
-        when no temperature meets it, or several do.
-    """
-    feed = inlet.amounts[np.newaxis]
-    start = np.array([inlet.temperature])
-    pressure = specification.outlet_pressure(inlet)
-    temperature, heat, volume = (
-        specification.temperature,
-        specification.heat,
-        specification.volume,
-    )
-    if pressure is not None:
-        P = np.array([pressure])
-        if temperature is not None:
-            return at_temperature(model, np.array([temperature]), P, feed)
-        if heat is not None:
-            found = at_enthalpy(model, np.array([inlet.enthalpy + heat]), P, feed, start)
-        else:
-            found = at_entropy(model, np.array([inlet.entropy]), P, feed, start)
-    else:
-        V = np.array([volume])
-        if temperature is not None:
-            return at_volume(model, np.array([temperature]), V, feed)
-        energy = inlet.internal_energy + (heat or 0.0)
-        found = at_energy_and_volume(model, np.array([energy]), V, feed, start)
-    if np.isnan(found.temperature[0]):
-        name = "entropy" if specification.entropy_of_feed else "heat"
-        raise InputError(
-            f"found {_wanted(specification)}, which no temperature between "
-            f"{LOWEST_TEMPERATURE:g} K and {HIGHEST_TEMPERATURE:g} K meets",
-            f"accepted is another {name}, or a temperature in its place",
-            key=name,
-        )
-    return found
-
-
-def _wanted(specification: Specification) -> str:
+    """The equilibria that meet a specification; NaN where no temperature does."""
+    feed, start = inlet.amounts, inlet.temperature
+    P = specification.outlet_pressure(inlet)
+    heat = _each(0.0 if specification.heat is None else specification.heat, inlet)
+    if P is None:
+        volume = _each(specification.volume, inlet)
+        if specification.temperature is not None:
+            return at_volume(model, _each(specification.temperature, inlet), volume, feed)
+        return at_energy_and_volume(model, inlet.internal_energy + heat, volume, feed, start)
+    if specification.temperature is not None:
+        return at_temperature(model, _each(specification.temperature, inlet), P, feed)
     if specification.entropy_of_feed:
-        return "the feed's entropy to be kept"
-    return f"a heat of {(specification.heat or 0.0) / 1e3:g} kJ (per second in a flow)"
+        return at_entropy(model, inlet.entropy, P, feed, start)
+    return at_enthalpy(model, inlet.enthalpy + heat, P, feed, start)
+
+
+def _each(value: Values | None, inlet: Inlet) -> FloatArray:
+    """A value for each state."""
+    return np.broadcast_to(np.asarray(value, dtype=float), inlet.temperature.shape)

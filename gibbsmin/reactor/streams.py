@@ -4,11 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TypeAlias
+
+from gibbsmin.arrays import FloatArray
+
+Values: TypeAlias = float | FloatArray
+"""One value, or one for each of B states."""
 
 
 @dataclass(frozen=True)
 class Stream:
-    """A feed in SI units.
+    """A feed in SI units: of one state, or of a batch where its values are arrays (B,).
 
     Parameters
     ----------
@@ -27,8 +33,8 @@ class Stream:
     """
 
     name: str
-    temperature: float
-    pressure: float
-    amounts: Mapping[str, float]
+    temperature: Values
+    pressure: Values
+    amounts: Mapping[str, Values]
     unit: str
     is_flow: bool

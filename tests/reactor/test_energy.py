@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import fields
+
 import numpy as np
 import pytest
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import GAS_CONSTANT
-from gibbsmin.reactor.energy import entropy_generation, mixture_enthalpy, mixture_entropy
-from gibbsmin.reactor.inlet import inlet_of
+from gibbsmin.reactor.energy import energy_balance, mixture_enthalpy, mixture_entropy
+from gibbsmin.reactor.inlet import Inlet, inlet_of
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.properties import PropertyTable
@@ -44,31 +47,17 @@ def test_many_states_equal_each_alone() -> None:
     np.testing.assert_array_equal(mixture_enthalpy(TABLE, T, amounts), enthalpies)
 
 
-def balance(**changes: float | bool) -> str:
-    given: dict[str, float | bool] = {
-        "outlet": 110.0, "inlet": 100.0, "heat": 300.0, "boundary_temperature": 300.0,
-        "surroundings_temperature": 298.15, "needs_compressor": False,
-    }  # fmt: skip
-    return entropy_generation(**{**given, **changes}).remark  # type: ignore[arg-type]
-
-
-def test_entropy_balance_and_what_it_says() -> None:
-    found = entropy_generation(
-        outlet=110.0,
-        inlet=100.0,
-        heat=300.0,
-        boundary_temperature=300.0,
-        surroundings_temperature=298.15,
-        needs_compressor=False,
+def test_entropy_balance_and_what_is_impossible() -> None:
+    found = energy_balance(
+        heat=np.array([300.0, 300.0, 300.0]),
+        shaft_work=np.zeros(3),
+        entropy_in=np.array([100.0, 100.0, 100.0]),
+        entropy_out=np.array([110.0, 90.0, 110.0]),
+        boundary_temperature=np.full(3, 300.0),
+        needs_compressor=np.array([False, False, True]),
     )
-    assert found.value == pytest.approx(9.0)
-    assert found.lost_work == pytest.approx(9.0 * 298.15)
-    assert balance() == ""
-    assert balance(outlet=90.0) == "impossible as specified: the entropy generation is negative"
-    assert balance(needs_compressor=True) == (
-        "the outlet's pressure is above a feed's: a compressor is needed, so no entropy generation "
-        "is given"
-    )
+    np.testing.assert_allclose(found.entropy_generation, [9.0, -11.0, np.nan])
+    assert found.impossible.tolist() == [False, True, False]
 
 
 def test_an_inlet_sums_its_streams_each_at_its_own_conditions() -> None:
@@ -83,3 +72,20 @@ def test_an_inlet_sums_its_streams_each_at_its_own_conditions() -> None:
     )
     assert inlet.volume == pytest.approx(GAS_CONSTANT * (2.0 * 600.0 / 2e5 + 300.0 / 5e5))
     assert (inlet.lowest_pressure, inlet.temperature) == (2e5, 450.0)
+
+
+def test_a_batch_of_inlets_equals_each_alone() -> None:
+    T, n = np.array([400.0, 700.0, 900.0]), np.array([0.0, 1.0, 2.0])
+
+    def streams(T: float | FloatArray, n: float | FloatArray) -> list[Stream]:
+        return [
+            Stream("a", T, 2e5, {"N2(g)": 1.0, "O2(g)": n}, "mol", False),
+            Stream("b", 300.0, 1e5, {"C(graphite)": n}, "mol", False),
+        ]
+
+    batch = inlet_of(streams(T, n), LIBRARY)
+    for i in range(3):
+        alone = inlet_of(streams(float(T[i]), float(n[i])), LIBRARY)
+        for field in fields(Inlet)[1:]:
+            one, many = getattr(alone, field.name), getattr(batch, field.name)
+            np.testing.assert_array_equal(one[0], many[i], err_msg=field.name)

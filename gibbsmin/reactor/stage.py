@@ -1,0 +1,93 @@
+"""A stage solved: its equilibria in a batch of states, and their energy balance."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.constants import GAS_CONSTANT
+from gibbsmin.reactor.chemistry import Chemistry
+from gibbsmin.reactor.conditions import Equilibria
+from gibbsmin.reactor.energy import (
+    EnergyBalance,
+    energy_balance,
+    mixture_enthalpy,
+    mixture_entropy,
+)
+from gibbsmin.reactor.inlet import Inlet, inlet_of
+from gibbsmin.reactor.model import StageModel, stage_model
+from gibbsmin.reactor.specification import Specification, solve
+from gibbsmin.reactor.streams import Stream
+from gibbsmin.thermo.library import Library
+
+
+@dataclass(frozen=True)
+class StageStates:
+    """B states of a stage: what enters, the equilibria that leave, and what they take up."""
+
+    inlet: Inlet
+    model: StageModel
+    equilibria: Equilibria
+    energy: EnergyBalance
+
+
+def solve_stage(
+    chemistry: Chemistry,
+    specification: Specification,
+    boundary_temperature: float | None,
+    streams: Sequence[Stream],
+    library: Library,
+) -> StageStates:
+    """Solve a stage in all states of its streams.
+
+    Raises
+    ------
+    InputError
+        when the chemistry does not fit the feed, or a pressure drop leaves nothing.
+    """
+    inlet = inlet_of(streams, library)
+    model = stage_model(chemistry, inlet.records, library)
+    equilibria = solve(model, specification, inlet)
+    energy = _energy_balance(specification, boundary_temperature, inlet, model, equilibria)
+    return StageStates(inlet, model, equilibria, energy)
+
+
+def _energy_balance(
+    specification: Specification,
+    boundary_temperature: float | None,
+    inlet: Inlet,
+    model: StageModel,
+    found: Equilibria,
+) -> EnergyBalance:
+    """Heat and shaft work into the stage, and the entropy they leave unaccounted for.
+
+    A reversible stage takes up its enthalpy change as shaft work, a closed vessel its change of
+    internal energy as heat.
+    """
+    T, P = found.temperature, found.pressure
+    change = mixture_enthalpy(model.properties, T, found.amounts) - inlet.enthalpy
+    heat, work = change, np.zeros_like(change)
+    needs_compressor = inlet.carries_gas & (inlet.lowest_pressure < P)
+    if specification.entropy_of_feed:
+        heat, work = work, change
+        needs_compressor = np.zeros_like(needs_compressor)
+    elif specification.volume is not None:
+        room = found.amounts[:, model.gas].sum(axis=1) * GAS_CONSTANT * T
+        heat = change + inlet.enthalpy - room - inlet.internal_energy
+        needs_compressor = specification.volume < inlet.volume
+    if specification.heat is not None:
+        heat = np.where(np.isnan(change), np.nan, specification.heat)
+    boundary: FloatArray = (
+        T if boundary_temperature is None else np.full(T.shape, boundary_temperature)
+    )
+    return energy_balance(
+        heat=heat,
+        shaft_work=work,
+        entropy_in=inlet.entropy,
+        entropy_out=mixture_entropy(model.properties, model.gas, T, P, found.amounts),
+        boundary_temperature=boundary,
+        needs_compressor=needs_compressor,
+    )
