@@ -12,7 +12,7 @@ from gibbsmin.errors import BalanceError, InputError
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.minimise import Method, Status
-from gibbsmin.reactor.audit import SolvedState, audit, element_activities
+from gibbsmin.reactor.audit import SolvedState, audit, element_activities, element_potentials
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.conditions import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, Equilibria
 from gibbsmin.reactor.energy import EnergyBalance
@@ -106,7 +106,7 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
         amounts=state.amounts,
         removed=removed,
         certificate=_certificate(found),
-        element_potentials=_element_potentials(model, state),
+        element_potentials=element_potentials(model, state),
         conversion=conversion(states.inlet, model.records, state.amounts),
         heat=float(states.energy.heat[0]),
         shaft_work=float(states.energy.shaft_work[0]),
@@ -174,12 +174,6 @@ def _certificate(found: Equilibria) -> StateCertificate:
         balance=float(certificate.balance[0]),
         stationarity=float(certificate.stationarity[0]),
     )
-
-
-def _element_potentials(model: StageModel, state: SolvedState) -> Mapping[str, float]:
-    """λ of the element and charge rows; holds are no elements."""
-    potentials = state.multipliers[: len(model.balance.elements)]
-    return dict(zip(model.balance.elements, potentials.tolist(), strict=True))
 
 
 def conversion(inlet: Inlet, records: Sequence[Species], outlet: FloatArray) -> Mapping[str, float]:

@@ -101,6 +101,19 @@ def log_activities(
     return np.where(_determined(model, state, columns), potentials - energies, np.nan)
 
 
+def element_potentials(model: StageModel, state: SolvedState) -> dict[str, float]:
+    """λ of the element and charge rows in RT; NaN where the outlet does not determine it.
+
+    Of an element that is only in a held record, or only in fixed proportion to another, nothing
+    but sums are known.
+    """
+    elements = model.balance.elements
+    unit_columns = np.eye(len(model.balance.rows))[:, : len(elements)]
+    determined = _determined(model, state, unit_columns)
+    values = np.where(determined, state.multipliers[: len(elements)], np.nan)
+    return dict(zip(elements, values.tolist(), strict=True))
+
+
 def routes_at(
     model: StageModel, state: SolvedState, records: Sequence[Species], pressure: float
 ) -> list[tuple[Route, ...]]:
