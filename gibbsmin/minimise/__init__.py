@@ -6,5 +6,15 @@ from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
 from gibbsmin.minimise.status import Method, Status
+from gibbsmin.minimise.streams import minimise_blocks
 
-__all__ = ["Certificate", "Method", "Programme", "Settings", "Solution", "Status", "minimise"]
+__all__ = [
+    "Certificate",
+    "Method",
+    "Programme",
+    "Settings",
+    "Solution",
+    "Status",
+    "minimise",
+    "minimise_blocks",
+]

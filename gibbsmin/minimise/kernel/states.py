@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from math import isfinite, isnan
+from math import inf, isfinite, isnan
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.log_newton import guess_fractions, minimise_from
 from gibbsmin.minimise.kernel.proof import BALANCE, GAP, STATIONARITY, prove
 from gibbsmin.minimise.kernel.simplex import start_from_costs
-from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch
+from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch, State
 from gibbsmin.minimise.kernel.tableau import renew_reduced
 from gibbsmin.minimise.kernel.warm import resume
 from gibbsmin.minimise.status import Method, Status
@@ -20,8 +20,11 @@ INVALID = int(Status.INVALID)
 COMPILED = int(Method.COMPILED)
 RECOVERY = int(Method.RECOVERY)
 
-_COLD_LIMIT = 80
-_WARM_LIMIT = 12
+WARM, COLD, LAST = 0, 1, 4
+"""Ways to start a state: from the states before, cold, and the recovery steps up to the last."""
+
+_ITERATIONS = 80
+_WARM_ITERATIONS = 12
 
 
 def solve_states(
@@ -34,35 +37,58 @@ def solve_states(
     answers: Answers,
 ) -> None:
     """Answer each state of a block: from its neighbours, else cold, else by recovery steps."""
+    gases = network.gases
+    state, tableau, point = scratch.state, scratch.tableau, scratch.point
     run = 0  # states certified in a row, on which the next may build
     for s in range(energies.shape[0]):
-        if not load(network, scratch, energies[s], supplies[s]):
-            answers.status[s] = INVALID
-            run = 0
-            continue
-        figures = answers.figures[s]
-        certified = warm and run > 0
-        if certified:
-            certified = solve_warm(
-                network, scratch, energies, supplies, tolerances, answers, s, run, figures
-            )
-        status = CERTIFIED
-        answers.method[s] = COMPILED
-        if not certified:
-            run = 0
-            status = solve_cold(network, scratch, tolerances, figures, True, True)
-        if status == UNCERTIFIED:
-            answers.method[s] = RECOVERY
-            status = recover(network, scratch, energies[s], supplies[s], tolerances, figures)
+        status = UNCERTIFIED if load(network, state, energies[s], supplies[s]) else INVALID
+        way = WARM if warm and run > 0 else COLD
+        while status == UNCERTIFIED and way <= LAST:
+            if way == WARM:
+                log_total = resume(network, scratch, energies, supplies, answers, s, run)
+            else:
+                run = 0
+                load(network, state, energies[s], supplies[s])
+                log_total = start_cold(network, scratch, way)
+            if log_total == inf:
+                status = INFEASIBLE
+            elif not isnan(log_total):
+                limit = _WARM_ITERATIONS if way == WARM else _ITERATIONS
+                log_total = minimise_from(
+                    state, tableau, point, scratch.equations, gases, log_total, keeps(way), limit
+                )
+                if not isnan(log_total):
+                    prove(network, state, tableau, point, scratch.proof, answers.figures[s])
+                    if is_proved(answers.figures[s], tolerances):
+                        status = CERTIFIED
+            way += 1
         answers.status[s] = status
+        answers.method[s] = COMPILED if way <= COLD + 1 else RECOVERY
         if status == CERTIFIED:
             store(network, scratch, answers, s)
-            run = run + 1 if whole_face(scratch) else 0
+            remember(scratch.log_totals, log_total)
+            run = run + 1 if whole_face(state) else 0
+        else:
+            run = 0
 
 
-def load(network: Network, scratch: Scratch, energies: FloatArray, supplies: FloatArray) -> bool:
+def start_cold(network: Network, scratch: Scratch, way: int) -> float:
+    """Linear programme, by guessed fractions except in the last two ways; ln N, +∞ infeasible."""
+    state, tableau = scratch.state, scratch.tableau
+    diluted = way <= COLD + 1
+    if not start_from_costs(network, state, tableau, scratch.equations, diluted):
+        return inf
+    renew_reduced(state, tableau)
+    return guess_fractions(tableau, scratch.point, scratch.equations, network.gases)
+
+
+def keeps(way: int) -> bool:
+    """Whether all phases stay when one enters (:func:`add_phase`)."""
+    return way in (WARM, COLD, COLD + 2)
+
+
+def load(network: Network, state: State, energies: FloatArray, supplies: FloatArray) -> bool:
     """Copy one state into the scratch, gases first; False where a value is not finite."""
-    state = scratch.state
     finite = True
     for i in range(energies.size):
         value = energies[network.order[i]]
@@ -74,93 +100,8 @@ def load(network: Network, scratch: Scratch, energies: FloatArray, supplies: Flo
     return finite
 
 
-def solve_warm(
-    network: Network,
-    scratch: Scratch,
-    energies: FloatArray,
-    supplies: FloatArray,
-    tolerances: FloatArray,
-    answers: Answers,
-    s: int,
-    run: int,
-    figures: FloatArray,
-) -> bool:
-    """Newton's method from the states before; False where that leads nowhere soon."""
-    log_total = resume(
-        network,
-        scratch.state,
-        scratch.tableau,
-        scratch.point,
-        energies,
-        supplies,
-        answers.multipliers,
-        scratch.log_totals,
-        s,
-        run,
-    )
-    if isnan(log_total):
-        return False
-    return finish(network, scratch, tolerances, figures, log_total, True, _WARM_LIMIT)
-
-
-def solve_cold(
-    network: Network,
-    scratch: Scratch,
-    tolerances: FloatArray,
-    figures: FloatArray,
-    diluted: bool,
-    keep: bool,
-) -> int:
-    """Linear programme, then Newton's method from its basis."""
-    tableau, point, equations = scratch.tableau, scratch.point, scratch.equations
-    if not start_from_costs(network, scratch.state, tableau, equations, diluted):
-        return INFEASIBLE
-    renew_reduced(scratch.state, tableau)
-    log_total = guess_fractions(tableau, point, equations, network.gases)
-    if finish(network, scratch, tolerances, figures, log_total, keep, _COLD_LIMIT):
-        return CERTIFIED
-    return UNCERTIFIED
-
-
-def recover(
-    network: Network,
-    scratch: Scratch,
-    energies: FloatArray,
-    supplies: FloatArray,
-    tolerances: FloatArray,
-    figures: FloatArray,
-) -> int:
-    """Try the other ways to exchange phases and to guess the start; the last way's status."""
-    status = UNCERTIFIED
-    for attempt in range(1, 4):
-        load(network, scratch, energies, supplies)
-        diluted = attempt == 1
-        keep = attempt == 2
-        status = solve_cold(network, scratch, tolerances, figures, diluted, keep)
-        if status == CERTIFIED:
-            break
-    return status
-
-
-def finish(
-    network: Network,
-    scratch: Scratch,
-    tolerances: FloatArray,
-    figures: FloatArray,
-    log_total: float,
-    keep: bool,
-    limit: int,
-) -> bool:
-    """Newton's method and the certificate; whether the state is proved."""
-    state, tableau, point = scratch.state, scratch.tableau, scratch.point
-    log_total = minimise_from(
-        state, tableau, point, scratch.equations, network.gases, log_total, keep, limit
-    )
-    if isnan(log_total):
-        return False
-    prove(network, state, tableau, point, scratch.proof, figures)
-    history = scratch.log_totals
-    history[2], history[1], history[0] = history[1], history[0], log_total
+def is_proved(figures: FloatArray, tolerances: FloatArray) -> bool:
+    """Whether gap, balance and stationarity are all within their tolerances."""
     return bool(
         figures[GAP] <= tolerances[GAP]
         and figures[BALANCE] <= tolerances[BALANCE]
@@ -168,10 +109,16 @@ def finish(
     )
 
 
-def whole_face(scratch: Scratch) -> bool:
+def remember(log_totals: FloatArray, log_total: float) -> None:
+    """Put ln N before the two latest."""
+    log_totals[2], log_totals[1] = log_totals[1], log_totals[0]
+    log_totals[0] = log_total
+
+
+def whole_face(state: State) -> bool:
     """Whether no species is forced to zero, so that the tableau serves the next state too."""
-    for i in range(scratch.state.face.size):
-        if not scratch.state.face[i]:
+    for i in range(state.face.size):
+        if not state.face[i]:
             return False
     return True
 

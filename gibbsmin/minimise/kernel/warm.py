@@ -9,7 +9,7 @@ from __future__ import annotations
 from math import nan
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.minimise.kernel.storage import Network, Point, State, Tableau
+from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch, State, Tableau
 from gibbsmin.minimise.kernel.tableau import renew_reduced, renew_supply
 
 _FAR = 4.0  # change of a basis member's g̃ beyond which a cold start is cheaper
@@ -19,21 +19,19 @@ _UNMET = 1e-11
 
 def resume(
     network: Network,
-    state: State,
-    tableau: Tableau,
-    point: Point,
+    scratch: Scratch,
     energies: FloatArray,
     supplies: FloatArray,
-    multipliers: FloatArray,
-    log_totals: FloatArray,
+    answers: Answers,
     s: int,
     run: int,
 ) -> float:
     """Predict the potentials of state ``s`` from the ``run`` states solved just before it.
 
-    Return ln N, or NaN where the states before are no guide.  ``log_totals`` holds ln N of the
-    last three states, the latest first.
+    Return ln N, or NaN where the states before are no guide.
     """
+    state, tableau, point = scratch.state, scratch.tableau, scratch.point
+    multipliers, log_totals = answers.multipliers, scratch.log_totals
     if not same_rows(network, supplies[s], supplies[s - 1]):
         return nan
     change, bend = differences(network, tableau, energies, s, run)

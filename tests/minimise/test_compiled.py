@@ -1,0 +1,146 @@
+"""The compiled method against the conic one, against its own interpreted form and itself."""
+
+from __future__ import annotations
+
+import subprocess
+import sys
+from collections.abc import Callable
+from pathlib import Path
+
+import numpy as np
+import pytest
+from benchmarks.systems import grid, ordinary, torture
+from minimise.optimality import assert_optimal
+from minimise.problems import PROBLEMS
+
+from gibbsmin.minimise import Method, Programme, Settings, Solution, Status, minimise
+from gibbsmin.minimise.certificate import certify
+from gibbsmin.minimise.compiled import answer_batch
+from gibbsmin.minimise.dispatch import _unanswered
+from gibbsmin.minimise.kernel.form import forms, interpreted
+from gibbsmin.minimise.kernel.storage import network_of
+
+NAMES = ["reformer", "combustion", "sulphur", "big"]
+COMPILED_NOW = 10**9  # states that no interpreter would take
+
+
+def compiled(programme: Programme, settings: Settings | None = None) -> Solution:
+    """Answer by the kernel alone, in its compiled form."""
+    network = network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
+    assert forms.choose(network, COMPILED_NOW) is not interpreted
+    solution = _unanswered(programme)
+    answer_batch(programme, settings or Settings(), solution)
+    return solution
+
+
+@pytest.mark.parametrize("name", PROBLEMS)
+def test_kernel_alone_proves_each_problem(name: str) -> None:
+    programme = PROBLEMS[name]
+    solution = compiled(programme)
+    assert solution.certified.all()
+    assert np.isin(solution.method, (Method.COMPILED, Method.RECOVERY)).all()
+    assert_optimal(programme, solution)
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_interpreted_form_gives_the_compiled_answer(
+    name: str, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    programme = torture(name, 40 if name == "big" else 150)
+    expected = compiled(programme)
+    monkeypatch.setattr(forms, "choose", lambda *_: interpreted)
+    found = _unanswered(programme)
+    answer_batch(programme, Settings(), found)
+    np.testing.assert_array_equal(found.status, expected.status)
+    total = expected.amounts.sum(axis=1, keepdims=True)
+    np.testing.assert_allclose(found.amounts / total, expected.amounts / total, atol=1e-11)
+
+
+@pytest.mark.parametrize("kind", [ordinary, torture])
+@pytest.mark.parametrize("name", NAMES)
+def test_every_state_is_proved(name: str, kind: Callable[[str, int], Programme]) -> None:
+    """The kernel's proof is judged by the batch certificate, which shares no code with it."""
+    programme = kind(name, 20_000 if kind is torture else 5_000)
+    solution = minimise(programme)
+    assert (solution.status == Status.CERTIFIED).all()
+    conic = (solution.method == Method.CONIC).mean()
+    assert conic <= 0.005
+    face = solution.certificate.driving_forces > -np.inf
+    proof = certify(programme, solution.amounts, solution.multipliers, face)
+    assert proof.within(Settings()).all()
+    # Both are round-off; the kernel bounds the violation, so its gap may be a little larger.
+    np.testing.assert_allclose(proof.gap, solution.certificate.gap, rtol=0, atol=1e-11)
+    np.testing.assert_allclose(
+        proof.stationarity, solution.certificate.stationarity, rtol=0, atol=1e-11
+    )
+
+
+@pytest.mark.parametrize(
+    ("name", "states"), [("reformer", 500), ("combustion", 500), ("sulphur", 500), ("big", 15)]
+)
+def test_two_methods_agree(name: str, states: int) -> None:
+    """Amounts to 1e-8 of the total and the same phases; the benchmark takes 500 of the big one."""
+    programme = ordinary(name, states, seed=11)
+    fast, slow = minimise(programme), minimise(programme, Settings(compiled=False))
+    assert fast.certified.all()
+    assert slow.certified.all()
+    assert (slow.method == Method.CONIC).all()
+    total = fast.amounts.sum(axis=1, keepdims=True)
+    np.testing.assert_allclose(fast.amounts / total, slow.amounts / total, atol=1e-8, rtol=0)
+    condensed = ~programme.gas
+    np.testing.assert_array_equal(fast.amounts[:, condensed] > 0, slow.amounts[:, condensed] > 0)
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_warm_answers_equal_cold_ones(name: str) -> None:
+    programme = grid(name, 100, 4)
+    warm = compiled(programme)
+    cold = compiled(programme, Settings(warm_start=False))
+    assert warm.certified.all()
+    total = cold.amounts.sum(axis=1, keepdims=True)
+    np.testing.assert_allclose(warm.amounts / total, cold.amounts / total, atol=1e-10, rtol=0)
+
+
+def test_batch_equals_a_loop_of_single_states() -> None:
+    programme = ordinary("sulphur", 50)
+    batch = compiled(programme, Settings(warm_start=False))
+    for state in range(programme.states):
+        single = compiled(programme.subset(state))
+        np.testing.assert_array_equal(single.amounts[0], batch.amounts[state])
+        np.testing.assert_array_equal(single.multipliers[0], batch.multipliers[state])
+
+
+def test_threads_change_nothing() -> None:
+    programme = ordinary("combustion", 10_000)
+    settings = Settings(threads=2, warm_start=False)
+    two = compiled(programme, settings)
+    one = compiled(programme, Settings(threads=1, warm_start=False))
+    np.testing.assert_array_equal(two.amounts, one.amounts)
+
+
+def test_bad_states_leave_their_neighbours_alone() -> None:
+    good = grid("reformer", 60, 1)
+    energies, supplies = good.energies.copy(), good.supplies.copy()
+    energies[10, 3], energies[20, 0], supplies[30, 1] = np.nan, np.inf, np.nan
+    supplies[40, 0] = -1.0
+    spoilt = Programme(good.matrix, supplies, energies, good.gas, good.direction, good.atoms)
+    solution = minimise(spoilt)
+    expected = np.full(60, Status.CERTIFIED)
+    expected[[10, 20, 30]] = Status.INVALID
+    expected[40] = Status.INFEASIBLE
+    np.testing.assert_array_equal(solution.status, expected)
+    bad = [10, 20, 30, 40]
+    assert np.isnan(solution.amounts[bad]).all()
+    others = np.delete(np.arange(60), bad)
+    np.testing.assert_allclose(
+        solution.amounts[others], minimise(good).amounts[others], rtol=0, atol=1e-10
+    )
+
+
+def test_one_state_imports_no_compiler() -> None:
+    code = (
+        "import sys; from benchmarks.systems import ordinary; from gibbsmin.minimise import *;"
+        "assert minimise(ordinary('reformer', 1)).certified.all();"
+        "assert not {'numba', 'cvxpy', 'matplotlib'} & set(sys.modules)"
+    )
+    subprocess.run([sys.executable, "-c", code], check=True, cwd=Path(__file__).parents[1])  # noqa: S603
