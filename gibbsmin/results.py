@@ -57,6 +57,15 @@ class EntropyGeneration:
 
 
 @dataclass(frozen=True)
+class Figure:
+    """One figure of a stage, for tables: its name, value and unit (empty for a plain number)."""
+
+    name: str
+    value: float
+    unit: str
+
+
+@dataclass(frozen=True)
 class StageOutlet:
     """One stage's outlet.
 
@@ -78,6 +87,7 @@ class StageOutlet:
     shaft_work : work put in by the shaft, or gained when negative
     entropy : entropy generation and lost work
     activities : p(O2), a(C), … of the elements present
+    figures : molar mass, density, heat capacities and what else follows from the state
     audit : records that are not in the outlet, the most weighty first
     warnings, notes, hazards : sentences on what limits the figures, on how they came about, and
         on what is toxic or flammable in the outlet
@@ -98,6 +108,7 @@ class StageOutlet:
     shaft_work: float
     entropy: EntropyGeneration
     activities: tuple[ElementActivity, ...]
+    figures: tuple[Figure, ...]
     audit: tuple[AuditEntry, ...]
     warnings: tuple[str, ...]
     notes: tuple[str, ...]

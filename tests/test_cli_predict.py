@@ -58,7 +58,8 @@ def test_json_has_the_promised_keys(case: Path) -> None:
     assert set(stage) == {
         "name", "status", "method", "temperature_K", "pressure_bar", "certificate", "unit",
         "species", "removed", "conversion", "heat", "shaft_work", "entropy_generation", "lost_work",
-        "element_chemical_potentials", "activities", "warnings", "notes", "hazards", "audit",
+        "element_chemical_potentials", "activities", "figures", "warnings", "notes", "hazards",
+        "audit",
     }  # fmt: skip
     assert set(stage["certificate"]) == {"gap", "balance", "stationarity"}
     assert set(stage["species"][0]) == {

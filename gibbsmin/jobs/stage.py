@@ -10,6 +10,7 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import BalanceError, InputError
 from gibbsmin.jobs.case_stage import StageCase
+from gibbsmin.jobs.figures import figures_of
 from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.minimise import Method, Status
 from gibbsmin.reactor.audit import SolvedState, audit, element_activities, element_potentials
@@ -112,6 +113,7 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
         shaft_work=float(states.energy.shaft_work[0]),
         entropy=entropy,
         activities=element_activities(model, state, library) if certified else (),
+        figures=figures_of(states) if certified else (),
         audit=entries,
         warnings=warnings(model, streams, state, entries, entropy.remark, status),
         notes=_notes(model, state, found),

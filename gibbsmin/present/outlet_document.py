@@ -90,6 +90,10 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
             {"name": a.label, "record": a.record, "value": a.value, "unit": a.unit}
             for a in stage.activities
         ],
+        "figures": [
+            {"name": figure.name, "value": figure.value, "unit": figure.unit}
+            for figure in stage.figures
+        ],
         "warnings": list(stage.warnings),
         "notes": list(stage.notes),
         "hazards": list(stage.hazards),

@@ -84,6 +84,7 @@ def _stage_figures(stage: StageOutlet, energy: str) -> list[tuple[str, float | s
         ("lost work", entropy.lost_work / 1e3, energy),
         ("surroundings temperature", entropy.surroundings_temperature, "K"),
         *((activity.label, activity.value, activity.unit or "1") for activity in stage.activities),
+        *((figure.name, figure.value, figure.unit or "1") for figure in stage.figures),
         *(
             (f"chemical potential of {element}", value, "RT")
             for element, value in stage.element_potentials.items()

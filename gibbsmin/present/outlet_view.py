@@ -139,6 +139,8 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
                 if not np.isnan(a.value)
             ),
         )
+    for figure in stage.figures:
+        yield figure.name, f"{significant(figure.value)} {figure.unit}".rstrip()
     proof = stage.certificate
     yield (
         "certificate",

@@ -315,3 +315,25 @@ def test_faults_of_stages_read_as_one_sentence(changes: dict[str, Any], sentence
     with pytest.raises(InputError) as caught:
         predict(tables)
     assert str(caught.value) == sentence
+
+
+def test_figures_of_the_gas() -> None:
+    stage = only(
+        case(
+            {"air": stream({"N2": 0.79, "O2": 0.21}, "300 K", "1 bar")},
+            {"temperature": "300 K", "pressure": "1 bar"},
+            consider=["N2", "O2"],
+        )
+    )
+    figures = {figure.name: figure.value for figure in stage.figures}
+    # dry air of 79/21 at 300 K and 1 bar, an ideal gas; Cp of air 29.1 J/mol/K, ratio 1.400: common
+    # values of the textbooks
+    assert figures["molar mass of the gas"] == pytest.approx(28.85, abs=0.01)
+    assert figures["density of the gas"] == pytest.approx(
+        28.85e-3 * 1e5 / (8.314463 * 300), rel=1e-3
+    )
+    assert figures["heat capacity of the gas, frozen"] == pytest.approx(29.15, abs=0.1)
+    assert figures["isentropic exponent, frozen"] == pytest.approx(1.400, abs=0.002)
+    assert figures["isentropic exponent at equilibrium"] == pytest.approx(1.400, abs=0.002)
+    assert figures["heat capacity at equilibrium over frozen"] == pytest.approx(1.0, abs=1e-9)
+    assert "solids and liquids by mass" not in figures
