@@ -161,8 +161,10 @@ def _between(
 
     everything = np.arange(wanted.size)
     T = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
-    scale = np.abs(residual(LOWEST_TEMPERATURE + 0.0 * T, everything))
-    jumps = np.abs(residual(T, everything)) > _JUMP * scale
+    missing = residual(T, everything)
+    # Heat capacity times T: what resolution in T leaves of the content is far below it.
+    scale = np.abs(residual(1.001 * T, everything) - missing) * 1e3
+    jumps = np.abs(missing) > _JUMP * scale
     found = solved(np.where(jumps, T * (1.0 - _SIDE), T), everything)
     if not jumps.any():
         return found

@@ -337,3 +337,23 @@ def test_figures_of_the_gas() -> None:
     assert figures["isentropic exponent at equilibrium"] == pytest.approx(1.400, abs=0.002)
     assert figures["heat capacity at equilibrium over frozen"] == pytest.approx(1.0, abs=1e-9)
     assert "solids and liquids by mass" not in figures
+
+
+def test_adiabatic_bed_with_an_approach() -> None:
+    # An exothermic reaction short of equilibrium as written: at equilibrium 20 K hotter.
+    tables = case(
+        {"gas": stream({"CO": 1.0, "H2O": 3.0, "H2": 4.0, "CO2": 0.5}, "600 K", "20 bar")},
+        {
+            "heat": "0 kJ",
+            "pressure": "20 bar",
+            "approach": [{"reaction": "CO + H2O = CO2 + H2", "approach": "20 K", "key": "CO"}],
+        },
+        consider=["CO", "H2O", "H2", "CO2"],
+    )
+    stage = only(tables)
+    assert log_quotient(stage, SHIFT) == pytest.approx(
+        log_constant(SHIFT, stage.temperature + 20.0), abs=1e-10
+    )
+    free = deepcopy(tables)
+    del free["stage"][0]["approach"]
+    assert 600.0 < stage.temperature < only(free).temperature
