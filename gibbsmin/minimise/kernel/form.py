@@ -1,9 +1,10 @@
 """One source, two forms: the kernel's functions as they stand, or compiled by numba.
 
-Importing numba takes the better part of a second and a first compilation half a minute, which
-a single state does not repay: interpreted it takes milliseconds.  So a process interprets until
-it has spent about what numba would cost to load, and compiles from there on.  The compiled form
-is kept on disk beside the sources, or in the user's cache where that place cannot be written.
+Loading numba and a compiled form takes the better part of a second, and compiling half a minute,
+which a single state does not repay: interpreted it takes milliseconds.  So a process interprets
+until it has spent about what the compiled form would cost, and compiles from there on.  The
+compiled form is kept on disk beside the sources, or in the user's cache where that place cannot
+be written.
 """
 
 from __future__ import annotations
@@ -35,7 +36,8 @@ _MODULES = (
     "states",
 )
 _SECONDS_PER_ENTRY = 4.5e-5  # measured: one state costs this times rows × (species + rows)
-_BUDGET = 1.0  # seconds
+_LOADING = 1.0  # seconds
+_COMPILING = 20.0  # seconds
 _OPTIONS: dict[str, Any] = {
     "error_model": "numpy",
     # Sums may be reordered for the vector unit; infinities and NaN keep their meaning.
@@ -58,7 +60,7 @@ class _Forms:
         rows, species = network.matrix.shape
         with self._lock:
             self._spent += states * rows * (species + rows) * _SECONDS_PER_ENTRY
-            if self._compiled is None and self._spent > _BUDGET:
+            if self._compiled is None and self._spent > _price():
                 self._compiled = _compile()
             return self._compiled or interpreted
 
@@ -70,6 +72,14 @@ def interpreted(*arguments: Any) -> None:
     """:func:`solve_states` by the interpreter, with the compiled form's silence on overflow."""
     with np.errstate(all="ignore"):
         solve_states(*arguments)
+
+
+def _price() -> float:
+    """Seconds that the compiled form costs, by whether one newer than the sources is on disk."""
+    folder = Path(__file__).parent
+    changed = max(source.stat().st_mtime for source in folder.glob("*.py"))
+    kept = (folder / "__pycache__").glob(f"{Path(__file__).stem}.*.nbi")
+    return _LOADING if any(file.stat().st_mtime > changed for file in kept) else _COMPILING
 
 
 def _compile() -> SolveStates:

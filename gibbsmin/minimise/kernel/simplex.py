@@ -78,17 +78,19 @@ def set_costs(
 
 
 def find_feasible(state: State, tableau: Tableau, price: FloatArray) -> None:
-    """Phase one: drive the artificial variables to zero, least cost per unit of supply first."""
+    """Phase one: drive the artificial variables to zero, least cost per unit of supply first.
+
+    ``price`` holds what one unit of each species takes off their sum.
+    """
     reduced, entries = tableau.reduced, tableau.entries
     species = reduced.size
     rows = entries.shape[0]
-    for _ in range(_PIVOTS_PER_ROW * rows):
+    for i in range(species):
+        price[i] = 0.0
+    for j in range(rows):
         for i in range(species):
-            price[i] = 0.0
-        for j in range(rows):
-            if tableau.basis[j] >= species and tableau.supply[j] > 0.0:
-                for i in range(species):
-                    price[i] += entries[j, i]
+            price[i] += entries[j, i]
+    for _ in range(_PIVOTS_PER_ROW * rows):
         column = -1
         best = inf
         for i in range(species):
@@ -97,8 +99,13 @@ def find_feasible(state: State, tableau: Tableau, price: FloatArray) -> None:
                 column = i
         if column < 0:
             return
-        exchange(tableau, leaving_row(tableau, column), column)
+        row = leaving_row(tableau, column)
+        exchange(tableau, row, column)
         clean_supply(state, tableau)
+        factor = price[column]
+        for i in range(species):
+            price[i] -= factor * entries[row, i]
+        price[column] = 0.0
 
 
 def clean_supply(state: State, tableau: Tableau) -> None:
