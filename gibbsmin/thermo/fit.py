@@ -15,7 +15,8 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import FloatArray, IntArray
+from gibbsmin.arrays import FloatArray
+from gibbsmin.thermo.fit_pieces import continuous, layout, rounded_pieces, to_shomate
 from gibbsmin.thermo.fit_table import (
     Matrices,
     Table,
@@ -35,16 +36,13 @@ MOST_JOINTS = 6
 _SIGMA_CP = 0.01
 _SIGMA_FUNCTION = 0.0005
 _SIGMA_ENTHALPY = 0.5
+_SIGMA_UNKNOWN = 1000.0
 
-# A piece gets no more coefficients than its width T_high/T_low can tell apart.
-_COEFFICIENTS_BY_WIDTH = ((1.02, 2), (1.1, 3), (1.45, 4), (np.inf, 5))
 # Joints are chosen by the sum of this power of the errors, smoother than their maximum.
 _NORM = 4
 _COARSE_TRIALS = 30
 _LARGEST_BEND = 0.32
 _BETWEEN = np.array([0.15, 0.5, 0.85])
-_CONSTANT_WITHIN = 0.0021
-_NEGLIGIBLE_CP = 2e-5
 
 
 def fit_heat_capacity(
@@ -100,7 +98,7 @@ def fit_heat_capacity(
             break
         best = further
         found = min(found, best, key=lambda solution: solution.rank(aim))
-    return _pieces(table, found, labels or {})
+    return rounded_pieces(table, found.limits, found.local, labels or {})
 
 
 @dataclass(frozen=True)
@@ -113,8 +111,7 @@ class _Aim:
 class _Solution:
     joints: tuple[int, ...]
     limits: FloatArray
-    segments: IntArray
-    coefficients: FloatArray
+    local: FloatArray
     error: float
     heat_capacity_error: float
     misfit: float
@@ -129,8 +126,8 @@ class _Solution:
 
 def _solve(table: Table, joints: tuple[int, ...], aim: _Aim) -> _Solution:
     """Least squares for the coefficients of all pieces, Cp continuous at the joints."""
-    limits, segments, counts = _layout(table, joints)
-    free = _continuous(limits, segments, counts)
+    limits, segments, counts = layout(table, joints)
+    free, shomate = continuous(limits, segments, counts), to_shomate(limits)
     matrices = Matrices.of(table, limits)
     T = table.T
     rows = np.concatenate(
@@ -150,19 +147,19 @@ def _solve(table: Table, joints: tuple[int, ...], aim: _Aim) -> _Solution:
         ]
     )
     known = ~np.isnan(right)
-    system = rows[known] @ free
-    scale = np.sqrt(np.sum(system**2, axis=0))
-    y = np.linalg.lstsq(system / scale, right[known], rcond=1e-13)[0] / scale
-    x = free @ y
-    coefficients = x.reshape(-1, 5)
+    system = rows[known] @ np.einsum("kij,kjn->kin", shomate, free).reshape(-1, free.shape[-1])
+    # A faint pull to zero decides what the table leaves open.
+    system = np.concatenate([system, np.eye(free.shape[-1]) / _SIGMA_UNKNOWN])
+    right = np.concatenate([right[known], np.zeros(free.shape[-1])])
+    local = free @ np.linalg.lstsq(system, right, rcond=None)[0]
+    coefficients = np.einsum("kij,kj->ki", shomate, local)
     if joints and not _smooth(table, limits, coefficients):
-        return _Solution(joints, limits, segments, coefficients, np.inf, np.inf, np.inf)
+        return _Solution(joints, limits, local, np.inf, np.inf, np.inf)
+    x = coefficients.ravel()
     errors = np.abs(errors_of(table, matrices, x))
     in_Cp = np.abs(np.nan_to_num(matrices.heat_capacity @ x / table.Cp - 1))
     misfit = float(np.sum((errors / aim.gibbs) ** _NORM + (in_Cp / aim.heat_capacity) ** _NORM))
-    return _Solution(
-        joints, limits, segments, coefficients, float(errors.max()), float(in_Cp.max()), misfit
-    )
+    return _Solution(joints, limits, local, float(errors.max()), float(in_Cp.max()), misfit)
 
 
 def _smooth(table: Table, limits: FloatArray, coefficients: FloatArray) -> bool:
@@ -185,76 +182,10 @@ def _with_joint(table: Table, solution: _Solution, aim: _Aim) -> _Solution | Non
 
     def trial(place: int) -> tuple[float, int, _Solution]:
         further = _solve(table, tuple(sorted((*solution.joints, rows[place]))), aim)
-        return further.misfit, place, further
+        # Digits that rounding may have touched do not decide between equals.
+        return float(f"{further.misfit:.9g}"), place, further
 
     stride = 1 + len(rows) // _COARSE_TRIALS
     coarse = min(trial(place) for place in range(0, len(rows), stride))
     near = range(max(coarse[1] - stride + 1, 0), min(coarse[1] + stride, len(rows)))
     return min([coarse, *(trial(place) for place in near if place != coarse[1])])[2]
-
-
-def _layout(table: Table, joints: tuple[int, ...]) -> tuple[FloatArray, IntArray, list[int]]:
-    """Limits and segment of each piece, and how many coefficients it may have."""
-    upper = np.flatnonzero(np.diff(table.segment)) + 1
-    starts = sorted({0, *upper.tolist(), *joints})
-    # H and S tell of the shape of Cp between two rows, too.
-    spare = 2 if table.has_functions else 0
-    limits, counts = [], []
-    for start, following in zip(starts, [*starts[1:], len(table.T)], strict=True):
-        end = following if following in joints else following - 1
-        limits.append((table.T[start], table.T[end]))
-        values = table.Cp[start : end + 1]
-        width = table.T[end] / table.T[start]
-        widest = next(count for limit, count in _COEFFICIENTS_BY_WIDTH if width <= limit)
-        constant = np.nanmax(values) - np.nanmin(values) <= _CONSTANT_WITHIN
-        counts.append(1 if constant else min(widest, len(values) + spare))
-    return np.array(limits), table.segment[starts], counts
-
-
-def _continuous(limits: FloatArray, segments: IntArray, counts: list[int]) -> FloatArray:
-    """Matrix from free unknowns to all coefficients; A follows from Cp at each ordinary joint."""
-    at_joint = heat_capacities(limits[:, 0])
-    pieces, following = len(counts), np.diff(segments, prepend=-1) == 0
-    unknowns = [(k, j) for k in range(pieces) for j in range(counts[k]) if j or not following[k]]
-    free = np.zeros((pieces, 5, len(unknowns)))
-    for column, (k, j) in enumerate(unknowns):
-        free[k, j, column] = 1.0
-    for k in np.flatnonzero(following).tolist():
-        free[k, 0] = at_joint[k] @ free[k - 1] - at_joint[k, 1:] @ free[k, 1:]
-    return free.reshape(pieces * 5, -1)
-
-
-def _pieces(table: Table, solution: _Solution, labels: Mapping[float, str]) -> tuple[Piece, ...]:
-    """The solution with its coefficients rounded where Cp no longer feels it."""
-    steps = dict(zip(table.T[np.flatnonzero(np.diff(table.segment)) + 1], table.steps, strict=True))
-    pieces: list[Piece] = []
-    for (low, high), coefficients in zip(solution.limits, solution.coefficients, strict=True):
-        size = np.maximum(*heat_capacities(np.array([low, high])))
-        digits = -np.floor(np.log10(_NEGLIGIBLE_CP / size)).astype(int)
-        rounded = [
-            round(float(coefficient), int(places)) + 0.0
-            for coefficient, places in zip(coefficients, digits, strict=True)
-        ]
-        if pieces and low not in steps:
-            below, here = pieces[-1], heat_capacities(np.array(low)).tolist()
-            at_joint = sum(
-                c * f
-                for c, f in zip((below.A, below.B, below.C, below.D, below.E), here, strict=True)
-            )
-            others = sum(c * f for c, f in zip(rounded[1:], here[1:], strict=True))
-            rounded[0] = round(at_joint - others, 9)
-        A, B, C, D, E = rounded
-        pieces.append(
-            Piece(
-                float(low),
-                float(high),
-                A,
-                B,
-                C,
-                D,
-                E,
-                transition=float(steps.get(low, 0.0)),
-                label=labels.get(float(low), ""),
-            )
-        )
-    return tuple(pieces)

@@ -13,6 +13,9 @@ from gibbsmin.constants import GAS_CONSTANT, REFERENCE_TEMPERATURE
 from gibbsmin.errors import InputError
 from gibbsmin.thermo.species import Piece
 
+CONSTANT_WITHIN = 0.0021
+"""J/mol/K; heat capacities that differ by no more, two units of the last digit, are one value."""
+
 
 @dataclass(frozen=True)
 class Table:
@@ -67,10 +70,11 @@ class Table:
         return cls(T, Cp, H - taken_H, S - taken_S, function, segment, steps)
 
     def possible_joints(self, joints: tuple[int, ...]) -> list[int]:
-        """Rows where a further joint may stand: inside a segment, and none there yet."""
+        """Rows where a further joint may stand: inside a segment, where Cp is not constant."""
         rows = np.arange(1, len(self.T) - 1)
-        free = (self.segment[rows - 1] == self.segment[rows]) & (
-            self.segment[rows + 1] == self.segment[rows]
+        around = np.stack([self.Cp[rows - 1], self.Cp[rows], self.Cp[rows + 1]])
+        free = (self.segment[rows - 1] == self.segment[rows + 1]) & ~(
+            around.max(axis=0) - around.min(axis=0) <= CONSTANT_WITHIN
         )
         return [int(row) for row in rows[free] if row not in joints]
 
