@@ -11,9 +11,10 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
     from gibbsmin.jobs.predict import predict
+    from gibbsmin.jobs.scan import scan, scan_blocks
     from gibbsmin.results import Outlet, StageOutlet
 
-__all__ = ["Case", "Outlet", "StageOutlet", "load_case", "predict"]
+__all__ = ["Case", "Outlet", "StageOutlet", "load_case", "predict", "scan", "scan_blocks"]
 
 _HOMES = {
     "Case": "gibbsmin.jobs.case",
@@ -21,6 +22,8 @@ _HOMES = {
     "StageOutlet": "gibbsmin.results",
     "load_case": "gibbsmin.jobs.case",
     "predict": "gibbsmin.jobs.predict",
+    "scan": "gibbsmin.jobs.scan",
+    "scan_blocks": "gibbsmin.jobs.scan",
 }
 
 

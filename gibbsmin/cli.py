@@ -97,6 +97,29 @@ def predict(
         raise typer.Exit(NOT_CERTIFIED)
 
 
+@app.command(short_help="Give the outlet over the grid of a case's axes.")
+def scan(
+    case: Annotated[str, typer.Argument(metavar="CASE", help="A case file with [[axis]] tables.")],
+    out: Annotated[
+        str, typer.Option(metavar="FILE", help="A .csv, .parquet or .xlsx file to write.")
+    ],
+) -> None:
+    """Give the outlet over the grid of a case's axes: one row a state, each with its status."""
+    from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.scan import scan_blocks
+    from gibbsmin.present.scan_files import require_scan_ending, write_scan
+    from gibbsmin.present.scan_progress import counted
+
+    path = Path(out)
+    require_scan_ending(path)
+    loaded = load_case(case)
+    tally = counted(scan_blocks(loaded), loaded)
+    write_scan(iter(tally), path)
+    _print(tally.summary(path))
+    if tally.uncertified:
+        raise typer.Exit(NOT_CERTIFIED)
+
+
 @app.command(short_help="Find species records, and show one in full.")
 def species(
     text: Annotated[

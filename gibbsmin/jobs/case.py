@@ -8,6 +8,8 @@ from os import PathLike
 from typing import Any
 
 from gibbsmin.errors import InputError
+from gibbsmin.jobs.axis import Axis
+from gibbsmin.jobs.case_axis import read_axes
 from gibbsmin.jobs.case_feed import read_streams
 from gibbsmin.jobs.case_stage import StageCase, read_stages
 from gibbsmin.jobs.case_text import read_tables
@@ -28,6 +30,7 @@ class Case:
     site_pressure: float
     feeds: tuple[Stream, ...]
     stages: tuple[StageCase, ...]
+    axes: tuple[Axis, ...] = ()
 
 
 def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
@@ -51,6 +54,7 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         table = validate(tables)
         feeds = read_streams(table.feed, library)
         stages = read_stages(table, feeds, library)
+        axes = read_axes(table.axis, feeds, table.site_pressure, library)
     except InputError as error:
         raise error.at(file=file) from None
-    return Case(table.title, file, table.site_pressure, feeds, stages)
+    return Case(table.title, file, table.site_pressure, feeds, stages, axes)

@@ -83,7 +83,7 @@ def _read_stream(name: str, table: FeedTable, library: Library) -> Stream:
             parts = _parts(text, library)
             if len(parts) == 1:
                 _check_new(text, next(iter(parts)).name, written)
-            for record, moles in _moles(measure, parts).items():
+            for record, moles in moles_of(measure, parts).items():
                 amounts[record.name] = amounts.get(record.name, 0.0) + moles
     return Stream(
         name=name,
@@ -133,7 +133,8 @@ def _parts(text: str, library: Library) -> dict[Species, float]:
     return {library[name]: fraction for name, fraction in mixture.items()}
 
 
-def _moles(measure: Measure, parts: Mapping[Species, float]) -> dict[Species, float]:
+def moles_of(measure: Measure, parts: Mapping[Species, float]) -> dict[Species, float]:
+    """Moles of each part of a measured amount, whose mole fractions are given."""
     total = measure.value
     if measure.unit.dimension in _MASS:
         total /= sum(fraction * record.molar_mass for record, fraction in parts.items())

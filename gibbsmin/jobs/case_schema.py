@@ -13,6 +13,7 @@ from pydantic import BeforeValidator, ValidationError, model_validator
 
 from gibbsmin.constants import STANDARD_ATMOSPHERE
 from gibbsmin.errors import InputError
+from gibbsmin.jobs.axis_schema import AxisTable
 from gibbsmin.jobs.stage_schema import OutletTable, SpeciesTable, StageTable
 from gibbsmin.jobs.table_schema import MISSING, Pressure, Table, Temperature, UnknownKeyError
 from gibbsmin.units import Unit, read_amount_unit, read_pressure, shown
@@ -49,6 +50,12 @@ def _stages(given: object) -> tuple[Any, ...]:
     return tuple(given)
 
 
+def _axes(given: object) -> tuple[Any, ...]:
+    if not isinstance(given, list | tuple):
+        raise InputError(f"found {shown(given)}", "accepted are [[axis]] tables")
+    return tuple(given)
+
+
 Title = Annotated[str, BeforeValidator(_title)]
 SitePressure = Annotated[float, BeforeValidator(read_pressure)]
 
@@ -71,6 +78,7 @@ class CaseTable(Table):
     outlet: OutletTable | None = None
     stage: Annotated[tuple[StageTable, ...], BeforeValidator(_stages)] = ()
     species: SpeciesTable = SpeciesTable()
+    axis: Annotated[tuple[AxisTable, ...], BeforeValidator(_axes)] = ()
 
     @model_validator(mode="after")
     def _outlet_or_stages(self) -> Self:

@@ -4,14 +4,11 @@ from __future__ import annotations
 
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
-from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.stage import conversion, leaving_stream, predict_stage
+from gibbsmin.jobs.stage import conversion, stage_outlet
+from gibbsmin.jobs.train import placed_in, run_train
 from gibbsmin.reactor.inlet import inlet_of
-from gibbsmin.reactor.streams import Stream
 from gibbsmin.results import Outlet, StageOutlet
 from gibbsmin.thermo.library import load_library
-
-_AT_TOP = "species."
 
 
 def predict(case: Case) -> Outlet:
@@ -27,18 +24,14 @@ def predict(case: Case) -> Outlet:
         names file and key.
     """
     library = load_library()
-    by_name = {stream.name: stream for stream in case.feeds}
     outlets: list[StageOutlet] = []
-    passing: list[Stream] = []
-    for stage in case.stages:
-        streams = [*passing, *(by_name[name] for name in stage.feeds)]
+    for step in run_train(case, library):
         try:
-            outlets += predict_stage(stage, streams, library)
+            outlets.append(stage_outlet(step, library))
         except InputError as error:
-            raise _placed(error, stage, case) from None
+            raise placed_in(step.stage, case, error) from None
         if not outlets[-1].certified:
             break
-        passing = [leaving_stream(outlets[-1], case.feeds[0])]
     last = outlets[-1]
     inlet = inlet_of(case.feeds, library)
     return Outlet(
@@ -48,10 +41,3 @@ def predict(case: Case) -> Outlet:
         conversion=conversion(inlet, last.records, last.amounts),
         stages=tuple(outlets),
     )
-
-
-def _placed(error: InputError, stage: StageCase, case: Case) -> InputError:
-    """The error at its key: within the stage, unless the case's own species table is meant."""
-    if not error.key.startswith(_AT_TOP) or stage.own_species:
-        error.key = f"{stage.key}.{error.key}".rstrip(".")
-    return error.at(file=case.file)

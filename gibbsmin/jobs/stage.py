@@ -1,9 +1,8 @@
-"""One stage: from its streams to a certified state and all that follows from it."""
+"""One stage's outlet: a solved state and all that follows from it."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import replace
 
 import numpy as np
 
@@ -12,16 +11,14 @@ from gibbsmin.errors import BalanceError, InputError
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.figures import figures_of
 from gibbsmin.jobs.remarks import outlet_hazards, warnings
+from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Method, Status
 from gibbsmin.reactor.audit import SolvedState, audit, element_activities, element_potentials
-from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.conditions import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, Equilibria
 from gibbsmin.reactor.energy import EnergyBalance
 from gibbsmin.reactor.inlet import Inlet
 from gibbsmin.reactor.model import StageModel
-from gibbsmin.reactor.specification import Specification
-from gibbsmin.reactor.stage import StageStates, solve_stage
-from gibbsmin.reactor.streams import Stream
+from gibbsmin.reactor.stage import StageStates
 from gibbsmin.results import EntropyGeneration, StageOutlet, StateCertificate
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
@@ -29,56 +26,16 @@ from gibbsmin.thermo.species import Species
 _TRACE = 1e-6
 
 
-def predict_stage(
-    stage: StageCase, streams: Sequence[Stream], library: Library
-) -> tuple[StageOutlet, ...]:
-    """Solve a stage fed by these streams; a bypass joins as a stage of its own that only mixes.
+def stage_outlet(step: Step, library: Library) -> StageOutlet:
+    """The first state of a solved stage, with all that follows from it.
 
     Raises
     ------
     InputError
-        when no amounts of the candidates hold the feed's elements, when the stage's holds or
-        approaches do not fit, or when no temperature meets its specification.
+        when no amounts of the candidates hold the feed's elements, or no temperature meets the
+        stage's specification.
     """
-    if not stage.bypass:
-        return (_react(stage, streams, library),)
-    around = [_share(stream, stage.bypass) for stream in streams]
-    through = [_share(stream, 1.0 - stage.bypass) for stream in streams]
-    reacted = _react(replace(stage, removed={}), through, library)
-    mixing = StageCase(
-        name=f"{stage.name}, bypass joined",
-        key=stage.key,
-        feeds=(),
-        chemistry=Chemistry(reactions="none"),
-        specification=Specification(heat=0.0, pressure=reacted.pressure),
-        boundary_temperature=None,
-        surroundings_temperature=stage.surroundings_temperature,
-        bypass=0.0,
-        removed=stage.removed,
-    )
-    return (reacted, _react(mixing, [leaving_stream(reacted, streams[0]), *around], library))
-
-
-def leaving_stream(outlet: StageOutlet, fed: Stream) -> Stream:
-    """What goes on from a stage: its outlet without what is taken out of it."""
-    going_on = {
-        record.name: amount - outlet.removed.get(record.name, 0.0)
-        for record, amount in zip(outlet.records, outlet.amounts.tolist(), strict=True)
-    }
-    return Stream(
-        name=outlet.name,
-        temperature=outlet.temperature,
-        pressure=outlet.pressure,
-        amounts={name: amount for name, amount in going_on.items() if amount > 0.0},
-        unit=fed.unit,
-        is_flow=fed.is_flow,
-    )
-
-
-def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> StageOutlet:
-    states = solve_stage(
-        stage.chemistry, stage.specification, stage.boundary_temperature, streams, library
-    )
+    stage, states = step.stage, step.states
     model, found = states.model, states.equilibria
     status = tuple(Status)[found.solution.status[0]]
     _require_an_answer(stage, states, status)
@@ -115,7 +72,7 @@ def _react(stage: StageCase, streams: Sequence[Stream], library: Library) -> Sta
         activities=element_activities(model, state, library) if certified else (),
         figures=figures_of(states) if certified else (),
         audit=entries,
-        warnings=warnings(model, streams, state, entries, entropy.remark, status),
+        warnings=warnings(model, step.streams, state, entries, entropy.remark, status),
         notes=_notes(model, state, found),
         hazards=outlet_hazards(model, state.amounts),
     )
@@ -160,12 +117,6 @@ def _entropy_generation(stage: StageCase, energy: EnergyBalance) -> EntropyGener
         boundary_temperature=float(energy.boundary_temperature[0]),
         surroundings_temperature=stage.surroundings_temperature,
         remark=remark,
-    )
-
-
-def _share(stream: Stream, share: float) -> Stream:
-    return replace(
-        stream, amounts={name: share * amount for name, amount in stream.amounts.items()}
     )
 
 

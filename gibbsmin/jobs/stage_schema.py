@@ -41,13 +41,16 @@ def _pressure(given: object, info: ValidationInfo) -> float:
     return read_pressure(given, site_pressure(info))
 
 
-def _text(given: object) -> str:
+def read_text(given: object) -> str:
+    """Text that is not empty."""
     if not isinstance(given, str) or not given.strip():
         raise InputError(f"found {shown(given)}", "accepted is text")
     return given.strip()
 
 
-def _word(*accepted: str) -> BeforeValidator:
+def word(*accepted: str) -> BeforeValidator:
+    """One of these words."""
+
     def read(given: object) -> object:
         if given not in accepted:
             words = " or ".join(f'"{word}"' for word in accepted)
@@ -118,9 +121,9 @@ class SpeciesTable(Table):
 class ApproachTable(Table):
     """``[[stage.approach]]``: one named reaction and its distance from equilibrium."""
 
-    reaction: Annotated[str, BeforeValidator(_text)] = MISSING
+    reaction: Annotated[str, BeforeValidator(read_text)] = MISSING
     approach: Annotated[float, BeforeValidator(read_temperature_difference)] = MISSING
-    key: Annotated[str, BeforeValidator(_text)] | None = None
+    key: Annotated[str, BeforeValidator(read_text)] | None = None
 
 
 class OutletTable(Table):
@@ -128,13 +131,13 @@ class OutletTable(Table):
 
     temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
     heat: Annotated[Measure | None, BeforeValidator(read_heat)] = None
-    entropy: Annotated[Literal["feed"] | None, _word("feed")] = None
+    entropy: Annotated[Literal["feed"] | None, word("feed")] = None
     pressure: Annotated[float | None, BeforeValidator(_pressure)] = None
     pressure_drop: Annotated[float | None, BeforeValidator(read_pressure)] = None
     volume: Annotated[float | None, BeforeValidator(read_volume)] = None
     boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
     surroundings_temperature: Temperature = REFERENCE_TEMPERATURE
-    reactions: Annotated[Literal["equilibrium", "none"], _word("equilibrium", "none")] = (
+    reactions: Annotated[Literal["equilibrium", "none"], word("equilibrium", "none")] = (
         "equilibrium"
     )
     condense: Names = ()
@@ -143,7 +146,7 @@ class OutletTable(Table):
         Mapping[str, tuple[float, str]], _each(_held, '{ CH4 = "0.5 % dry" }')
     ] = NOTHING
     approach: Annotated[tuple[ApproachTable, ...], BeforeValidator(_tables)] = ()
-    others: Annotated[Literal["equilibrium", "frozen"], _word("equilibrium", "frozen")] = (
+    others: Annotated[Literal["equilibrium", "frozen"], word("equilibrium", "frozen")] = (
         "equilibrium"
     )
     offset: Annotated[
@@ -179,6 +182,6 @@ class OutletTable(Table):
 class StageTable(OutletTable):
     """``[[stage]]``: one stage of a train."""
 
-    name: Annotated[str, BeforeValidator(_text)] = MISSING
+    name: Annotated[str, BeforeValidator(read_text)] = MISSING
     feeds: Names | None = None
     species: SpeciesTable | None = None

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import os
 import tempfile
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -89,11 +89,16 @@ def write_csv(path: Path, table: pd.DataFrame) -> None:
 
 def harmless(table: pd.DataFrame) -> pd.DataFrame:
     """The table with an apostrophe before any text that a spreadsheet would run as a formula."""
-    return table.map(
-        lambda cell: (
-            f"'{cell}" if isinstance(cell, str) and cell.startswith(_FORMULA_STARTS) else cell
-        )
-    )
+    return table.map(lambda cell: _harmless_text(cell) if isinstance(cell, str) else cell)
+
+
+def harmless_names(names: Iterable[str]) -> list[str]:
+    """Names of columns, made harmless like cells."""
+    return [_harmless_text(name) for name in names]
+
+
+def _harmless_text(text: str) -> str:
+    return f"'{text}" if text.startswith(_FORMULA_STARTS) else text
 
 
 def _dump(path: Path, text: str) -> None:

@@ -72,6 +72,13 @@ _AMOUNT_DIMENSIONS = frozenset(
 _AMOUNT = _Kind(
     _AMOUNT_DIMENSIONS, 'accepted is an amount or a flow such as "100 kmol/h", "2 t" or "50 Nm3/h"'
 )
+_NAMED = {
+    "temperature": _TEMPERATURE,
+    "pressure": _PRESSURE,
+    "pressure_drop": _PRESSURE,
+    "heat": _HEAT,
+    "volume": _VOLUME,
+}
 _AMOUNT_UNIT = _Kind(
     _AMOUNT_DIMENSIONS, 'accepted is a unit of amount or flow such as "kmol/h", "t" or "Nm3/h"'
 )
@@ -106,6 +113,22 @@ def read_pressure(given: object, site_pressure: float = STANDARD_ATMOSPHERE) -> 
     if pascal <= 0.0:
         raise UnitError(f"found {shown(given)}, which is not above vacuum", _PRESSURE.accepted)
     return pascal
+
+
+def read_quantity(given: object, name: str, site_pressure: float = STANDARD_ATMOSPHERE) -> Measure:
+    """A temperature, pressure, pressure_drop, heat or volume, with the unit it is written in.
+
+    Raises
+    ------
+    UnitError
+        for what is none, and for another name.
+    """
+    if name not in _NAMED:
+        raise UnitError(
+            f'found "{name}", which is no quantity with a unit',
+            f"accepted is one of {', '.join(_NAMED)}",
+        )
+    return _measure(given, _NAMED[name], 0.0 if name == "pressure_drop" else site_pressure)
 
 
 def read_heat(given: object) -> Measure:

@@ -248,7 +248,7 @@ def test_composition_of_air_sums_to_one() -> None:
             "oulet",
             {},
             'oulet: found an unknown key (nearest: "outlet"); '
-            "accepted is title, site_pressure, feed, outlet, stage or species.",
+            "accepted is title, site_pressure, feed, outlet, stage, species or axis.",
         ),
         (
             "feed/gas/temperature",

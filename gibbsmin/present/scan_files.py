@@ -1,0 +1,78 @@
+"""A scan's table as a file, written block by block: .csv, .parquet or .xlsx."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from gibbsmin.errors import OutputError
+from gibbsmin.present.files import harmless_names, output_suffix, write_tables, write_whole
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+ENDINGS = (".csv", ".parquet", ".xlsx")
+_SHEET_ROWS = 1_048_575
+
+
+def require_scan_ending(path: Path) -> str:
+    """The file's ending, refused before any work is done where no scan can be written so."""
+    suffix = output_suffix(path, ENDINGS)
+    if suffix == ".parquet":
+        try:
+            import pyarrow  # noqa: F401 an extra that may be missing
+        except ImportError:
+            raise OutputError(
+                "found no pyarrow, which writes .parquet",
+                "accepted is .csv, or an installation with gibbsmin[parquet]",
+                file=str(path),
+            ) from None
+    return suffix
+
+
+def write_scan(blocks: Iterator[pd.DataFrame], path: Path) -> None:
+    """Write the blocks of a scan one after another; the file appears whole or not at all."""
+    suffix = require_scan_ending(path)
+    if suffix == ".xlsx":
+        _write_workbook(blocks, path)
+    elif suffix == ".csv":
+        write_whole(path, lambda scratch: _fill_csv(blocks, scratch))
+    else:
+        write_whole(path, lambda scratch: _fill_parquet(blocks, scratch))
+
+
+def _write_workbook(blocks: Iterator[pd.DataFrame], path: Path) -> None:
+    import pandas as pd
+
+    table = pd.concat(blocks, ignore_index=True)
+    if len(table) > _SHEET_ROWS:
+        raise OutputError(
+            f"found {len(table)} states, more than a sheet can hold",
+            f"accepted are at most {_SHEET_ROWS}, or .csv or .parquet",
+            file=str(path),
+        )
+    table.columns = harmless_names(table.columns)
+    write_tables(path, {"scan": table})
+
+
+def _fill_csv(blocks: Iterator[pd.DataFrame], path: Path) -> None:
+    for index, block in enumerate(blocks):
+        # The cells are numbers and our own words; only the names above them are the user's.
+        block.columns = harmless_names(block.columns)
+        block.to_csv(path, mode="a", header=index == 0, index=False)
+
+
+def _fill_parquet(blocks: Iterator[pd.DataFrame], path: Path) -> None:
+    import pyarrow as pa
+    import pyarrow.parquet as pq
+
+    writer: Any = None
+    try:
+        for block in blocks:
+            rows = pa.Table.from_pandas(block, preserve_index=False)
+            writer = writer or pq.ParquetWriter(path, rows.schema)
+            writer.write_table(rows)
+    finally:
+        if writer is not None:
+            writer.close()

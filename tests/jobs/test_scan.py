@@ -1,0 +1,207 @@
+"""Scans: rows equal single predictions, ratios are met, failing states leave the others alone."""
+
+from __future__ import annotations
+
+from copy import deepcopy
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+import pandas as pd
+import pytest
+from typer.testing import CliRunner
+
+import gibbsmin
+from gibbsmin.cli import app
+from gibbsmin.errors import InputError
+
+CASE: dict[str, Any] = {
+    "feed": {
+        "gas": {
+            "temperature": "520 degC",
+            "pressure": "30 bar",
+            "unit": "kmol/h",
+            "amounts": {"CH4": 100, "N2": 2},
+        },
+        "steam": {
+            "temperature": "520 degC",
+            "pressure": "30 bar",
+            "unit": "kmol/h",
+            "amounts": {"H2O": 300},
+        },
+    },
+    "outlet": {"temperature": "850 degC", "pressure": "25 bar"},
+    "species": {"consider": ["CH4", "H2O", "CO", "CO2", "H2", "N2", "C(graphite)"]},
+}
+TEMPERATURES = {"vary": "outlet.temperature", "first": "600 degC", "last": "900 degC", "count": 4}
+STEAM = {"ratio": "H2O/C", "scale": "steam", "values": [0.8, 1.5, 3.0]}
+
+
+def with_axes(*axes: dict[str, Any], **changes: Any) -> dict[str, Any]:
+    return {**deepcopy(CASE), **changes, "axis": list(axes)}
+
+
+def scan(tables: dict[str, Any]) -> pd.DataFrame:
+    return gibbsmin.scan(gibbsmin.load_case(tables))
+
+
+def test_rows_are_the_grid_and_equal_single_predictions() -> None:
+    table = scan(with_axes(STEAM, TEMPERATURES))
+    assert table["H2O/C"].tolist() == [r for r in (0.8, 1.5, 3.0) for _ in range(4)]
+    assert table["outlet.temperature, degC"].tolist() == [600.0, 700.0, 800.0, 900.0] * 3
+    for row in (0, 5, 11):
+        single = deepcopy(CASE)
+        single["feed"]["steam"]["amounts"]["H2O"] = 100 * table["H2O/C"][row]
+        single["outlet"]["temperature"] = f"{table['outlet.temperature, degC'][row]} degC"
+        stage = gibbsmin.predict(gibbsmin.load_case(single)).final
+        for record, y, n in zip(stage.records, stage.mole_fractions, stage.amounts, strict=True):
+            gas = record.phase.value == "gas"
+            column = f"y {record.name}" if gas else f"amount {record.name}, mol"
+            assert table[column][row] == pytest.approx(y if gas else n, rel=1e-10, abs=1e-14)
+        assert table["heat, kW"][row] == pytest.approx(stage.heat / 1e3, rel=1e-10)
+        assert table["entropy generation, kW/K"][row] == pytest.approx(
+            stage.entropy.value / 1e3, rel=1e-9
+        )
+        for name, conversion in stage.conversion.items():
+            found = table[f"conversion {name}"][row]
+            assert found == pytest.approx(conversion, rel=1e-9, abs=1e-12)
+
+
+def test_carbon_comes_with_little_steam_and_goes_with_much() -> None:
+    table = scan(with_axes({**STEAM, "values": [0.5, 3.0]}))
+    assert table["amount C(graphite), mol"][0] > 0.0
+    assert table["amount C(graphite), mol"][1] == 0.0
+
+
+def test_blocks_are_the_whole_in_pieces() -> None:
+    case = gibbsmin.load_case(with_axes(STEAM, TEMPERATURES))
+    pieces = list(gibbsmin.scan_blocks(case, block=5))
+    assert [len(piece) for piece in pieces] == [5, 5, 2]
+    whole = gibbsmin.scan(case)
+    together = pd.concat(pieces, ignore_index=True)
+    numbers = whole.select_dtypes("number").columns
+    # the warm start of a block depends on its neighbours; the answers do not
+    np.testing.assert_allclose(together[numbers], whole[numbers], rtol=1e-9, atol=1e-12)
+
+
+def test_a_logarithmic_axis_and_an_amount() -> None:
+    pressures = {
+        "vary": "outlet.pressure", "first": "1 bar", "last": "100 bar", "count": 3,
+        "spacing": "logarithmic",
+    }  # fmt: skip
+    nitrogen = {"vary": "feed.gas.amounts.N2", "values": [0, 4]}
+    table = scan(with_axes(pressures, nitrogen))
+    assert table["outlet.pressure, bar"].tolist() == [1.0, 1.0, 10.0, 10.0, 100.0, 100.0]
+    assert table["feed.gas.amounts.N2, kmol/h"].tolist() == [0.0, 4.0] * 3
+    assert (table["y N2(g)"].to_numpy()[::2] == 0.0).all()
+    assert (table["y N2(g)"].to_numpy()[1::2] > 0.0).all()
+
+
+def test_a_state_that_fails_is_a_row_of_its_own() -> None:
+    heats = {"vary": "outlet.heat", "values": ["5 MW", "-500 MW", "6 MW"]}
+    table = scan(with_axes(heats, outlet={"heat": "0 kW", "pressure": "25 bar"}))
+    assert table["status"].tolist() == ["certified", "invalid", "certified"]
+    assert table["temperature, K"].isna().tolist() == [False, True, False]
+    assert table["heat, kW"].isna().tolist() == [False, True, False]
+
+
+def test_a_train_has_each_stages_columns() -> None:
+    stages = [
+        {"name": "bed", "heat": "0 kW", "pressure": "28 bar"},
+        {"name": "cooler", "temperature": "300 degC", "pressure": "27 bar", "reactions": "none"},
+    ]
+    tables = with_axes({"vary": "feed.steam.temperature", "values": ["400 degC", "600 degC"]})
+    del tables["outlet"]
+    table = scan({**tables, "stage": stages})
+    assert table["bed: temperature, K"].is_monotonic_increasing
+    np.testing.assert_allclose(table["cooler: y CH4(g)"], table["bed: y CH4(g)"], rtol=1e-12)
+
+
+@pytest.mark.parametrize("ending", ["csv", "parquet", "xlsx"])
+def test_files_hold_the_table(tmp_path: Path, ending: str) -> None:
+    case = tmp_path / "case.toml"
+    case.write_text(TOML, encoding="utf-8")
+    out = tmp_path / f"table.{ending}"
+    result = CliRunner().invoke(app, ["scan", str(case), "--out", str(out)])
+    assert (result.exit_code, result.stderr) == (0, "")
+    assert result.stdout == f"3 states written to {out}.\n"
+    read = {"csv": pd.read_csv, "parquet": pd.read_parquet, "xlsx": pd.read_excel}[ending]
+    expected = gibbsmin.scan(gibbsmin.load_case(case))
+    pd.testing.assert_frame_equal(
+        read(out), expected, check_dtype=False, rtol=1e-12, check_exact=False
+    )
+    assert sorted(path.name for path in tmp_path.iterdir()) == ["case.toml", out.name]
+
+
+TOML = """
+[feed.gas]
+temperature = "300 K"
+pressure = "1 bar"
+unit = "mol"
+amounts = { N2O4 = 1 }
+[outlet]
+temperature = "300 K"
+pressure = "1 bar"
+[species]
+consider = ["N2O4", "NO2"]
+[[axis]]
+vary = "outlet.temperature"
+values = ["300 K", "320 K", "340 K"]
+"""
+
+
+@pytest.mark.parametrize(
+    ("axis", "sentence"),
+    [
+        (
+            {**TEMPERATURES, "vary": "outlet.temprature"},
+            'axis.0.values: found "temprature", which is no quantity with a unit; accepted is one '
+            "of temperature, pressure, pressure_drop, heat, volume.",
+        ),
+        (
+            {**TEMPERATURES, "vary": "stage.bed.temperature"},
+            'axis.stage.bed.temperature: found "stage.bed.temperature", which names no number of '
+            "the case; accepted is a number of outlet, feed.gas, feed.steam, such as "
+            "outlet.temperature.",
+        ),
+        (
+            {**TEMPERATURES, "first": "600 bar"},
+            'axis.0.values: found "600 bar", which is a pressure; accepted is a temperature such '
+            'as "850 degC" or "1123 K".',
+        ),
+        (
+            {**TEMPERATURES, "last": "1200 K"},
+            'axis.0.values: found values in "degC" and in another unit; accepted is one unit in '
+            "an axis.",
+        ),
+        (
+            {**STEAM, "ratio": "H2O/S"},
+            'axis.H2O/S: found a ratio "H2O/S" that no amount of "steam" can meet; accepted is a '
+            "ratio whose denominator is fed, and a stream that moves it.",
+        ),
+        (
+            {**STEAM, "scale": "oil"},
+            'axis.H2O/C: found "oil" to be scaled, which is no stream; accepted is one of gas, '
+            "steam.",
+        ),
+        (
+            {"vary": "outlet.temperature", "first": "600 degC"},
+            "axis.0.values: found first; accepted is values, or first, last and count.",
+        ),
+        ({"values": [1]}, "axis.0.vary: found neither; accepted is vary or ratio."),
+        (
+            {**TEMPERATURES, "count": 1},
+            "axis.0.count: found 1; accepted is a whole number from 2.",
+        ),
+    ],
+)
+def test_faults_of_axes_read_as_one_sentence(axis: dict[str, Any], sentence: str) -> None:
+    with pytest.raises(InputError) as caught:
+        scan(with_axes(axis))
+    assert str(caught.value) == sentence
+
+
+def test_a_case_without_an_axis() -> None:
+    with pytest.raises(InputError) as caught:
+        scan(deepcopy(CASE))
+    assert str(caught.value) == "axis: found no axis; accepted is at least one [[axis]] table."
