@@ -128,7 +128,9 @@ class PropertyTable:
         self, kernel: Callable[[FloatArray, IntArray], FloatArray], T: npt.ArrayLike
     ) -> FloatArray:
         T = _checked(T)
-        column = T.reshape(-1, 1)
+        # A grid repeats its temperatures: each is evaluated once.
+        distinct, places = np.unique(T, return_inverse=True)
+        column = distinct.reshape(-1, 1)
         S = len(self.records)
         first = np.arange(S) * (len(self.breaks) + 1)
         result = np.empty((column.size, S))
@@ -139,7 +141,7 @@ class PropertyTable:
             for start in self.breaks:
                 piece += block >= start
             result[begin : begin + step] = kernel(block, piece)
-        return result.reshape((*T.shape, S))
+        return result[places].reshape((*T.shape, S))
 
 
 def _checked(T: npt.ArrayLike) -> FloatArray:
