@@ -47,6 +47,7 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
     )
     certified = status is Status.CERTIFIED
     entropy = _entropy_generation(stage, states.energy)
+    activities = element_activities(model, state, library) if certified else ()
     left_out = stage.chemistry.selection.leave_out
     entries = audit(model, state, library, left_out) if certified else ()
     removed = {
@@ -69,8 +70,18 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
         heat=float(states.energy.heat[0]),
         shaft_work=float(states.energy.shaft_work[0]),
         entropy=entropy,
-        activities=element_activities(model, state, library) if certified else (),
-        figures=figures_of(states) if certified else (),
+        activities=activities,
+        figures=(
+            figures_of(
+                states,
+                activities,
+                stage.surroundings_temperature,
+                step.streams[0].is_flow,
+                library,
+            )
+            if certified
+            else ()
+        ),
         audit=entries,
         warnings=warnings(model, step.streams, state, entries, entropy.remark, status),
         notes=_notes(model, state, found),

@@ -357,3 +357,34 @@ def test_adiabatic_bed_with_an_approach() -> None:
     free = deepcopy(tables)
     del free["stage"][0]["approach"]
     assert 600.0 < stage.temperature < only(free).temperature
+
+
+def test_figures_of_the_trade() -> None:
+    tables = case(
+        {
+            "gas": stream({"CH4": 1.0, "SO2": 0.002}, "500 K", "1 bar"),
+            "air": stream({"O2": 2.4, "N2": 9.0, "SO3": 0.0005}, "300 K", "1 bar"),
+        },
+        {"temperature": "450 K", "pressure": "1 bar"},
+        consider=["CO2", "H2O", "O2", "N2", "SO2(g)", "SO3(g)"],
+    )
+    tables["stage"][0]["species"] = {
+        "consider": ["CO2", "H2O(g)", "O2", "N2", "SO2(g)", "SO3(g)"],
+        "inert": ["SO2(g)", "SO3(g)"],
+    }
+    stage = only(tables)
+    figures = {figure.name: figure.value for figure in stage.figures}
+    assert figures["air ratio, fed"] == pytest.approx(1.2, rel=0.01)
+    # 16 % water at 1 bar: 55.3 °C in the steam tables (recalled); 40 ppm SO3 lies some 80 K above that,
+    # common practice
+    assert figures["water dew point"] == pytest.approx(55.3, abs=1.0)
+    assert 130.0 < figures["acid dew point (Verhoff and Banchero)"] < 160.0
+    assert "H2/CO" not in figures
+    outlet = only(REFORMER)
+    reformed = {figure.name: figure.value for figure in outlet.figures}
+    assert reformed["steam to carbon, fed"] == pytest.approx(3.0, rel=1e-12)
+    y = dict(zip((r.name for r in outlet.records), outlet.mole_fractions, strict=True))
+    assert reformed["H2/CO"] == pytest.approx(y["H2(g)"] / y["CO(g)"], rel=1e-12)
+    assert reformed["(H2 − CO2)/(CO + CO2)"] == pytest.approx(
+        (y["H2(g)"] - y["CO2(g)"]) / (y["CO(g)"] + y["CO2(g)"]), rel=1e-12
+    )
