@@ -4,13 +4,15 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Literal, TypeVar
+from typing import TYPE_CHECKING, TypeVar
 
 from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.case_feed import placed, resolve
+from gibbsmin.jobs.case_selection import proposed, read_selection
 from gibbsmin.reactor.approach import Approach
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry, HeldFraction
+from gibbsmin.reactor.services import Service, find_service
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
@@ -51,6 +53,8 @@ class StageCase:
         Share of each record that is taken out of the outlet.
     own_species
         Whether it names its candidates itself, in place of the case's.
+    service
+        The trade's proposal that it follows where the case does not say otherwise.
     """
 
     name: str
@@ -63,6 +67,7 @@ class StageCase:
     bypass: float
     removed: Mapping[str, float]
     own_species: bool = False
+    service: Service | None = None
 
 
 def read_stages(
@@ -117,7 +122,12 @@ def _stage(
     library: Library,
 ) -> StageCase:
     selection_key = "species" if species is None else f"{key}.species"
-    selection = _selection(selection_key, species or table.species, library)
+    given = species or table.species
+    selection = read_selection(selection_key, given, library)
+    service = None
+    if stage.service is not None:
+        service = _service(f"{key}.service", stage.service)
+        selection = proposed(service, given.model_fields_set, selection)
     return StageCase(
         name=name,
         key=key,
@@ -129,7 +139,16 @@ def _stage(
         bypass=stage.bypass,
         removed=_by_record(f"{key}.remove", stage.remove, library),
         own_species=species is not None,
+        service=service,
     )
+
+
+def _service(key: str, name: str) -> Service:
+    try:
+        return find_service(name)
+    except InputError as error:
+        error.key = key
+        raise
 
 
 def _specification(key: str, stage: OutletTable, stream: Stream) -> Specification:
@@ -205,46 +224,9 @@ def _form(text: str, forms: Sequence[Species]) -> str:
     )
 
 
-def _selection(key: str, table: SpeciesTable, library: Library) -> Selection:
-    """The candidates' names as records, each in one list only."""
-    consider: Literal["all"] | tuple[str, ...] = "all"
-    if table.consider != "all":
-        consider = _record_names(f"{key}.consider", table.consider, library)
-    leave_out = _record_names(f"{key}.leave_out", table.leave_out, library)
-    inert = _record_names(f"{key}.inert", table.inert, library)
-    _refuse_both(f"{key}.leave_out", leave_out, f"{key}.inert", inert)
-    if consider != "all":
-        _refuse_both(f"{key}.leave_out", leave_out, f"{key}.consider", consider)
-    return Selection(consider=consider, leave_out=leave_out, inert=inert)
-
-
 def _by_record(key: str, values: Mapping[str, Value], library: Library) -> dict[str, Value]:
     found = {}
     for text, value in values.items():
         with placed(f"{key}.{text}"):
             found[resolve(text, library).name] = value
     return found
-
-
-def _record_names(key: str, texts: tuple[str, ...], library: Library) -> tuple[str, ...]:
-    written: dict[str, str] = {}
-    with placed(key):
-        for text in texts:
-            name = resolve(text, library).name
-            if name in written:
-                raise InputError(
-                    f'found {name} twice, as "{written[name]}" and as "{text}"',
-                    "accepted is each record once",
-                )
-            written[name] = text
-    return tuple(written)
-
-
-def _refuse_both(key: str, names: tuple[str, ...], other_key: str, others: tuple[str, ...]) -> None:
-    for name in names:
-        if name in others:
-            raise InputError(
-                f'found "{name}", which {other_key} lists too',
-                "accepted is a record in one of the two",
-                key=key,
-            )

@@ -84,7 +84,7 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
         ),
         audit=entries,
         warnings=warnings(model, step.streams, state, entries, entropy.remark, status),
-        notes=_notes(model, state, found),
+        notes=(*_service_notes(stage), *_notes(model, state, found)),
         hazards=outlet_hazards(model, state.amounts),
     )
 
@@ -157,6 +157,24 @@ def conversion(inlet: Inlet, records: Sequence[Species], outlet: FloatArray) -> 
         for record in inlet.records
         if entering[record.formula] > _TRACE * inlet.amounts[0].sum()
     }
+
+
+def _service_notes(stage: StageCase) -> tuple[str, ...]:
+    """What the trade proposes for the service, so that the user may overrule it."""
+    service = stage.service
+    if service is None:
+        return ()
+    selection = stage.chemistry.selection
+    considered = selection.consider if selection.consider != "all" else ("all",)
+    parts = [f"considered are {', '.join(considered)}"]
+    if selection.inert_where_fed:
+        parts.append(f"inert where fed {', '.join(selection.inert_where_fed)}")
+    if service.key_reactions:
+        parts.append(f"key reactions {'; '.join(service.key_reactions)}")
+    if service.carbon_routes:
+        parts.append(f"carbon routes {'; '.join(service.carbon_routes)}")
+    sources = ", ".join(dict.fromkeys(service.sources.values()))
+    return (f"Service {service.name} ({sources}): {', '.join(parts)}.",)
 
 
 def _notes(model: StageModel, state: SolvedState, found: Equilibria) -> tuple[str, ...]:

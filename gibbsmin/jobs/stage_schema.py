@@ -135,6 +135,7 @@ class OutletTable(Table):
     pressure: Annotated[float | None, BeforeValidator(_pressure)] = None
     pressure_drop: Annotated[float | None, BeforeValidator(read_pressure)] = None
     volume: Annotated[float | None, BeforeValidator(read_volume)] = None
+    service: Annotated[str, BeforeValidator(read_text)] | None = None
     boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
     surroundings_temperature: Temperature = REFERENCE_TEMPERATURE
     reactions: Annotated[Literal["equilibrium", "none"], word("equilibrium", "none")] = (

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from dataclasses import dataclass
 from typing import Literal
 
@@ -17,12 +17,20 @@ class Selection:
     """The user's choice of candidates, as record names.
 
     ``consider`` is ``"all"`` (every library record of the feed's elements but ions and superseded
-    forms) or a list; ``leave_out`` is taken away from it; ``inert`` passes through unchanged.
+    forms) or a list; ``leave_out`` is taken away from it; ``inert`` passes through
+    unchanged, ``inert_where_fed`` only in a stage that it enters.
     """
 
     consider: Literal["all"] | tuple[str, ...] = "all"
     leave_out: tuple[str, ...] = ()
     inert: tuple[str, ...] = ()
+    inert_where_fed: tuple[str, ...] = ()
+
+    def inert_among(self, fed: Collection[str]) -> tuple[str, ...]:
+        """Records that pass unchanged: those named, and those proposed where they are fed."""
+        return tuple(
+            dict.fromkeys([*self.inert, *(name for name in self.inert_where_fed if name in fed)])
+        )
 
 
 def choose_candidates(
@@ -51,7 +59,7 @@ def choose_candidates(
                 f"accepted is a record of the feed: {', '.join(sorted(fed))}",
                 key="species.inert",
             )
-    considered += [library[name] for name in selection.inert]
+    considered += [library[name] for name in selection.inert_among(fed)]
     kept = [
         record
         for record in dict.fromkeys(considered)

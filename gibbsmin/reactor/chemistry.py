@@ -57,17 +57,6 @@ class Chemistry:
     offsets: Mapping[str, float] = field(default_factory=dict)
     activities: Mapping[str, float] = field(default_factory=dict)
 
-    @property
-    def unrestrained(self) -> bool:
-        """Whether the outlet is a full equilibrium of the candidates."""
-        return (
-            self.reactions == "equilibrium"
-            and not self.approaches
-            and not self.conversions
-            and not self.fractions
-            and not self.selection.inert
-        )
-
 
 def holds_of(
     chemistry: Chemistry, candidates: Sequence[Species], feed: Sequence[Species], library: Library
@@ -81,7 +70,7 @@ def holds_of(
     """
     names = {record.name for record in candidates}
     fed = {record.name for record in feed}
-    holds = [frozen(name) for name in chemistry.selection.inert if name in fed]
+    holds = [frozen(name) for name in chemistry.selection.inert_among(fed) if name in fed]
     for name, conversion in chemistry.conversions.items():
         if name not in fed:
             raise InputError(

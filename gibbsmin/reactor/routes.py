@@ -83,7 +83,12 @@ def routes_to(
             for j in np.flatnonzero(fits).tolist():
                 species = [present[i] for i in chosen]
                 found[j].append(_route(targets[j], species, shares[:, j].tolist(), values[j]))
-    return [tuple(sorted(routes, key=lambda route: -route.log_activity)) for routes in found]
+    return [tuple(sorted(routes, key=_rank)) for routes in found]
+
+
+def _rank(route: Route) -> tuple[float, int, str]:
+    """The most favourable first; routes that agree but for rounding, the plainest first."""
+    return -round(route.log_activity, 9), route.awkwardness, route.text
 
 
 def _main_species(amounts: FloatArray) -> list[int]:

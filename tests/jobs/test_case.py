@@ -240,9 +240,9 @@ def test_composition_of_air_sums_to_one() -> None:
             "outlet/x",
             1,
             "outlet.x: found an unknown key; accepted is temperature, heat, entropy, pressure, "
-            "pressure_drop, volume, boundary_temperature, surroundings_temperature, reactions, "
-            "condense, conversion, held_fraction, approach, others, offset, activity, remove or "
-            "bypass.",
+            "pressure_drop, volume, service, boundary_temperature, surroundings_temperature, "
+            "reactions, condense, conversion, held_fraction, approach, others, offset, activity, "
+            "remove or bypass.",
         ),
         (
             "oulet",

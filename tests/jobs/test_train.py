@@ -375,7 +375,7 @@ def test_figures_of_the_trade() -> None:
     stage = only(tables)
     figures = {figure.name: figure.value for figure in stage.figures}
     assert figures["air ratio, fed"] == pytest.approx(1.2, rel=0.01)
-    # 16 % water at 1 bar: 55.3 °C in the steam tables (recalled); 40 ppm SO3 lies some 80 K above that,
+    # 16 % water at 1 bar: 55.3 °C in the steam tables (recalled); 40 ppm SO3 lies some 80 K above,
     # common practice
     assert figures["water dew point"] == pytest.approx(55.3, abs=1.0)
     assert 130.0 < figures["acid dew point (Verhoff and Banchero)"] < 160.0
@@ -387,4 +387,27 @@ def test_figures_of_the_trade() -> None:
     assert reformed["H2/CO"] == pytest.approx(y["H2(g)"] / y["CO(g)"], rel=1e-12)
     assert reformed["(H2 − CO2)/(CO + CO2)"] == pytest.approx(
         (y["H2(g)"] - y["CO2(g)"]) / (y["CO(g)"] + y["CO2(g)"]), rel=1e-12
+    )
+
+
+def test_a_service_proposes_what_the_case_leaves_open() -> None:
+    tables = deepcopy(REFORMER)
+    tables["stage"][0]["service"] = "steam reforming"
+    del tables["species"]
+    stage = only(tables)
+    names = [record.name for record in stage.records]
+    assert {"CH4(g)", "CO(g)", "H2(g)", "C(graphite)", "N2(g)"} <= set(names)
+    assert stage.notes[0].startswith("Service steam reforming (common practice): considered are")
+    given = deepcopy(REFORMER)
+    given["stage"][0]["service"] = "steam reforming"
+    assert [record.name for record in only(given).records] == [
+        "CH4(g)", "H2O(g)", "CO(g)", "CO2(g)", "H2(g)", "N2(g)",
+    ]  # fmt: skip
+
+
+def test_a_service_that_does_not_exist() -> None:
+    with pytest.raises(InputError) as caught:
+        only(reformer(service="steam reformin"))
+    assert str(caught.value) == (
+        'stage.0.service: found the service "steam reformin"; accepted is one of steam reforming.'
     )
