@@ -74,5 +74,6 @@ def test_fractions_ignore_the_scale_of_supplies_and_shifts_along_rows(
 
 def _energy(programme: Programme, amounts: np.ndarray) -> float:
     gas = programme.gas & (amounts > 0)
-    mixing = amounts[gas] @ np.log(amounts[gas] / amounts[gas].sum())
+    # A difference of logarithms, since the quotient of the smallest numbers is zero.
+    mixing = amounts[gas] @ (np.log(amounts[gas]) - np.log(amounts[gas].sum()))
     return float(programme.energies[0] @ amounts + mixing)
