@@ -18,7 +18,7 @@ from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
-from gibbsmin.jobs.case_feed import resolve
+from gibbsmin.jobs.feed_parts import resolve
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 

@@ -10,7 +10,7 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.axis import Axis
-from gibbsmin.jobs.case_feed import moles_of, placed, resolve
+from gibbsmin.jobs.feed_parts import moles_of, placed, resolve
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
 from gibbsmin.units import (

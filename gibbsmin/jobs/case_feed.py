@@ -2,31 +2,20 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
-from contextlib import contextmanager
+from collections.abc import Mapping
 from typing import TYPE_CHECKING
 
-from gibbsmin.errors import InputError, UnitError, UnknownSpeciesError
+from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.compositions import compositions
+from gibbsmin.jobs.feed_analysis import analysed_amounts
+from gibbsmin.jobs.feed_parts import moles_of, placed, resolve
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.species import Phase, Species
-from gibbsmin.units import Dimension, Measure, Unit, read_amount, read_amount_unit, shown
+from gibbsmin.thermo.species import Species
+from gibbsmin.units import Measure, Unit, read_amount, read_amount_unit
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.case_schema import FeedTable
-
-_MASS = (Dimension.MASS, Dimension.MASS_FLOW)
-_NORMAL_VOLUME = (Dimension.NORMAL_VOLUME, Dimension.NORMAL_VOLUME_FLOW)
-
-
-@contextmanager
-def placed(key: str) -> Iterator[None]:
-    """Adds the key to the errors of what stands under it."""
-    try:
-        yield
-    except InputError as error:
-        raise error.at(key=key) from None
 
 
 def read_streams(tables: Mapping[str, FeedTable], library: Library) -> tuple[Stream, ...]:
@@ -48,31 +37,10 @@ def read_streams(tables: Mapping[str, FeedTable], library: Library) -> tuple[Str
     return streams
 
 
-def resolve(text: str, library: Library) -> Species:
-    """The record of a name, where a bare element such as C could not be its lone atom by mistake.
-
-    Raises
-    ------
-    UnknownSpeciesError
-        as the library does, and for a bare element symbol whose gas record is the single atom
-        though the element has liquid or solid records.
-    """
-    record = library.resolve(text)
-    forms = library.forms(record.formula)
-    if (
-        record.phase is Phase.GAS
-        and record.atoms == 1
-        and record.formula == text.strip()
-        and any(form.phase is not Phase.GAS for form in forms)
-    ):
-        raise UnknownSpeciesError(
-            f"found {shown(text)}, which could be single atoms in the gas or a condensed form",
-            f"accepted is one of {', '.join(form.name for form in forms)}",
-        )
-    return record
-
-
 def _read_stream(name: str, table: FeedTable, library: Library) -> Stream:
+    if table.analysis is not None and table.total is not None:
+        analysed, remarks = analysed_amounts(name, table, table.total, table.analysis, library)
+        return _stream(name, table, analysed, table.total.unit, remarks)
     measures = _measures(name, table)
     unit = table.unit or next(iter(measures.values())).unit
     amounts: dict[str, float] = {}
@@ -85,6 +53,16 @@ def _read_stream(name: str, table: FeedTable, library: Library) -> Stream:
                 _check_new(text, next(iter(parts)).name, written)
             for record, moles in moles_of(measure, parts).items():
                 amounts[record.name] = amounts.get(record.name, 0.0) + moles
+    return _stream(name, table, amounts, unit)
+
+
+def _stream(
+    name: str,
+    table: FeedTable,
+    amounts: Mapping[str, float],
+    unit: Unit,
+    remarks: tuple[str, ...] = (),
+) -> Stream:
     return Stream(
         name=name,
         temperature=table.temperature,
@@ -92,16 +70,18 @@ def _read_stream(name: str, table: FeedTable, library: Library) -> Stream:
         amounts=amounts,
         unit=unit.text,
         is_flow=unit.dimension.is_flow,
+        remarks=remarks,
     )
 
 
 def _measures(name: str, table: FeedTable) -> dict[str, Measure]:
     """The amounts as written, each with its own unit or in the stream's."""
-    if table.unit is None and not all(isinstance(given, str) for given in table.amounts.values()):
+    given_amounts = table.amounts or {}
+    if table.unit is None and not all(isinstance(given, str) for given in given_amounts.values()):
         with placed(f"feed.{name}.unit"):
             read_amount_unit(None)
     measures = {}
-    for text, given in table.amounts.items():
+    for text, given in given_amounts.items():
         with placed(f"feed.{name}.amounts.{text}"):
             measures[text] = read_amount(given, table.unit)
     return measures
@@ -131,21 +111,6 @@ def _parts(text: str, library: Library) -> dict[Species, float]:
     if mixture is None:
         return {resolve(text, library): 1.0}
     return {library[name]: fraction for name, fraction in mixture.items()}
-
-
-def moles_of(measure: Measure, parts: Mapping[Species, float]) -> dict[Species, float]:
-    """Moles of each part of a measured amount, whose mole fractions are given."""
-    total = measure.value
-    if measure.unit.dimension in _MASS:
-        total /= sum(fraction * record.molar_mass for record, fraction in parts.items())
-    if measure.unit.dimension in _NORMAL_VOLUME:
-        for record in parts:
-            if record.phase is not Phase.GAS:
-                raise UnitError(
-                    f'found "{measure.unit.text}" for {record.name}, which is a {record.phase}',
-                    "accepted is a molar amount or a mass",
-                )
-    return {record: total * fraction for record, fraction in parts.items()}
 
 
 def _kind(is_flow: bool) -> str:

@@ -7,7 +7,7 @@ from dataclasses import replace
 from typing import TYPE_CHECKING, Literal
 
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.case_feed import placed, resolve
+from gibbsmin.jobs.feed_parts import placed, resolve
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.services import Service
 from gibbsmin.thermo.library import Library

@@ -7,8 +7,8 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, TypeVar
 
 from gibbsmin.errors import InputError, UnitError
-from gibbsmin.jobs.case_feed import placed, resolve
 from gibbsmin.jobs.case_selection import proposed, read_selection
+from gibbsmin.jobs.feed_parts import placed, resolve
 from gibbsmin.reactor.approach import Approach
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry, HeldFraction

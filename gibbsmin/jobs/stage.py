@@ -84,7 +84,11 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
         ),
         audit=entries,
         warnings=warnings(model, step.streams, state, entries, entropy.remark, status),
-        notes=(*_service_notes(stage), *_notes(model, state, found)),
+        notes=(
+            *(remark for stream in step.streams for remark in stream.remarks),
+            *_service_notes(stage),
+            *_notes(model, state, found),
+        ),
         hazards=outlet_hazards(model, state.amounts),
     )
 

@@ -60,10 +60,12 @@ def word(*accepted: str) -> BeforeValidator:
     return BeforeValidator(read)
 
 
-def _each(read: Callable[[object], Any], example: str) -> BeforeValidator:
-    """A table of species, each value read alike."""
+def each(read: Callable[[object], Any], example: str) -> BeforeValidator:
+    """A table of species, each value read alike; nothing stays nothing."""
 
-    def values(given: object) -> Mapping[str, Any]:
+    def values(given: object) -> Mapping[str, Any] | None:
+        if given is None:
+            return None
         if not isinstance(given, Mapping):
             raise InputError(
                 f"found {shown(given)}", f"accepted is a table of species, such as {example}"
@@ -107,7 +109,7 @@ def _tables(given: object) -> tuple[Any, ...]:
 NOTHING: Any = Field(default_factory=dict)
 """A table that may be left away."""
 
-_Shares = Annotated[Mapping[str, float], _each(read_share, '{ CH4 = "80 %" }')]
+_Shares = Annotated[Mapping[str, float], each(read_share, '{ CH4 = "80 %" }')]
 
 
 class SpeciesTable(Table):
@@ -144,16 +146,16 @@ class OutletTable(Table):
     condense: Names = ()
     conversion: _Shares = NOTHING
     held_fraction: Annotated[
-        Mapping[str, tuple[float, str]], _each(_held, '{ CH4 = "0.5 % dry" }')
+        Mapping[str, tuple[float, str]], each(_held, '{ CH4 = "0.5 % dry" }')
     ] = NOTHING
     approach: Annotated[tuple[ApproachTable, ...], BeforeValidator(_tables)] = ()
     others: Annotated[Literal["equilibrium", "frozen"], word("equilibrium", "frozen")] = (
         "equilibrium"
     )
     offset: Annotated[
-        Mapping[str, float], _each(read_molar_energy, '{ "C(graphite)" = "5 kJ/mol" }')
+        Mapping[str, float], each(read_molar_energy, '{ "C(graphite)" = "5 kJ/mol" }')
     ] = NOTHING
-    activity: Annotated[Mapping[str, float], _each(_activity, '{ "C(graphite)" = 0.6 }')] = NOTHING
+    activity: Annotated[Mapping[str, float], each(_activity, '{ "C(graphite)" = 0.6 }')] = NOTHING
     remove: _Shares = NOTHING
     bypass: Annotated[float, BeforeValidator(read_share)] = 0.0
 

@@ -30,6 +30,8 @@ class Stream:
         The unit the user wrote the amounts in, for reports.
     is_flow
         Whether the amounts are per time.
+    remarks
+        What the result should say of how it was given.
     """
 
     name: str
@@ -38,3 +40,4 @@ class Stream:
     amounts: Mapping[str, Values]
     unit: str
     is_flow: bool
+    remarks: tuple[str, ...] = ()

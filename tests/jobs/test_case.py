@@ -234,7 +234,8 @@ def test_composition_of_air_sums_to_one() -> None:
             "feed/gas/temprature",
             "520 degC",
             'feed.gas.temprature: found an unknown key (nearest: "temperature"); '
-            "accepted is temperature, pressure, unit or amounts.",
+            "accepted is temperature, pressure, unit, amounts, total, analysis, basis, lumps, "
+            "water_dew_point or steam_ratio.",
         ),
         (
             "outlet/x",
