@@ -165,6 +165,7 @@ def _specification(key: str, stage: OutletTable, stream: Stream) -> Specificatio
     return Specification(
         temperature=stage.temperature,
         heat=heat,
+        heat_loss=stage.heat_loss,
         entropy_of_feed=stage.entropy == "feed",
         pressure=stage.pressure,
         pressure_drop=stage.pressure_drop,

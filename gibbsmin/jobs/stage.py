@@ -98,7 +98,9 @@ def _require_an_answer(stage: StageCase, states: StageStates, status: Status) ->
     specification = stage.specification
     if np.isnan(states.equilibria.temperature[0]):
         wanted, key = "the feed's entropy to be kept", "entropy"
-        if not specification.entropy_of_feed:
+        if specification.heat_loss is not None:
+            wanted, key = f"a heat loss of {100 * specification.heat_loss:g} %", "heat_loss"
+        elif not specification.entropy_of_feed:
             heat = 0.0 if specification.heat is None else float(specification.heat)
             wanted, key = f"a heat of {heat / 1e3:g} kJ (per second in a flow)", "heat"
         raise InputError(

@@ -22,7 +22,7 @@ from gibbsmin.units import (
     shown,
 )
 
-_OF_ENERGY = ("temperature", "heat", "entropy")
+_OF_ENERGY = ("temperature", "heat", "heat_loss", "entropy")
 _OF_ROOM = ("pressure", "pressure_drop", "volume")
 
 
@@ -133,6 +133,7 @@ class OutletTable(Table):
 
     temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
     heat: Annotated[Measure | None, BeforeValidator(read_heat)] = None
+    heat_loss: Annotated[float | None, BeforeValidator(read_share)] = None
     entropy: Annotated[Literal["feed"] | None, word("feed")] = None
     pressure: Annotated[float | None, BeforeValidator(_pressure)] = None
     pressure_drop: Annotated[float | None, BeforeValidator(read_pressure)] = None

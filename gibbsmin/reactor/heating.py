@@ -72,6 +72,12 @@ def heating_value(
     )
 
 
+def lower_heating_values(records: Sequence[Species], library: Library) -> FloatArray:
+    """Lower heating value of a mole of each record, J/mol, shape (S,); NaN where it has none."""
+    ones = np.eye(len(records))
+    return np.array([heating_value(records, one, library).lower for one in ones])
+
+
 def cold_gas_efficiency(product: HeatingValue, fuel: HeatingValue) -> float:
     """Lower heating value of the gas made over that of the fuel; NaN for a fuel that gives none.
 

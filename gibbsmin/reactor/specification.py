@@ -29,6 +29,7 @@ class Specification:
     ----------
     temperature : K
     heat : J or W into the stage; 0 is adiabatic
+    heat_loss : share of the feed's lower heating value that is lost
     entropy_of_feed : whether the stage is reversible and adiabatic
     pressure : Pa
     pressure_drop : Pa below the lowest feed's
@@ -37,6 +38,7 @@ class Specification:
 
     temperature: Values | None = None
     heat: Values | None = None
+    heat_loss: float | None = None
     entropy_of_feed: bool = False
     pressure: Values | None = None
     pressure_drop: Values | None = None

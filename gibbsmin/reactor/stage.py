@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import GAS_CONSTANT
+from gibbsmin.errors import InputError
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.energy import (
@@ -17,6 +18,7 @@ from gibbsmin.reactor.energy import (
     mixture_enthalpy,
     mixture_entropy,
 )
+from gibbsmin.reactor.heating import lower_heating_values
 from gibbsmin.reactor.inlet import Inlet, inlet_of
 from gibbsmin.reactor.model import StageModel, stage_model
 from gibbsmin.reactor.specification import Specification, solve
@@ -50,9 +52,30 @@ def solve_stage(
     """
     inlet = inlet_of(streams, library)
     model = stage_model(chemistry, inlet.records, library)
+    if specification.heat_loss is not None:
+        specification = replace(specification, heat=-_loss(specification.heat_loss, inlet, library))
     equilibria = solve(model, specification, inlet)
     energy = _energy_balance(specification, boundary_temperature, inlet, model, equilibria)
     return StageStates(inlet, model, equilibria, energy)
+
+
+def _loss(share: float, inlet: Inlet, library: Library) -> FloatArray:
+    """Heat lost in each state, as a share of what the feed would give by burning.
+
+    Raises
+    ------
+    InputError
+        when a record of the feed has no heating value.
+    """
+    values = lower_heating_values(inlet.records, library)
+    for record, value in zip(inlet.records, values.tolist(), strict=True):
+        if np.isnan(value):
+            raise InputError(
+                f'found "{record.name}" in the feed, which has no heating value to lose a share of',
+                "accepted is a heat in its place",
+                key="heat_loss",
+            )
+    return share * (inlet.amounts @ values)
 
 
 def _energy_balance(

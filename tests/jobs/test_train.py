@@ -256,8 +256,8 @@ def test_a_bypass_joins_the_outlet() -> None:
     [
         (
             {"heat": "0 kJ"},
-            "stage.0.heat: found heat beside temperature; accepted is one of temperature, heat "
-            "and entropy.",
+            "stage.0.heat: found heat beside temperature; accepted is one of temperature, heat, "
+            "heat_loss and entropy.",
         ),
         (
             {"pressure": None},
@@ -410,4 +410,29 @@ def test_a_service_that_does_not_exist() -> None:
         only(reformer(service="steam reformin"))
     assert str(caught.value) == (
         'stage.0.service: found the service "steam reformin"; accepted is one of steam reforming.'
+    )
+
+
+def test_a_loss_is_a_share_of_the_lower_heating_value() -> None:
+    tables = flame({"CH4": 1.0, "O2": 2.0, "N2": 7.52})
+    adiabatic = only(tables)
+    del tables["stage"][0]["heat"]
+    tables["stage"][0]["heat_loss"] = "10 %"
+    stage = only(tables)
+    # lower heating value of methane at 25 °C, 802.3 kJ/mol: ISO 6976:2016, recalled
+    assert stage.heat == pytest.approx(-80.23e3, rel=1e-3)
+    assert stage.temperature < adiabatic.temperature - 100.0
+
+
+def test_a_feed_without_a_heating_value_cannot_lose_a_share_of_it() -> None:
+    tables = case(
+        {"ore": stream({"Fe2O3(cr)": 1.0, "H2": 3.0}, "900 K")},
+        {"heat_loss": "5 %", "pressure": "1 atm"},
+        consider=["Fe(alpha)", "H2", "H2O(g)", "Fe2O3(cr)"],
+    )
+    with pytest.raises(InputError) as caught:
+        only(tables)
+    assert str(caught.value) == (
+        'stage.0.heat_loss: found "Fe2O3(cr)" in the feed, which has no heating value to lose a '
+        "share of; accepted is a heat in its place."
     )
