@@ -11,8 +11,8 @@ from gibbsmin.minimise.certificate import Certificate, certify
 from gibbsmin.minimise.closure import close_balance
 from gibbsmin.minimise.compiled import answer_batch
 from gibbsmin.minimise.conic import ConicProgramme
-from gibbsmin.minimise.coordinates import Reduced
 from gibbsmin.minimise.faces import Face, find_face
+from gibbsmin.minimise.newton import Reduced
 from gibbsmin.minimise.phases import polish
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings

@@ -12,9 +12,7 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.minimise.conic import Start
-from gibbsmin.minimise.coordinates import Reduced
-from gibbsmin.minimise.missing import Missing
-from gibbsmin.minimise.newton import Point, solve_gas
+from gibbsmin.minimise.newton import Point, Reduced, solve_gas
 from gibbsmin.minimise.tableau import cheapest_vertex, feasible_vertex, independent_columns
 
 _PRESENT = (1e-6, 1e-9, 1e-3)
@@ -53,17 +51,16 @@ def _with_gas(
         point = solve_gas(state, phases, multipliers, log_total)
         if point is None:
             return
-        if isinstance(point, Missing):
-            phases = np.sort(np.append(phases, point.phase))
-            multipliers = point.multipliers
-            continue
         held = point.amounts[phases]
-        if (held < 0).any():
+        if point.wanted is not None:
+            phases = np.sort(np.append(phases, point.wanted))
+            multipliers = point.multipliers
+        elif (held < 0).any():
             phases = np.delete(phases, np.argmin(held))
             if point.converged:
                 multipliers, log_total = point.multipliers, point.log_total
         elif point.converged:
-            forces = state.forces(point.multipliers)
+            forces = point.multipliers @ state.matrix - state.energies
             forces[state.gas] = -np.inf
             forces[phases] = -np.inf
             worst = int(np.argmax(forces))
