@@ -74,6 +74,8 @@ def test_fractions_ignore_the_scale_of_supplies_and_shifts_along_rows(
 
 def _energy(programme: Programme, amounts: np.ndarray) -> float:
     gas = programme.gas & (amounts > 0)
-    # A difference of logarithms, since the quotient of the smallest numbers is zero.
-    mixing = amounts[gas] @ (np.log(amounts[gas]) - np.log(amounts[gas].sum()))
-    return float(programme.energies[0] @ amounts + mixing)
+    energy = float(programme.energies[0] @ amounts)
+    if gas.any():
+        # A difference of logarithms, since the quotient of the smallest numbers is zero.
+        energy += float(amounts[gas] @ (np.log(amounts[gas]) - np.log(amounts[gas].sum())))
+    return energy
