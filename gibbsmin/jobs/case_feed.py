@@ -15,7 +15,7 @@ from gibbsmin.thermo.species import Species
 from gibbsmin.units import Measure, Unit, read_amount, read_amount_unit
 
 if TYPE_CHECKING:
-    from gibbsmin.jobs.case_schema import FeedTable
+    from gibbsmin.jobs.feed_schema import FeedTable
 
 
 def read_streams(tables: Mapping[str, FeedTable], library: Library) -> tuple[Stream, ...]:

@@ -16,7 +16,7 @@ from gibbsmin.thermo.species import Species
 from gibbsmin.units import Measure
 
 if TYPE_CHECKING:
-    from gibbsmin.jobs.case_schema import FeedTable
+    from gibbsmin.jobs.feed_schema import FeedTable
 
 _SPREAD = 0.005
 """An analysis may miss 100 % by this much; it is then scaled, and the result says so."""
