@@ -66,6 +66,27 @@ class Figure:
 
 
 @dataclass(frozen=True)
+class Extent:
+    """Extent of one reaction of an independent set, mol or mol/s of it as written."""
+
+    reaction: str
+    value: float
+
+
+@dataclass(frozen=True)
+class ElementYield:
+    """Where an element went: share of what was fed, and of what was converted, in a record.
+
+    The selectivity is 0 in a record that is used up, NaN where nothing is converted.
+    """
+
+    element: str
+    record: str
+    share: float
+    selectivity: float
+
+
+@dataclass(frozen=True)
 class StageOutlet:
     """One stage's outlet.
 
@@ -88,6 +109,8 @@ class StageOutlet:
     entropy : entropy generation and lost work
     activities : p(O2), a(C), … of the elements present
     figures : molar mass, density, heat capacities and what else follows from the state
+    extents : of an independent set of reactions
+    yields : where each element went
     audit : records that are not in the outlet, the most weighty first
     warnings, notes, hazards : sentences on what limits the figures, on how they came about, and
         on what is toxic or flammable in the outlet
@@ -109,6 +132,8 @@ class StageOutlet:
     entropy: EntropyGeneration
     activities: tuple[ElementActivity, ...]
     figures: tuple[Figure, ...]
+    extents: tuple[Extent, ...]
+    yields: tuple[ElementYield, ...]
     audit: tuple[AuditEntry, ...]
     warnings: tuple[str, ...]
     notes: tuple[str, ...]

@@ -58,7 +58,8 @@ def test_json_has_the_promised_keys(case: Path) -> None:
     assert set(stage) == {
         "name", "status", "method", "temperature_K", "pressure_bar", "certificate", "unit",
         "species", "removed", "conversion", "heat", "shaft_work", "entropy_generation", "lost_work",
-        "element_chemical_potentials", "activities", "figures", "warnings", "notes", "hazards",
+        "element_chemical_potentials", "activities", "figures", "extents", "extent_unit",
+        "yields", "warnings", "notes", "hazards",
         "audit",
     }  # fmt: skip
     assert set(stage["certificate"]) == {"gap", "balance", "stationarity"}
@@ -130,7 +131,14 @@ def test_files_hold_the_outlet(case: Path, tmp_path: Path, ending: str) -> None:
             assert [row["species"] for row in csv.DictReader(file)] == expected
     else:
         book = openpyxl.load_workbook(out)
-        assert book.sheetnames == ["composition", "figures", "audit", "remarks"]
+        assert book.sheetnames == [
+            "composition",
+            "figures",
+            "reactions",
+            "yields",
+            "audit",
+            "remarks",
+        ]
         names = [row[1] for row in book["composition"].iter_rows(min_row=2, values_only=True)]
         assert names == expected
     assert sorted(path.name for path in tmp_path.iterdir()) == ["case.toml", out.name]

@@ -10,6 +10,7 @@ from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import BalanceError, InputError
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.figures import figures_of
+from gibbsmin.jobs.happenings import extents_of, yields_of
 from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Method, Status
@@ -82,6 +83,8 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
             if certified
             else ()
         ),
+        extents=extents_of(states) if certified else (),
+        yields=yields_of(states) if certified else (),
         audit=entries,
         warnings=warnings(model, step.streams, state, entries, entropy.remark, status),
         notes=(

@@ -8,9 +8,10 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit
+from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
 from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
+from gibbsmin.units import to_unit
 
 
 def outlet_document(outlet: Outlet) -> dict[str, Any]:
@@ -94,6 +95,20 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
             {"name": figure.name, "value": figure.value, "unit": figure.unit}
             for figure in stage.figures
         ],
+        "extents": [
+            {"reaction": extent.reaction, "value": to_unit(extent.value, _moles(outlet))}
+            for extent in stage.extents
+        ],
+        "extent_unit": _moles(outlet),
+        "yields": [
+            {
+                "element": found.element,
+                "record": found.record,
+                "share": found.share,
+                "selectivity": found.selectivity,
+            }
+            for found in stage.yields
+        ],
         "warnings": list(stage.warnings),
         "notes": list(stage.notes),
         "hazards": list(stage.hazards),
@@ -104,6 +119,10 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
 def _removed(unit: str, stage: StageOutlet) -> FloatArray:
     records = [record for record in stage.records if record.name in stage.removed]
     return amounts_in(unit, records, np.array([stage.removed[r.name] for r in records]))
+
+
+def _moles(outlet: Outlet) -> str:
+    return molar_unit(outlet.unit, outlet.is_flow)
 
 
 def _audit_entry(entry: AuditEntry) -> dict[str, Any]:

@@ -8,8 +8,9 @@ from typing import TYPE_CHECKING
 
 from gibbsmin.present.files import output_suffix, write_csv, write_tables, write_text
 from gibbsmin.present.outlet_document import outlet_document
-from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit
+from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
+from gibbsmin.units import to_unit
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -42,6 +43,8 @@ def write_outlet(outlet: Outlet, path: Path) -> None:
             {
                 "composition": composition_table(outlet),
                 "figures": _figures(outlet),
+                "reactions": _reactions(outlet),
+                "yields": _yields(outlet),
                 "audit": _audit(outlet),
                 "remarks": _remarks(outlet),
             },
@@ -93,6 +96,29 @@ def _stage_figures(stage: StageOutlet, energy: str) -> list[tuple[str, float | s
         ("certificate: balance", stage.certificate.balance, "1"),
         ("certificate: stationarity", stage.certificate.stationarity, "RT"),
     ]
+
+
+def _reactions(outlet: Outlet) -> pd.DataFrame:
+    import pandas as pd
+
+    unit = molar_unit(outlet.unit, outlet.is_flow)
+    rows = [
+        (stage.name, extent.reaction, to_unit(extent.value, unit), unit)
+        for stage in outlet.stages
+        for extent in stage.extents
+    ]
+    return pd.DataFrame(rows, columns=["stage", "reaction", "extent", "unit"])
+
+
+def _yields(outlet: Outlet) -> pd.DataFrame:
+    import pandas as pd
+
+    rows = [
+        (stage.name, found.element, found.record, found.share, found.selectivity)
+        for stage in outlet.stages
+        for found in stage.yields
+    ]
+    return pd.DataFrame(rows, columns=["stage", "element", "record", "share", "selectivity"])
 
 
 def _audit(outlet: Outlet) -> pd.DataFrame:

@@ -15,6 +15,7 @@ from gibbsmin.present.quantities import (
     amounts_in,
     fraction,
     heat,
+    molar_unit,
     pressure,
     significant,
     temperature,
@@ -22,6 +23,7 @@ from gibbsmin.present.quantities import (
 from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 from gibbsmin.thermo.species import Phase
+from gibbsmin.units import to_unit
 
 _SHOWN_FROM = 1e-9
 _ROUTES_AGREE = 1e-6
@@ -34,6 +36,11 @@ def outlet_view(outlet: Outlet) -> RenderableType:
         parts += [_conditions(stage), Text("")]
         if stage.status is Status.CERTIFIED:
             parts += [_composition(outlet, stage), pairs(_lines(outlet, stage))]
+        if stage.extents:
+            parts += [
+                heading("Reactions, one set that tells all that happened"),
+                _extents(outlet, stage),
+            ]
         if stage.audit:
             parts += [heading("Not in the outlet, nearest to it first"), _audit(stage)]
         parts += sentences("Warnings", stage.warnings)
@@ -147,6 +154,12 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
         f"gap {proof.gap:.1e} RT per mole of atoms, balance {proof.balance:.1e}, "
         f"stationarity {proof.stationarity:.1e}",
     )
+
+
+def _extents(outlet: Outlet, stage: StageOutlet) -> RenderableType:
+    unit = molar_unit(outlet.unit, outlet.is_flow)
+    rows = [(extent.reaction, significant(to_unit(extent.value, unit))) for extent in stage.extents]
+    return table(("reaction", f"extent, {unit}"), rows, words=("reaction",))
 
 
 def _audit(stage: StageOutlet) -> RenderableType:

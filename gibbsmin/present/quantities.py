@@ -27,6 +27,13 @@ def amount_unit(unit: str, is_flow: bool) -> str:
     return "kmol/h" if is_flow else "kmol"
 
 
+def molar_unit(unit: str, is_flow: bool) -> str:
+    """The unit in which extents are reported: the user's where it counts moles, else kmol."""
+    if read_amount_unit(unit).dimension in _MOLAR:
+        return unit
+    return "kmol/h" if is_flow else "kmol"
+
+
 def amounts_in(unit: str, records: Sequence[Species], amounts: FloatArray) -> FloatArray:
     """Amounts (S,) in mol or mol/s, in a unit of moles or mass."""
     if read_amount_unit(unit).dimension in _MASS:

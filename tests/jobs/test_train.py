@@ -436,3 +436,21 @@ def test_a_feed_without_a_heating_value_cannot_lose_a_share_of_it() -> None:
         'stage.0.heat_loss: found "Fe2O3(cr)" in the feed, which has no heating value to lose a '
         "share of; accepted is a heat in its place."
     )
+
+
+def test_extents_and_where_the_carbon_went() -> None:
+    stage = only(REFORMER)
+    extents = {extent.reaction: extent.value for extent in stage.extents}
+    assert set(extents) == {
+        "CH4(g) + H2O(g) = CO(g) + 3 H2(g)",
+        "CO(g) + H2O(g) = CO2(g) + H2(g)",
+    }
+    reforming, shift = extents.values()
+    assert reforming == pytest.approx(1.0 - amount(stage, "CH4(g)"), rel=1e-12)
+    assert shift == pytest.approx(amount(stage, "CO2(g)"), rel=1e-12)
+    carbon = {found.record: found for found in stage.yields if found.element == "C"}
+    assert sum(found.share for found in carbon.values()) == pytest.approx(1.0, rel=1e-12)
+    assert carbon["CO(g)"].share == pytest.approx(amount(stage, "CO(g)"), rel=1e-12)
+    made = amount(stage, "CO(g)") + amount(stage, "CO2(g)")
+    assert carbon["CO2(g)"].selectivity == pytest.approx(amount(stage, "CO2(g)") / made, rel=1e-12)
+    assert carbon["CH4(g)"].selectivity == 0.0
