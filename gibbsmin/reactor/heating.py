@@ -17,10 +17,10 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_ATMOSPHERE
 from gibbsmin.reactor.balance import element_counts
+from gibbsmin.thermo.fuel import BURNT_TO
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Phase, Species
 
-_BURNT_TO: Final = {"C": "CO2(g)", "S": "SO2(g)", "N": "N2(g)", "O": "O2(g)", "Cl": "HCl(g)"}
 _UNBURNT: Final = ("He", "Ne", "Ar", "Kr", "Xe")
 _NORMAL_MOLAR_VOLUME: Final = GAS_CONSTANT * 273.15 / STANDARD_ATMOSPHERE
 
@@ -55,13 +55,13 @@ def heating_value(
     if remark:
         return HeatingValue(np.nan, np.nan, mass, volume, remark)
     counts = dict(
-        zip((*_BURNT_TO, "H"), element_counts(records, (*_BURNT_TO, "H")) @ amounts, strict=True)
+        zip((*BURNT_TO, "H"), element_counts(records, (*BURNT_TO, "H")) @ amounts, strict=True)
     )
     water = (counts["H"] - counts["Cl"]) / 2
     formed = float(amounts @ np.array([record.dfH298 for record in records]))
     dry = sum(
         counts[symbol] * library[product].dfH298 / (2 if symbol in ("N", "O") else 1)
-        for symbol, product in _BURNT_TO.items()
+        for symbol, product in BURNT_TO.items()
     )
     return HeatingValue(
         higher=float(formed - dry - water * library["H2O(l)"].dfH298),
@@ -91,7 +91,7 @@ def _obstacle(records: Sequence[Species], amounts: FloatArray) -> str:
     if np.isnan(amounts).any():
         return "the amounts are not known"
     present = [r for r, amount in zip(records, amounts.tolist(), strict=True) if amount > 0.0]
-    known = {*_BURNT_TO, *_UNBURNT, "H"}
+    known = {*BURNT_TO, *_UNBURNT, "H"}
     for record in present:
         strange = sorted({symbol for symbol, _ in record.elements} - known)
         if strange:

@@ -44,6 +44,10 @@ class Library:
         """The library whose tables stand in a folder; a row that cannot be used raises."""
         return cls(read_species(folder), read_sources(folder))
 
+    def extended(self, records: Iterable[Species], sources: Iterable[Source] = ()) -> Self:
+        """This library with further records and their sources."""
+        return type(self)((*self.records, *records), (*self.sources, *sources))
+
     @cached_property
     def _index(self) -> Index:
         return Index(self.records)
@@ -158,7 +162,7 @@ class Library:
         return tuple(
             record
             for record in _made_of(self.records, symbols)
-            if not record.superseded and (ions or record.charge == 0)
+            if record.proposed and (ions or record.charge == 0)
         )
 
     def find(

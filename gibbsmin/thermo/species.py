@@ -4,6 +4,10 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from enum import StrEnum
+from typing import Final
+
+SUPERSEDED: Final = "superseded"
+FEED_ONLY: Final = "feed only"
 
 
 class Phase(StrEnum):
@@ -76,7 +80,8 @@ class Species:
     source_enthalpy, source_entropy, source_heat_capacity
         Keys of the library's table of sources.
     status
-        Empty, or "superseded": the record is no candidate unless it is named.
+        Empty, "superseded" or "feed only" (a case's own fuel): with one of these the record is no
+        candidate unless it is named.
     fit_error
         Largest |ΔG/RT| of the pieces against the source's points; NaN = unknown.
     remark
@@ -123,4 +128,9 @@ class Species:
     @property
     def superseded(self) -> bool:
         """True for a form that is a candidate only where the user names it."""
-        return self.status == "superseded"
+        return self.status == SUPERSEDED
+
+    @property
+    def proposed(self) -> bool:
+        """True for a record that is a candidate without being named."""
+        return self.status not in (SUPERSEDED, FEED_ONLY)
