@@ -34,6 +34,24 @@ _ROUNDING = 1e-9
 
 
 @dataclass(frozen=True)
+class Responses:
+    """What B states answer to K changes; NaN where a state has no derivatives.
+
+    Attributes
+    ----------
+    amounts : (B, S, K) dn, mol
+    forces : (B, S, K) d(a·λ − g̃): for a condensed phase that is absent, of its driving force
+    regular : (B,) False where there is no derivative: an uncertified state, a state without gas,
+        at the onset of a phase, or where the phases present leave a composition or temperature
+        free (condensed forms in equilibrium, a decomposition at its own pressure)
+    """
+
+    amounts: FloatArray
+    forces: FloatArray
+    regular: BoolArray
+
+
+@dataclass(frozen=True)
 class Derivatives:
     """Derivatives of the amounts of B states; NaN where the state has none.
 
@@ -43,9 +61,7 @@ class Derivatives:
     log_pressure : (B, S) ∂n/∂ln P at constant T and feed, mol
     directions : (B, S, K) ∂n along each direction of the supplies at constant T and P; NaN along
         one that no records present can take up, such as a new element
-    regular : (B,) False where there is no derivative: an uncertified state, a state without gas,
-        at the onset of a phase, or where the phases present leave a composition or temperature
-        free (condensed forms in equilibrium, a decomposition at its own pressure)
+    regular : (B,) False where there is no derivative, as in :class:`Responses`
     """
 
     log_temperature: FloatArray
@@ -68,6 +84,28 @@ def derivatives(
     directions
         Changes of the supplies b, shape (m, K), such as the feed matrix of the balance.
     """
+    energies = np.stack(
+        [slopes, np.broadcast_to(programme.gas.astype(float), slopes.shape)], axis=-1
+    )
+    found = responses(programme, solution, energies, directions)
+    changes = found.amounts
+    return Derivatives(changes[..., 0], changes[..., 1], changes[..., 2:], found.regular)
+
+
+def responses(
+    programme: Programme, solution: Solution, energies: FloatArray, directions: FloatArray
+) -> Responses:
+    """What solved states answer to changes of their energies, then of their supplies.
+
+    Parameters
+    ----------
+    programme, solution
+        The states and their answers.
+    energies
+        Changes dg̃ at constant supplies, shape (B, S, K₁).
+    directions
+        Changes of the supplies b at constant g̃, shape (m, K₂); K = K₁ + K₂.
+    """
     amounts, gas = solution.amounts, programme.gas
     usable = solution.certified & (np.where(gas, amounts, 0.0).sum(axis=1) > 0.0)
     near = np.abs(solution.certificate.driving_forces) < _ONSET
@@ -76,19 +114,18 @@ def derivatives(
     n = np.where(usable[:, np.newaxis], amounts, 0.0)
     weights = np.where(gas, n, np.where(n > 0.0, np.inf, 0.0))
     basis = abundant_basis(programme.matrix, directions, weights)
-    K = directions.shape[1]
-    energies = np.zeros((*n.shape, 2 + K))
-    energies[..., 0] = slopes
-    energies[..., 1] = gas
-    supplies = np.concatenate([np.zeros((*basis.columns.shape, 2)), basis.directions], axis=2)
-    changes, solvable = _solve(basis, n, gas, energies, supplies)
+    given, along = energies.shape[-1], directions.shape[1]
+    energies = np.concatenate([energies, np.zeros((*n.shape, along))], axis=2)
+    supplies = np.concatenate([np.zeros((*basis.columns.shape, given)), basis.directions], axis=2)
+    changes, forces, solvable = _solve(basis, n, gas, energies, supplies)
 
     chosen = np.zeros(n.shape, dtype=bool)
     states, rows = np.nonzero(basis.columns >= 0)
     chosen[states, basis.columns[states, rows]] = True
     regular = usable & solvable & np.all(chosen | gas | (n == 0.0), axis=1)
     changes[~regular] = np.nan
-    return Derivatives(changes[..., 0], changes[..., 1], changes[..., 2:], regular)
+    forces[~regular] = np.nan
+    return Responses(changes, forces, regular)
 
 
 def energy_slopes(model: StageModel, temperature: FloatArray) -> FloatArray:
@@ -122,8 +159,8 @@ def _solve(
     gas: BoolArray,
     energies: FloatArray,
     supplies: FloatArray,
-) -> tuple[FloatArray, BoolArray]:
-    """dn of each state for changes dg̃ (B, S, K) and db′ (B, m, K), and where it is determined."""
+) -> tuple[FloatArray, FloatArray, BoolArray]:
+    """dn and d(a·λ − g̃) for changes dg̃ (B, S, K) and db′ (B, m, K), and where determined."""
     A, columns = basis.matrix, basis.columns
     state = np.arange(len(n))[:, np.newaxis]
     filled = columns >= 0
@@ -137,14 +174,15 @@ def _solve(
 
     system, right = _system(gas_rows, n_gas, felt, np.where(of_gas[..., None], supplies, 0.0))
     solved, solvable = _solve_scaled(system, right)
-    log_changes = solved[:, -1:] + np.einsum("bmi,bmk->bik", gas_rows, solved[:, :-1]) - felt
-    changes = n_gas[..., np.newaxis] * log_changes
+    forces = np.einsum("bmi,bmk->bik", gas_rows, solved[:, :-1]) - felt
+    changes = n_gas[..., np.newaxis] * (solved[:, -1:] + forces)
 
     missing = supplies - np.einsum("bmi,bik->bmk", A, changes)
     states, rows = np.nonzero(filled & ~of_gas)
     changes[states, columns[states, rows]] = missing[states, rows]
     unheld = np.any(~filled[..., np.newaxis] & (np.abs(supplies) > _ROUNDING), axis=1)
-    return np.where(unheld[:, np.newaxis], np.nan, changes), solvable
+    outside = unheld[:, np.newaxis]
+    return np.where(outside, np.nan, changes), np.where(outside, np.nan, forces), solvable
 
 
 def _system(
