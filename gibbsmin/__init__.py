@@ -1,6 +1,7 @@
 """Chemical equilibrium for process and plant engineers.
 
-:func:`load_case` reads a case, :func:`predict` gives its certified outlet.
+:func:`load_case` reads a case, :func:`predict` gives its certified outlet and
+:func:`uncertainty` its error bars.
 """
 
 from __future__ import annotations
@@ -12,9 +13,21 @@ if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
     from gibbsmin.jobs.predict import predict
     from gibbsmin.jobs.scan import scan, scan_blocks
+    from gibbsmin.jobs.sensitivity import Sensitivities
+    from gibbsmin.jobs.uncertainty import uncertainty
     from gibbsmin.results import Outlet, StageOutlet
 
-__all__ = ["Case", "Outlet", "StageOutlet", "load_case", "predict", "scan", "scan_blocks"]
+__all__ = [
+    "Case",
+    "Outlet",
+    "Sensitivities",
+    "StageOutlet",
+    "load_case",
+    "predict",
+    "scan",
+    "scan_blocks",
+    "uncertainty",
+]
 
 _HOMES = {
     "Case": "gibbsmin.jobs.case",
@@ -24,6 +37,8 @@ _HOMES = {
     "predict": "gibbsmin.jobs.predict",
     "scan": "gibbsmin.jobs.scan",
     "scan_blocks": "gibbsmin.jobs.scan",
+    "Sensitivities": "gibbsmin.jobs.sensitivity",
+    "uncertainty": "gibbsmin.jobs.uncertainty",
 }
 
 

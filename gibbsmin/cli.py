@@ -73,6 +73,9 @@ def predict(
     out: Annotated[
         str, typer.Option(metavar="FILE", help="Write to a .csv, .xlsx or .json file as well.")
     ] = "",
+    uncertainty: Annotated[
+        bool, typer.Option("--uncertainty", help="Give error bars and what makes them.")
+    ] = False,
 ) -> None:
     """Give the outlet of a case at equilibrium, with its certificate and audit.
 
@@ -80,19 +83,25 @@ def predict(
     """
     from gibbsmin.jobs.case import load_case
     from gibbsmin.jobs.predict import predict as predict_case
+    from gibbsmin.jobs.uncertainty import uncertainty as error_bars_of
     from gibbsmin.present.outlet_document import outlet_document
     from gibbsmin.present.outlet_files import require_ending, write_outlet
     from gibbsmin.present.outlet_view import outlet_view
+    from gibbsmin.present.uncertainty_view import uncertainty_view
 
     if out:
         require_ending(Path(out))
-    outlet = predict_case(load_case(case))
+    loaded = load_case(case)
+    outlet = predict_case(loaded)
+    bars = error_bars_of(loaded) if uncertainty else ()
     if out:
-        write_outlet(outlet, Path(out))
+        write_outlet(outlet, Path(out), bars)
     if as_json:
-        _print_json(outlet_document(outlet))
+        _print_json(outlet_document(outlet, bars))
     else:
         _print(outlet_view(outlet))
+        if bars:
+            _print(uncertainty_view(outlet, bars))
     if not outlet.certified:
         raise typer.Exit(NOT_CERTIFIED)
 

@@ -13,6 +13,8 @@ from gibbsmin.jobs.case_axis import read_axes
 from gibbsmin.jobs.case_feed import read_streams
 from gibbsmin.jobs.case_stage import StageCase, read_stages
 from gibbsmin.jobs.case_text import read_tables
+from gibbsmin.jobs.case_uncertainty import read_correlations, read_uncertainties
+from gibbsmin.jobs.stated import Correlation, StatedUncertainty
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import load_library
 
@@ -31,6 +33,8 @@ class Case:
     feeds: tuple[Stream, ...]
     stages: tuple[StageCase, ...]
     axes: tuple[Axis, ...] = ()
+    uncertainties: tuple[StatedUncertainty, ...] = ()
+    correlations: tuple[Correlation, ...] = ()
 
 
 def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
@@ -55,6 +59,17 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         feeds = read_streams(table.feed, library)
         stages = read_stages(table, feeds, library)
         axes = read_axes(table.axis, feeds, table.site_pressure, library)
+        uncertainties = read_uncertainties(table.uncertainty, feeds, stages, library)
+        correlations = read_correlations(table.correlation, feeds, stages, library)
     except InputError as error:
         raise error.at(file=file) from None
-    return Case(table.title, file, table.site_pressure, feeds, stages, axes)
+    return Case(
+        table.title,
+        file,
+        table.site_pressure,
+        feeds,
+        stages,
+        axes,
+        uncertainties=uncertainties,
+        correlations=correlations,
+    )

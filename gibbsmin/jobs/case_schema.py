@@ -15,8 +15,9 @@ from gibbsmin.constants import STANDARD_ATMOSPHERE
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis_schema import AxisTable
 from gibbsmin.jobs.feed_schema import FeedTable
-from gibbsmin.jobs.stage_schema import OutletTable, SpeciesTable, StageTable
+from gibbsmin.jobs.stage_schema import NOTHING, OutletTable, SpeciesTable, StageTable
 from gibbsmin.jobs.table_schema import MISSING, Table, UnknownKeyError
+from gibbsmin.jobs.uncertainty_schema import CorrelationTable, read_uncertainty_table
 from gibbsmin.units import read_pressure, shown
 
 
@@ -48,6 +49,12 @@ def _axes(given: object) -> tuple[Any, ...]:
     return tuple(given)
 
 
+def _correlations(given: object) -> tuple[Any, ...]:
+    if not isinstance(given, list | tuple):
+        raise InputError(f"found {shown(given)}", "accepted are [[correlation]] tables")
+    return tuple(given)
+
+
 Title = Annotated[str, BeforeValidator(_title)]
 SitePressure = Annotated[float, BeforeValidator(read_pressure)]
 
@@ -62,6 +69,8 @@ class CaseTable(Table):
     stage: Annotated[tuple[StageTable, ...], BeforeValidator(_stages)] = ()
     species: SpeciesTable = SpeciesTable()
     axis: Annotated[tuple[AxisTable, ...], BeforeValidator(_axes)] = ()
+    uncertainty: Annotated[dict[str, Any], BeforeValidator(read_uncertainty_table)] = NOTHING
+    correlation: Annotated[tuple[CorrelationTable, ...], BeforeValidator(_correlations)] = ()
 
     @model_validator(mode="after")
     def _outlet_or_stages(self) -> Self:

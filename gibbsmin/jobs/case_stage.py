@@ -69,6 +69,11 @@ class StageCase:
     own_species: bool = False
     service: Service | None = None
 
+    @property
+    def place(self) -> str:
+        """How axes and uncertainties name it: ``outlet``, or ``stage.`` and its name."""
+        return "outlet" if self.key == "outlet" else f"stage.{self.name}"
+
 
 def read_stages(
     table: CaseTable, streams: Sequence[Stream], library: Library

@@ -21,11 +21,22 @@ _AT_TOP = "species."
 
 @dataclass(frozen=True)
 class Step:
-    """One stage solved: what it was asked, what entered, and its states."""
+    """One stage solved.
+
+    Attributes
+    ----------
+    stage : what it was asked
+    streams : what entered
+    shares : the share of each stream that took this way
+    states : its states
+    joins : the stage whose bypass it joins to its outlet; empty for a stage of the case
+    """
 
     stage: StageCase
     streams: tuple[Stream, ...]
+    shares: tuple[float, ...]
     states: StageStates
+    joins: str = ""
 
 
 def run_train(case: Case, library: Library) -> Iterator[Step]:
@@ -57,11 +68,10 @@ def _steps(
     stage: StageCase, streams: Sequence[Stream], case: Case, library: Library
 ) -> Iterator[Step]:
     if not stage.bypass:
-        yield _solved(stage, streams, case, library)
+        yield _solved(stage, streams, [1.0] * len(streams), case, library)
         return
-    around = [_share(stream, stage.bypass) for stream in streams]
-    through = [_share(stream, 1.0 - stage.bypass) for stream in streams]
-    reacted = _solved(replace(stage, removed={}), through, case, library)
+    around, through = stage.bypass, 1.0 - stage.bypass
+    reacted = _solved(replace(stage, removed={}), streams, [through] * len(streams), case, library)
     yield reacted
     mixing = StageCase(
         name=f"{stage.name}, bypass joined",
@@ -74,17 +84,26 @@ def _steps(
         bypass=0.0,
         removed=stage.removed,
     )
-    yield _solved(mixing, [_leaving(reacted), *around], case, library)
+    shares = [1.0, *[around] * len(streams)]
+    joined = _solved(mixing, [_leaving(reacted), *streams], shares, case, library)
+    yield replace(joined, joins=stage.name)
 
 
-def _solved(stage: StageCase, streams: Sequence[Stream], case: Case, library: Library) -> Step:
+def _solved(
+    stage: StageCase,
+    streams: Sequence[Stream],
+    shares: Sequence[float],
+    case: Case,
+    library: Library,
+) -> Step:
+    streams = [_share(stream, share) for stream, share in zip(streams, shares, strict=True)]
     try:
         states = solve_stage(
             stage.chemistry, stage.specification, stage.boundary_temperature, streams, library
         )
     except InputError as error:
         raise placed_in(stage, case, error) from None
-    return Step(stage, tuple(streams), states)
+    return Step(stage, tuple(streams), tuple(shares), states)
 
 
 def _leaving(step: Step) -> Stream:
@@ -107,6 +126,8 @@ def _leaving(step: Step) -> Stream:
 
 
 def _share(stream: Stream, share: float) -> Stream:
+    if share == 1.0:
+        return stream
     return replace(
         stream, amounts={name: share * amount for name, amount in stream.amounts.items()}
     )

@@ -3,27 +3,34 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from typing import Any
 
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
+from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
+from gibbsmin.present.uncertainty_document import add_error_bars
 from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 from gibbsmin.units import to_unit
 
 
-def outlet_document(outlet: Outlet) -> dict[str, Any]:
+def outlet_document(outlet: Outlet, error_bars: Sequence[Sensitivities] = ()) -> dict[str, Any]:
     """The whole outlet; one entry of ``stages`` each stage, in order.
 
     Amounts are in ``unit``; heat is positive into the stage, in kW or kJ; chemical potentials
-    of the elements are in RT.
+    of the elements are in RT.  Error bars, where they are given, stand beside the values.
     """
+    stages = [_stage(outlet, stage) for stage in outlet.stages]
+    if error_bars:
+        for entry, stage, found in zip(stages, outlet.stages, error_bars, strict=True):
+            add_error_bars(entry, outlet, stage, found)
     document = {
         "title": outlet.title,
         "status": "certified" if outlet.certified else "not certified",
-        "stages": [_stage(outlet, stage) for stage in outlet.stages],
+        "stages": stages,
         "total": _total(outlet),
         "cautions": list(CAUTIONS),
     }

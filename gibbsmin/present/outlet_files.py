@@ -3,9 +3,13 @@
 from __future__ import annotations
 
 import json
+from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING
 
+import numpy as np
+
+from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.present.files import output_suffix, write_csv, write_tables, write_text
 from gibbsmin.present.outlet_document import outlet_document
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
@@ -23,8 +27,8 @@ def require_ending(path: Path) -> str:
     return output_suffix(path, ENDINGS)
 
 
-def write_outlet(outlet: Outlet, path: Path) -> None:
-    """Write an outlet in the form that the file's ending names.
+def write_outlet(outlet: Outlet, path: Path, error_bars: Sequence[Sensitivities] = ()) -> None:
+    """Write an outlet in the form that the file's ending names, with its error bars if given.
 
     Raises
     ------
@@ -33,25 +37,26 @@ def write_outlet(outlet: Outlet, path: Path) -> None:
     """
     suffix = require_ending(path)
     if suffix == ".json":
-        document = outlet_document(outlet)
+        document = outlet_document(outlet, error_bars)
         write_text(path, json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False) + "\n")
     elif suffix == ".csv":
-        write_csv(path, composition_table(outlet))
+        write_csv(path, composition_table(outlet, error_bars))
     else:
         write_tables(
             path,
             {
-                "composition": composition_table(outlet),
+                "composition": composition_table(outlet, error_bars),
                 "figures": _figures(outlet),
                 "reactions": _reactions(outlet),
                 "yields": _yields(outlet),
                 "audit": _audit(outlet),
                 "remarks": _remarks(outlet),
+                **({"uncertainty": _uncertainty(error_bars)} if error_bars else {}),
             },
         )
 
 
-def composition_table(outlet: Outlet) -> pd.DataFrame:
+def composition_table(outlet: Outlet, error_bars: Sequence[Sensitivities] = ()) -> pd.DataFrame:
     """The outlet's frame with its amounts in the reported unit, which the column's name states."""
     unit = amount_unit(outlet.unit, outlet.is_flow)
     table = outlet.to_frame()
@@ -60,7 +65,32 @@ def composition_table(outlet: Outlet) -> pd.DataFrame:
         for stage in outlet.stages
         for amount in amounts_in(unit, stage.records, stage.amounts).tolist()
     ]
-    return table.rename(columns={"amount": f"amount, {unit}"})
+    table = table.rename(columns={"amount": f"amount, {unit}"})
+    for column, kind in (("mole_fraction", "fraction"), ("dry_mole_fraction", "dry fraction")):
+        if error_bars:
+            table[f"{column}_uncertainty"] = [
+                float(found.uncertainties[0, found.results.index(f"{kind} {record.name}")])
+                if f"{kind} {record.name}" in found.results
+                else float("nan")
+                for stage, found in zip(outlet.stages, error_bars, strict=True)
+                for record in stage.records
+            ]
+    return table
+
+
+def _uncertainty(error_bars: Sequence[Sensitivities]) -> pd.DataFrame:
+    """Standard uncertainty of each result in SI, and the input that makes most of it."""
+    import pandas as pd
+
+    rows = []
+    for found in error_bars:
+        sizes, parts = found.uncertainties[0], found.contributions[0]
+        for r, result in enumerate(found.results):
+            top = int(np.argmax(np.nan_to_num(parts[r])))
+            share = parts[r, top] / parts[r].sum() if sizes[r] > 0.0 else float("nan")
+            rows.append((found.stage, result, sizes[r], found.inputs[top].name, share))
+    columns = ["stage", "result", "uncertainty_SI", "largest_input", "share_of_variance"]
+    return pd.DataFrame(rows, columns=columns)
 
 
 def _figures(outlet: Outlet) -> pd.DataFrame:

@@ -24,7 +24,7 @@ from gibbsmin.thermo.library import Library
 
 @dataclass(frozen=True)
 class SpecificationChanges:
-    """K changes of what a stage is asked for, each (K,) in SI; one that it does not use is 0."""
+    """K changes of what a stage is asked for, each (K,) or (B, K) in SI; 0 where it is not."""
 
     temperature: FloatArray
     heat: FloatArray

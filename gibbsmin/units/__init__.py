@@ -7,12 +7,12 @@ that of the International Table, 1055.056 J.  A unit that a unit library would t
 else (``C``, ``ton``, ``MT``, ``Nm``) is asked about, and a number without a unit is refused.
 """
 
+from gibbsmin.units.molar import read_molar_energy, read_molar_entropy
 from gibbsmin.units.reading import (
     Measure,
     read_amount,
     read_amount_unit,
     read_heat,
-    read_molar_energy,
     read_pressure,
     read_quantity,
     read_share,
@@ -32,6 +32,7 @@ __all__ = [
     "read_amount_unit",
     "read_heat",
     "read_molar_energy",
+    "read_molar_entropy",
     "read_pressure",
     "read_quantity",
     "read_share",

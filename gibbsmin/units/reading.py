@@ -58,7 +58,6 @@ _HEAT = _Kind(
 )
 _VOLUME = _Kind(frozenset({Dimension.VOLUME}), 'accepted is a volume such as "2 m3" or "500 L"')
 _SHARE = 'accepted is a share from 0 to 1, such as 0.8 or "80 %"'
-_MOLAR_ENERGY = 'accepted is an energy of one mole such as "5 kJ/mol"'
 _AMOUNT_DIMENSIONS = frozenset(
     {
         Dimension.MOLAR_AMOUNT,
@@ -172,19 +171,6 @@ def read_share(given: object) -> float:
     if not 0.0 <= share <= 1.0:
         raise UnitError(f"found {shown(given)}, which is not between 0 and 1", _SHARE)
     return share
-
-
-def read_molar_energy(given: object) -> float:
-    """An energy of one mole in J/mol, of either sign."""
-    text, _, per = given.rpartition("/") if isinstance(given, str) else ("", "", "")
-    moles = {"mol": 1.0, "kmol": 1e3}.get(per.strip())
-    if moles is None:
-        raise UnitError(f"found {shown(given)}, which is no energy of one mole", _MOLAR_ENERGY)
-    try:
-        energy = _measure(text, _HEAT, STANDARD_ATMOSPHERE)
-    except UnitError:
-        raise UnitError(f"found {shown(given)}", _MOLAR_ENERGY) from None
-    return energy.value / moles
 
 
 def read_amount_unit(given: object) -> Unit:
