@@ -249,7 +249,7 @@ def test_composition_of_air_sums_to_one() -> None:
             "oulet",
             {},
             'oulet: found an unknown key (nearest: "outlet"); '
-            "accepted is title, site_pressure, feed, outlet, stage, species or axis.",
+            "accepted is title, site_pressure, feed, outlet, stage, species, axis, uncertainty or correlation.",
         ),
         (
             "feed/gas/temperature",
