@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import lru_cache
 from os import PathLike
 from typing import Any
 
@@ -16,7 +17,9 @@ from gibbsmin.jobs.case_text import read_tables
 from gibbsmin.jobs.case_uncertainty import read_correlations, read_uncertainties
 from gibbsmin.jobs.stated import Correlation, StatedUncertainty
 from gibbsmin.reactor.streams import Stream
-from gibbsmin.thermo.library import load_library
+from gibbsmin.thermo.library import Library, load_library
+from gibbsmin.thermo.species import Species
+from gibbsmin.thermo.tables import Source
 
 
 @dataclass(frozen=True)
@@ -25,6 +28,8 @@ class Case:
 
     ``file`` is the case file's path, empty where the case came as a mapping; ``site_pressure``
     in Pa is what gauge pressures stand on.  The streams are all flows or all quantities.
+    ``own_records`` are those that the case itself defines, with their ``own_sources``; they extend
+    the installed library.
     """
 
     title: str
@@ -35,6 +40,13 @@ class Case:
     axes: tuple[Axis, ...] = ()
     uncertainties: tuple[StatedUncertainty, ...] = ()
     correlations: tuple[Correlation, ...] = ()
+    own_records: tuple[Species, ...] = ()
+    own_sources: tuple[Source, ...] = ()
+
+    @property
+    def library(self) -> Library:
+        """The installed library and the case's own records."""
+        return library_with(self.own_records, self.own_sources)
 
 
 def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
@@ -53,9 +65,9 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
     # pydantic takes a tenth of a second to load, which other commands need not wait for.
     from gibbsmin.jobs.case_schema import validate
 
-    library = load_library()
     try:
         table = validate(tables)
+        library = load_library()
         feeds = read_streams(table.feed, library)
         stages = read_stages(table, feeds, library)
         axes = read_axes(table.axis, feeds, table.site_pressure, library)
@@ -73,3 +85,9 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         uncertainties=uncertainties,
         correlations=correlations,
     )
+
+
+@lru_cache(maxsize=8)
+def library_with(records: tuple[Species, ...], sources: tuple[Source, ...]) -> Library:
+    """The installed library, extended by records of a case and their sources."""
+    return load_library().extended(records, sources) if records else load_library()

@@ -8,7 +8,6 @@ from gibbsmin.jobs.stage import conversion, stage_outlet
 from gibbsmin.jobs.train import placed_in, run_train
 from gibbsmin.reactor.inlet import inlet_of
 from gibbsmin.results import Outlet, StageOutlet
-from gibbsmin.thermo.library import load_library
 
 
 def predict(case: Case) -> Outlet:
@@ -23,7 +22,7 @@ def predict(case: Case) -> Outlet:
         when the candidates cannot hold the feed or a specification cannot be met; the sentence
         names file and key.
     """
-    library = load_library()
+    library = case.library
     outlets: list[StageOutlet] = []
     for step in run_train(case, library):
         try:

@@ -15,7 +15,6 @@ from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.train import Step, run_train
 from gibbsmin.minimise import Status
-from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.species import Phase
 
 if TYPE_CHECKING:
@@ -62,7 +61,7 @@ def scan_blocks(case: Case, block: int = _BLOCK) -> Iterator[pd.DataFrame]:
         raise InputError(
             "found no axis", "accepted is at least one [[axis]] table", key="axis", file=case.file
         )
-    library = load_library()
+    library = case.library
     grid = Grid(tuple(axes))
     for first in range(0, grid.states, block):
         values = grid.block(first, min(first + block, grid.states))

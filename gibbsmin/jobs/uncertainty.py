@@ -20,7 +20,7 @@ from gibbsmin.jobs.inputs import (
 from gibbsmin.jobs.sensitivity import Sensitivities, sensitivities
 from gibbsmin.jobs.stated import StatedUncertainty
 from gibbsmin.jobs.train import Step, run_train
-from gibbsmin.thermo.library import Library, load_library
+from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
 _NEGATIVE = -1e-9
@@ -38,7 +38,7 @@ def uncertainty(case: Case) -> tuple[Sensitivities, ...]:
     InputError
         as :func:`gibbsmin.jobs.predict.predict`, and for correlations that contradict each other.
     """
-    library = load_library()
+    library = case.library
     return tuple(error_bars(case, list(run_train(case, library)), library))
 
 

@@ -6,6 +6,7 @@ One good case; each test changes one thing in it.
 import pickle
 from collections.abc import Mapping
 from copy import deepcopy
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -13,13 +14,18 @@ import numpy as np
 import pytest
 
 from gibbsmin.errors import InputError
+from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case, load_case
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.compositions import compositions
+from gibbsmin.jobs.predict import predict
+from gibbsmin.jobs.scan import scan
+from gibbsmin.jobs.uncertainty import uncertainty
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.thermo.library import load_library
+from gibbsmin.thermo.tables import Source
 
 TEXT = """\
 title = "Reformer outlet"
@@ -130,6 +136,32 @@ def test_the_good_case_in_si(tmp_path: Path) -> None:
             removed={},
         ),
     )
+
+
+def test_records_of_the_case_extend_the_library() -> None:
+    case = load_case(TABLES)
+    assert case.library is load_library()
+    source = Source("plant", "The plant's own measurements", "the user's")
+    record = replace(
+        load_library()["CH4(g)"], name="mine(g)", formula="mine", source_enthalpy=source.key
+    )
+    extended = replace(case, own_records=(record,), own_sources=(source,))
+    assert extended.library["mine(g)"] is record
+    assert extended.library.source("plant") is source
+    assert extended.library["CO2(g)"] is load_library()["CO2(g)"]
+    assert extended.library is extended.library  # made once
+    gas = replace(case.feeds[0], amounts={"mine(g)": 100.0, "N2(g)": 2.0})
+    known = replace(case.feeds[0], amounts={"CH4(g)": 100.0, "N2(g)": 2.0})
+    steam = case.feeds[1]
+    found = predict(replace(extended, feeds=(gas, steam))).final
+    expected = predict(replace(case, feeds=(known, steam))).final
+    assert found.certified
+    assert found.heat == pytest.approx(expected.heat, rel=1e-12)
+    axis = Axis("outlet.temperature", np.array([1123.15]), np.array([1123.15]), "K")
+    table = scan(replace(extended, feeds=(gas, steam), axes=(axis,)))
+    assert table["heat, kW"].iloc[0] == pytest.approx(expected.heat / 1e3, rel=1e-9)
+    bars = uncertainty(replace(extended, feeds=(gas, steam)))
+    assert len(bars) == 1
 
 
 def test_file_and_mapping_give_the_same_case(tmp_path: Path) -> None:
@@ -249,7 +281,8 @@ def test_composition_of_air_sums_to_one() -> None:
             "oulet",
             {},
             'oulet: found an unknown key (nearest: "outlet"); '
-            "accepted is title, site_pressure, feed, outlet, stage, species, axis, uncertainty or correlation.",
+            "accepted is title, site_pressure, feed, outlet, stage, species, axis, uncertainty or "
+            "correlation.",
         ),
         (
             "feed/gas/temperature",
