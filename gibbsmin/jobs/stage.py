@@ -15,10 +15,10 @@ from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Method, Status
 from gibbsmin.reactor.audit import SolvedState, audit, element_activities, element_potentials
-from gibbsmin.reactor.conditions import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, Equilibria
+from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.energy import EnergyBalance
 from gibbsmin.reactor.inlet import Inlet
-from gibbsmin.reactor.model import StageModel
+from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.results import EntropyGeneration, StageOutlet, StateCertificate
 from gibbsmin.thermo.library import Library

@@ -1,7 +1,8 @@
 """Minimum of the Gibbs energy over batches of states: arrays only, no chemistry."""
 
 from gibbsmin.minimise.certificate import Certificate
-from gibbsmin.minimise.dispatch import minimise
+from gibbsmin.minimise.compiled import Warmth
+from gibbsmin.minimise.dispatch import minimise, minimise_heated
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
@@ -15,6 +16,8 @@ __all__ = [
     "Settings",
     "Solution",
     "Status",
+    "Warmth",
     "minimise",
     "minimise_blocks",
+    "minimise_heated",
 ]

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 import os
 from concurrent.futures import ThreadPoolExecutor
+from dataclasses import dataclass
 
 import numpy as np
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.form import forms
 from gibbsmin.minimise.kernel.storage import Answers, network_of, scratch_for
 from gibbsmin.minimise.programme import Programme
@@ -17,14 +19,63 @@ from gibbsmin.minimise.status import Method, Status
 _BLOCK = 4096
 
 
-def answer_batch(programme: Programme, settings: Settings, solution: Solution) -> None:
-    """Write what the kernel can prove into the solution; leave the rest unanswered.
+@dataclass(frozen=True, slots=True, eq=False)
+class Warmth:
+    """Enthalpies given in place of temperatures.
 
-    A block of consecutive states is one chain of warm starts and one worker's task; the kernel
-    releases the interpreter lock, so that threads share the cores.
+    The programme's energies then are what of g̃ does not depend on temperature; its other part
+    follows from the pieces.
+
+    Parameters
+    ----------
+    pieces
+        A, B, C, D, E, h, s over R of each species' pieces, shape (7, species, K).
+    breaks
+        Temperatures at which a further piece begins, shape (K − 1, species).
+    offset
+        Added to H/R, K, shape (species,).
+    contents
+        H/R wanted, K mol, shape (states,).
+    start
+        Where to look for the temperature first, K, shape (states,).
+    limits
+        Lowest and highest temperature, K.
     """
+
+    pieces: FloatArray
+    breaks: FloatArray
+    offset: FloatArray
+    contents: FloatArray
+    start: FloatArray
+    limits: tuple[float, float]
+
+
+def answer_batch(programme: Programme, settings: Settings, solution: Solution) -> None:
+    """Write what the kernel can prove into the solution; leave the rest unanswered."""
+    none = np.zeros(programme.energies.shape[1])
+    cold = Warmth(
+        np.zeros((7, none.size, 1)),
+        np.zeros((0, none.size)),
+        none,
+        np.zeros(programme.states),
+        np.zeros(programme.states),
+        (0.0, 0.0),
+    )
+    answer_heated_batch(programme, cold, settings, solution)
+
+
+def answer_heated_batch(
+    programme: Programme, warmth: Warmth, settings: Settings, solution: Solution
+) -> FloatArray:
+    """The same at the enthalpies given; temperatures (states,), NaN where none is proved.
+
+    A start of 0 leaves the programme's energies as they are.  A block of consecutive states is
+    one chain of warm starts and one worker's task; the kernel releases the interpreter lock, so
+    that threads share the cores.
+    """
+    temperatures = warmth.start.copy()
     if programme.states == 0:
-        return
+        return temperatures
     network = network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
     solve = forms.choose(network, programme.states)
     tolerances = np.array(
@@ -42,15 +93,23 @@ def answer_batch(programme: Programme, settings: Settings, solution: Solution) -
     workers = min(settings.threads or os.cpu_count() or 1, programme.states)
     block = min(_BLOCK, -(-programme.states // workers))
 
+    pieces = np.ascontiguousarray(warmth.pieces[:, network.order]).reshape(7, -1)
+    breaks = np.ascontiguousarray(warmth.breaks[:, network.order])
+    offset = warmth.offset[network.order]
+
     def run(first: int) -> None:
         part = slice(first, first + block)
+        scratch = scratch_for(network, pieces, breaks, offset)
+        scratch.heat.target[1:3] = warmth.limits
         solve(
             network,
-            scratch_for(network),
+            scratch,
             programme.energies[part],
             programme.supplies[part],
             tolerances,
             settings.warm_start,
+            warmth.contents[part],
+            temperatures[part],
             Answers._make(array[part] for array in answers),
         )
 
@@ -61,6 +120,7 @@ def answer_batch(programme: Programme, settings: Settings, solution: Solution) -
         with ThreadPoolExecutor(workers) as pool:
             list(pool.map(run, firsts))
     _settle(programme, solution, figures)
+    return temperatures
 
 
 def _settle(programme: Programme, solution: Solution, figures: np.ndarray) -> None:

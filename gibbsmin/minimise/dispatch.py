@@ -9,7 +9,7 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.certificate import Certificate, certify
 from gibbsmin.minimise.closure import close_balance
-from gibbsmin.minimise.compiled import answer_batch
+from gibbsmin.minimise.compiled import Warmth, answer_batch, answer_heated_batch
 from gibbsmin.minimise.conic import ConicProgramme
 from gibbsmin.minimise.faces import Face, find_face
 from gibbsmin.minimise.newton import Reduced
@@ -39,6 +39,21 @@ def minimise(programme: Programme, settings: Settings = _DEFAULT) -> Solution:
             continue
         method.answer(solution, state, face)
     return solution
+
+
+def minimise_heated(
+    programme: Programme, warmth: Warmth, settings: Settings = _DEFAULT
+) -> tuple[Solution, FloatArray]:
+    """Amounts of least Gibbs energy at temperatures (states,) of given enthalpy.
+
+    Temperature is an unknown of the compiled method.  A state that it cannot prove, such as one
+    that takes up heat at constant temperature, is left uncertified with NaN, for a search by
+    :func:`minimise` at given temperatures.
+    """
+    solution = _unanswered(programme)
+    _flag_invalid(programme, solution)
+    temperatures = answer_heated_batch(programme, warmth, settings, solution)
+    return solution, np.where(solution.certified, temperatures, np.nan)
 
 
 def _flag_invalid(programme: Programme, solution: Solution) -> None:

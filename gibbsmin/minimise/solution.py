@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
+from typing import Any
 
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.minimise.certificate import Certificate
 from gibbsmin.minimise.status import Status
 
@@ -38,7 +39,25 @@ class Solution:
     method: npt.NDArray[np.int8]
     certificate: Certificate
 
+    def with_states(self, index: IntArray, others: Solution) -> Solution:
+        """This solution with some states replaced by others."""
+        replaced = _replaced(self, index, others)
+        certificate = _replaced(self.certificate, index, others.certificate)
+        return Solution(**(replaced | {"certificate": Certificate(**certificate)}))
+
     @property
     def certified(self) -> BoolArray:
         """Whether each state is proved, shape (states,)."""
         return np.equal(self.status, Status.CERTIFIED)
+
+
+def _replaced(ours: Any, index: IntArray, theirs: Any) -> dict[str, Any]:
+    """The arrays of one object with some states taken from another's."""
+    arrays = {}
+    for field in fields(ours):
+        array = getattr(ours, field.name)
+        if isinstance(array, np.ndarray):
+            array = array.copy()
+            array[index] = getattr(theirs, field.name)
+            arrays[field.name] = array
+    return arrays

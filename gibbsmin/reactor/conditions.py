@@ -13,20 +13,20 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray, IntArray
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
-from gibbsmin.minimise import Solution, minimise
+from gibbsmin.minimise import Solution, minimise, minimise_heated
 from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
-from gibbsmin.reactor.model import StageModel
-
-LOWEST_TEMPERATURE = 100.0
-HIGHEST_TEMPERATURE = 6000.0
-"""K; where a temperature is looked for."""
+from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
 
 _LOWEST_PRESSURE, _HIGHEST_PRESSURE = 1e-4, 1e10
 _RELATIVE_RESOLUTION = 4 * np.finfo(float).eps
 _SIDE = 1e-10
 """Share of T by which the two sides of a jump are solved apart from it, where forms tie."""
+
+_MET = 1e-11
+_ROUNDING = 1e-14
+"""Shares of N R T and of the enthalpy itself by which an enthalpy may miss."""
 
 _JUMP = 1e-9
 """A residual of this share that is left at full resolution of T is a plateau."""
@@ -53,6 +53,22 @@ class Equilibria:
     solution: Solution
     upper_share: FloatArray
 
+    def with_states(self, index: IntArray, others: Equilibria) -> Equilibria:
+        """These states with some replaced by others."""
+
+        def put(ours: FloatArray, theirs: FloatArray) -> FloatArray:
+            ours = ours.copy()
+            ours[index] = theirs
+            return ours
+
+        return Equilibria(
+            put(self.temperature, others.temperature),
+            put(self.pressure, others.pressure),
+            put(self.amounts, others.amounts),
+            self.solution.with_states(index, others.solution),
+            put(self.upper_share, others.upper_share),
+        )
+
 
 def at_temperature(
     model: StageModel, temperature: FloatArray, pressure: FloatArray, feed: FloatArray
@@ -71,12 +87,30 @@ def at_enthalpy(
     feed: FloatArray,
     start: FloatArray,
 ) -> Equilibria:
-    """Equilibria whose enthalpy (B,) in J is given, such as those of an adiabatic stage."""
+    """Equilibria whose enthalpy (B,) in J is given, such as those of an adiabatic stage.
+
+    Temperature is an unknown of the minimiser where that is possible; states that it leaves, such
+    as plateaus, and those under an approach are bracketed.
+    """
 
     def content(found: Equilibria) -> FloatArray:
         return mixture_enthalpy(model.properties, found.temperature, found.amounts)
 
-    return _at_content(model, enthalpy, content, pressure, feed, start)
+    if model.shift.keys:
+        return _at_content(model, enthalpy, content, pressure, feed, start)
+    solution, T = minimise_heated(*model.heated_programme(enthalpy, pressure, feed, start))
+    found = Equilibria(T, pressure, solution.amounts, solution, np.full(T.shape, np.nan))
+    left = np.flatnonzero(~_holds(found, content(found), enthalpy))
+    if left.size == 0:
+        return found
+    bracketed = _at_content(model, enthalpy[left], content, pressure[left], feed[left], start[left])
+    return found.with_states(left, bracketed)
+
+
+def _holds(found: Equilibria, content: FloatArray, wanted: FloatArray) -> BoolArray:
+    """Whether the enthalpy is what was wanted, to a share of N R T; NaN does not."""
+    thermal = GAS_CONSTANT * found.temperature * found.amounts.sum(axis=1)
+    return np.asarray(np.abs(content - wanted) <= _MET * thermal + _ROUNDING * np.abs(wanted))
 
 
 def at_entropy(

@@ -10,7 +10,7 @@ import numpy.typing as npt
 
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
-from gibbsmin.minimise import Programme
+from gibbsmin.minimise import Programme, Warmth
 from gibbsmin.reactor.approach import Shift, shift_of
 from gibbsmin.reactor.balance import (
     Balance,
@@ -24,6 +24,10 @@ from gibbsmin.reactor.chemistry import Chemistry, holds_of
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Phase, Species
+
+LOWEST_TEMPERATURE = 100.0
+HIGHEST_TEMPERATURE = 6000.0
+"""K; where a temperature is looked for."""
 
 
 @dataclass(frozen=True)
@@ -71,6 +75,34 @@ class StageModel:
             direction=self.balance.direction,
             atoms=self.balance.atoms,
         )
+
+    def heated_programme(
+        self, contents: FloatArray, pressure: FloatArray, feed: FloatArray, start: FloatArray
+    ) -> tuple[Programme, Warmth]:
+        """The programme of B states of given enthalpy (B,) J, sought from ``start`` (B,) K.
+
+        There is none with an approach, whose shift is no function of the records' own energies.
+        """
+        logarithm = np.log(pressure / STANDARD_PRESSURE)[:, np.newaxis]
+        programme = Programme(
+            matrix=self.balance.matrix,
+            supplies=self.balance.supplies(feed),
+            energies=np.where(self.gas, logarithm, 0.0) + self.shift.log_activities,
+            gas=self.gas,
+            direction=self.balance.direction,
+            atoms=self.balance.atoms,
+        )
+        breaks = self.properties.breaks
+        pieces = self.properties.coefficients.reshape(7, len(self.records), len(breaks) + 1)
+        warmth = Warmth(
+            pieces=pieces / GAS_CONSTANT,
+            breaks=breaks,
+            offset=self.shift.offsets / GAS_CONSTANT,
+            contents=contents / GAS_CONSTANT,
+            start=start,
+            limits=(LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE),
+        )
+        return programme, warmth
 
 
 def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library) -> StageModel:

@@ -30,7 +30,9 @@ _MODULES = (
     "linear",
     "residuals",
     "active_set",
+    "heat",
     "log_newton",
+    "search",
     "proof",
     "warm",
     "states",
@@ -113,9 +115,21 @@ def _entry(fingerprint: int) -> SolveStates:
         supplies: Any,
         tolerances: Any,
         warm: Any,
+        contents: Any,
+        temperatures: Any,
         answers: Any,
     ) -> int:
-        solve_states(network, scratch, energies, supplies, tolerances, warm, answers)
+        solve_states(
+            network,
+            scratch,
+            energies,
+            supplies,
+            tolerances,
+            warm,
+            contents,
+            temperatures,
+            answers,
+        )
         return fingerprint
 
     return solve

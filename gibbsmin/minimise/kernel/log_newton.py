@@ -8,8 +8,9 @@ balance, in which power laws of the fractions are straight lines.
 
 from __future__ import annotations
 
-from math import inf, log, nan
+from math import exp, inf, log, nan
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.active_set import (
     add_phase,
     admit_gas,
@@ -18,6 +19,13 @@ from gibbsmin.minimise.kernel.active_set import (
     feed_row,
     most_supersaturated,
     seat_abundant,
+)
+from gibbsmin.minimise.kernel.heat import (
+    border,
+    evaluate_energies,
+    heat_residual,
+    longest_step,
+    reduce_enthalpies,
 )
 from gibbsmin.minimise.kernel.linear import solve_in_place
 from gibbsmin.minimise.kernel.residuals import (
@@ -28,7 +36,8 @@ from gibbsmin.minimise.kernel.residuals import (
     list_unknowns,
     row_parts,
 )
-from gibbsmin.minimise.kernel.storage import Equations, Point, State, Tableau
+from gibbsmin.minimise.kernel.storage import Equations, Heat, Point, State, Tableau
+from gibbsmin.minimise.kernel.tableau import renew_reduced
 
 _BALANCING = 40
 _BALANCED = 0.1
@@ -111,6 +120,8 @@ def minimise_from(
     tableau: Tableau,
     point: Point,
     equations: Equations,
+    heat: Heat,
+    temperature: FloatArray,
     gases: int,
     log_total: float,
     keep: bool,
@@ -118,9 +129,11 @@ def minimise_from(
 ) -> float:
     """Run to convergence from the basis, its fractions and ln N; leave n in ``amounts``.
 
+    A temperature above 0 is an unknown, at which the state has the enthalpy given in ``heat``.
     ``keep`` chooses which member leaves for a new phase (:func:`add_phase`).  Return ln N, or
     NaN where ``limit`` iterations do not suffice.
     """
+    heated = temperature[0] > 0.0
     size = list_unknowns(tableau, point, equations, gases)
     settled = True  # no exchange since the last Newton step: two exchanges in a row cascade
     previous = inf
@@ -130,12 +143,20 @@ def minimise_from(
         supplied = has_supply(tableau, equations, size)
         if not supplied:
             log_total = 0.0
-        if not abs(log_total) < _LARGEST_LOG:
+        if not abs(log_total) < _LARGEST_LOG or (heated and not supplied):
             return nan
+        if heated:
+            evaluate_energies(state, heat, temperature[0])
+            renew_reduced(state, tableau)
+            reduce_enthalpies(tableau, heat, gases)
         fractions = evaluate_gas(tableau, point, gases, log_total)
         residual = fill_residuals(tableau, point, equations, gases, size, fractions)
         if supplied:
             residual = max(residual, abs(equations.step[size]))
+        excess = 0.0
+        if heated:
+            excess = heat_residual(tableau, point, heat, gases, temperature[0])
+            residual = max(residual, abs(excess))
         converged = residual <= _CONVERGED or (
             residual <= _STALLED and 0.3 * previous < residual <= previous
         )
@@ -172,12 +193,24 @@ def minimise_from(
             state, tableau, point, equations, gases, size
         ):
             fill_residuals(tableau, point, equations, gases, size, fractions)
+            if heated:
+                reduce_enthalpies(tableau, heat, gases)
         fill_jacobian(tableau, point, equations, gases, size)
         unknowns = size + 1 if supplied else size
+        if heated:
+            border(tableau, point, equations, heat, gases, size, temperature[0], excess)
+            unknowns += 1
         if not solve_in_place(equations.jacobian, equations.step, unknowns):
             return nan
         longest = _LONG_STEP if iteration < _LONG_STEPS else _SHORT_STEP
-        log_total += take_step(point, equations, size, unknowns, longest)
+        scale = step_scale(equations, unknowns, longest)
+        if heated:
+            change = equations.step[size + 1]
+            scale = min(scale, longest_step(change))
+            temperature[0] *= exp(scale * change)
+            if not heat.target[1] <= temperature[0] <= heat.target[2]:
+                return nan
+        log_total += take_step(point, equations, size, supplied, scale)
         settled = True
         stalls = stalls + 1 if residual > _SLOW * previous else 0
         previous = residual
@@ -213,15 +246,19 @@ def has_supply(tableau: Tableau, equations: Equations, size: int) -> bool:
     return False
 
 
-def take_step(point: Point, equations: Equations, size: int, unknowns: int, limit: float) -> float:
-    """Move the fractions by a step no longer than ``limit``; return the change of ln N."""
+def step_scale(equations: Equations, unknowns: int, limit: float) -> float:
+    """The share of a step whose longest component is no longer than ``limit``."""
     longest = 0.0
     for k in range(unknowns):
         longest = max(longest, abs(equations.step[k]))
-    scale = limit / longest if longest > limit else 1.0
+    return limit / longest if longest > limit else 1.0
+
+
+def take_step(point: Point, equations: Equations, size: int, with_gas: bool, scale: float) -> float:
+    """Move the fractions by a share of the step; return the change of ln N."""
     for k in range(size):
         point.log_fraction[equations.unknown[k]] += scale * equations.step[k]
-    return scale * equations.step[size] if unknowns > size else 0.0
+    return scale * equations.step[size] if with_gas else 0.0
 
 
 def write_amounts(tableau: Tableau, point: Point, gases: int, with_gas: bool) -> None:

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
-from math import inf, isfinite, isnan
+from math import inf, isfinite, isnan, nan
 
 from gibbsmin.arrays import FloatArray
+from gibbsmin.minimise.kernel.heat import evaluate_energies, guess_temperature, load_heated
 from gibbsmin.minimise.kernel.log_newton import guess_fractions, minimise_from
 from gibbsmin.minimise.kernel.proof import BALANCE, GAP, STATIONARITY, prove
+from gibbsmin.minimise.kernel.search import search_temperature
 from gibbsmin.minimise.kernel.simplex import start_from_costs
 from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch, State
 from gibbsmin.minimise.kernel.tableau import renew_reduced
@@ -34,28 +36,50 @@ def solve_states(
     supplies: FloatArray,
     tolerances: FloatArray,
     warm: bool,
+    contents: FloatArray,
+    temperatures: FloatArray,
     answers: Answers,
 ) -> None:
-    """Answer each state of a block: from its neighbours, else cold, else by recovery steps."""
+    """Answer each state of a block: from its neighbours, else cold, else by recovery steps.
+
+    A temperature above 0 is where to look for the one at which the state has its content, H/R;
+    ``energies`` then are what does not depend on it, and the temperature found takes its place.
+    """
     gases = network.gases
     state, tableau, point = scratch.state, scratch.tableau, scratch.point
     run = 0  # states certified in a row, on which the next may build
     for s in range(energies.shape[0]):
         status = UNCERTIFIED if load(network, state, energies[s], supplies[s]) else INVALID
+        start = temperatures[s]
+        heated = start > 0.0
         way = WARM if warm and run > 0 else COLD
         while status == UNCERTIFIED and way <= LAST:
             if way == WARM:
-                log_total = resume(network, scratch, energies, supplies, answers, s, run)
+                log_total = resume(
+                    network, scratch, energies, supplies, contents, temperatures, answers, s, run
+                )
             else:
                 run = 0
                 load(network, state, energies[s], supplies[s])
+                scratch.temperature[0] = start
+                if heated:
+                    load_heated(scratch, contents[s])
                 log_total = start_cold(network, scratch, way)
             if log_total == inf:
                 status = INFEASIBLE
             elif not isnan(log_total):
                 limit = _WARM_ITERATIONS if way == WARM else _ITERATIONS
                 log_total = minimise_from(
-                    state, tableau, point, scratch.equations, gases, log_total, keeps(way), limit
+                    state,
+                    tableau,
+                    point,
+                    scratch.equations,
+                    scratch.heat,
+                    scratch.temperature,
+                    gases,
+                    log_total,
+                    keeps(way),
+                    limit,
                 )
                 if not isnan(log_total):
                     prove(network, state, tableau, point, scratch.proof, answers.figures[s])
@@ -64,6 +88,8 @@ def solve_states(
             way += 1
         answers.status[s] = status
         answers.method[s] = COMPILED if way <= COLD + 1 else RECOVERY
+        if heated:
+            temperatures[s] = scratch.temperature[0] if status == CERTIFIED else nan
         if status == CERTIFIED:
             store(network, scratch, answers, s)
             remember(scratch.log_totals, log_total)
@@ -73,11 +99,23 @@ def solve_states(
 
 
 def start_cold(network: Network, scratch: Scratch, way: int) -> float:
-    """Linear programme, by guessed fractions except in the last two ways; ln N, +∞ infeasible."""
+    """Linear programme, by guessed fractions except in the last two ways; ln N, +∞ infeasible.
+
+    Where the enthalpy is given, recovery is a search in temperature; +∞ where it fails.
+    """
     state, tableau = scratch.state, scratch.tableau
+    heated = scratch.temperature[0] > 0.0
+    if heated and way > COLD:
+        return search_temperature(network, scratch)
     diluted = way <= COLD + 1
     if not start_from_costs(network, state, tableau, scratch.equations, diluted):
         return inf
+    if heated:
+        T = guess_temperature(state, tableau, scratch.heat, scratch.temperature[0])
+        if inf == T:
+            return nan
+        scratch.temperature[0] = T
+        evaluate_energies(state, scratch.heat, T)
     renew_reduced(state, tableau)
     return guess_fractions(tableau, scratch.point, scratch.equations, network.gases)
 

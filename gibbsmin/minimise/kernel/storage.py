@@ -50,6 +50,25 @@ class State(NamedTuple):
     face: BoolArray
 
 
+class Heat(NamedTuple):
+    """What a state whose enthalpy is given needs: its energies as functions of temperature.
+
+    ``pieces`` (7, species × pieces) and ``breaks`` are those of
+    :func:`gibbsmin.minimise.kernel.heat.evaluate_energies`; ``offset`` is added to H/R and
+    ``constant`` to g̃.  ``target`` is H/R wanted, the lowest and the highest T, and the frozen
+    heat capacity over R of the point at hand.
+    """
+
+    pieces: FloatArray
+    breaks: FloatArray
+    offset: FloatArray
+    constant: FloatArray
+    enthalpy: FloatArray
+    capacity: FloatArray
+    reduced: FloatArray
+    target: FloatArray
+
+
 class Tableau(NamedTuple):
     """A basis B: ``entries`` ν = B⁻¹[A | I], ``supply`` B⁻¹b, ``reduced`` g̃ − νᵀg̃_B.
 
@@ -98,14 +117,19 @@ class Proof(NamedTuple):
 
 
 class Scratch(NamedTuple):
-    """One worker's memory, reused from state to state; ``log_totals`` are the last three ln N."""
+    """One worker's memory, reused from state to state; ``log_totals`` are the last three ln N.
+
+    ``temperature`` is T of the state at hand where its enthalpy is given, else 0.
+    """
 
     state: State
     tableau: Tableau
     point: Point
     equations: Equations
     proof: Proof
+    heat: Heat
     log_totals: FloatArray
+    temperature: FloatArray
 
 
 class Answers(NamedTuple):
@@ -143,8 +167,10 @@ def network_of(
     )
 
 
-def scratch_for(network: Network) -> Scratch:
-    """Memory for one worker, of order rows × (species + rows)."""
+def scratch_for(
+    network: Network, pieces: FloatArray, breaks: FloatArray, offset: FloatArray
+) -> Scratch:
+    """Memory for one worker, of order rows × (species + rows), beside the energies' pieces."""
     rows, species = network.matrix.shape
     return Scratch(
         State(np.zeros(species), np.zeros(rows), np.ones(species, dtype=np.bool_)),
@@ -161,9 +187,20 @@ def scratch_for(network: Network) -> Scratch:
             gain=np.zeros(rows),
             loss=np.zeros(rows),
             weight=np.zeros(species),
-            jacobian=np.zeros((rows + 1, rows + 1)),
-            step=np.zeros(rows + 1),
+            jacobian=np.zeros((rows + 2, rows + 2)),
+            step=np.zeros(rows + 2),
         ),
         Proof(np.zeros(rows), np.zeros(species), np.zeros(rows), np.zeros(rows)),
+        Heat(
+            pieces,
+            breaks,
+            offset,
+            constant=np.zeros(species),
+            enthalpy=np.zeros(species),
+            capacity=np.zeros(species),
+            reduced=np.zeros(species),
+            target=np.zeros(4),
+        ),
         log_totals=np.zeros(3),
+        temperature=np.zeros(1),
     )

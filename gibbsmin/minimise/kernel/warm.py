@@ -9,6 +9,7 @@ from __future__ import annotations
 from math import nan
 
 from gibbsmin.arrays import FloatArray
+from gibbsmin.minimise.kernel.heat import load_heated
 from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch, State, Tableau
 from gibbsmin.minimise.kernel.tableau import renew_reduced, renew_supply
 
@@ -22,14 +23,18 @@ def resume(
     scratch: Scratch,
     energies: FloatArray,
     supplies: FloatArray,
+    contents: FloatArray,
+    temperatures: FloatArray,
     answers: Answers,
     s: int,
     run: int,
 ) -> float:
     """Predict the potentials of state ``s`` from the ``run`` states solved just before it.
 
-    Return ln N, or NaN where the states before are no guide.
+    Where its enthalpy is given, its temperature too.  Return ln N, or NaN where the states
+    before are no guide.
     """
+    heated = temperatures[s] > 0.0
     state, tableau, point = scratch.state, scratch.tableau, scratch.point
     multipliers, log_totals = answers.multipliers, scratch.log_totals
     if not same_rows(network, supplies[s], supplies[s - 1]):
@@ -39,7 +44,19 @@ def resume(
         return nan
     supply_change, supply_bend = supply_differences(supplies, s, run)
     straight = bend <= _UNEVEN * change and supply_bend <= _UNEVEN * supply_change
+    if heated and run >= 2:
+        step = contents[s] - contents[s - 1]
+        even = abs(step - (contents[s - 1] - contents[s - 2])) <= _UNEVEN * abs(step)
+        straight = straight and even
     points = min(run, 3) if straight else 1
+    if heated:
+        scratch.temperature[0] = extrapolate(
+            temperatures[s - 1],
+            temperatures[s - 2] if points > 1 else 0.0,
+            temperatures[s - 3] if points == 3 else 0.0,
+            points,
+        )
+        load_heated(scratch, contents[s])
     renew_supply(state, tableau)
     renew_reduced(state, tableau)
     if not retired_rows_hold(state, tableau):
