@@ -19,7 +19,9 @@ from gibbsmin.units import (
     Dimension,
     read_amount,
     read_amount_unit,
+    read_density,
     read_heat,
+    read_heating_value,
     read_molar_energy,
     read_pressure,
     read_share,
@@ -375,4 +377,66 @@ def test_what_is_no_volume_share_or_molar_energy(
 ) -> None:
     with pytest.raises(UnitError) as caught:
         read(value)
+    assert str(caught.value) == sentence
+
+
+@pytest.mark.parametrize(
+    ("text", "value"),
+    [
+        ("28.5 MJ/kg", 28.5e6),
+        ("6800 kcal/kg", 6800 * 4184.0),
+        ("12200 Btu/lb", 12200 * 2326.0),
+        ("5 kWh/kg", 18e6),
+        ("28.5 GJ/t", 28.5e6),
+    ],
+)
+def test_heating_values(text: str, value: float) -> None:
+    assert read_heating_value(text) == pytest.approx(value, rel=1e-3)
+
+
+@pytest.mark.parametrize(
+    ("text", "value"), [("0.96 kg/L", 960.0), ("960 kg/m3", 960.0), ("0.96 t/m3", 960.0)]
+)
+def test_densities(text: str, value: float) -> None:
+    assert read_density(text) == pytest.approx(value)
+
+
+HEATING_VALUE = (
+    'accepted is a heat of a mass such as "28.5 MJ/kg", "6800 kcal/kg" or "12200 Btu/lb".'
+)
+DENSITY = 'accepted is a density such as "0.96 kg/L" or "960 kg/m3".'
+
+
+@pytest.mark.parametrize(
+    ("reader", "given", "sentence"),
+    [
+        (read_heating_value, 28.5, f"found 28.5; {HEATING_VALUE}"),
+        (read_heating_value, None, f"found nothing; {HEATING_VALUE}"),
+        (
+            read_heating_value,
+            "28 MJ/Nm3",
+            f'found "28 MJ/Nm3", which is no heat of a mass; {HEATING_VALUE}',
+        ),
+        (
+            read_heating_value,
+            "28 MW/kg",
+            f'found "28 MW/kg", which is no heat of a mass; {HEATING_VALUE}',
+        ),
+        (read_heating_value, "28 bar/kg", f'found "28 bar/kg"; {HEATING_VALUE}'),
+        (
+            read_heating_value,
+            "0 MJ/kg",
+            f'found "0 MJ/kg", which is not above zero; {HEATING_VALUE}',
+        ),
+        (read_density, "960", f'found "960"; {DENSITY}'),
+        (read_density, "960 mol/L", f'found "960 mol/L", which is no mass of a volume; {DENSITY}'),
+        (read_density, "0 kg/L", f'found "0 kg/L", which is no mass of a volume; {DENSITY}'),
+        (read_density, "1 kg/kg", f'found "1 kg/kg"; {DENSITY}'),
+    ],
+)
+def test_faults_of_heating_values_and_densities(
+    reader: Callable[[object], float], given: object, sentence: str
+) -> None:
+    with pytest.raises(UnitError) as caught:
+        reader(given)
     assert str(caught.value) == sentence

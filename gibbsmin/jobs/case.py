@@ -17,6 +17,7 @@ from gibbsmin.jobs.case_text import read_tables
 from gibbsmin.jobs.case_uncertainty import read_correlations, read_uncertainties
 from gibbsmin.jobs.stated import Correlation, StatedUncertainty
 from gibbsmin.reactor.streams import Stream
+from gibbsmin.thermo.fuel_correlations import FUEL_SOURCES
 from gibbsmin.thermo.library import Library, load_library
 from gibbsmin.thermo.species import Species
 from gibbsmin.thermo.tables import Source
@@ -67,8 +68,9 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
 
     try:
         table = validate(tables)
-        library = load_library()
-        feeds = read_streams(table.feed, library)
+        feeds, own_records = read_streams(table.feed, load_library())
+        own_sources = FUEL_SOURCES if own_records else ()
+        library = library_with(own_records, own_sources)
         stages = read_stages(table, feeds, library)
         axes = read_axes(table.axis, feeds, table.site_pressure, library)
         uncertainties = read_uncertainties(table.uncertainty, feeds, stages, library)
@@ -84,6 +86,8 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         axes,
         uncertainties=uncertainties,
         correlations=correlations,
+        own_records=own_records,
+        own_sources=own_sources,
     )
 
 

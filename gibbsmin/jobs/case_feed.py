@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from gibbsmin.errors import InputError, UnitError
-from gibbsmin.jobs.compositions import compositions
 from gibbsmin.jobs.feed_analysis import analysed_amounts
-from gibbsmin.jobs.feed_parts import moles_of, placed, resolve
+from gibbsmin.jobs.feed_fuel import FuelFeed, fuel_feed
+from gibbsmin.jobs.feed_parts import moles_of, parts_of, placed
+from gibbsmin.jobs.feed_water import with_water
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
@@ -18,9 +20,24 @@ if TYPE_CHECKING:
     from gibbsmin.jobs.feed_schema import FeedTable
 
 
-def read_streams(tables: Mapping[str, FeedTable], library: Library) -> tuple[Stream, ...]:
-    """The streams of a case: all of them flows, or all quantities, and not all nothing."""
-    streams = tuple(_read_stream(name, table, library) for name, table in tables.items())
+def read_streams(
+    tables: Mapping[str, FeedTable], library: Library
+) -> tuple[tuple[Stream, ...], tuple[Species, ...]]:
+    """The streams of a case, and the records of those that are fuels.
+
+    The streams are all of them flows, or all quantities, and not all nothing.
+    """
+    fuels = {
+        name: fuel_feed(name, table.fuel, table.total, table.temperature, library)
+        for name, table in tables.items()
+        if table.fuel is not None and table.total is not None
+    }
+    streams = tuple(
+        _fuel_stream(name, table, fuels[name])
+        if name in fuels
+        else _read_stream(name, table, library)
+        for name, table in tables.items()
+    )
     first = streams[0]
     for stream in streams:
         if stream.is_flow != first.is_flow:
@@ -34,13 +51,19 @@ def read_streams(tables: Mapping[str, FeedTable], library: Library) -> tuple[Str
         raise InputError(
             "found amounts that are all zero", "accepted is at least one above zero", key="feed"
         )
-    return streams
+    return streams, tuple(fuel.record for fuel in fuels.values())
+
+
+def _fuel_stream(name: str, table: FeedTable, fuel: FuelFeed) -> Stream:
+    stream = _stream(name, table, fuel.amounts, fuel.unit, fuel.remarks)
+    return replace(stream, warnings=fuel.warnings)
 
 
 def _read_stream(name: str, table: FeedTable, library: Library) -> Stream:
     if table.analysis is not None and table.total is not None:
         analysed, remarks = analysed_amounts(name, table, table.total, table.analysis, library)
-        return _stream(name, table, analysed, table.total.unit, remarks)
+        wet = with_water(name, table, analysed, library)
+        return _stream(name, table, wet, table.total.unit, remarks)
     measures = _measures(name, table)
     unit = table.unit or next(iter(measures.values())).unit
     amounts: dict[str, float] = {}
@@ -48,12 +71,12 @@ def _read_stream(name: str, table: FeedTable, library: Library) -> Stream:
     for text, measure in measures.items():
         with placed(f"feed.{name}.amounts.{text}"):
             _check_flow(measure.unit, unit)
-            parts = _parts(text, library)
+            parts = parts_of(text, library)
             if len(parts) == 1:
                 _check_new(text, next(iter(parts)).name, written)
             for record, moles in moles_of(measure, parts).items():
                 amounts[record.name] = amounts.get(record.name, 0.0) + moles
-    return _stream(name, table, amounts, unit)
+    return _stream(name, table, with_water(name, table, amounts, library), unit)
 
 
 def _stream(
@@ -103,14 +126,6 @@ def _check_new(text: str, name: str, written: dict[str, str]) -> None:
             "accepted is one amount of each record",
         )
     written[name] = text
-
-
-def _parts(text: str, library: Library) -> dict[Species, float]:
-    """Mole fractions of what a name stands for: a record, or the parts of a mixture."""
-    mixture = compositions().get(text.strip().casefold())
-    if mixture is None:
-        return {resolve(text, library): 1.0}
-    return {library[name]: fraction for name, fraction in mixture.items()}
 
 
 def _kind(is_flow: bool) -> str:

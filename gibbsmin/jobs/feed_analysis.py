@@ -1,27 +1,18 @@
-"""A stream given by analysis: a total, shares that add up, lumps, and the water of a dry gas."""
+"""A stream given by analysis: a total, shares that add up, and lumps."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping
 from typing import TYPE_CHECKING
 
-import numpy as np
-
-from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.feed_parts import moles_of, placed, resolve
+from gibbsmin.jobs.feed_parts import ANALYSIS_SPREAD, moles_of, parts_of, placed
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Species
 from gibbsmin.units import Measure
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.feed_schema import FeedTable
-
-_SPREAD = 0.005
-"""An analysis may miss 100 % by this much; it is then scaled, and the result says so."""
-
-_WATER = "H2O(g)"
 
 
 def analysed_amounts(
@@ -29,13 +20,10 @@ def analysed_amounts(
 ) -> tuple[dict[str, float], tuple[str, ...]]:
     """Amounts in mol (or mol/s) by record, and remarks on how they came about.
 
-    The total counts the gas as analysed; water by dew point or steam ratio comes on top.
-
     Raises
     ------
     InputError
-        for an analysis that does not add up to 100 %, a lump whose shares do not add up to 1,
-        or a dew point at which the stream would be all water.
+        for an analysis that does not add up to 100 % or a lump whose shares do not add up to 1.
     """
     shares, remarks = _added_up(name, analysis)
     parts = _parts(name, shares, table, library)
@@ -45,18 +33,15 @@ def analysed_amounts(
         parts = {record: share / whole for record, share in moles.items()}
     with placed(f"feed.{name}.total"):
         amounts = {r.name: n for r, n in moles_of(total, parts).items()}
-    steam = _steam(name, table, sum(amounts.values()), library)
-    if steam:
-        amounts[_WATER] = amounts.get(_WATER, 0.0) + steam
     return amounts, remarks
 
 
 def _added_up(name: str, analysis: Mapping[str, float]) -> tuple[dict[str, float], tuple[str, ...]]:
     total = sum(analysis.values())
-    if abs(total - 1.0) > _SPREAD:
+    if abs(total - 1.0) > ANALYSIS_SPREAD:
         raise InputError(
             f"found an analysis that adds up to {100 * total:.6g} %",
-            f"accepted is {100 * (1 - _SPREAD):g} to {100 * (1 + _SPREAD):g} %",
+            f"accepted is {100 * (1 - ANALYSIS_SPREAD):g} to {100 * (1 + ANALYSIS_SPREAD):g} %",
             key=f"feed.{name}.analysis",
         )
     scaled = {text: share / total for text, share in analysis.items()}
@@ -75,8 +60,9 @@ def _parts(
     for text, share in shares.items():
         for part, fraction in table.lumps.get(text, {text: 1.0}).items():
             with placed(f"feed.{name}.analysis.{text}"):
-                record = resolve(part, library)
-            parts[record] = parts.get(record, 0.0) + share * fraction
+                records = parts_of(part, library)
+            for record, content in records.items():
+                parts[record] = parts.get(record, 0.0) + share * fraction * content
     for lump, split in table.lumps.items():
         key = f"feed.{name}.lumps.{lump}"
         if lump not in shares:
@@ -92,27 +78,3 @@ def _parts(
                 key=key,
             )
     return parts
-
-
-def _steam(name: str, table: FeedTable, dry: float, library: Library) -> float:
-    """Moles of water that the dry gas carries."""
-    if table.steam_ratio is not None:
-        return table.steam_ratio * dry
-    if table.water_dew_point is None:
-        return 0.0
-    fraction = _saturation(table.water_dew_point, library) / table.pressure
-    if fraction >= 1.0:
-        raise InputError(
-            f"found a dew point of {table.water_dew_point:.2f} K, at which water alone reaches the "
-            f"stream's {table.pressure / 1e5:g} bar",
-            "accepted is a lower one",
-            key=f"feed.{name}.water_dew_point",
-        )
-    return dry * fraction / (1.0 - fraction)
-
-
-def _saturation(T: float, library: Library) -> float:
-    """Vapour pressure of water in Pa, from the Gibbs energies of the liquid and the ideal gas."""
-    table = PropertyTable.of([library[_WATER], library["H2O(l)"]])
-    gas, liquid = table.gibbs_energy(T)
-    return float(STANDARD_PRESSURE * np.exp((liquid - gas) / (GAS_CONSTANT * T)))

@@ -6,9 +6,13 @@ from collections.abc import Iterator, Mapping
 from contextlib import contextmanager
 
 from gibbsmin.errors import InputError, UnitError, UnknownSpeciesError
+from gibbsmin.jobs.compositions import compositions
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Phase, Species
 from gibbsmin.units import Dimension, Measure, shown
+
+ANALYSIS_SPREAD = 0.005
+"""An analysis may miss 100 % by this much; it is then scaled, and the result says so."""
 
 _MASS = (Dimension.MASS, Dimension.MASS_FLOW)
 _NORMAL_VOLUME = (Dimension.NORMAL_VOLUME, Dimension.NORMAL_VOLUME_FLOW)
@@ -45,6 +49,14 @@ def resolve(text: str, library: Library) -> Species:
             f"accepted is one of {', '.join(form.name for form in forms)}",
         )
     return record
+
+
+def parts_of(text: str, library: Library) -> dict[Species, float]:
+    """Mole fractions of what a name stands for: a record, or the parts of a mixture such as air."""
+    mixture = compositions().get(text.strip().casefold())
+    if mixture is None:
+        return {resolve(text, library): 1.0}
+    return {library[name]: fraction for name, fraction in mixture.items()}
 
 
 def moles_of(measure: Measure, parts: Mapping[Species, float]) -> dict[Species, float]:

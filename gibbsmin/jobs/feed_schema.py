@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from typing import Annotated, Any, Literal, Self
 
 from pydantic import BeforeValidator, model_validator
 
 from gibbsmin.errors import InputError
+from gibbsmin.jobs.fuel_schema import FuelTable
 from gibbsmin.jobs.stage_schema import NOTHING, each, word
 from gibbsmin.jobs.table_schema import MISSING, Pressure, Table, Temperature
 from gibbsmin.units import (
@@ -19,6 +20,14 @@ from gibbsmin.units import (
     read_temperature,
     shown,
 )
+
+_WAYS = ("amounts", "analysis", "fuel")
+_WATERS = ("water_dew_point", "steam_ratio", "relative_humidity")
+_GOES_WITH = {
+    "total": ("analysis", "fuel"),
+    "lumps": ("analysis",),
+    **dict.fromkeys(_WATERS, ("amounts", "analysis")),
+}
 
 
 def _amounts(given: object) -> Mapping[str, Any]:
@@ -42,6 +51,10 @@ def _steam_ratio(given: object) -> float:
             f"found {shown(given)}", "accepted is moles of steam to a mole of dry gas, such as 0.4"
         )
     return float(given)
+
+
+def _humidity(given: object) -> float | None:
+    return None if given is None else read_share(given)
 
 
 def read_total(given: object) -> Measure:
@@ -69,32 +82,44 @@ class FeedTable(Table):
     ] = NOTHING
     water_dew_point: Annotated[float | None, BeforeValidator(read_temperature)] = None
     steam_ratio: Annotated[float | None, BeforeValidator(_steam_ratio)] = None
+    relative_humidity: Annotated[float | None, BeforeValidator(_humidity)] = None
+    fuel: FuelTable | None = None
 
     @model_validator(mode="after")
-    def _amounts_or_analysis(self) -> Self:
-        if self.amounts is None and self.analysis is None:
+    def _one_way(self) -> Self:
+        given = [key for key in _WAYS if getattr(self, key) is not None]
+        if not given:
             try:
                 _amounts(None)
             except InputError as error:
                 raise error.at(key="amounts") from None
-        if self.amounts is not None and self.analysis is not None:
-            raise InputError(
-                "found analysis beside amounts", "accepted is one of the two", key="analysis"
-            )
-        if self.analysis is None:
-            for key in ("total", "lumps", "water_dew_point", "steam_ratio"):
-                if getattr(self, key):
-                    raise InputError(
-                        f"found {key} without an analysis",
-                        "accepted is an analysis with it, or amounts alone",
-                        key=key,
-                    )
-        elif self.total is None:
+        _one_of(given, _WAYS)
+        if self.amounts is None and self.total is None:
             read_total(None)
-        if self.water_dew_point is not None and self.steam_ratio is not None:
-            raise InputError(
-                "found steam_ratio beside water_dew_point",
-                "accepted is one of the two",
-                key="steam_ratio",
-            )
         return self
+
+    @model_validator(mode="after")
+    def _what_goes_with_it(self) -> Self:
+        _one_of([key for key in _WATERS if getattr(self, key) is not None], _WATERS)
+        for key, ways in _GOES_WITH.items():
+            if self._way not in ways and getattr(self, key) not in (None, {}):
+                raise InputError(
+                    f"found {key} with {self._way}",
+                    f"accepted is {key} with {' or '.join(ways)}",
+                    key=key,
+                )
+        return self
+
+    @property
+    def _way(self) -> str:
+        return next(key for key in _WAYS if getattr(self, key) is not None)
+
+
+def _one_of(given: Sequence[str], keys: Sequence[str]) -> None:
+    """Refuse two keys of which one is enough."""
+    if len(given) > 1:
+        raise InputError(
+            f"found {given[1]} beside {given[0]}",
+            f"accepted is one of {', '.join(keys[:-1])} and {keys[-1]}",
+            key=given[1],
+        )

@@ -29,7 +29,11 @@ def warnings(
     """Sentences on what limits the figures, the gravest first."""
     if status is not Status.CERTIFIED:
         return (f"Not certified, so no figure is given: {status.sentence}",)
-    sentences = [*_audit_warnings(entries[:AUDIT_LENGTH]), *_range_warnings(model, feeds, state)]
+    sentences = [
+        *_audit_warnings(entries[:AUDIT_LENGTH]),
+        *_range_warnings(model, feeds, state),
+        *(warning for feed in feeds for warning in feed.warnings),
+    ]
     if entropy_remark:
         sentences.append(f"Entropy: {entropy_remark}.")
     return tuple(sentences)

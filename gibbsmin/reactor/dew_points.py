@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Final
 
 import numpy as np
@@ -39,12 +40,7 @@ def water_dew_point(partial_pressure: npt.ArrayLike, library: Library) -> FloatA
         p(H2O) in Pa.
     """
     p = np.asarray(partial_pressure, dtype=float)
-    table = PropertyTable.of([library[name] for name in ("H2O(g)", "H2O(l)", "H2O(cr)")])
-
-    def log_saturation(T: FloatArray) -> FloatArray:
-        gas, liquid, ice = np.moveaxis(table.gibbs_energy(T), -1, 0)
-        return np.asarray((np.minimum(liquid, ice) - gas) / (GAS_CONSTANT * T))
-
+    log_saturation = _log_saturation(library)
     with np.errstate(divide="ignore", invalid="ignore"):
         wanted = np.log(p / STANDARD_PRESSURE)
     low, high = np.full(p.shape, _COLDEST), np.full(p.shape, _HOTTEST)
@@ -54,6 +50,26 @@ def water_dew_point(partial_pressure: npt.ArrayLike, library: Library) -> FloatA
         above = log_saturation(middle) > wanted
         low, high = np.where(above, low, middle), np.where(above, middle, high)
     return np.where(inside, (low + high) / 2, np.nan)
+
+
+def water_saturation_pressure(temperature: npt.ArrayLike, library: Library) -> FloatArray:
+    """Pressure in Pa at which steam is saturated over water, or over ice where that is stabler.
+
+    The inverse of :func:`water_dew_point`, with the same idealisations; T in K, of any shape.
+    """
+    T = np.asarray(temperature, dtype=float)
+    return np.asarray(STANDARD_PRESSURE * np.exp(_log_saturation(library)(T)))
+
+
+def _log_saturation(library: Library) -> Callable[[FloatArray], FloatArray]:
+    """ln(p/P°) of saturated steam as a function of T."""
+    table = PropertyTable.of([library[name] for name in ("H2O(g)", "H2O(l)", "H2O(cr)")])
+
+    def log_saturation(T: FloatArray) -> FloatArray:
+        gas, liquid, ice = np.moveaxis(table.gibbs_energy(T), -1, 0)
+        return np.asarray((np.minimum(liquid, ice) - gas) / (GAS_CONSTANT * T))
+
+    return log_saturation
 
 
 def acid_dew_point(

@@ -24,6 +24,7 @@ from gibbsmin.thermo.species import Phase, Species
 _OXIDISING: Final = ("O2(g)", "CO2(g)", "H2O(g)", "N2(g)", "SO2(g)", "HCl(g)")
 _REDUCING: Final = ("H2O(g)", "H2(g)", "CO(g)", "N2(g)", "H2S(g)", "HCl(g)", "CO2(g)")
 _DEPENDENT: Final = 1e-10
+_LARGEST_DENOMINATOR: Final = 10_000
 _ROUNDING: Final = 1e-12
 """Share of an element's feed below which nothing was converted."""
 
@@ -42,7 +43,7 @@ class KeyedReaction:
     terms: Mapping[str, Fraction]
 
     def __str__(self) -> str:
-        return written_equation((number, name) for name, number in self.terms.items())
+        return written_equation((_readable(number), name) for name, number in self.terms.items())
 
 
 def independent_reactions(
@@ -155,6 +156,13 @@ def _preference(names: Collection[str]) -> Callable[[Species], tuple[int, bool, 
         return listed, record.phase is not Phase.GAS, len(record.elements), record.atoms
 
     return rank
+
+
+def _readable(number: Fraction) -> Fraction:
+    """Five digits of what has no short form, as a fuel's elements bring it."""
+    return (
+        number if number.denominator <= _LARGEST_DENOMINATOR else Fraction(f"{float(number):.5g}")
+    )
 
 
 def _keyed(

@@ -32,6 +32,8 @@ class Stream:
         Whether the amounts are per time.
     remarks
         What the result should say of how it was given.
+    warnings
+        What the result should warn of: what of it looks wrong.
     """
 
     name: str
@@ -41,3 +43,4 @@ class Stream:
     unit: str
     is_flow: bool
     remarks: tuple[str, ...] = ()
+    warnings: tuple[str, ...] = ()

@@ -147,7 +147,8 @@ def fuel_record(
             "found more chlorine than hydrogen to bind it",
             "accepted is an analysis whose chlorine burns to HCl",
         )
-    counts = {e: amount / moles["C"] for e, amount in moles.items()}
+    # Six decimals keep reactions readable; they are far finer than any analysis.
+    counts = {e: round(amount / moles["C"], 6) for e, amount in moles.items()}
     molar_mass = sum(count * weights[e] for e, count in counts.items())
     solid = phase is Phase.SOLID
     entropy, u_entropy = solid_entropy(shares) if solid else liquid_entropy(density)

@@ -22,6 +22,7 @@ from gibbsmin.units.reading import (
     shown,
     to_unit,
 )
+from gibbsmin.units.specific import read_density, read_heating_value
 from gibbsmin.units.unit import Dimension, Unit
 
 __all__ = [
@@ -30,7 +31,9 @@ __all__ = [
     "Unit",
     "read_amount",
     "read_amount_unit",
+    "read_density",
     "read_heat",
+    "read_heating_value",
     "read_molar_energy",
     "read_molar_entropy",
     "read_pressure",

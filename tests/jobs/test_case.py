@@ -267,7 +267,7 @@ def test_composition_of_air_sums_to_one() -> None:
             "520 degC",
             'feed.gas.temprature: found an unknown key (nearest: "temperature"); '
             "accepted is temperature, pressure, unit, amounts, total, analysis, basis, lumps, "
-            "water_dew_point or steam_ratio.",
+            "water_dew_point, steam_ratio, relative_humidity or fuel.",
         ),
         (
             "outlet/x",

@@ -66,9 +66,43 @@ def test_water_comes_on_top_of_the_dry_gas() -> None:
     assert water / (100.0 + water) == pytest.approx(0.1995 / 2.0, rel=0.01)
 
 
+def test_moist_air_by_its_relative_humidity() -> None:
+    changes: dict[str, Any] = {"total": None, "analysis": None, "unit": "mol", "pressure": "1 atm"}
+    changes |= {"temperature": "30 degC", "amounts": {"air": 100}}
+    air = read(**changes, relative_humidity="60 %").amounts
+    # 4.246 kPa of saturation at 30 °C (steam tables, recalled); the library's water is within 1 %
+    vapour = 0.6 * 4.246 / 101.325
+    assert air["H2O(g)"] == pytest.approx(100.0 * vapour / (1.0 - vapour), rel=0.01)
+    assert sum(air.values()) - air["H2O(g)"] == pytest.approx(100.0)
+    # the same air by its dew point, 21.4 °C (Magnus formula, recalled)
+    by_dew_point = read(**changes, water_dew_point="21.39 degC").amounts["H2O(g)"]
+    assert by_dew_point == pytest.approx(air["H2O(g)"], rel=0.01)
+    assert read(**changes, relative_humidity=0.0).amounts.get("H2O(g)", 0.0) == 0.0
+    # only the gas of a stream takes up water
+    wetted = read(**{**changes, "amounts": {"air": 100, "C(graphite)": 50}}, relative_humidity=0.6)
+    assert wetted.amounts["H2O(g)"] == pytest.approx(air["H2O(g)"])
+
+
+def test_air_in_an_analysis_brings_its_parts() -> None:
+    stream = read(analysis={"air": "90 %", "CO2": "10 %"})
+    assert stream.amounts["O2(g)"] == pytest.approx(90.0 * 0.20948, rel=1e-4)
+    assert stream.amounts["CO2(g)"] == pytest.approx(10.0 + 90.0 * 0.0004, rel=0.01)
+    assert sum(stream.amounts.values()) == pytest.approx(100.0)
+
+
 @pytest.mark.parametrize(
     ("changes", "sentence"),
     [
+        (
+            {"temperature": "130 degC", "relative_humidity": "80 %"},
+            "feed.gas.relative_humidity: found 80 % of saturation at 403.15 K, at which water "
+            "alone reaches the stream's 2 bar; accepted is a lower one.",
+        ),
+        (
+            {"relative_humidity": "130 %"},
+            'feed.gas.relative_humidity: found "130 %", which is not between 0 and 1; accepted is '
+            'a share from 0 to 1, such as 0.8 or "80 %".',
+        ),
         (
             {"analysis": {"CH4": "90 %", "N2": "3.2 %"}},
             "feed.gas.analysis: found an analysis that adds up to 93.2 %; accepted is 99.5 to "
@@ -92,11 +126,12 @@ def test_water_comes_on_top_of_the_dry_gas() -> None:
         (
             {"water_dew_point": "25 degC", "steam_ratio": 0.1},
             "feed.gas.steam_ratio: found steam_ratio beside water_dew_point; accepted is one of "
-            "the two.",
+            "water_dew_point, steam_ratio and relative_humidity.",
         ),
         (
             {"amounts": {"CH4": 1}},
-            "feed.gas.analysis: found analysis beside amounts; accepted is one of the two.",
+            "feed.gas.analysis: found analysis beside amounts; accepted is one of amounts, "
+            "analysis and fuel.",
         ),
         (
             {"total": None},
@@ -105,8 +140,7 @@ def test_water_comes_on_top_of_the_dry_gas() -> None:
         ),
         (
             {"analysis": None, "amounts": {"CH4": 1}, "unit": "mol"},
-            "feed.gas.total: found total without an analysis; accepted is an analysis with it, or "
-            "amounts alone.",
+            "feed.gas.total: found total with amounts; accepted is total with analysis or fuel.",
         ),
     ],
 )

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from gibbsmin.constants import STANDARD_ATMOSPHERE
-from gibbsmin.reactor.dew_points import acid_dew_point, water_dew_point
+from gibbsmin.reactor.dew_points import acid_dew_point, water_dew_point, water_saturation_pressure
 from gibbsmin.thermo.library import load_library
 
 # Saturation of water and ice: °C, Pa.  IAPWS-95 (2018) and IAPWS sublimation pressure (2011),
@@ -29,6 +29,12 @@ def test_water_dew_point_meets_the_steam_tables(
 ) -> None:
     found = float(water_dew_point(pressure, load_library())) - 273.15
     assert found == pytest.approx(celsius, abs=departure)
+
+
+def test_saturation_pressure_is_the_inverse_of_the_dew_point() -> None:
+    T = np.array([[240.0, 273.15], [330.0, 430.0]])
+    pressure = water_saturation_pressure(T, load_library())
+    assert water_dew_point(pressure, load_library()) == pytest.approx(T, abs=1e-6)
 
 
 def test_water_dew_point_is_an_array_and_nan_outside_its_range() -> None:
