@@ -11,21 +11,27 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
+    from gibbsmin.jobs.onset import Onset, onset
     from gibbsmin.jobs.predict import predict
     from gibbsmin.jobs.scan import scan, scan_blocks
     from gibbsmin.jobs.sensitivity import Sensitivities
+    from gibbsmin.jobs.target import Target, target
     from gibbsmin.jobs.uncertainty import uncertainty
     from gibbsmin.results import Outlet, StageOutlet
 
 __all__ = [
     "Case",
+    "Onset",
     "Outlet",
     "Sensitivities",
     "StageOutlet",
+    "Target",
     "load_case",
+    "onset",
     "predict",
     "scan",
     "scan_blocks",
+    "target",
     "uncertainty",
 ]
 
@@ -34,6 +40,10 @@ _HOMES = {
     "Outlet": "gibbsmin.results",
     "StageOutlet": "gibbsmin.results",
     "load_case": "gibbsmin.jobs.case",
+    "Onset": "gibbsmin.jobs.onset",
+    "onset": "gibbsmin.jobs.onset",
+    "Target": "gibbsmin.jobs.target",
+    "target": "gibbsmin.jobs.target",
     "predict": "gibbsmin.jobs.predict",
     "scan": "gibbsmin.jobs.scan",
     "scan_blocks": "gibbsmin.jobs.scan",

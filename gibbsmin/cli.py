@@ -129,6 +129,49 @@ def scan(
         raise typer.Exit(NOT_CERTIFIED)
 
 
+@app.command(short_help="Find where a phase first forms, or where a target is met.")
+def onset(
+    case: Annotated[
+        str, typer.Argument(metavar="CASE", help="A case file with [onset] or [target].")
+    ],
+    as_json: AsJson = False,
+    out: Annotated[
+        str, typer.Option(metavar="FILE", help="Write a .csv, .xlsx or .json file as well.")
+    ] = "",
+) -> None:
+    """Find where along an axis a phase first forms or vanishes, or a result meets a target.
+
+    A second axis gives the boundary curve.  Exit code 1 means that an answer is not certified.
+    """
+    from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.onset import onset as onset_of
+    from gibbsmin.jobs.target import target as target_of
+    from gibbsmin.present.outlet_files import require_ending
+    from gibbsmin.present.search_document import onset_document, target_document
+    from gibbsmin.present.search_files import write_search
+    from gibbsmin.present.search_view import onset_view, target_view
+
+    if out:
+        require_ending(Path(out))
+    loaded = load_case(case)
+    if loaded.onset is None and loaded.target is not None:
+        answers = target_of(loaded)
+        document, view = target_document(answers), target_view(answers, loaded.title)
+        certified = bool(answers.certified.all())
+    else:
+        crossings = onset_of(loaded)
+        document, view = onset_document(crossings), onset_view(crossings, loaded.title)
+        certified = bool(crossings.certified.all())
+    if out:
+        write_search(document, Path(out))
+    if as_json:
+        _print_json(document)
+    else:
+        _print(view)
+    if not certified:
+        raise typer.Exit(NOT_CERTIFIED)
+
+
 @app.command(short_help="Find species records, and show one in full.")
 def species(
     text: Annotated[

@@ -1,4 +1,4 @@
-"""An axis of a scan: a number of the case, and the values that it takes."""
+"""An axis, the values that a number of the case takes, and what may be sought along it."""
 
 from __future__ import annotations
 
@@ -25,3 +25,20 @@ class Axis:
     shown: FloatArray
     unit: str
     scale: str = ""
+
+
+@dataclass(frozen=True)
+class SoughtPhase:
+    """A solid or liquid whose onset is looked for, and the stage, empty for the only one."""
+
+    phase: str
+    stage: str
+
+
+@dataclass(frozen=True)
+class SoughtValue:
+    """A result that is to have a value, both as the user wrote them, and the stage."""
+
+    result: str
+    value: float | str
+    stage: str

@@ -9,7 +9,7 @@ from os import PathLike
 from typing import Any
 
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.axis import Axis
+from gibbsmin.jobs.axis import Axis, SoughtPhase, SoughtValue
 from gibbsmin.jobs.case_axis import read_axes
 from gibbsmin.jobs.case_feed import read_streams
 from gibbsmin.jobs.case_stage import StageCase, read_stages
@@ -41,6 +41,8 @@ class Case:
     axes: tuple[Axis, ...] = ()
     uncertainties: tuple[StatedUncertainty, ...] = ()
     correlations: tuple[Correlation, ...] = ()
+    onset: SoughtPhase | None = None
+    target: SoughtValue | None = None
     own_records: tuple[Species, ...] = ()
     own_sources: tuple[Source, ...] = ()
 
@@ -84,6 +86,12 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         feeds,
         stages,
         axes,
+        onset=SoughtPhase(table.onset.phase, table.onset.stage) if table.onset else None,
+        target=(
+            SoughtValue(table.target.result, table.target.value, table.target.stage)
+            if table.target
+            else None
+        ),
         uncertainties=uncertainties,
         correlations=correlations,
         own_records=own_records,

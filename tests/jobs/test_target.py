@@ -1,0 +1,155 @@
+"""Targets: each answer, put back into a prediction, meets the value."""
+
+from __future__ import annotations
+
+from copy import deepcopy
+from typing import Any
+
+import numpy as np
+import pytest
+
+import gibbsmin
+from gibbsmin.errors import InputError
+from gibbsmin.jobs.target import Target
+from gibbsmin.results import StageOutlet
+
+CASE: dict[str, Any] = {
+    "feed": {
+        "gas": {
+            "temperature": "500 degC",
+            "pressure": "20 bar",
+            "unit": "mol",
+            "amounts": {"CH4": 1.0},
+        },
+        "steam": {
+            "temperature": "500 degC",
+            "pressure": "20 bar",
+            "unit": "mol",
+            "amounts": {"H2O": 3.0},
+        },
+    },
+    "species": {"consider": ["CH4", "H2O", "CO", "CO2", "H2", "C(graphite)"]},
+    "outlet": {"temperature": "800 degC", "pressure": "20 bar"},
+}
+IN_T = {"vary": "outlet.temperature", "first": "500 degC", "last": "1000 degC", "count": 11}
+
+
+def find(result: str, value: Any, axis: dict[str, Any] = IN_T, **top: Any) -> Target:
+    tables = deepcopy(CASE) | {"axis": [axis], "target": {"result": result, "value": value}} | top
+    return gibbsmin.target(gibbsmin.load_case(tables))
+
+
+@pytest.mark.parametrize(
+    ("result", "value", "wanted"),
+    [
+        ("dry fraction CH4", "5 %", 0.05),
+        ("fraction H2", 0.4, 0.4),
+        ("conversion CH4", "60 %", 0.6),
+        ("heat", "150 kJ", 150e3),
+        ("amount CO", "0.3 mol", 0.3),
+        ("activity C(graphite)", 0.2, 0.2),
+    ],
+)
+def test_an_answer_meets_its_target_in_a_prediction(result: str, value: Any, wanted: float) -> None:
+    found = find(result, value)
+    assert found.shown.size >= 1
+    assert found.certified.all()
+    for shown in found.shown.tolist():
+        outlet = {"temperature": f"{shown!r} degC", "pressure": "20 bar"}
+        final = gibbsmin.predict(gibbsmin.load_case(deepcopy(CASE) | {"outlet": outlet})).final
+        assert reached(final, result) == pytest.approx(wanted, rel=1e-8)
+
+
+def reached(final: StageOutlet, result: str) -> float:
+    """A result of a predicted stage."""
+    kind, _, species = result.rpartition(" ")
+    names = [record.name for record in final.records]
+    if kind == "activity":
+        return next(a.value for a in final.activities if a.label == "a(C)")
+    if kind == "conversion":
+        return final.conversion[f"{species}(g)"]
+    if kind == "":
+        return final.heat
+    arrays = {
+        "dry fraction": final.dry_mole_fractions,
+        "fraction": final.mole_fractions,
+        "amount": final.amounts,
+    }
+    return float(arrays[kind][names.index(f"{species}(g)")])
+
+
+def test_a_target_met_twice_has_two_answers_and_one_out_of_reach_none() -> None:
+    twice = find("activity C(graphite)", 0.3)
+    assert twice.shown.size == 2
+    assert twice.rising.tolist() == [True, False]
+    none = find("conversion CH4", "99.99999 %")
+    assert none.shown.size == 0
+    assert none.lowest[0] < none.highest[0] < 0.9999999
+
+
+def test_an_adiabatic_temperature_is_met_by_preheat() -> None:
+    axis = {"vary": "feed.gas.temperature", "first": "300 degC", "last": "900 degC", "count": 7}
+    tables = {"outlet": {"heat": "0 kJ", "pressure": "20 bar"}}
+    found = find("temperature", "420 degC", axis, **tables)
+    assert found.shown.size == 1
+    assert found.reached == pytest.approx([693.15], rel=1e-10)
+
+
+def test_a_second_axis_gives_a_curve_of_answers() -> None:
+    second = {"vary": "outlet.pressure", "values": ["10 bar", "20 bar", "30 bar"]}
+    tables = deepcopy(CASE) | {
+        "axis": [IN_T, second],
+        "target": {"result": "dry fraction CH4", "value": "5 %"},
+    }
+    curve = gibbsmin.target(gibbsmin.load_case(tables))
+    assert curve.row.tolist() == [0, 1, 2]
+    assert np.all(np.diff(curve.shown) > 0.0)
+    assert curve.shown[1] == pytest.approx(find("dry fraction CH4", "5 %").shown[0], rel=1e-10)
+
+
+@pytest.mark.parametrize(
+    ("result", "value", "sentence"),
+    [
+        (
+            "slip",
+            "5 %",
+            'target.result: found "slip", which is no result; accepted is temperature, pressure, '
+            "heat, shaft work, or one of fraction, dry fraction, conversion, amount, activity with "
+            'a species, such as "dry fraction CH4".',
+        ),
+        (
+            "dry fraction CH4",
+            "5 bar",
+            'target.value: found "5 bar", which is no share; accepted is a share from 0 to 1, such '
+            'as 0.8 or "80 %".',
+        ),
+        (
+            "heat",
+            "5 bar",
+            'target.value: found "5 bar", which is a pressure; accepted is a heat such as '
+            '"1.5 MW", "2 Gcal/h" or "30 kJ".',
+        ),
+        (
+            "fraction NH3",
+            "1 %",
+            'target.result: found "NH3(g)", which is no candidate of outlet; accepted is one of '
+            "CH4(g), H2O(g), CO(g), CO2(g), H2(g), C(graphite).",
+        ),
+        (
+            "dry fraction H2O",
+            "1 %",
+            'target.result: found "H2O(g)", which is no part of that gas; accepted is a gas, such '
+            "as CH4(g).",
+        ),
+        (
+            "conversion CO",
+            "1 %",
+            'target.result: found "CO(g)", which does not enter outlet; accepted is one of '
+            "CH4(g), H2O(g).",
+        ),
+    ],
+)
+def test_what_is_no_target_is_refused(result: str, value: Any, sentence: str) -> None:
+    with pytest.raises(InputError) as error:
+        find(result, value)
+    assert str(error.value) == sentence
