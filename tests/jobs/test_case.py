@@ -281,8 +281,8 @@ def test_composition_of_air_sums_to_one() -> None:
             "oulet",
             {},
             'oulet: found an unknown key (nearest: "outlet"); '
-            "accepted is title, site_pressure, feed, outlet, stage, species, axis, onset, target, uncertainty or "
-            "correlation.",
+            "accepted is title, site_pressure, feed, outlet, stage, species, axis, onset, target, "
+            "uncertainty or correlation.",
         ),
         (
             "feed/gas/temperature",
