@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, TypeVar
 
 from gibbsmin.errors import InputError, UnitError
+from gibbsmin.jobs.case_reactions import coefficients_of
 from gibbsmin.jobs.case_selection import proposed, read_selection
 from gibbsmin.jobs.feed_parts import placed, resolve
 from gibbsmin.reactor.approach import Approach
@@ -16,8 +17,6 @@ from gibbsmin.reactor.services import Service, find_service
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.reaction import Reaction
-from gibbsmin.thermo.species import Phase, Species
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.case_schema import CaseTable
@@ -47,6 +46,10 @@ class StageCase:
         Where heat crosses into the stage, K; None means at the outlet's temperature.
     surroundings_temperature
         For lost work, K.
+    reference_oxygen
+        Fraction of O2 in the dry gas at which emissions are told; None tells none.
+    extents
+        Reactions whose extents are told, as ν by record name.
     bypass
         Share of what enters that goes around the reaction and joins its outlet.
     removed
@@ -68,6 +71,8 @@ class StageCase:
     removed: Mapping[str, float]
     own_species: bool = False
     service: Service | None = None
+    reference_oxygen: float | None = None
+    extents: tuple[Mapping[str, float], ...] = ()
 
     @property
     def place(self) -> str:
@@ -145,6 +150,8 @@ def _stage(
         removed=_by_record(f"{key}.remove", stage.remove, library),
         own_species=species is not None,
         service=service,
+        reference_oxygen=stage.reference_oxygen,
+        extents=_extents(f"{key}.extents", stage.extents, library),
     )
 
 
@@ -202,11 +209,7 @@ def _chemistry(key: str, stage: OutletTable, selection: Selection, library: Libr
 
 def _approach(key: str, table: ApproachTable, library: Library) -> Approach:
     with placed(f"{key}.reaction"):
-        reaction = Reaction.read(table.reaction, library)
-        coefficients = {
-            _form(substance.text, substance.forms): float(number)
-            for number, substance in reaction.terms
-        }
+        coefficients = coefficients_of(table.reaction, library)
     chosen = ""
     if table.key is not None:
         with placed(f"{key}.key"):
@@ -219,15 +222,9 @@ def _approach(key: str, table: ApproachTable, library: Library) -> Approach:
     return Approach(table.reaction, coefficients, table.approach, chosen)
 
 
-def _form(text: str, forms: Sequence[Species]) -> str:
-    """A record of a reaction: the gas where there is one, else the only form."""
-    gases = [form for form in forms if form.phase is Phase.GAS]
-    if len(gases) == 1 or len(forms) == 1:
-        return (gases or list(forms))[0].name
-    raise InputError(
-        f'found "{text}", which has several forms',
-        f"accepted is one of {', '.join(form.name for form in forms)}",
-    )
+def _extents(key: str, texts: Sequence[str], library: Library) -> tuple[Mapping[str, float], ...]:
+    with placed(key):
+        return tuple(coefficients_of(text, library) for text in texts)
 
 
 def _by_record(key: str, values: Mapping[str, Value], library: Library) -> dict[str, Value]:

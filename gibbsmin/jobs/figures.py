@@ -6,18 +6,22 @@ from collections.abc import Iterable, Sequence
 
 import numpy as np
 
-from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import STANDARD_PRESSURE
+from gibbsmin.jobs.train import Step
 from gibbsmin.reactor.audit import ElementActivity
 from gibbsmin.reactor.derivatives import derivatives, energy_slopes
 from gibbsmin.reactor.dew_points import acid_dew_point, water_dew_point
-from gibbsmin.reactor.exergy import stream_exergy, szargut_surroundings
+from gibbsmin.reactor.exergy import Exergy, Surroundings, stream_exergy, szargut_surroundings
 from gibbsmin.reactor.gas_figures import gas_figures, response
-from gibbsmin.reactor.heating import heating_value
+from gibbsmin.reactor.heating import cold_gas_efficiency, heating_value
 from gibbsmin.reactor.stage import StageStates
+from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.reactor.trade_figures import (
     air_ratio,
+    at_reference_oxygen,
+    condensed_mass_fractions,
     nitriding_potential,
+    nitrogen_activity,
     quotient,
     steam_to_carbon,
     synthesis_module,
@@ -25,6 +29,7 @@ from gibbsmin.reactor.trade_figures import (
 )
 from gibbsmin.results import Figure
 from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.species import FEED_ONLY
 
 _TRACE = 1e-6
 """Mole fractions below this are not set against each other."""
@@ -32,22 +37,34 @@ _TRACE = 1e-6
 _SYNTHESIS_GAS = 0.01
 """Hydrogen and carbon monoxide both from this fraction make a synthesis gas."""
 
+_EMISSIONS = ("NO(g)", "NO2(g)", "N2O(g)", "CO(g)", "SO2(g)", "SO3(g)", "HCl(g)", "NH3(g)")
+"""Gases that limits of emission are set for (common practice)."""
+
+_LEAST_EMISSION = 1e-9
+
+_LEAST_AIR = 0.01
+"""Air ratio from which a fuel is burnt in part, and not by traces of oxygen."""
+
+_LEAN = 0.05
+"""Hydrogen and carbon monoxide both from this fraction are what a gasifier is run for."""
+
 _COMBUSTIBLE = 0.5e6
 """J/Nm³ from which a gas is worth a heating value."""
 
 
 def figures_of(
-    states: StageStates,
-    activities: Sequence[ElementActivity],
-    surroundings_temperature: float,
-    is_flow: bool,
-    library: Library,
+    step: Step, activities: Sequence[ElementActivity], library: Library
 ) -> tuple[Figure, ...]:
     """The figures of the first state; those that do not apply are left away."""
+    states, stage = step.states, step.stage
+    unit = "kW" if step.streams[0].is_flow else "kJ"
     figures = (
         *_of_the_gas(states),
+        *_of_solids_and_liquids(states),
         *_of_the_trade(states, activities, library),
-        *_of_energy(states, surroundings_temperature, "kW" if is_flow else "kJ", library),
+        *_of_emissions(states, stage.reference_oxygen),
+        *_of_heating(states, library),
+        *_of_exergy(step, stage.surroundings_temperature, unit, library),
     )
     return tuple(
         Figure(figure.name, float(figure.value), figure.unit)
@@ -67,14 +84,22 @@ def _of_the_gas(states: StageStates) -> Iterable[Figure]:
         np.zeros((len(model.balance.rows), 0)),
     )
     answer = response(model.properties, model.gas, T, n, changes)
-    mass = n[0] * np.array([record.molar_mass for record in model.records])
     yield Figure("molar mass of the gas", gas.molar_mass[0] * 1e3, "g/mol")
     yield Figure("density of the gas", gas.density[0], "kg/m3")
     yield Figure("heat capacity of the gas, frozen", gas.heat_capacity[0], "J/(mol K)")
     yield Figure("heat capacity at equilibrium over frozen", answer.ratio[0], "")
     yield Figure("isentropic exponent, frozen", answer.frozen_exponent[0], "")
     yield Figure("isentropic exponent at equilibrium", answer.equilibrium_exponent[0], "")
-    yield Figure("solids and liquids by mass", _share(mass, ~model.gas), "")
+
+
+def _of_solids_and_liquids(states: StageStates) -> Iterable[Figure]:
+    """Shares of the whole by mass, each by itself and, where there are several, all together."""
+    shares = condensed_mass_fractions(states.model.records, states.equilibria.amounts[0])
+    present = np.flatnonzero(shares > 0.0).tolist()
+    for i in sorted(present, key=lambda i: -shares[i]):
+        yield Figure(f"{states.model.records[i].name} by mass", 100.0 * shares[i], "%")
+    if len(present) > 1:
+        yield Figure("solids and liquids by mass", 100.0 * float(shares.sum()), "%")
 
 
 def _of_the_trade(
@@ -84,11 +109,12 @@ def _of_the_trade(
     T, P = float(found.temperature[0]), float(found.pressure[0])
     y = _gas_fractions(states)
     fed = {r.name for r, amount in zip(inlet.records, inlet.amounts[0], strict=True) if amount > 0}
-    if "H2O(g)" in fed or "H2O(l)" in fed:
+    if states.model.reacts and ("H2O(g)" in fed or "H2O(l)" in fed):
         ratio = steam_to_carbon(inlet.records, inlet.amounts[0])
         yield Figure("steam to carbon, fed", float(ratio), "mol/mol")
-    if "O2(g)" in fed:
-        yield Figure("air ratio, fed", float(air_ratio(inlet.records, inlet.amounts[0])), "")
+    ratio = air_ratio(inlet.records, inlet.amounts[0])
+    if states.model.reacts and ratio > _LEAST_AIR:
+        yield Figure("air ratio, fed", float(ratio), "")
     H2, CO, CO2 = (y.get(name, 0.0) for name in ("H2(g)", "CO(g)", "CO2(g)"))
     if min(H2, CO) > _SYNTHESIS_GAS:
         yield Figure("H2/CO", float(quotient(H2, CO)), "mol/mol")
@@ -96,6 +122,10 @@ def _of_the_trade(
     if H2 > _TRACE and y.get("NH3(g)", 0.0) > _TRACE:
         potential = nitriding_potential(y["NH3(g)"] * P, H2 * P)
         yield Figure("nitriding potential", float(potential), "bar^-1/2")
+        for activity in activities:
+            if activity.label == "p(N2)":
+                value = nitrogen_activity(activity.value * STANDARD_PRESSURE)
+                yield Figure("nitrogen activity against N2 at 1 bar", float(value), "")
     if y.get("H2O(g)", 0.0) > _TRACE:
         dew_point = float(water_dew_point(y["H2O(g)"] * P, library))
         yield Figure("water dew point", dew_point - 273.15, "°C")
@@ -108,21 +138,67 @@ def _of_the_trade(
             yield Figure("zirconia cell, air at the same pressure", float(voltage) * 1e3, "mV")
 
 
-def _of_energy(
-    states: StageStates, surroundings_temperature: float, unit: str, library: Library
+def _of_emissions(states: StageStates, reference_oxygen: float | None) -> Iterable[Figure]:
+    """What limits of emission are stated of, in the dry gas at a reference content of oxygen."""
+    if reference_oxygen is None:
+        return
+    y = _gas_fractions(states)
+    dry = 1.0 - y.get("H2O(g)", 0.0)
+    for name in _EMISSIONS:
+        if y.get(name, 0.0) > _LEAST_EMISSION:
+            formula = name.removesuffix("(g)")
+            fraction = at_reference_oxygen(
+                y[name] / dry, y.get("O2(g)", 0.0) / dry, reference_oxygen
+            )
+            label = f"{formula} in the dry gas at {100 * reference_oxygen:g} % O2"
+            yield Figure(label, 1e6 * float(fraction), "ppm")
+
+
+def _of_heating(states: StageStates, library: Library) -> Iterable[Figure]:
+    """Heating values of the gas, and what of the fuel's is found in it after partial burning."""
+    inlet, model = states.inlet, states.model
+    gas = np.where(model.gas, states.equilibria.amounts[0], 0.0)
+    made = heating_value(model.records, gas, library)
+    if not (made.normal_volume > 0.0 and made.lower > _COMBUSTIBLE * made.normal_volume):
+        return
+    for name, value in (("lower", made.lower), ("higher", made.higher)):
+        per_volume = value / made.normal_volume / 1e6
+        yield Figure(f"{name} heating value of the gas", per_volume, "MJ/Nm3")
+    fed, y = inlet.amounts[0], _gas_fractions(states)
+    burnt_in_part = any(record.status == FEED_ONLY for record in inlet.records) or (
+        _LEAST_AIR < float(air_ratio(inlet.records, fed)) < 1.0
+    )
+    if model.reacts and burnt_in_part and min(y.get("H2(g)", 0.0), y.get("CO(g)", 0.0)) > _LEAN:
+        fuel = heating_value(inlet.records, fed, library)
+        yield Figure("cold-gas efficiency", 100.0 * cold_gas_efficiency(made, fuel), "%")
+
+
+def _of_exergy(
+    step: Step, surroundings_temperature: float, unit: str, library: Library
 ) -> Iterable[Figure]:
-    model, found = states.model, states.equilibria
-    T, P = float(found.temperature[0]), float(found.pressure[0])
-    gas = np.where(model.gas, found.amounts[0], 0.0)
-    heating = heating_value(model.records, gas, library)
-    if heating.normal_volume > 0.0 and heating.lower > _COMBUSTIBLE * heating.normal_volume:
-        per_volume = heating.lower / heating.normal_volume / 1e6
-        yield Figure("lower heating value of the gas", per_volume, "MJ/Nm3")
+    """Exergy of what enters and of what leaves, together with the surroundings."""
+    model, found = step.states.model, step.states.equilibria
     surroundings = szargut_surroundings(surroundings_temperature)
-    exergy = stream_exergy(model.records, found.amounts[0], T, P, surroundings, library)
     against = f"against {surroundings_temperature:g} K and 1 atm"
-    yield Figure(f"physical exergy {against}", exergy.physical / 1e3, unit)
-    yield Figure(f"chemical exergy {against}", exergy.chemical / 1e3, unit)
+    T, P = float(found.temperature[0]), float(found.pressure[0])
+    leaving = stream_exergy(model.records, found.amounts[0], T, P, surroundings, library)
+    entering = [_stream_exergy(stream, surroundings, library) for stream in step.streams]
+    yield Figure(f"physical exergy {against}", leaving.physical / 1e3, unit)
+    yield Figure(f"chemical exergy {against}", leaving.chemical / 1e3, unit)
+    fed = sum(exergy.total for exergy in entering)
+    yield Figure(f"exergy fed {against}", fed / 1e3, unit)
+
+
+def _stream_exergy(stream: Stream, surroundings: Surroundings, library: Library) -> Exergy:
+    amounts = np.array([first(amount) for amount in stream.amounts.values()])
+    return stream_exergy(
+        [library[name] for name in stream.amounts],
+        amounts,
+        first(stream.temperature),
+        first(stream.pressure),
+        surroundings,
+        library,
+    )
 
 
 def _gas_fractions(states: StageStates) -> dict[str, float]:
@@ -135,9 +211,3 @@ def _gas_fractions(states: StageStates) -> dict[str, float]:
         )
         if in_gas and total > 0.0
     }
-
-
-def _share(mass: FloatArray, condensed: BoolArray) -> float:
-    """Mass of solids and liquids over the whole; NaN where there are none."""
-    part = float(mass[condensed].sum())
-    return part / float(mass.sum()) if part > 0.0 else float("nan")

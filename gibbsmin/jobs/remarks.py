@@ -10,7 +10,7 @@ from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise import Status
 from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry, SolvedState
 from gibbsmin.reactor.model import StageModel
-from gibbsmin.reactor.streams import Stream, Values
+from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.thermo.hazards import hazards
 from gibbsmin.thermo.species import Phase, Species
 
@@ -71,8 +71,8 @@ def _range_warnings(
 ) -> Iterator[str]:
     used = [(r, state.temperature) for r in _mattering(model.records, state.amounts)]
     for feed in feeds:
-        amounts = np.array([_first(feed.amounts.get(r.name, 0.0)) for r in model.feed_records])
-        T = _first(feed.temperature)
+        amounts = np.array([first(feed.amounts.get(r.name, 0.0)) for r in model.feed_records])
+        T = first(feed.temperature)
         used += [(record, T) for record in _mattering(model.feed_records, amounts)]
     for record, temperature in dict.fromkeys(used):
         if not record.T_low <= temperature <= record.T_high:
@@ -85,8 +85,3 @@ def _range_warnings(
 def _mattering(records: Sequence[Species], amounts: FloatArray) -> list[Species]:
     least = _MATTERS * amounts.sum()
     return [r for r, amount in zip(records, amounts.tolist(), strict=True) if amount > least]
-
-
-def _first(value: Values) -> float:
-    """The value of the first state, which is the one that remarks are on."""
-    return float(np.ravel(value)[0])

@@ -72,18 +72,8 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
         shaft_work=float(states.energy.shaft_work[0]),
         entropy=entropy,
         activities=activities,
-        figures=(
-            figures_of(
-                states,
-                activities,
-                stage.surroundings_temperature,
-                step.streams[0].is_flow,
-                library,
-            )
-            if certified
-            else ()
-        ),
-        extents=extents_of(states) if certified else (),
+        figures=figures_of(step, activities, library) if certified else (),
+        extents=extents_of(states, stage.extents) if certified else (),
         yields=yields_of(states) if certified else (),
         audit=entries,
         warnings=warnings(model, step.streams, state, entries, entropy.remark, status),

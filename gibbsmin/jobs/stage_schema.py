@@ -9,7 +9,16 @@ from pydantic import BeforeValidator, Field, ValidationInfo, model_validator
 
 from gibbsmin.constants import REFERENCE_TEMPERATURE
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.table_schema import MISSING, Names, Table, Temperature, read_names, site_pressure
+from gibbsmin.jobs.table_schema import (
+    MISSING,
+    Names,
+    Table,
+    Temperature,
+    read_names,
+    read_texts,
+    site_pressure,
+)
+from gibbsmin.reactor.trade_figures import OXYGEN_IN_AIR
 from gibbsmin.units import (
     Measure,
     read_heat,
@@ -100,6 +109,20 @@ def _held(given: object) -> tuple[float, str]:
     raise InputError(f"found {shown(given)}", accepted)
 
 
+def _reference_oxygen(given: object) -> float:
+    share = read_share(given)
+    if share >= OXYGEN_IN_AIR:
+        raise InputError(
+            f"found {shown(given)}, which is not below the oxygen of air",
+            'accepted is a share of the dry gas below 20.95 %, such as "3 %"',
+        )
+    return share
+
+
+def _reactions(given: object) -> tuple[str, ...]:
+    return read_texts(given, 'accepted is a list of reactions, such as ["CH4 + H2O = CO + 3 H2"]')
+
+
 def _tables(given: object) -> tuple[Any, ...]:
     if not isinstance(given, list | tuple):
         raise InputError(f"found {shown(given)}", "accepted are [[stage.approach]] tables")
@@ -141,6 +164,7 @@ class OutletTable(Table):
     service: Annotated[str, BeforeValidator(read_text)] | None = None
     boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None
     surroundings_temperature: Temperature = REFERENCE_TEMPERATURE
+    reference_oxygen: Annotated[float | None, BeforeValidator(_reference_oxygen)] = None
     reactions: Annotated[Literal["equilibrium", "none"], word("equilibrium", "none")] = (
         "equilibrium"
     )
@@ -158,6 +182,7 @@ class OutletTable(Table):
     ] = NOTHING
     activity: Annotated[Mapping[str, float], each(_activity, '{ "C(graphite)" = 0.6 }')] = NOTHING
     remove: _Shares = NOTHING
+    extents: Annotated[tuple[str, ...], BeforeValidator(_reactions)] = ()
     bypass: Annotated[float, BeforeValidator(read_share)] = 0.0
 
     @model_validator(mode="after")

@@ -24,10 +24,13 @@ def _pressure(given: object, info: ValidationInfo) -> float:
 
 def read_names(given: object) -> tuple[str, ...]:
     """A list of species, as the user names them."""
+    return read_texts(given, 'accepted is a list of species, such as ["CH4", "H2O"]')
+
+
+def read_texts(given: object, accepted: str) -> tuple[str, ...]:
+    """A list of texts."""
     if not isinstance(given, list | tuple) or not all(isinstance(name, str) for name in given):
-        raise InputError(
-            f"found {_shown_list(given)}", 'accepted is a list of species, such as ["CH4", "H2O"]'
-        )
+        raise InputError(f"found {_shown_list(given)}", accepted)
     return tuple(given)
 
 

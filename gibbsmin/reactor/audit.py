@@ -126,7 +126,7 @@ def routes_at(
         model.properties, model.gas, state.temperature, state.pressure
     )
     energies = _energies(records, state.temperature, pressure)
-    return routes_to(records, energies, model.records, state.amounts, potentials)
+    return routes_to(records, energies, model.records, state.amounts, potentials, model.reacts)
 
 
 def audit(

@@ -35,7 +35,7 @@ class KeyedReaction:
 
     Attributes
     ----------
-    key : the record that takes part in no other reaction of the set
+    key : the record that takes part in no other reaction of the set; empty where the user names it
     terms : coefficient by record name, products positive
     """
 

@@ -20,7 +20,7 @@ from itertools import combinations
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.reactor.balance import element_counts, elements_of
 from gibbsmin.thermo.species import Species
 
@@ -53,37 +53,53 @@ def routes_to(
     present: Sequence[Species],
     amounts: FloatArray,
     potentials: FloatArray,
+    reacts: bool = True,
 ) -> list[tuple[Route, ...]]:
     """Routes to each target from the main species present, the most favourable first.
+
+    A compound that is present in another form, be it a trace, has that form as its only route; an
+    element has so where it is a main species.
 
     Parameters
     ----------
     targets : the records to judge, with their g̃ (T,)
     present : the outlet's records, with their amounts and μ/RT, each (S,)
+    reacts : whether anything may form from other substances
     """
     main = _main_species(amounts)
+    there = np.flatnonzero(amounts > 0.0).tolist()
     rows = elements_of([*present, *targets])
     wanted = element_counts(targets, rows)
     columns = element_counts(present, rows)
-    substances = {present[i].formula for i in main}
     elementary = np.array([len(target.elements) == 1 for target in targets])
-    itself = np.array([target.formula in substances for target in targets])
+    by_main = _has_form(targets, [present[i] for i in main])
+    itself = _has_form(targets, [present[i] for i in there]) & (~elementary | by_main)
+    itself |= not reacts
     found: list[list[Route]] = [[] for _ in targets]
     for size in range(1, _LONGEST + 1):
-        for subset in combinations(main, size):
+        for subset in combinations(there if size == 1 else main, size):
             chosen = list(subset)
             shares, _, rank, _ = np.linalg.lstsq(columns[:, chosen], wanted, rcond=None)
             if rank < size:
                 continue
             misses = np.abs(columns[:, chosen] @ shares - wanted).max(axis=0)
             fits = (misses < _TOLERANCE) & (np.abs(shares) > _TOLERANCE).all(axis=0)
-            fits &= ~itself if size > 1 else True
+            if size > 1:
+                fits &= ~itself
+            elif chosen[0] not in main or not reacts:
+                fits &= _has_form(targets, [present[chosen[0]]])
             fits &= elementary | (shares > 0.0).all(axis=0)
             values = shares.T @ potentials[chosen] - target_energies
             for j in np.flatnonzero(fits).tolist():
                 species = [present[i] for i in chosen]
                 found[j].append(_route(targets[j], species, shares[:, j].tolist(), values[j]))
     return [tuple(sorted(routes, key=_rank)) for routes in found]
+
+
+def _has_form(targets: Sequence[Species], present: Sequence[Species]) -> BoolArray:
+    """Which targets are another form of a substance that is present."""
+    formulas = {record.formula for record in present}
+    return np.array([target.formula in formulas for target in targets], dtype=bool)
 
 
 def _rank(route: Route) -> tuple[float, int, str]:

@@ -6,6 +6,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TypeAlias
 
+import numpy as np
+
 from gibbsmin.arrays import FloatArray
 
 Values: TypeAlias = float | FloatArray
@@ -44,3 +46,8 @@ class Stream:
     is_flow: bool
     remarks: tuple[str, ...] = ()
     warnings: tuple[str, ...] = ()
+
+
+def first(value: Values) -> float:
+    """The value of the first state, of which a single result tells."""
+    return float(np.ravel(value)[0])

@@ -78,3 +78,18 @@ def test_steam_alone_determines_no_element() -> None:
     judged = {entry.record.name: entry.activity for entry in audit(model, state, LIBRARY, ())}
     assert set(judged) == {"H2O(l)", "H2O(cr)"}
     assert 0.0 < judged["H2O(l)"] < 0.1  # steam at 1 bar and 500 K is far from condensing
+
+
+def test_where_nothing_reacts_a_trace_is_judged_by_itself_alone() -> None:
+    """Cold synthesis gas would make ammonia in plenty; a cooler makes none."""
+    feed = [LIBRARY[name] for name in ("H2(g)", "N2(g)", "H2O(g)", "NH3(g)")]
+    model = stage_model(Chemistry(reactions="none", condense=("H2O",)), feed, LIBRARY)
+    amounts = np.array([[3.0, 1.0, 0.5, 1e-7]])
+    solution = minimise(model.programme(np.array([313.15]), np.array([1e5]), amounts))
+    state = SolvedState(313.15, 1e5, solution.amounts[0], solution.multipliers[0])
+    entries = {entry.record.name: entry for entry in audit(model, state, LIBRARY, ())}
+    fraction = 1e-7 / state.amounts[model.gas].sum()
+    # 15.5 bar of vapour pressure at 40 °C (common knowledge); the record is within a third of it
+    assert entries["NH3(l)"].activity == pytest.approx(fraction / 15.5, rel=0.35)
+    assert [route.text for route in entries["NH3(l)"].routes] == ["NH3 = NH3"]
+    assert not any(entry.warns for entry in entries.values())
