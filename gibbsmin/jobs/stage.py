@@ -89,16 +89,24 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
 def _require_an_answer(stage: StageCase, states: StageStates, status: Status) -> None:
     """Refuse a single state that has none: no temperature, or candidates that cannot hold it."""
     specification = stage.specification
-    if np.isnan(states.equilibria.temperature[0]):
+    if status in (Status.UNMET, Status.AMBIGUOUS):
         wanted, key = "the feed's entropy to be kept", "entropy"
         if specification.heat_loss is not None:
             wanted, key = f"a heat loss of {100 * specification.heat_loss:g} %", "heat_loss"
         elif not specification.entropy_of_feed:
             heat = 0.0 if specification.heat is None else float(specification.heat)
             wanted, key = f"a heat of {heat / 1e3:g} kJ (per second in a flow)", "heat"
+        if status is Status.AMBIGUOUS:
+            low, high = states.equilibria.answers[:, 0].tolist()
+            found = f"which {low:.2f} K and {high:.2f} K both meet under the approach"
+        else:
+            where = " where the approach has a meaning" if states.model.shift.keys else ""
+            found = (
+                f"which no temperature between {LOWEST_TEMPERATURE:g} K and "
+                f"{HIGHEST_TEMPERATURE:g} K meets{where}"
+            )
         raise InputError(
-            f"found {wanted}, which no temperature between {LOWEST_TEMPERATURE:g} K and "
-            f"{HIGHEST_TEMPERATURE:g} K meets",
+            f"found {wanted}, {found}",
             f"accepted is another {key}, or a temperature in its place",
             key=key,
         )

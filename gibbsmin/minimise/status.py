@@ -16,6 +16,8 @@ class Status(IntEnum):
     UNCERTIFIED = 1, "No method reached amounts that could be proved right within the tolerances."
     INFEASIBLE = 2, "No non-negative amounts of the candidates meet the supplies."
     INVALID = 3, "An energy or a supply is not a finite number."
+    UNMET = 4, "No temperature meets what is specified."
+    AMBIGUOUS = 5, "More than one temperature meets what is specified."
 
     sentence: str
 

@@ -82,6 +82,20 @@ class Shift:
         shift[..., list(self.keys)] += np.linalg.solve(nu_keys, missing[..., np.newaxis])[..., 0]
         return np.asarray(shift)
 
+    def senses(self, temperature: npt.ArrayLike) -> FloatArray:
+        """Sign of ΔrH of each named reaction, (R,) + T.shape; 0 where its approach has no meaning.
+
+        That is where T_s is not above absolute zero or ΔrH changes sign between T and T_s.
+        """
+        T = np.asarray(temperature, dtype=float)
+        senses = []
+        for nu, difference in zip(self.stoichiometry, self.differences.tolist(), strict=True):
+            sense = np.sign(self.properties.enthalpy(T) @ nu)
+            shifted = T - sense * difference
+            there = np.sign(self.properties.enthalpy(np.maximum(shifted, 1.0)) @ nu)
+            senses.append(np.where((shifted > 0.0) & (there == sense), sense, 0.0))
+        return np.array(senses)
+
     def shifted_temperature(self, reaction: int, temperature: npt.ArrayLike) -> FloatArray:
         """T_s of one reaction."""
         T = np.asarray(temperature, dtype=float)
@@ -95,7 +109,8 @@ class Shift:
                 "accepted is a smaller approach",
                 key="approach",
             )
-        if np.any(np.sign(self.properties.enthalpy(shifted) @ nu) != np.sign(enthalpy)):
+        changed = np.sign(self.properties.enthalpy(shifted) @ nu) != np.sign(enthalpy)
+        if np.any(changed & ~np.isnan(T)):
             raise InputError(
                 f'found an approach of {difference:g} K for "{self.texts[reaction]}", whose '
                 "enthalpy changes sign within it",

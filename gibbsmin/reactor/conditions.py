@@ -2,8 +2,9 @@
 
 At equilibrium of an ideal gas with condensed phases G(T, P) and A(T, V) are concave in T, so
 enthalpy, energy and entropy never fall as T rises: there is at most one temperature, bracketed and
-closed in on with all states together.  Where condensed forms meet, the enthalpy jumps; the heat is
-then taken up at that temperature, and the answer is a mixture of the states on its two sides.
+closed in on with all states together.  Under an approach all temperatures are looked for.  Where
+condensed forms meet, the enthalpy jumps; the heat is then taken up at that temperature, and the
+answer is a mixture of the states on its two sides.
 """
 
 from __future__ import annotations
@@ -16,6 +17,7 @@ import numpy as np
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.minimise import Solution, minimise, minimise_heated
+from gibbsmin.reactor.answers import brackets, only_answers, stretches
 from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
 
@@ -45,6 +47,8 @@ class Equilibria:
     amounts : (B, S), on a plateau the mixture of its two sides
     solution : the certified solution (of the lower side on a plateau)
     upper_share : (B,) share of the upper side; NaN off a plateau
+    answers : (2, B) K, the lowest and the highest where several temperatures meet what is
+        specified, so that none is chosen; NaN elsewhere
     """
 
     temperature: FloatArray
@@ -52,6 +56,7 @@ class Equilibria:
     amounts: FloatArray
     solution: Solution
     upper_share: FloatArray
+    answers: FloatArray
 
     def with_states(self, index: IntArray, others: Equilibria) -> Equilibria:
         """These states with some replaced by others."""
@@ -67,6 +72,7 @@ class Equilibria:
             put(self.amounts, others.amounts),
             self.solution.with_states(index, others.solution),
             put(self.upper_share, others.upper_share),
+            put(self.answers.T, others.answers.T).T,
         )
 
 
@@ -75,9 +81,13 @@ def at_temperature(
 ) -> Equilibria:
     """Equilibria of B states at given temperature and pressure."""
     solution = minimise(model.programme(temperature, pressure, feed))
-    return Equilibria(
-        temperature, pressure, solution.amounts, solution, np.full(temperature.shape, np.nan)
-    )
+    return _found(temperature, pressure, solution)
+
+
+def _found(temperature: FloatArray, pressure: FloatArray, solution: Solution) -> Equilibria:
+    """States off any plateau, with one answer each."""
+    nothing = np.full((2, *temperature.shape), np.nan)
+    return Equilibria(temperature, pressure, solution.amounts, solution, nothing[0], nothing)
 
 
 def at_enthalpy(
@@ -99,7 +109,7 @@ def at_enthalpy(
     if model.shift.keys:
         return _at_content(model, enthalpy, content, pressure, feed, start)
     solution, T = minimise_heated(*model.heated_programme(enthalpy, pressure, feed, start))
-    found = Equilibria(T, pressure, solution.amounts, solution, np.full(T.shape, np.nan))
+    found = _found(T, pressure, solution)
     left = np.flatnonzero(~_holds(found, content(found), enthalpy))
     if left.size == 0:
         return found
@@ -165,7 +175,7 @@ def at_energy_and_volume(
         enthalpy = mixture_enthalpy(model.properties, found.temperature, found.amounts)
         return enthalpy - found.pressure * volume[index]
 
-    return _between(solved, content, energy, start)
+    return _between(model, solved, content, energy, start)
 
 
 def _at_content(
@@ -179,10 +189,11 @@ def _at_content(
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
         return at_temperature(model, T, pressure[index], feed[index])
 
-    return _between(solved, lambda found, _: content(found), wanted, start)
+    return _between(model, solved, lambda found, _: content(found), wanted, start)
 
 
 def _between(
+    model: StageModel,
     solved: Callable[[FloatArray, IntArray], Equilibria],
     content: Callable[[Equilibria, IntArray], FloatArray],
     wanted: FloatArray,
@@ -194,12 +205,18 @@ def _between(
         return content(solved(T, index), index) - wanted[index]
 
     everything = np.arange(wanted.size)
-    T = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
+    answers = np.full((2, wanted.size), np.nan)
+    if model.shift.keys:
+        grids = stretches(model.shift, LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE)
+        roots = _closed_in(residual, *brackets(residual, grids, wanted.size))
+        T, answers = only_answers(roots)
+    else:
+        T = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
     missing = residual(T, everything)
     # Heat capacity times T: what resolution in T leaves of the content is far below it.
     scale = np.abs(residual(1.001 * T, everything) - missing) * 1e3
     jumps = np.abs(missing) > _JUMP * scale
-    found = solved(np.where(jumps, T * (1.0 - _SIDE), T), everything)
+    found = replace(solved(np.where(jumps, T * (1.0 - _SIDE), T), everything), answers=answers)
     if not jumps.any():
         return found
     beyond = solved(np.where(jumps, T * (1.0 + _SIDE), T), everything)
@@ -217,7 +234,7 @@ def _root(
 ) -> FloatArray:
     """Root of a rising function near ``start``, or the place of its jump; NaN for none."""
     # scipy.optimize takes a while to load, which a stage of given temperature need not wait for.
-    from scipy.optimize.elementwise import bracket_root, find_root
+    from scipy.optimize.elementwise import bracket_root
 
     index = np.arange(start.size)
     lowest, highest = limits
@@ -226,10 +243,18 @@ def _root(
         residual, inside - step / 2, inside + step / 2, xmin=lowest, xmax=highest, args=(index,)
     )
     left, right = (np.where(bracket.success, end, np.nan) for end in bracket.bracket)
+    return _closed_in(residual, left, right)
+
+
+def _closed_in(residual: Residual, left: FloatArray, right: FloatArray) -> FloatArray:
+    """Roots (..., B) between ends at which the residual of B states has different signs."""
+    from scipy.optimize.elementwise import find_root
+
+    index = np.broadcast_to(np.arange(left.shape[-1]), left.shape)
     root = find_root(
         residual,
-        (left, right),
-        args=(index,),
+        (left.ravel(), right.ravel()),
+        args=(index.ravel(),),
         tolerances={"xatol": 0.0, "xrtol": _RELATIVE_RESOLUTION, "fatol": 0.0, "frtol": 0.0},
     )
-    return np.where(bracket.success, root.x, np.nan)
+    return np.where(np.isnan(left), np.nan, root.x.reshape(left.shape))

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError
+from gibbsmin.minimise import Status
 from gibbsmin.reactor.conditions import (
     Equilibria,
     at_energy_and_volume,
@@ -70,7 +71,17 @@ class Specification:
 
 
 def solve(model: StageModel, specification: Specification, inlet: Inlet) -> Equilibria:
-    """The equilibria that meet a specification; NaN where no temperature does."""
+    """The equilibria that meet a specification; NaN where no temperature does, or several do."""
+    found = _solved(model, specification, inlet)
+    if specification.temperature is not None:
+        return found
+    status = found.solution.status.copy()
+    status[np.isnan(found.temperature) & np.isfinite(inlet.enthalpy)] = Status.UNMET
+    status[~np.isnan(found.answers[0])] = Status.AMBIGUOUS
+    return replace(found, solution=replace(found.solution, status=status))
+
+
+def _solved(model: StageModel, specification: Specification, inlet: Inlet) -> Equilibria:
     feed, start = inlet.amounts, inlet.temperature
     P = specification.outlet_pressure(inlet)
     heat = _each(0.0 if specification.heat is None else specification.heat, inlet)
