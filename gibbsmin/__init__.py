@@ -13,7 +13,7 @@ if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
     from gibbsmin.jobs.onset import Onset, onset
     from gibbsmin.jobs.predict import predict
-    from gibbsmin.jobs.scan import scan, scan_blocks
+    from gibbsmin.jobs.scan import Scan, scan, scan_blocks
     from gibbsmin.jobs.sensitivity import Sensitivities
     from gibbsmin.jobs.target import Target, target
     from gibbsmin.jobs.uncertainty import uncertainty
@@ -23,6 +23,7 @@ __all__ = [
     "Case",
     "Onset",
     "Outlet",
+    "Scan",
     "Sensitivities",
     "StageOutlet",
     "Target",
@@ -45,6 +46,7 @@ _HOMES = {
     "Target": "gibbsmin.jobs.target",
     "target": "gibbsmin.jobs.target",
     "predict": "gibbsmin.jobs.predict",
+    "Scan": "gibbsmin.jobs.scan",
     "scan": "gibbsmin.jobs.scan",
     "scan_blocks": "gibbsmin.jobs.scan",
     "Sensitivities": "gibbsmin.jobs.sensitivity",

@@ -112,18 +112,38 @@ def scan(
     out: Annotated[
         str, typer.Option(metavar="FILE", help="A .csv, .parquet or .xlsx file to write.")
     ],
+    table: Annotated[
+        str,
+        typer.Option(metavar="FILE", help="A table of conditions, a row a state, for the axes."),
+    ] = "",
+    uncertainty: Annotated[
+        bool, typer.Option("--uncertainty", help="Give error bars beside the values.")
+    ] = False,
 ) -> None:
-    """Give the outlet over the grid of a case's axes: one row a state, each with its status."""
+    """Give the outlet over the grid of a case's axes: one row a state, each with its status.
+
+    A scan that was broken off goes on where it stopped when it is started again.
+    """
+    from importlib.metadata import version
+
     from gibbsmin.jobs.case import load_case
-    from gibbsmin.jobs.scan import scan_blocks
-    from gibbsmin.present.scan_files import require_scan_ending, write_scan
-    from gibbsmin.present.scan_progress import counted
+    from gibbsmin.jobs.conditions import Conditions, conditions_from, conditions_of
+    from gibbsmin.present.conditions_file import read_conditions
+    from gibbsmin.present.scan_files import require_scan_ending
+    from gibbsmin.present.scan_parts import fingerprint_of
+    from gibbsmin.present.scan_run import run_scan
 
     path = Path(out)
     require_scan_ending(path)
     loaded = load_case(case)
-    tally = counted(scan_blocks(loaded), loaded)
-    write_scan(iter(tally), path)
+    parts: list[str | bytes] = [version("gibbsmin"), Path(case).read_bytes(), str(uncertainty)]
+    conditions: Conditions
+    if table:
+        conditions = conditions_from(read_conditions(Path(table)), loaded, table)
+        parts.append(Path(table).read_bytes())
+    else:
+        conditions = conditions_of(loaded)
+    tally = run_scan(loaded, conditions, path, fingerprint_of(*parts), uncertainty=uncertainty)
     _print(tally.summary(path))
     if tally.uncertified:
         raise typer.Exit(NOT_CERTIFIED)

@@ -3,7 +3,9 @@
 An axis names a number by its place in the case file: ``outlet.temperature``,
 ``stage.high shift.pressure_drop``, ``feed.steam.temperature``, ``feed.steam.amounts.H2O``; or it
 names a ratio of what the streams bring, ``ratio = "H2O/C"``, with the stream that is scaled to
-meet it.
+meet it.  Numbers that shape a stage's equations (``outlet.bypass``, ``outlet.conversion.CH4``,
+``outlet.approach.1``, …) give each of their values a case of its own: see
+:mod:`gibbsmin.jobs.axis_stage`.
 """
 
 from __future__ import annotations
@@ -17,12 +19,12 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis
+from gibbsmin.jobs.axis_stage import stage_field, with_number
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.feed_parts import resolve
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 
-_STAGE_NUMBERS = ("temperature", "heat", "pressure", "pressure_drop", "volume")
 _STREAM_NUMBERS = ("temperature", "pressure")
 
 
@@ -57,17 +59,12 @@ def _number(case: Case, axis: Axis, values: FloatArray, library: Library) -> Cas
         return _changed_stream(
             case, name, lambda stream: _stream_number(stream, field, values, library)
         )
-    stage_name, _, field = (f"outlet.{rest}" if kind == "outlet" else rest).rpartition(".")
-    names = [stage.name for stage in case.stages]
-    if kind not in ("outlet", "stage") or stage_name not in names or field not in _STAGE_NUMBERS:
+    placed = stage_field(axis.name, case.stages)
+    if placed is None:
         raise _nothing(axis.name, case)
-    change: dict[str, Any] = {field: values}
-    stages = tuple(
-        replace(stage, specification=replace(stage.specification, **change))
-        if stage.name == stage_name
-        else stage
-        for stage in case.stages
-    )
+    chosen, field = placed
+    changed = with_number(chosen, field, values, library)
+    stages = tuple(changed if stage is chosen else stage for stage in case.stages)
     return replace(case, stages=stages)
 
 

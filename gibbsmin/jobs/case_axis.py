@@ -18,6 +18,8 @@ from gibbsmin.units import (
     read_amount,
     read_amount_unit,
     read_quantity,
+    read_share,
+    read_temperature_difference,
     shown,
 )
 
@@ -47,6 +49,29 @@ def read_axes(
         with placed(f"axis.{index}.values"):
             axes.append(_axis(name, table, read))
     return tuple(axes)
+
+
+def axis_of_column(
+    name: str,
+    unit: str,
+    scale: str,
+    shown_values: FloatArray,
+    streams: Sequence[Stream],
+    site_pressure: float,
+    library: Library,
+) -> Axis:
+    """An axis whose values (B,) stand in a column, all in one unit.
+
+    Raises
+    ------
+    InputError
+        for a unit that does not fit the number, and values that cannot be.
+    """
+    read = _reader(name, bool(scale), streams, site_pressure, library)
+    for value in (float(shown_values.min()), float(shown_values.max())):
+        _, text = read(f"{value!r} {unit}" if unit else value)
+    factor, offset = _scale(read, text)
+    return Axis(name, shown_values * factor + offset, shown_values, text, scale)
 
 
 def _axis(name: str, table: AxisTable, read: _Reader) -> Axis:
@@ -93,12 +118,20 @@ def _scale(read: _Reader, unit: str) -> tuple[float, float]:
 def _reader(
     name: str, is_ratio: bool, streams: Sequence[Stream], site_pressure: float, library: Library
 ) -> _Reader:
-    """How the values of an axis are read: by the last word of its name."""
+    """How the values of an axis are read, by what its name says they are."""
     if is_ratio:
         return _plain
-    field = name.rpartition(".")[2]
-    if ".amounts." in name:
+    if name.startswith("feed.") and ".amounts." in name:
         return _amount(name, streams, library)
+    if any(f".{kind}." in name for kind in ("conversion", "held_fraction", "remove")):
+        return _share
+    if ".approach." in name:
+        return _difference
+    field = name.rpartition(".")[2]
+    if field in ("bypass", "heat_loss"):
+        return _share
+    if field == "boundary_temperature":
+        field = "temperature"
 
     def read(given: object) -> tuple[float, str]:
         measure = read_quantity(given, field, site_pressure)
@@ -111,6 +144,14 @@ def _plain(given: object) -> tuple[float, str]:
     if isinstance(given, bool) or not isinstance(given, int | float) or not np.isfinite(given):
         raise InputError(f"found {shown(given)}", "accepted is a number, such as 3.0")
     return float(given), ""
+
+
+def _share(given: object) -> tuple[float, str]:
+    return read_share(given), ""
+
+
+def _difference(given: object) -> tuple[float, str]:
+    return read_temperature_difference(given), "K"
 
 
 def _amount(name: str, streams: Sequence[Stream], library: Library) -> _Reader:

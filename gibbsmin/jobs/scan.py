@@ -1,51 +1,100 @@
-"""Scan: a case over a grid of conditions, all states of a block at once."""
+"""Scan: a case over a grid or a table of conditions, all states of a block at once."""
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
-from gibbsmin.errors import InputError
 from gibbsmin.jobs.axes import applied
 from gibbsmin.jobs.axis import Axis
+from gibbsmin.jobs.axis_stage import shapes_equations
 from gibbsmin.jobs.case import Case
-from gibbsmin.jobs.train import Step, run_train
-from gibbsmin.minimise import Status
-from gibbsmin.thermo.species import Phase
+from gibbsmin.jobs.conditions import LABEL, Conditions, Grid, conditions_from, conditions_of
+from gibbsmin.jobs.scan_columns import columns_of
+from gibbsmin.jobs.train import run_train
+from gibbsmin.jobs.uncertainty import error_bars
 
 if TYPE_CHECKING:
     import pandas as pd
+    import xarray as xr
 
-_BLOCK = 50_000
+BLOCK = 50_000
+"""States in memory at a time."""
+
+_BLOCK_WITH_ERROR_BARS = 5_000
 
 
-@dataclass(frozen=True)
-class Grid:
-    """Axes crossed with each other; the last varies fastest."""
+@dataclass(frozen=True, eq=False)
+class Scan:
+    """A scan's answers.
 
+    Attributes
+    ----------
+    title : the case's
+    axes : what varies
+    is_grid : whether the axes are crossed with each other
+    table : one row a state: axes, status, certificate, conditions, energy, conversions, fractions
+    """
+
+    title: str
     axes: tuple[Axis, ...]
+    is_grid: bool
+    table: pd.DataFrame
 
-    @property
-    def states(self) -> int:
-        """Number of states."""
-        return int(np.prod([axis.values.size for axis in self.axes]))
+    def to_xarray(self) -> xr.Dataset:
+        """The table with a named dimension an axis, and units as attributes.
 
-    def block(self, first: int, last: int) -> list[tuple[FloatArray, FloatArray]]:
-        """Each axis's values in SI and as shown, for the states from first up to last."""
-        index = np.arange(first, last)
-        picks = np.unravel_index(index, [axis.values.size for axis in self.axes])
-        return [
-            (axis.values[pick], axis.shown[pick])
-            for axis, pick in zip(self.axes, picks, strict=True)
-        ]
+        Needs the package xarray.  A table of conditions has one dimension, ``state``.
+        """
+        import xarray as xr
+
+        columns = [column_of(axis) for axis in self.axes]
+        shape = [axis.shown.size for axis in self.axes] if self.is_grid else [len(self.table)]
+        dims = [axis.name for axis in self.axes] if self.is_grid else ["state"]
+        names: list[Any] = [c for c in self.table if not self.is_grid or c not in columns]
+        data = {}
+        for name in names:
+            label, _, unit = str(name).partition(", ")
+            values = self.table[name].to_numpy().reshape(shape)
+            data[label] = (dims, values, {"units": unit} if unit else {})
+        coordinates = {}
+        if self.is_grid:
+            for axis in self.axes:
+                units = {"units": axis.unit} if axis.unit else {}
+                coordinates[axis.name] = (axis.name, axis.shown, units)
+        return xr.Dataset(data, coordinates, {"title": self.title})
 
 
-def scan_blocks(case: Case, block: int = _BLOCK) -> Iterator[pd.DataFrame]:
-    """The scan's table in blocks of states, one row a state, in the order of the grid.
+def scan(case: Case, conditions: pd.DataFrame | None = None, *, uncertainty: bool = False) -> Scan:
+    """The case in every state of its axes' grid, or of a table of conditions.
+
+    Parameters
+    ----------
+    conditions
+        One row a state, each column named as an axis: see
+        :func:`gibbsmin.jobs.conditions.conditions_from`.
+    uncertainty
+        Whether error bars stand beside the values.
+    """
+    import pandas as pd
+
+    states = conditions_of(case) if conditions is None else conditions_from(conditions, case)
+    blocks = scan_blocks(case, states, uncertainty=uncertainty)
+    table = pd.concat(blocks, ignore_index=True)
+    return Scan(case.title, states.axes, isinstance(states, Grid), table)
+
+
+def scan_blocks(
+    case: Case,
+    conditions: Conditions | None = None,
+    block: int | None = None,
+    *,
+    uncertainty: bool = False,
+) -> Iterator[pd.DataFrame]:
+    """The scan's table in blocks of states, one row a state, in order.
 
     A state that fails is a row with its status and NaN; the others are untouched.
 
@@ -54,67 +103,71 @@ def scan_blocks(case: Case, block: int = _BLOCK) -> Iterator[pd.DataFrame]:
     InputError
         for axes that name nothing, and for what the case itself gets wrong.
     """
+    conditions = conditions or conditions_of(case)
+    size = block or (_BLOCK_WITH_ERROR_BARS if uncertainty else BLOCK)
+    for first in range(0, conditions.states, size):
+        last = min(first + size, conditions.states)
+        yield scan_block(case, conditions, first, last, uncertainty=uncertainty)
+
+
+def scan_block(
+    case: Case, conditions: Conditions, first: int, last: int, *, uncertainty: bool = False
+) -> pd.DataFrame:
+    """The table of the states from first up to last."""
     import pandas as pd
 
-    axes = case.axes
-    if not axes:
-        raise InputError(
-            "found no axis", "accepted is at least one [[axis]] table", key="axis", file=case.file
-        )
+    axes = conditions.axes
+    values = conditions.block(first, last)
+    labels = conditions.labels(first, last)
+    columns: dict[str, Any] = {} if labels is None else {LABEL: labels}
+    for axis, (_, shown) in zip(axes, values, strict=True):
+        columns[column_of(axis)] = shown
+    answers = _answers(case, axes, [inside for inside, _ in values], uncertainty)
+    return pd.DataFrame(columns | answers)
+
+
+def column_of(axis: Axis) -> str:
+    """The name of an axis's column."""
+    return f"{axis.name}, {axis.unit}" if axis.unit else axis.name
+
+
+def _answers(
+    case: Case, axes: Sequence[Axis], values: Sequence[np.ndarray], uncertainty: bool
+) -> dict[str, np.ndarray]:
+    """Columns of the states; those that share what shapes their equations are solved together."""
+    shaping = [k for k, axis in enumerate(axes) if shapes_equations(axis.name, case.stages)]
+    if not shaping:
+        return _solved(case, axes, values, uncertainty)
+    keys = np.stack([values[k] for k in shaping], axis=1)
+    kinds, kind = np.unique(keys, axis=0, return_inverse=True)
+    whole: dict[str, np.ndarray] = {}
+    for which in range(len(kinds)):
+        rows = np.flatnonzero(kind == which)
+        part = _solved(case, axes, [value[rows] for value in values], uncertainty)
+        for name, column in part.items():
+            if name not in whole:
+                # Rows of other kinds may lack the column.
+                is_text = column.dtype.kind == "U"
+                whole[name] = np.full(kind.size, "" if is_text else np.nan, dtype=object)
+            whole[name][rows] = column
+    return {name: _plain(column) for name, column in whole.items()}
+
+
+def _plain(column: np.ndarray) -> np.ndarray:
+    """A column of one kind of value, as an array of that kind."""
+    return column.astype(str if isinstance(column[0], str) else type(column[0]))
+
+
+def _solved(
+    case: Case, axes: Sequence[Axis], values: Sequence[np.ndarray], uncertainty: bool
+) -> dict[str, np.ndarray]:
     library = case.library
-    grid = Grid(tuple(axes))
-    for first in range(0, grid.states, block):
-        values = grid.block(first, min(first + block, grid.states))
-        columns = {
-            f"{axis.name}, {axis.unit}" if axis.unit else axis.name: shown
-            for axis, (_, shown) in zip(axes, values, strict=True)
-        }
-        varied = applied(case, axes, [inside for inside, _ in values], library)
-        for step in run_train(varied, library):
-            columns |= _columns(step, values[0][0].size, prefix=len(case.stages) > 1)
-        yield pd.DataFrame(columns)
-
-
-def scan(case: Case) -> pd.DataFrame:
-    """The whole table of a scan; see :func:`scan_blocks`."""
-    import pandas as pd
-
-    return pd.concat(scan_blocks(case), ignore_index=True)
-
-
-def _columns(step: Step, states: int, prefix: bool) -> dict[str, FloatArray]:
-    """A stage's columns, SI units but for the names that say otherwise."""
-    found, energy, model = step.states.equilibria, step.states.energy, step.states.model
-    columns: dict[str, FloatArray] = {
-        "status": np.array([status.name.lower() for status in Status])[found.solution.status],
-        "gap": found.solution.certificate.gap,
-        "temperature, K": found.temperature,
-        "pressure, bar": found.pressure / 1e5,
-        "heat, kW" if step.streams[0].is_flow else "heat, kJ": energy.heat / 1e3,
-        "entropy generation, kW/K"
-        if step.streams[0].is_flow
-        else "entropy generation, kJ/K": energy.entropy_generation / 1e3,
-    }
-    total = found.amounts[:, model.gas].sum(axis=1)
-    total = np.where(total > 0.0, total, np.nan)
-    for column, record in enumerate(model.records):
-        if record.phase is Phase.GAS:
-            columns[f"y {record.name}"] = found.amounts[:, column] / total
-        else:
-            columns[f"amount {record.name}, mol"] = found.amounts[:, column]
-    columns |= {f"conversion {fed}": share for fed, share in _conversions(step).items()}
-    name = f"{step.stage.name}: " if prefix else ""
-    return {f"{name}{key}": np.broadcast_to(v, (states,)) for key, v in columns.items()}
-
-
-def _conversions(step: Step) -> dict[str, FloatArray]:
-    """Share of each substance of the feed that is used up, all its forms counted together."""
-    inlet, model, amounts = step.states.inlet, step.states.model, step.states.equilibria.amounts
-    conversions = {}
-    for record in inlet.records:
-        fed = inlet.amounts[:, [r.formula == record.formula for r in inlet.records]].sum(axis=1)
-        left = amounts[:, [r.formula == record.formula for r in model.records]].sum(axis=1)
-        left = np.where(np.isnan(amounts).any(axis=1), np.nan, left)
-        with np.errstate(divide="ignore", invalid="ignore"):
-            conversions[record.name] = np.where(fed > 0.0, 1.0 - left / fed, np.nan)
-    return conversions
+    varied = applied(case, axes, values, library)
+    steps = list(run_train(varied, library))
+    bars: Sequence[Any] = [None] * len(steps)
+    if uncertainty:
+        bars = list(error_bars(varied, steps, library))
+    columns: dict[str, np.ndarray] = {}
+    for step, bar in zip(steps, bars, strict=True):
+        columns |= columns_of(step, values[0].size, bar, prefix=len(case.stages) > 1)
+    return columns

@@ -7,7 +7,14 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from gibbsmin.errors import OutputError
-from gibbsmin.present.files import harmless_names, output_suffix, write_tables, write_whole
+from gibbsmin.jobs.conditions import LABEL
+from gibbsmin.present.files import (
+    harmless,
+    harmless_names,
+    output_suffix,
+    write_tables,
+    write_whole,
+)
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -58,7 +65,9 @@ def _write_workbook(blocks: Iterator[pd.DataFrame], path: Path) -> None:
 
 def _fill_csv(blocks: Iterator[pd.DataFrame], path: Path) -> None:
     for index, block in enumerate(blocks):
-        # The cells are numbers and our own words; only the names above them are the user's.
+        # The cells are numbers and our own words, but for labels and the names above them.
+        if LABEL in block:
+            block = block.assign(**{LABEL: harmless(block[[LABEL]])[LABEL]})
         block.columns = harmless_names(block.columns)
         block.to_csv(path, mode="a", header=index == 0, index=False)
 

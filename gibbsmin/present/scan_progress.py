@@ -7,14 +7,27 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from rich.console import Console, RenderableType
-from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeRemainingColumn
+from rich.progress import (
+    BarColumn,
+    MofNCompleteColumn,
+    Progress,
+    ProgressColumn,
+    Task,
+    TextColumn,
+    TimeRemainingColumn,
+)
 from rich.text import Text
-
-from gibbsmin.jobs.case import Case
-from gibbsmin.jobs.scan import Grid
 
 if TYPE_CHECKING:
     import pandas as pd
+
+
+class _Rate(ProgressColumn):
+    """States a second."""
+
+    def render(self, task: Task) -> Text:
+        speed = task.finished_speed or task.speed
+        return Text("" if speed is None else f"{speed:,.0f} states/s".replace(",", " "))
 
 
 class Tally:
@@ -31,6 +44,7 @@ class Tally:
             TextColumn("states"),
             BarColumn(),
             MofNCompleteColumn(),
+            _Rate(),
             TimeRemainingColumn(),
             console=Console(stderr=True),
             transient=True,
@@ -51,8 +65,3 @@ class Tally:
         if self.uncertified:
             text += f"; {self.uncertified} of them are not certified and carry their status"
         return Text(f"{text}.")
-
-
-def counted(blocks: Iterator[pd.DataFrame], case: Case) -> Tally:
-    """A tally of a case's scan."""
-    return Tally(blocks, Grid(case.axes).states)

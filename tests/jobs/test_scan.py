@@ -42,7 +42,7 @@ def with_axes(*axes: dict[str, Any], **changes: Any) -> dict[str, Any]:
 
 
 def scan(tables: dict[str, Any]) -> pd.DataFrame:
-    return gibbsmin.scan(gibbsmin.load_case(tables))
+    return gibbsmin.scan(gibbsmin.load_case(tables)).table
 
 
 def test_rows_are_the_grid_and_equal_single_predictions() -> None:
@@ -77,7 +77,7 @@ def test_blocks_are_the_whole_in_pieces() -> None:
     case = gibbsmin.load_case(with_axes(STEAM, TEMPERATURES))
     pieces = list(gibbsmin.scan_blocks(case, block=5))
     assert [len(piece) for piece in pieces] == [5, 5, 2]
-    whole = gibbsmin.scan(case)
+    whole = gibbsmin.scan(case).table
     together = pd.concat(pieces, ignore_index=True)
     numbers = whole.select_dtypes("number").columns
     # the warm start of a block depends on its neighbours; the answers do not
@@ -126,7 +126,7 @@ def test_files_hold_the_table(tmp_path: Path, ending: str) -> None:
     assert (result.exit_code, result.stderr) == (0, "")
     assert result.stdout == f"3 states written to {out}.\n"
     read = {"csv": pd.read_csv, "parquet": pd.read_parquet, "xlsx": pd.read_excel}[ending]
-    expected = gibbsmin.scan(gibbsmin.load_case(case))
+    expected = gibbsmin.scan(gibbsmin.load_case(case)).table
     pd.testing.assert_frame_equal(
         read(out), expected, check_dtype=False, rtol=1e-12, check_exact=False
     )

@@ -1,0 +1,91 @@
+"""The columns of a scan's table: what is told of each stage in every state."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from typing import Any
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.jobs.sensitivity import Sensitivities
+from gibbsmin.jobs.train import Step
+from gibbsmin.minimise import Status
+from gibbsmin.thermo.species import Phase
+
+_STATUSES = np.array([status.name.lower() for status in Status])
+
+
+def columns_of(
+    step: Step, states: int, bars: Sensitivities | None, prefix: bool
+) -> dict[str, FloatArray]:
+    """A stage's columns, with units in their names where they are not plain numbers.
+
+    With error bars, ``u(NAME)`` is the standard uncertainty of the column NAME, in its unit.
+    """
+    found = step.states.equilibria
+    columns: dict[str, Any] = {
+        "status": _STATUSES[found.solution.status],
+        "gap": found.solution.certificate.gap,
+    }
+    uncertainties = None if bars is None else bars.uncertainties
+    for name, unit, factor, result, values in _values(step):
+        label = f"{name}, {unit}" if unit else name
+        columns[label] = values / factor if factor != 1.0 else values
+        if bars is not None and uncertainties is not None and result in bars.results:
+            size = uncertainties[:, bars.results.index(result)]
+            columns[f"u({name}), {unit}" if unit else f"u({name})"] = size / factor
+    columns["phases"] = _phases(step)
+    if bars is not None:
+        columns["near an onset"] = bars.near_onset.any(axis=1)
+    before = f"{step.stage.name}: " if prefix else ""
+    return {f"{before}{key}": np.broadcast_to(v, (states,)) for key, v in columns.items()}
+
+
+def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
+    """Name, unit, SI per unit, the result's name among the sensitivities, and SI values."""
+    found, energy, model = step.states.equilibria, step.states.energy, step.states.model
+    unit = "kW" if step.streams[0].is_flow else "kJ"
+    yield "temperature", "K", 1.0, "temperature", found.temperature
+    yield "pressure", "bar", 1e5, "pressure", found.pressure
+    yield "heat", unit, 1e3, "heat", energy.heat
+    generated = energy.entropy_generation
+    yield "entropy generation", f"{unit}/K", 1e3, "entropy generation", generated
+    total = found.amounts[:, model.gas].sum(axis=1)
+    total = np.where(total > 0.0, total, np.nan)
+    for column, record in enumerate(model.records):
+        amounts = found.amounts[:, column]
+        if record.phase is Phase.GAS:
+            yield f"y {record.name}", "", 1.0, f"fraction {record.name}", amounts / total
+        else:
+            yield f"amount {record.name}", "mol", 1.0, f"amount {record.name}", amounts
+    for name, share in _conversions(step).items():
+        yield f"conversion {name}", "", 1.0, f"conversion {name}", share
+
+
+def _phases(step: Step) -> FloatArray:
+    """The solids and liquids that are there, such as "C(graphite) + H2O(l)"; "gas" for none."""
+    model, amounts = step.states.model, step.states.equilibria.amounts
+    condensed = np.flatnonzero(~model.gas)
+    present = amounts[:, condensed] > 0.0
+    kinds, kind = np.unique(present, axis=0, return_inverse=True)
+    names = np.array(
+        [
+            " + ".join(model.records[condensed[c]].name for c in np.flatnonzero(row)) or "gas"
+            for row in kinds
+        ]
+    )
+    return np.where(np.isnan(amounts).any(axis=1), "", names[kind.reshape(-1)])
+
+
+def _conversions(step: Step) -> dict[str, FloatArray]:
+    """Share of each substance of the feed that is used up, all its forms counted together."""
+    inlet, model, amounts = step.states.inlet, step.states.model, step.states.equilibria.amounts
+    conversions = {}
+    for record in inlet.records:
+        fed = inlet.amounts[:, [r.formula == record.formula for r in inlet.records]].sum(axis=1)
+        left = amounts[:, [r.formula == record.formula for r in model.records]].sum(axis=1)
+        left = np.where(np.isnan(amounts).any(axis=1), np.nan, left)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            conversions[record.name] = np.where(fed > 0.0, 1.0 - left / fed, np.nan)
+    return conversions

@@ -1,0 +1,105 @@
+"""Keeps the finished blocks of a scan, so that one that was broken off goes on where it stopped.
+
+The blocks stand in a folder beside the file to write, with a fingerprint of the case and its
+conditions; the folder goes when the file is whole.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import shutil
+from collections.abc import Callable, Iterator
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+from gibbsmin.errors import OutputError
+from gibbsmin.present.files import write_whole
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+_FINGERPRINT = "fingerprint.txt"
+
+
+def fingerprint_of(*parts: str | bytes) -> str:
+    """One number for what a scan rests on: the case's text, its conditions, its options."""
+    total = hashlib.sha256()
+    for part in parts:
+        data = part.encode() if isinstance(part, str) else part
+        total.update(len(data).to_bytes(8, "big"))
+        total.update(data)
+    return total.hexdigest()
+
+
+def kept_blocks(
+    path: Path, fingerprint: str, count: int, solve: Callable[[int], pd.DataFrame]
+) -> Iterator[pd.DataFrame]:
+    """The blocks in order: those that are kept, the others solved and kept.
+
+    Raises
+    ------
+    OutputError
+        when the folder holds blocks of another scan, or cannot be written.
+    """
+    folder = _folder(path)
+    stamp = folder / _FINGERPRINT
+    if stamp.exists() and stamp.read_text(encoding="utf-8") != fingerprint:
+        raise OutputError(
+            "found blocks of another case, other conditions or other options",
+            f"accepted is another file to write, or {path.name} once this folder is removed",
+            file=str(folder),
+        )
+    try:
+        folder.mkdir(exist_ok=True)
+    except OSError as error:
+        raise OutputError(
+            f"found that it cannot be written ({(error.strerror or str(error)).lower()})",
+            "accepted is a file in a folder that exists and may be written",
+            file=str(folder),
+        ) from None
+    write_whole(stamp, lambda scratch: _write_text(scratch, fingerprint))
+    for index in range(count):
+        part = folder / f"block-{index:06d}.npz"
+        if not part.exists():
+            _keep(solve(index), part)
+        # What was solved just now is read back too, so that every run gives the same bytes.
+        yield _kept(part)
+
+
+def forget_blocks(path: Path) -> None:
+    """Remove the folder of a scan whose file is whole."""
+    shutil.rmtree(_folder(path), ignore_errors=True)
+
+
+def _folder(path: Path) -> Path:
+    return path.with_name(f"{path.name}.parts")
+
+
+def _keep(block: pd.DataFrame, part: Path) -> None:
+    arrays: dict[str, Any] = {f"{k}": _array(block.iloc[:, k]) for k in range(block.shape[1])}
+    arrays["names"] = np.array([str(name) for name in block.columns])
+
+    def write(scratch: Path) -> None:
+        with scratch.open("wb") as file:
+            np.savez(file, **arrays)
+
+    write_whole(part, write)
+
+
+def _kept(part: Path) -> pd.DataFrame:
+    import pandas as pd
+
+    with np.load(part, allow_pickle=False) as file:
+        names = file["names"].tolist()
+        return pd.DataFrame({name: file[f"{k}"] for k, name in enumerate(names)})
+
+
+def _array(column: pd.Series) -> np.ndarray:
+    values = column.to_numpy()
+    return values if values.dtype.kind in "fib" else values.astype(str)
+
+
+def _write_text(path: Path, text: str) -> None:
+    path.write_text(text, encoding="utf-8")

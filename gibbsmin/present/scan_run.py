@@ -1,0 +1,47 @@
+"""A scan from its case file to its own file, which goes on where it was broken off."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from gibbsmin.jobs.case import Case
+from gibbsmin.jobs.conditions import Conditions
+from gibbsmin.jobs.scan import BLOCK, scan_block
+from gibbsmin.present.scan_files import require_scan_ending, write_scan
+from gibbsmin.present.scan_parts import forget_blocks, kept_blocks
+from gibbsmin.present.scan_progress import Tally
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+
+def run_scan(
+    case: Case,
+    conditions: Conditions,
+    path: Path,
+    fingerprint: str,
+    *,
+    block: int = BLOCK,
+    uncertainty: bool = False,
+) -> Tally:
+    """Solve what is not kept from an earlier run, and write the file whole.
+
+    Raises
+    ------
+    OutputError
+        for a file that cannot be written, and for kept blocks of another scan.
+    """
+    require_scan_ending(path)
+    count = -(-conditions.states // block)
+
+    def solve(index: int) -> pd.DataFrame:
+        first = index * block
+        last = min(first + block, conditions.states)
+        return scan_block(case, conditions, first, last, uncertainty=uncertainty)
+
+    blocks = kept_blocks(path, fingerprint, count, solve)
+    tally = Tally(blocks, conditions.states)
+    write_scan(iter(tally), path)
+    forget_blocks(path)
+    return tally

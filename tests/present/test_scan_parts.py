@@ -1,0 +1,168 @@
+"""A scan that was killed goes on where it stopped, and its file is that of an unbroken one."""
+
+from __future__ import annotations
+
+import json
+import multiprocessing
+import os
+import signal
+import time
+from copy import deepcopy
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+import pytest
+from typer.testing import CliRunner
+
+import gibbsmin
+from gibbsmin.cli import app
+from gibbsmin.errors import OutputError
+from gibbsmin.jobs.conditions import conditions_of
+from gibbsmin.present.scan_parts import fingerprint_of
+from gibbsmin.present.scan_run import run_scan
+
+CASE: dict[str, Any] = {
+    "feed": {
+        "gas": {
+            "temperature": "520 degC",
+            "pressure": "30 bar",
+            "unit": "mol",
+            "amounts": {"CH4": 1.0, "H2O": 3.0},
+        }
+    },
+    "outlet": {"temperature": "850 degC", "pressure": "25 bar"},
+    "species": {"consider": ["CH4", "H2O", "CO", "CO2", "H2", "C(graphite)"]},
+    "axis": [
+        {"vary": "outlet.temperature", "first": "500 degC", "last": "900 degC", "count": 60},
+        {"vary": "feed.gas.amounts.H2O", "first": 0.5, "last": 4.0, "count": 5},
+    ],
+}
+BLOCK = 15
+KILLS = 20
+
+
+def write(path: Path, tables: dict[str, Any] = CASE) -> None:
+    case = gibbsmin.load_case(deepcopy(tables))
+    run_scan(case, conditions_of(case), path, fingerprint_of(json.dumps(tables)), block=BLOCK)
+
+
+@pytest.mark.parametrize("ending", ["csv", "parquet"])
+def test_after_twenty_kills_the_file_is_the_same(tmp_path: Path, ending: str) -> None:
+    whole, broken = tmp_path / f"whole.{ending}", tmp_path / f"broken.{ending}"
+    begun = time.perf_counter()
+    write(whole)
+    usual = time.perf_counter() - begun
+    random = np.random.default_rng(20)
+    fork = multiprocessing.get_context("fork")
+    killed = 0
+    for _ in range(400):
+        process = fork.Process(target=write, args=(broken,))
+        process.start()
+        process.join(random.uniform(0.02, 0.15) * max(usual, 0.2))
+        if process.is_alive():
+            assert process.pid is not None
+            os.kill(process.pid, signal.SIGKILL)
+            process.join()
+            killed += 1
+            assert not broken.exists(), "the file appears whole or not at all"
+        if killed == KILLS:
+            break
+        if broken.exists():
+            broken.unlink()
+    assert killed == KILLS
+    write(broken)
+    assert broken.read_bytes() == whole.read_bytes()
+    # Scratch files of killed processes may stay; the folder of blocks does not.
+    assert not broken.with_name(f"{broken.name}.parts").exists()
+
+
+def test_finished_blocks_are_not_solved_again(tmp_path: Path) -> None:
+    path = tmp_path / "scan.csv"
+    case = gibbsmin.load_case(deepcopy(CASE))
+    folder = tmp_path / "scan.csv.parts"
+    process = multiprocessing.get_context("fork").Process(target=write, args=(path,))
+    process.start()
+    while not (folder / "block-000003.npz").exists():
+        time.sleep(0.001)
+    os.kill(process.pid or 0, signal.SIGKILL)
+    process.join()
+    stamps = {part.name: part.stat().st_mtime_ns for part in folder.glob("block-*.npz")}
+    assert len(stamps) >= 4
+    seen = []
+
+    def blocks() -> None:
+        from gibbsmin.jobs.scan import scan_block
+        from gibbsmin.present.scan_parts import kept_blocks
+
+        conditions = conditions_of(case)
+
+        def solve(index: int) -> Any:
+            seen.append(index)
+            return scan_block(case, conditions, index * BLOCK, (index + 1) * BLOCK)
+
+        for _ in kept_blocks(path, fingerprint_of(json.dumps(CASE)), 20, solve):
+            pass
+
+    blocks()
+    assert seen == list(range(len(stamps), 20))
+    assert {p.name: p.stat().st_mtime_ns for p in folder.glob("block-*.npz")}.items() >= (
+        stamps.items()
+    )
+
+
+def test_blocks_of_another_case_are_refused(tmp_path: Path) -> None:
+    path = tmp_path / "scan.csv"
+    folder = tmp_path / "scan.csv.parts"
+    folder.mkdir()
+    (folder / "fingerprint.txt").write_text("another")
+    with pytest.raises(OutputError) as error:
+        write(path)
+    assert str(error.value) == (
+        f"{folder}: found blocks of another case, other conditions or other options; accepted is "
+        "another file to write, or scan.csv once this folder is removed."
+    )
+
+
+def test_the_command_takes_a_table_and_error_bars(tmp_path: Path) -> None:
+    case = tmp_path / "case.toml"
+    case.write_text(
+        '[feed.gas]\ntemperature = "520 degC"\npressure = "30 bar"\nunit = "mol"\n'
+        "amounts = { CH4 = 1, H2O = 3 }\n"
+        '[outlet]\ntemperature = "850 degC"\npressure = "25 bar"\n'
+        '[species]\nconsider = ["CH4", "H2O", "CO", "CO2", "H2"]\n'
+        '[uncertainty]\noutlet.temperature = "5 K"\n'
+    )
+    table = tmp_path / "runs.csv"
+    table.write_text('label,"outlet.temperature, degC"\nmonday,800\n=tuesday,820\n')
+    out = tmp_path / "out.csv"
+    arguments = ["scan", str(case), "--table", str(table), "--out", str(out), "--uncertainty"]
+    result = CliRunner().invoke(app, arguments)
+    assert result.exit_code == 0, result.output
+    assert result.output == f"2 states written to {out}.\n"
+    lines = out.read_text().splitlines()
+    assert lines[0].startswith('label,"outlet.temperature, degC",status,gap,"temperature, K"')
+    assert '"u(temperature), K"' in lines[0]
+    assert lines[2].startswith("'=tuesday,820.0,certified")
+
+
+def test_a_missing_table_is_one_sentence(tmp_path: Path) -> None:
+    case = tmp_path / "case.toml"
+    case.write_text(
+        '[feed.gas]\ntemperature = "520 degC"\npressure = "30 bar"\nunit = "mol"\n'
+        "amounts = { CH4 = 1, H2O = 3 }\n"
+        '[outlet]\ntemperature = "850 degC"\npressure = "25 bar"\n'
+    )
+    missing = tmp_path / "none.csv"
+    for path, sentence in (
+        (missing, f"{missing}: found no such file; accepted is a table that exists."),
+        (
+            tmp_path / "none.txt",
+            f'{tmp_path / "none.txt"}: found the ending ".txt"; accepted is a table in .csv, '
+            ".xlsx, .parquet.",
+        ),
+    ):
+        arguments = ["scan", str(case), "--table", str(path), "--out", str(tmp_path / "o.csv")]
+        result = CliRunner().invoke(app, arguments)
+        assert result.exit_code == 2
+        assert result.output.strip() == sentence
