@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections import deque
+from collections.abc import Callable, Iterator, Sequence
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
@@ -21,8 +23,11 @@ if TYPE_CHECKING:
     import pandas as pd
     import xarray as xr
 
-BLOCK = 50_000
-"""States in memory at a time."""
+BLOCK = 25_000
+"""States solved together."""
+
+_AHEAD = 2
+"""Blocks in memory at a time."""
 
 _BLOCK_WITH_ERROR_BARS = 5_000
 
@@ -105,9 +110,30 @@ def scan_blocks(
     """
     conditions = conditions or conditions_of(case)
     size = block or (_BLOCK_WITH_ERROR_BARS if uncertainty else BLOCK)
-    for first in range(0, conditions.states, size):
+
+    def solve(first: int) -> pd.DataFrame:
         last = min(first + size, conditions.states)
-        yield scan_block(case, conditions, first, last, uncertainty=uncertainty)
+        return scan_block(case, conditions, first, last, uncertainty=uncertainty)
+
+    yield from in_order(solve, range(0, conditions.states, size))
+
+
+def in_order(solve: Callable[[int], pd.DataFrame], starts: Sequence[int]) -> Iterator[pd.DataFrame]:
+    """The blocks in order, the next one under way while one is taken.
+
+    One block's tables are laid out while another's states are solved, so that no core waits; two
+    blocks at most are in memory.
+    """
+    if len(starts) < 2:
+        yield from map(solve, starts)
+        return
+    with ThreadPoolExecutor(_AHEAD) as pool:
+        coming = deque(pool.submit(solve, start) for start in starts[:_AHEAD])
+        for start in [*starts[_AHEAD:], *[None] * _AHEAD]:
+            block = coming.popleft().result()
+            if start is not None:
+                coming.append(pool.submit(solve, start))
+            yield block
 
 
 def scan_block(
@@ -133,41 +159,34 @@ def column_of(axis: Axis) -> str:
 
 def _answers(
     case: Case, axes: Sequence[Axis], values: Sequence[np.ndarray], uncertainty: bool
-) -> dict[str, np.ndarray]:
+) -> dict[str, Any]:
     """Columns of the states; those that share what shapes their equations are solved together."""
+    import pandas as pd
+
     shaping = [k for k, axis in enumerate(axes) if shapes_equations(axis.name, case.stages)]
     if not shaping:
         return _solved(case, axes, values, uncertainty)
     keys = np.stack([values[k] for k in shaping], axis=1)
     kinds, kind = np.unique(keys, axis=0, return_inverse=True)
-    whole: dict[str, np.ndarray] = {}
+    parts = []
     for which in range(len(kinds)):
-        rows = np.flatnonzero(kind == which)
+        rows = np.flatnonzero(kind.reshape(-1) == which)
         part = _solved(case, axes, [value[rows] for value in values], uncertainty)
-        for name, column in part.items():
-            if name not in whole:
-                # Rows of other kinds may lack the column.
-                is_text = column.dtype.kind == "U"
-                whole[name] = np.full(kind.size, "" if is_text else np.nan, dtype=object)
-            whole[name][rows] = column
-    return {name: _plain(column) for name, column in whole.items()}
-
-
-def _plain(column: np.ndarray) -> np.ndarray:
-    """A column of one kind of value, as an array of that kind."""
-    return column.astype(str if isinstance(column[0], str) else type(column[0]))
+        parts.append(pd.DataFrame(part, index=rows))
+    whole = pd.concat(parts).sort_index()
+    return {str(name): whole[name].to_numpy() for name in whole}
 
 
 def _solved(
     case: Case, axes: Sequence[Axis], values: Sequence[np.ndarray], uncertainty: bool
-) -> dict[str, np.ndarray]:
+) -> dict[str, Any]:
     library = case.library
     varied = applied(case, axes, values, library)
     steps = list(run_train(varied, library))
     bars: Sequence[Any] = [None] * len(steps)
     if uncertainty:
         bars = list(error_bars(varied, steps, library))
-    columns: dict[str, np.ndarray] = {}
+    columns: dict[str, Any] = {}
     for step, bar in zip(steps, bars, strict=True):
         columns |= columns_of(step, values[0].size, bar, prefix=len(case.stages) > 1)
     return columns

@@ -2,30 +2,28 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from typing import Any
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Status
 from gibbsmin.thermo.species import Phase
 
-_STATUSES = np.array([status.name.lower() for status in Status])
+_STATUSES = [status.name.lower() for status in Status]
 
 
-def columns_of(
-    step: Step, states: int, bars: Sensitivities | None, prefix: bool
-) -> dict[str, FloatArray]:
+def columns_of(step: Step, states: int, bars: Sensitivities | None, prefix: bool) -> dict[str, Any]:
     """A stage's columns, with units in their names where they are not plain numbers.
 
     With error bars, ``u(NAME)`` is the standard uncertainty of the column NAME, in its unit.
     """
     found = step.states.equilibria
     columns: dict[str, Any] = {
-        "status": _STATUSES[found.solution.status],
+        "status": _named(found.solution.status, _STATUSES),
         "gap": found.solution.certificate.gap,
     }
     uncertainties = None if bars is None else bars.uncertainties
@@ -39,7 +37,17 @@ def columns_of(
     if bars is not None:
         columns["near an onset"] = bars.near_onset.any(axis=1)
     before = f"{step.stage.name}: " if prefix else ""
-    return {f"{before}{key}": np.broadcast_to(v, (states,)) for key, v in columns.items()}
+    return {
+        f"{before}{key}": np.broadcast_to(v, (states,)) if isinstance(v, np.ndarray) else v
+        for key, v in columns.items()
+    }
+
+
+def _named(codes: Any, names: Sequence[str]) -> Any:
+    """Names by their numbers, without a text in memory for each state."""
+    import pandas as pd
+
+    return pd.Categorical.from_codes(codes, categories=pd.Index(list(names)))
 
 
 def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
@@ -63,19 +71,28 @@ def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
         yield f"conversion {name}", "", 1.0, f"conversion {name}", share
 
 
-def _phases(step: Step) -> FloatArray:
+def _phases(step: Step) -> Any:
     """The solids and liquids that are there, such as "C(graphite) + H2O(l)"; "gas" for none."""
     model, amounts = step.states.model, step.states.equilibria.amounts
     condensed = np.flatnonzero(~model.gas)
     present = amounts[:, condensed] > 0.0
-    kinds, kind = np.unique(present, axis=0, return_inverse=True)
-    names = np.array(
-        [
-            " + ".join(model.records[condensed[c]].name for c in np.flatnonzero(row)) or "gas"
-            for row in kinds
-        ]
-    )
-    return np.where(np.isnan(amounts).any(axis=1), "", names[kind.reshape(-1)])
+    # Rows are told apart by a number each: most tables hold a handful of kinds.
+    _, first, kind = np.unique(_row_numbers(present), return_index=True, return_inverse=True)
+    names = [
+        " + ".join(model.records[c].name for c in condensed[present[row]]) or "gas"
+        for row in first.tolist()
+    ]
+    unsolved = np.isnan(amounts[:, 0])
+    return _named(np.where(unsolved, len(names), kind), [*names, ""])
+
+
+def _row_numbers(present: BoolArray) -> IntArray:
+    """The same number for equal rows and, beyond 62 columns but for chance, only for these."""
+    width = present.shape[1]
+    weights = np.asarray(np.left_shift(1, np.arange(width, dtype=np.int64)))
+    if width > 62:
+        weights = np.random.default_rng(width).integers(1 << 50, size=width, dtype=np.int64)
+    return np.asarray(present @ weights)
 
 
 def _conversions(step: Step) -> dict[str, FloatArray]:

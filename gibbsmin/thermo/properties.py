@@ -29,6 +29,9 @@ from gibbsmin.thermo.species import Piece, Species
 # Values handled at a time: temporaries of this size stay in the processor's cache.
 _BLOCK: Final = 16384
 
+_MANY: Final = 5000
+"""Temperatures from which the different ones are found by hashing."""
+
 
 @dataclass(frozen=True, eq=False)
 class PropertyTable:
@@ -129,7 +132,7 @@ class PropertyTable:
     ) -> FloatArray:
         T = _checked(T)
         # A grid repeats its temperatures: each is evaluated once.
-        distinct, places = np.unique(T, return_inverse=True)
+        distinct, places = _distinct(T)
         column = distinct.reshape(-1, 1)
         S = len(self.records)
         first = np.arange(S) * (len(self.breaks) + 1)
@@ -142,6 +145,18 @@ class PropertyTable:
                 piece += block >= start
             result[begin : begin + step] = kernel(block, piece)
         return result[places].reshape((*T.shape, S))
+
+
+def _distinct(T: FloatArray) -> tuple[FloatArray, IntArray]:
+    """The different temperatures, and which of them stands at each place (flat)."""
+    if T.size < _MANY:
+        distinct, places = np.unique(T, return_inverse=True)
+        return distinct, places.reshape(-1)
+    # Hashing is many times faster than sorting; only large batches wait for pandas to load.
+    import pandas as pd
+
+    places, distinct = pd.factorize(T.reshape(-1), use_na_sentinel=False)
+    return np.asarray(distinct), np.asarray(places)
 
 
 def _checked(T: npt.ArrayLike) -> FloatArray:

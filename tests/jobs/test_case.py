@@ -158,7 +158,7 @@ def test_records_of_the_case_extend_the_library() -> None:
     assert found.certified
     assert found.heat == pytest.approx(expected.heat, rel=1e-12)
     axis = Axis("outlet.temperature", np.array([1123.15]), np.array([1123.15]), "K")
-    table = scan(replace(extended, feeds=(gas, steam), axes=(axis,)))
+    table = scan(replace(extended, feeds=(gas, steam), axes=(axis,))).table
     assert table["heat, kW"].iloc[0] == pytest.approx(expected.heat / 1e3, rel=1e-9)
     bars = uncertainty(replace(extended, feeds=(gas, steam)))
     assert len(bars) == 1
