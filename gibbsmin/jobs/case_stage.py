@@ -174,6 +174,12 @@ def _specification(key: str, stage: OutletTable, stream: Stream) -> Specificatio
                 key=f"{key}.heat",
             )
         heat = stage.heat.value
+    if stage.volume is not None and stream.is_flow:
+        raise UnitError(
+            f'found the volume of a closed vessel, while the feeds flow, in "{stream.unit}"',
+            "accepted is a pressure, or feeds that are quantities",
+            key=f"{key}.volume",
+        )
     return Specification(
         temperature=stage.temperature,
         heat=heat,

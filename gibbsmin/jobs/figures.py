@@ -59,7 +59,7 @@ def figures_of(
     states, stage = step.states, step.stage
     unit = "kW" if step.streams[0].is_flow else "kJ"
     figures = (
-        *_of_the_gas(states),
+        *_of_the_gas(states, unit),
         *_of_solids_and_liquids(states),
         *_of_the_trade(states, activities, library),
         *_of_emissions(states, stage.reference_oxygen),
@@ -73,7 +73,7 @@ def figures_of(
     )
 
 
-def _of_the_gas(states: StageStates) -> Iterable[Figure]:
+def _of_the_gas(states: StageStates, unit: str) -> Iterable[Figure]:
     model, found = states.model, states.equilibria
     T, P, n = found.temperature, found.pressure, found.amounts
     gas = gas_figures(model.properties, model.gas, T, P, n)
@@ -87,6 +87,9 @@ def _of_the_gas(states: StageStates) -> Iterable[Figure]:
     yield Figure("molar mass of the gas", gas.molar_mass[0] * 1e3, "g/mol")
     yield Figure("density of the gas", gas.density[0], "kg/m3")
     yield Figure("heat capacity of the gas, frozen", gas.heat_capacity[0], "J/(mol K)")
+    yield Figure("heat capacity of the outlet, frozen", answer.frozen[0] / 1e3, f"{unit}/K")
+    per_kelvin = answer.equilibrium[0] / 1e3
+    yield Figure("heat capacity of the outlet at equilibrium", per_kelvin, f"{unit}/K")
     yield Figure("heat capacity at equilibrium over frozen", answer.ratio[0], "")
     yield Figure("isentropic exponent, frozen", answer.frozen_exponent[0], "")
     yield Figure("isentropic exponent at equilibrium", answer.equilibrium_exponent[0], "")

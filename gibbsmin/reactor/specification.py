@@ -5,10 +5,11 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 
 import numpy as np
+import numpy.typing as npt
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.errors import InputError
-from gibbsmin.minimise import Status
+from gibbsmin.minimise import Programme, Status, minimise
 from gibbsmin.reactor.conditions import (
     Equilibria,
     at_energy_and_volume,
@@ -76,9 +77,26 @@ def solve(model: StageModel, specification: Specification, inlet: Inlet) -> Equi
     if specification.temperature is not None:
         return found
     status = found.solution.status.copy()
-    status[np.isnan(found.temperature) & np.isfinite(inlet.enthalpy)] = Status.UNMET
+    missing = np.flatnonzero(np.isnan(found.temperature) & np.isfinite(inlet.enthalpy))
+    if missing.size:
+        status[missing] = _why(model, inlet, missing)
     status[~np.isnan(found.answers[0])] = Status.AMBIGUOUS
     return replace(found, solution=replace(found.solution, status=status))
+
+
+def _why(model: StageModel, inlet: Inlet, states: IntArray) -> npt.NDArray[np.int8]:
+    """Status of states without a temperature: unmet, unless the candidates cannot hold the feed."""
+    # Whether amounts exist does not depend on energies, which an approach may leave undefined.
+    trial = Programme(
+        matrix=model.balance.matrix,
+        supplies=model.balance.supplies(inlet.amounts[states]),
+        energies=np.zeros((states.size, len(model.records))),
+        gas=model.gas,
+        direction=model.balance.direction,
+        atoms=model.balance.atoms,
+    )
+    infeasible = minimise(trial).status == Status.INFEASIBLE
+    return np.where(infeasible, Status.INFEASIBLE, Status.UNMET).astype(np.int8)
 
 
 def _solved(model: StageModel, specification: Specification, inlet: Inlet) -> Equilibria:

@@ -266,9 +266,14 @@ def test_a_bypass_joins_the_outlet() -> None:
         ),
         (
             {"temperature": None, "heat": "-9000 kJ"},
-            "stage.0.heat: found a heat of -9000 kJ (per second in a flow), which no temperature "
-            "between 100 K and 6000 K meets; accepted is another heat, or a temperature in its "
-            "place.",
+            "stage.0.heat: found a heat of -9000 kJ, which no temperature between 100 K and "
+            "6000 K meets; accepted is another heat, or a temperature in its place.",
+        ),
+        (
+            {"temperature": None, "heat": "0 kJ", "species": {"consider": ["CO", "H2", "N2"]}},
+            "stage.0.species.consider: found candidates that cannot hold the feed's elements in "
+            "their proportions; accepted is a list that can, for instance one with CH4(g), "
+            "N2(g), H2O(g).",
         ),
         (
             {"temperature": None, "heat": "5 kW"},
@@ -317,6 +322,37 @@ def test_faults_of_stages_read_as_one_sentence(changes: dict[str, Any], sentence
     assert str(caught.value) == sentence
 
 
+def test_a_closed_vessel_takes_no_flows() -> None:
+    tables = case(
+        {"gas": stream({"CH4": 1.0, "H2O": 2.0}, "600 K", "1 bar") | {"unit": "mol/s"}},
+        {"temperature": "900 K", "volume": "2 m3"},
+        consider=["CH4", "H2O(g)", "CO", "CO2", "H2"],
+    )
+    with pytest.raises(InputError) as caught:
+        predict(tables)
+    assert str(caught.value) == (
+        "stage.0.volume: found the volume of a closed vessel, while the feeds flow, in "
+        '"mol/s"; accepted is a pressure, or feeds that are quantities.'
+    )
+
+
+def test_a_named_solid_that_is_absent_is_said_to_bound_only() -> None:
+    tables = case(
+        {"gas": stream({"CH4": 1.0, "H2O": 3.0}, "800 K", "20 bar")},
+        {
+            "temperature": "1000 K",
+            "pressure": "20 bar",
+            "approach": [{"reaction": "CH4 = C(graphite) + 2 H2", "approach": "30 K"}],
+        },
+        consider=["CH4", "H2O(g)", "CO", "CO2", "H2", "C(graphite)"],
+    )
+    (note,) = only(tables).notes
+    assert note == (
+        '"CH4 = C(graphite) + 2 H2" is set to equilibrium at 970.00 K, an approach of 30 K; its '
+        "key is CH4(g). C(graphite) is absent, so it only bounds the outlet."
+    )
+
+
 def test_figures_of_the_gas() -> None:
     stage = only(
         case(
@@ -336,6 +372,8 @@ def test_figures_of_the_gas() -> None:
     assert figures["isentropic exponent, frozen"] == pytest.approx(1.400, abs=0.002)
     assert figures["isentropic exponent at equilibrium"] == pytest.approx(1.400, abs=0.002)
     assert figures["heat capacity at equilibrium over frozen"] == pytest.approx(1.0, abs=1e-9)
+    whole = figures["heat capacity of the outlet, frozen"]
+    assert figures["heat capacity of the outlet at equilibrium"] == pytest.approx(whole)
     assert "solids and liquids by mass" not in figures
 
 
