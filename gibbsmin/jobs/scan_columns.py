@@ -91,7 +91,9 @@ def _row_numbers(present: BoolArray) -> IntArray:
     width = present.shape[1]
     weights = np.asarray(np.left_shift(1, np.arange(width, dtype=np.int64)))
     if width > 62:
-        weights = np.random.default_rng(width).integers(1 << 50, size=width, dtype=np.int64)
+        weights = np.asarray(
+            np.random.default_rng(width).integers(1 << 50, size=width, dtype=np.int64)
+        )
     return np.asarray(present @ weights)
 
 

@@ -112,7 +112,7 @@ def test_several_temperatures_are_told_and_none_is_chosen(monkeypatch: pytest.Mo
     )
     case = tables(1700.0, 30.0)
     case["axis"] = [{"vary": "feed.gas.temperature", "values": ["600 K", "1700 K"]}]
-    table = gibbsmin.scan(gibbsmin.load_case(case))
+    table = gibbsmin.scan(gibbsmin.load_case(case)).table
     assert table["status"].tolist() == ["certified", "ambiguous"]
     assert np.isnan(table["temperature, K"].iloc[1])
 
