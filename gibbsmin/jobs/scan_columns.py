@@ -89,7 +89,7 @@ def _phases(step: Step) -> Any:
 def _row_numbers(present: BoolArray) -> IntArray:
     """The same number for equal rows and, beyond 62 columns but for chance, only for these."""
     width = present.shape[1]
-    weights = np.asarray(np.left_shift(1, np.arange(width, dtype=np.int64)))
+    weights: Any = np.left_shift(1, np.arange(width, dtype=np.int64))
     if width > 62:
         weights = np.asarray(
             np.random.default_rng(width).integers(1 << 50, size=width, dtype=np.int64)
