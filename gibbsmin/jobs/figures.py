@@ -7,17 +7,14 @@ from collections.abc import Iterable, Sequence
 import numpy as np
 
 from gibbsmin.constants import STANDARD_PRESSURE
+from gibbsmin.jobs.fuel_figures import exergy_figures, fuel_figures, gas_fractions
 from gibbsmin.jobs.train import Step
 from gibbsmin.reactor.audit import ElementActivity
 from gibbsmin.reactor.derivatives import derivatives, energy_slopes
 from gibbsmin.reactor.dew_points import acid_dew_point, water_dew_point
-from gibbsmin.reactor.exergy import Exergy, Surroundings, stream_exergy, szargut_surroundings
 from gibbsmin.reactor.gas_figures import gas_figures, response
-from gibbsmin.reactor.heating import cold_gas_efficiency, heating_value
 from gibbsmin.reactor.stage import StageStates
-from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.reactor.trade_figures import (
-    air_ratio,
     at_reference_oxygen,
     condensed_mass_fractions,
     nitriding_potential,
@@ -29,7 +26,6 @@ from gibbsmin.reactor.trade_figures import (
 )
 from gibbsmin.results import Figure
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.species import FEED_ONLY
 
 _TRACE = 1e-6
 """Mole fractions below this are not set against each other."""
@@ -41,15 +37,6 @@ _EMISSIONS = ("NO(g)", "NO2(g)", "N2O(g)", "CO(g)", "SO2(g)", "SO3(g)", "HCl(g)"
 """Gases that limits of emission are set for (common practice)."""
 
 _LEAST_EMISSION = 1e-9
-
-_LEAST_AIR = 0.01
-"""Air ratio from which a fuel is burnt in part, and not by traces of oxygen."""
-
-_LEAN = 0.05
-"""Hydrogen and carbon monoxide both from this fraction are what a gasifier is run for."""
-
-_COMBUSTIBLE = 0.5e6
-"""J/Nm³ from which a gas is worth a heating value."""
 
 
 def figures_of(
@@ -63,8 +50,8 @@ def figures_of(
         *_of_solids_and_liquids(states),
         *_of_the_trade(states, activities, library),
         *_of_emissions(states, stage.reference_oxygen),
-        *_of_heating(states, library),
-        *_of_exergy(step, stage.surroundings_temperature, unit, library),
+        *fuel_figures(states, library),
+        *exergy_figures(step, stage.surroundings_temperature, unit, library),
     )
     return tuple(
         Figure(figure.name, float(figure.value), figure.unit)
@@ -110,14 +97,11 @@ def _of_the_trade(
 ) -> Iterable[Figure]:
     inlet, found = states.inlet, states.equilibria
     T, P = float(found.temperature[0]), float(found.pressure[0])
-    y = _gas_fractions(states)
+    y = gas_fractions(states)
     fed = {r.name for r, amount in zip(inlet.records, inlet.amounts[0], strict=True) if amount > 0}
     if states.model.reacts and ("H2O(g)" in fed or "H2O(l)" in fed):
         ratio = steam_to_carbon(inlet.records, inlet.amounts[0])
         yield Figure("steam to carbon, fed", float(ratio), "mol/mol")
-    ratio = air_ratio(inlet.records, inlet.amounts[0])
-    if states.model.reacts and ratio > _LEAST_AIR:
-        yield Figure("air ratio, fed", float(ratio), "")
     H2, CO, CO2 = (y.get(name, 0.0) for name in ("H2(g)", "CO(g)", "CO2(g)"))
     if min(H2, CO) > _SYNTHESIS_GAS:
         yield Figure("H2/CO", float(quotient(H2, CO)), "mol/mol")
@@ -145,7 +129,7 @@ def _of_emissions(states: StageStates, reference_oxygen: float | None) -> Iterab
     """What limits of emission are stated of, in the dry gas at a reference content of oxygen."""
     if reference_oxygen is None:
         return
-    y = _gas_fractions(states)
+    y = gas_fractions(states)
     dry = 1.0 - y.get("H2O(g)", 0.0)
     for name in _EMISSIONS:
         if y.get(name, 0.0) > _LEAST_EMISSION:
@@ -155,62 +139,3 @@ def _of_emissions(states: StageStates, reference_oxygen: float | None) -> Iterab
             )
             label = f"{formula} in the dry gas at {100 * reference_oxygen:g} % O2"
             yield Figure(label, 1e6 * float(fraction), "ppm")
-
-
-def _of_heating(states: StageStates, library: Library) -> Iterable[Figure]:
-    """Heating values of the gas, and what of the fuel's is found in it after partial burning."""
-    inlet, model = states.inlet, states.model
-    gas = np.where(model.gas, states.equilibria.amounts[0], 0.0)
-    made = heating_value(model.records, gas, library)
-    if not (made.normal_volume > 0.0 and made.lower > _COMBUSTIBLE * made.normal_volume):
-        return
-    for name, value in (("lower", made.lower), ("higher", made.higher)):
-        per_volume = value / made.normal_volume / 1e6
-        yield Figure(f"{name} heating value of the gas", per_volume, "MJ/Nm3")
-    fed, y = inlet.amounts[0], _gas_fractions(states)
-    burnt_in_part = any(record.status == FEED_ONLY for record in inlet.records) or (
-        _LEAST_AIR < float(air_ratio(inlet.records, fed)) < 1.0
-    )
-    if model.reacts and burnt_in_part and min(y.get("H2(g)", 0.0), y.get("CO(g)", 0.0)) > _LEAN:
-        fuel = heating_value(inlet.records, fed, library)
-        yield Figure("cold-gas efficiency", 100.0 * cold_gas_efficiency(made, fuel), "%")
-
-
-def _of_exergy(
-    step: Step, surroundings_temperature: float, unit: str, library: Library
-) -> Iterable[Figure]:
-    """Exergy of what enters and of what leaves, together with the surroundings."""
-    model, found = step.states.model, step.states.equilibria
-    surroundings = szargut_surroundings(surroundings_temperature)
-    against = f"against {surroundings_temperature:g} K and 1 atm"
-    T, P = float(found.temperature[0]), float(found.pressure[0])
-    leaving = stream_exergy(model.records, found.amounts[0], T, P, surroundings, library)
-    entering = [_stream_exergy(stream, surroundings, library) for stream in step.streams]
-    yield Figure(f"physical exergy {against}", leaving.physical / 1e3, unit)
-    yield Figure(f"chemical exergy {against}", leaving.chemical / 1e3, unit)
-    fed = sum(exergy.total for exergy in entering)
-    yield Figure(f"exergy fed {against}", fed / 1e3, unit)
-
-
-def _stream_exergy(stream: Stream, surroundings: Surroundings, library: Library) -> Exergy:
-    amounts = np.array([first(amount) for amount in stream.amounts.values()])
-    return stream_exergy(
-        [library[name] for name in stream.amounts],
-        amounts,
-        first(stream.temperature),
-        first(stream.pressure),
-        surroundings,
-        library,
-    )
-
-
-def _gas_fractions(states: StageStates) -> dict[str, float]:
-    model, amounts = states.model, states.equilibria.amounts[0]
-    total = float(amounts[model.gas].sum())
-    return {
-        record.name: amount / total
-        for record, amount, in_gas in zip(
-            model.records, amounts.tolist(), model.gas.tolist(), strict=True
-        )
-        if in_gas and total > 0.0
-    }

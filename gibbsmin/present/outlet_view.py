@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 
 import numpy as np
 from rich.console import Group, RenderableType
@@ -27,6 +27,8 @@ from gibbsmin.units import to_unit
 
 _SHOWN_FROM = 1e-9
 _ROUTES_AGREE = 1e-6
+_MANYFOLD = 1000.0
+"""Per cent of what was fed; a formation beyond is read better from the composition."""
 
 
 def outlet_view(outlet: Outlet) -> RenderableType:
@@ -48,6 +50,7 @@ def outlet_view(outlet: Outlet) -> RenderableType:
         parts += sentences("Hazards of the outlet", stage.hazards)
     if len(outlet.stages) > 1:
         parts += [heading("All stages together"), _totals(outlet)]
+        parts.append(pairs(_conversion(outlet.conversion)))
     parts += sentences("Cautions", CAUTIONS)
     return Group(*parts)
 
@@ -59,14 +62,22 @@ def _totals(outlet: Outlet) -> RenderableType:
             stage.name,
             f"{stage.temperature - 273.15:.1f}",
             heat(stage.heat, outlet.is_flow),
+            f"{heat(stage.entropy.value, outlet.is_flow)}/K",
             heat(stage.entropy.lost_work, outlet.is_flow),
         )
         for stage in outlet.stages
     ]
     rows.append(
-        ("total", "", heat(outlet.heat, outlet.is_flow), heat(outlet.lost_work, outlet.is_flow))
+        (
+            "total",
+            "",
+            heat(outlet.heat, outlet.is_flow),
+            f"{heat(outlet.entropy_generation, outlet.is_flow)}/K",
+            heat(outlet.lost_work, outlet.is_flow),
+        )
     )
-    return table(("stage", "outlet, °C", "heat added", "lost work"), rows, words=("stage",))
+    headers = ("stage", "outlet, °C", "heat added", "entropy generated", "lost work")
+    return table(headers, rows, words=("stage",))
 
 
 def _conditions(stage: StageOutlet) -> Text:
@@ -105,15 +116,7 @@ def _composition(outlet: Outlet, stage: StageOutlet) -> RenderableType:
 
 
 def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
-    shares = {name: round(100 * value, 2) for name, value in stage.conversion.items()}
-    if not any(shares.values()):
-        shares = {}
-    converted = [f"{name} {abs(share):.2f} %" for name, share in shares.items() if share >= 0]
-    formed = [f"{name} +{-share:.2f} %" for name, share in shares.items() if share < 0]
-    if converted:
-        yield "conversion", ", ".join(converted)
-    if formed:
-        yield "formation", ", ".join(formed) + " of what was fed"
+    yield from _conversion(stage.conversion)
     if stage.removed:
         unit = amount_unit(outlet.unit, outlet.is_flow)
         records = [record for record in stage.records if record.name in stage.removed]
@@ -154,6 +157,24 @@ def _lines(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, str]]:
         f"gap {proof.gap:.1e} RT per mole of atoms, balance {proof.balance:.1e}, "
         f"stationarity {proof.stationarity:.1e}",
     )
+
+
+def _conversion(shares_by_name: Mapping[str, float]) -> Iterator[tuple[str, str]]:
+    """What was used up of each substance fed, and what was formed beyond what was fed of it.
+
+    Nothing is told where nothing changed, nor of a formation that a trace in the feed makes huge.
+    """
+    shares = {name: round(100 * value, 2) for name, value in shares_by_name.items()}
+    if not any(shares.values()):
+        return
+    converted = [f"{name} {abs(share):.2f} %" for name, share in shares.items() if share >= 0]
+    formed = [
+        f"{name} +{-share:.2f} %" for name, share in shares.items() if -_MANYFOLD <= share < 0
+    ]
+    if converted:
+        yield "conversion", ", ".join(converted)
+    if formed:
+        yield "formation", ", ".join(formed) + " of what was fed"
 
 
 def _extents(outlet: Outlet, stage: StageOutlet) -> RenderableType:

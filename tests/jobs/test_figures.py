@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from copy import deepcopy
 from typing import Any
 
 import pytest
@@ -217,3 +218,16 @@ def test_faults_read_as_one_sentence(outlet: dict[str, Any], sentence: str) -> N
     with pytest.raises(InputError) as caught:
         outlet_of(GASIFIER, **outlet)
     assert str(caught.value) == sentence
+
+
+def test_ash_does_not_hide_the_figures_of_the_fuel() -> None:
+    """A little potash in the wood leaves air ratio and cold-gas efficiency nearly unchanged."""
+    with_ash = deepcopy(GASIFIER)
+    fuel = with_ash["feed"]["wood"]["fuel"]
+    fuel |= {"ash": "1 %", "ash_composition": {"K2O": "60 %", "SiO2": "40 %"}}
+    consider = [*GASIFIER["species"]["consider"], "K2CO3(cr)", "K2CO3(l)", "KOH(g)", "SiO2(quartz)"]
+    with_ash["species"] = {"consider": consider}
+    found, plain = outlet_of(with_ash), outlet_of(GASIFIER)
+    for name in ("air ratio, fed", "cold-gas efficiency", "lower heating value of the gas"):
+        assert figure(found, name) == pytest.approx(figure(plain, name), rel=0.03)
+        assert figure(found, name) != figure(plain, name)
