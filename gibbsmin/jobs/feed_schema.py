@@ -3,14 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 from typing import Annotated, Any, Literal, Self
 
-from pydantic import BeforeValidator, model_validator
+from pydantic import BeforeValidator, ValidationInfo, model_validator
 
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.fuel_schema import FuelTable
 from gibbsmin.jobs.stage_schema import NOTHING, each, word
-from gibbsmin.jobs.table_schema import MISSING, Pressure, Table, Temperature
+from gibbsmin.jobs.table_schema import MISSING, Pressure, Table, Temperature, site_pressure
 from gibbsmin.units import (
     Measure,
     Unit,
@@ -53,8 +54,23 @@ def _steam_ratio(given: object) -> float:
     return float(given)
 
 
-def _humidity(given: object) -> float | None:
-    return None if given is None else read_share(given)
+@dataclass(frozen=True)
+class Humidity:
+    """Share of saturation, at a temperature (K) and pressure (Pa) of its own, or the stream's."""
+
+    share: float
+    temperature: float | None = None
+    pressure: float | None = None
+
+
+def _humidity(given: object, info: ValidationInfo) -> Humidity | None:
+    """A share, or a share and the temperature of the outside air: "60 % at 20 degC"."""
+    if given is None:
+        return None
+    share, at, temperature = str(given).partition(" at ")
+    if not at:
+        return Humidity(read_share(given))
+    return Humidity(read_share(share), read_temperature(temperature), site_pressure(info))
 
 
 def read_total(given: object) -> Measure:
@@ -82,7 +98,7 @@ class FeedTable(Table):
     ] = NOTHING
     water_dew_point: Annotated[float | None, BeforeValidator(read_temperature)] = None
     steam_ratio: Annotated[float | None, BeforeValidator(_steam_ratio)] = None
-    relative_humidity: Annotated[float | None, BeforeValidator(_humidity)] = None
+    relative_humidity: Annotated[Humidity | None, BeforeValidator(_humidity)] = None
     fuel: FuelTable | None = None
 
     @model_validator(mode="after")

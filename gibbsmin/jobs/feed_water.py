@@ -35,20 +35,21 @@ def _steam(name: str, table: FeedTable, gas: float, library: Library) -> float:
     """Moles of water on top of the moles of gas."""
     if table.steam_ratio is not None:
         return table.steam_ratio * gas
+    P = table.pressure
     if table.water_dew_point is not None:
         key, vapour = "water_dew_point", _saturation(table.water_dew_point, library)
         found = f"a dew point of {table.water_dew_point:.2f} K"
     elif table.relative_humidity is not None:
-        key = "relative_humidity"
-        vapour = table.relative_humidity * _saturation(table.temperature, library)
-        found = f"{100 * table.relative_humidity:g} % of saturation at {table.temperature:.2f} K"
+        humidity = table.relative_humidity
+        T, P = humidity.temperature or table.temperature, humidity.pressure or table.pressure
+        key, vapour = "relative_humidity", humidity.share * _saturation(T, library)
+        found = f"{100 * humidity.share:g} % of saturation at {T:.2f} K"
     else:
         return 0.0
-    fraction = vapour / table.pressure
+    fraction = vapour / P
     if fraction >= 1.0:
         raise InputError(
-            f"found {found}, at which water alone reaches the stream's "
-            f"{table.pressure / 1e5:g} bar",
+            f"found {found}, at which water alone reaches {P / 1e5:g} bar",
             "accepted is a lower one",
             key=f"feed.{name}.{key}",
         )

@@ -83,6 +83,16 @@ def test_moist_air_by_its_relative_humidity() -> None:
     assert wetted.amounts["H2O(g)"] == pytest.approx(air["H2O(g)"])
 
 
+def test_humidity_of_the_outside_air_holds_for_air_that_is_heated_and_compressed() -> None:
+    changes: dict[str, Any] = {"total": None, "analysis": None, "unit": "mol"}
+    changes |= {"amounts": {"air": 100}}
+    outside = read(**changes, temperature="30 degC", pressure="1 atm", relative_humidity="60 %")
+    heated = read(
+        **changes, temperature="350 degC", pressure="3 bar", relative_humidity="60 % at 30 degC"
+    )
+    assert heated.amounts == pytest.approx(outside.amounts)
+
+
 def test_air_in_an_analysis_brings_its_parts() -> None:
     stream = read(analysis={"air": "90 %", "CO2": "10 %"})
     assert stream.amounts["O2(g)"] == pytest.approx(90.0 * 0.20948, rel=1e-4)
@@ -96,7 +106,12 @@ def test_air_in_an_analysis_brings_its_parts() -> None:
         (
             {"temperature": "130 degC", "relative_humidity": "80 %"},
             "feed.gas.relative_humidity: found 80 % of saturation at 403.15 K, at which water "
-            "alone reaches the stream's 2 bar; accepted is a lower one.",
+            "alone reaches 2 bar; accepted is a lower one.",
+        ),
+        (
+            {"relative_humidity": "60 % at 20"},
+            'feed.gas.relative_humidity: found "20", a number without a unit; accepted is a '
+            'temperature such as "850 degC" or "1123 K".',
         ),
         (
             {"relative_humidity": "130 %"},
@@ -121,7 +136,7 @@ def test_air_in_an_analysis_brings_its_parts() -> None:
         (
             {"water_dew_point": "125 degC"},
             "feed.gas.water_dew_point: found a dew point of 398.15 K, at which water alone reaches "
-            "the stream's 2 bar; accepted is a lower one.",
+            "2 bar; accepted is a lower one.",
         ),
         (
             {"water_dew_point": "25 degC", "steam_ratio": 0.1},

@@ -6,6 +6,7 @@ from copy import deepcopy
 from typing import Any
 
 import pytest
+from published_values import CheckValue, amounts, check_values
 
 import gibbsmin
 from gibbsmin.errors import InputError
@@ -336,3 +337,44 @@ def test_faults_read_as_one_sentence(
     with pytest.raises(InputError) as caught:
         case_of(fuel, **feed)
     assert str(caught.value) == sentence
+
+
+GENERATOR = [c for c in check_values("compositions") if c.id.startswith("SVNA13.13")]
+
+
+@pytest.mark.parametrize("check", GENERATOR, ids=str)
+def test_coal_gas_generator_with_carbon_given_as_a_fuel(check: CheckValue) -> None:
+    """The textbook's generator, its carbon known by analysis and heating value alone."""
+    feed = amounts(check["feed"])
+    carbon = feed.pop("C(graphite)")
+    fuel = {
+        "analysis": {"C": "100 %"},
+        "basis": "dry",
+        "higher_heating_value": "32.76 MJ/kg",  # 393.5 kJ/mol
+    }
+    case = gibbsmin.load_case(
+        {
+            "feed": {
+                "coke": {
+                    "temperature": "25 degC",
+                    "pressure": "20 bar",
+                    "total": f"{carbon * 12.011} g",
+                    "fuel": fuel,
+                },
+                "gas": {
+                    "temperature": "25 degC",
+                    "pressure": "20 bar",
+                    "unit": "mol",
+                    "amounts": feed,
+                },
+            },
+            "outlet": {
+                "temperature": f"{check['temperature_K']} K",
+                "pressure": f"{check['pressure']} {check['pressure_unit']}",
+            },
+            "species": {"consider": check["candidates"].split("; ")},
+        }
+    )
+    found = gibbsmin.predict(case).final
+    fractions = dict(zip((r.name for r in found.records), found.mole_fractions, strict=True))
+    assert check.meets(fractions[check["subject"]])
