@@ -54,7 +54,8 @@ def fuel_feed(
         combustible matter, or a total that is no mass.
     """
     key = f"feed.{name}"
-    if library.forms(name):
+    called = name.strip().casefold()
+    if library.forms(name) or any(r.common_name.casefold() == called for r in library.records):
         raise InputError(
             f'found a fuel called "{name}", as records of the library are',
             "accepted is a name of its own",
@@ -161,12 +162,13 @@ def _ash_records(
 def _remarks(
     name: str, fuel: Fuel, record: Species, heating_value: float, ash_reacts: bool
 ) -> tuple[str, ...]:
-    citation = next(s.citation for s in FUEL_SOURCES if s.key == record.source_entropy)
+    source = next(source for source in FUEL_SOURCES if source.key == record.source_entropy)
     sentences = [
-        f"The entropy of {name} is an estimate, {record.S298 / record.molar_mass:.0f} ± "
-        f"{record.u_S298 / record.molar_mass:.0f} J/(kg K) of its dry and ash-free matter "
-        f"({citation}); its enthalpy of formation follows from its higher heating value, "
-        f"{heating_value / 1e6:.4g} MJ/kg dry and ash free."
+        f"The entropy of {name}, {record.S298 / record.molar_mass:.0f} ± "
+        f"{record.u_S298 / record.molar_mass:.0f} J/(kg K) of its dry and ash-free matter, is an "
+        f"estimate by {source.citation} ({source.status.removeprefix('estimate; ')}).",
+        f"The enthalpy of formation of {name} follows from its higher heating value, "
+        f"{heating_value / 1e6:.4g} MJ/kg dry and ash free.",
     ]
     if fuel.ash and not ash_reacts:
         sentences.append(

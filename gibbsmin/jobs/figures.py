@@ -50,7 +50,7 @@ def figures_of(
         *_of_solids_and_liquids(states),
         *_of_the_trade(states, activities, library),
         *_of_emissions(states, stage.reference_oxygen),
-        *fuel_figures(states, library),
+        *fuel_figures(states, unit, library),
         *exergy_figures(step, stage.surroundings_temperature, unit, library),
     )
     return tuple(

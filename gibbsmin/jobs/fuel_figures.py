@@ -30,7 +30,7 @@ _ASH = 0.1
 """Up to this share by mass, what has no heating value counts as ash and is passed over."""
 
 
-def fuel_figures(states: StageStates, library: Library) -> Iterable[Figure]:
+def fuel_figures(states: StageStates, unit: str, library: Library) -> Iterable[Figure]:
     """Air ratio, heating values of the gas, and what of the fuel's is found in it."""
     inlet, model = states.inlet, states.model
     fed = _without_ash(inlet.records, inlet.amounts[0])
@@ -49,6 +49,7 @@ def fuel_figures(states: StageStates, library: Library) -> Iterable[Figure]:
     burnt_in_part |= any(record.status == FEED_ONLY for record in inlet.records)
     if model.reacts and burnt_in_part and min(y.get("H2(g)", 0.0), y.get("CO(g)", 0.0)) > _LEAN:
         fuel = heating_value(inlet.records, fed, library)
+        yield Figure("lower heating value fed", fuel.lower / 1e3, unit)
         yield Figure("cold-gas efficiency", 100.0 * cold_gas_efficiency(made, fuel), "%")
 
 

@@ -6,6 +6,8 @@ from copy import deepcopy
 from typing import Any
 
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 from published_values import CheckValue, amounts, check_values
 
 import gibbsmin
@@ -66,11 +68,13 @@ def test_matter_moisture_and_inert_ash() -> None:
     assert coal.warnings == ()
     spread = record.u_S298 / record.molar_mass
     assert coal.remarks == (
-        f"The entropy of coal is an estimate, {record.S298 / record.molar_mass:.0f} ± {spread:.0f} "
-        "J/(kg K) of its dry and ash-free matter (W. Eiserman, P. Johnson, W. L. Conger, "
+        f"The entropy of coal, {record.S298 / record.molar_mass:.0f} ± {spread:.0f} J/(kg K) of "
+        "its dry and ash-free matter, is an estimate by W. Eiserman, P. Johnson, W. L. Conger, "
         "Estimating thermodynamic properties of coal, char, tar and ash, Fuel Processing "
-        "Technology 3, 39-53 (1980)); its enthalpy of formation follows from its higher heating "
-        "value, 34.07 MJ/kg dry and ash free.",
+        "Technology 3, 39-53 (1980) (coefficients recalled from memory, found to meet 43 organic "
+        "crystals of the CRC Handbook within 14 % (root mean square)).",
+        "The enthalpy of formation of coal follows from its higher heating value, 34.07 MJ/kg dry "
+        "and ash free.",
         "The ash of coal, 12.4 % as received, is taken as inert and left out of the balances, its "
         "heat too.",
     )
@@ -99,6 +103,63 @@ def test_burning_gives_off_the_heating_value() -> None:
     assert -found.heat == pytest.approx(26.0e6, rel=1e-4)
     assert case.own_records[0].name in found.conversion
     assert found.conversion["coal(am)"] == 1.0
+
+
+@st.composite
+def fuels(draw: st.DrawFn) -> tuple[dict[str, Any], float]:
+    """A fuel of any composition, and its lower heating value as received in MJ/kg.
+
+    The evaporation of water at 25 °C, 44.00 kJ/mol, is taken off by hand.
+    """
+    carbon = draw(st.floats(0.4, 0.9))
+    parts = draw(st.tuples(*[st.floats(0.0, 1.0)] * 4))
+    rest = (1.0 - carbon) / (sum(parts) + 1e-3)
+    matter = {"C": carbon, "H": (parts[0] + 1e-3) * rest}
+    matter |= {e: share * rest for e, share in zip("ONS", parts[1:], strict=True)}
+    moisture, ash = draw(st.floats(0.0, 0.4)), draw(st.floats(0.0, 0.4))
+    lower_dry = draw(st.floats(10.0, 40.0)) * (1.0 - ash)
+    basis = draw(st.sampled_from(["as received", "dry", "dry and ash free"]))
+    of_dry = {"as received": 1.0 - moisture, "dry": 1.0, "dry and ash free": 1.0 / (1.0 - ash)}
+    scale = (1.0 - ash) * of_dry[basis]
+    fuel: dict[str, Any] = {
+        "analysis": {e: share * scale for e, share in matter.items()},
+        "basis": basis,
+        "moisture": moisture,
+        "ash": ash * (1.0 - moisture) if basis == "as received" else ash,
+    }
+    if draw(st.booleans()):
+        higher_dry = lower_dry + (1.0 - ash) * matter["H"] / 2.016 * 44.004
+        fuel |= {"higher_heating_value": f"{higher_dry} MJ/kg", "heating_value_basis": "dry"}
+    else:
+        fuel |= {"lower_heating_value": f"{lower_dry} MJ/kg", "heating_value_basis": "dry"}
+    return fuel, lower_dry * (1.0 - moisture) - moisture / 18.015 * 44.004
+
+
+@given(fuels())
+@settings(max_examples=40, deadline=None)
+def test_any_fuel_gives_off_its_lower_heating_value(drawn: tuple[dict[str, Any], float]) -> None:
+    fuel, expected = drawn
+    tables = {
+        "feed": {
+            "fuel": {"temperature": "25 degC", "pressure": "1 bar", "total": "1 kg", "fuel": fuel},
+            "air": {
+                "temperature": "25 degC",
+                "pressure": "1 bar",
+                "unit": "mol",
+                "amounts": {"O2": 400},
+            },
+        },
+        "outlet": {"temperature": "25 degC", "pressure": "1 bar"},
+        "species": {"consider": ["CO2", "H2O(g)", "SO2", "N2", "O2"]},
+    }
+    found = gibbsmin.predict(gibbsmin.load_case(tables)).final
+    assert found.certified
+    assert -found.heat == pytest.approx(1e6 * expected, rel=1e-3, abs=5e3)
+    masses = sum(
+        n * record.molar_mass for n, record in zip(found.amounts, found.records, strict=True)
+    )
+    ash = fuel["ash"] * (1.0 if fuel["basis"] == "as received" else 1.0 - fuel["moisture"])
+    assert masses == pytest.approx(1.0 - ash + 400 * 0.031998, rel=1e-5)
 
 
 def test_a_pure_liquid_given_as_a_fuel_burns_like_itself() -> None:
@@ -172,7 +233,7 @@ def test_ash_of_known_composition_takes_part() -> None:
     names = list(coal.amounts)
     assert names[2:] == ["SiO2(quartz)", "Al2O3(alpha)", "CaO(cr)"]
     assert coal.amounts["CaO(cr)"] == pytest.approx(0.124 * 0.15 / 0.056077, rel=1e-4)
-    assert len(coal.remarks) == 1
+    assert not any("inert" in remark for remark in coal.remarks)
 
 
 def test_analysis_that_nearly_adds_up_is_scaled_and_said_so() -> None:
@@ -322,6 +383,12 @@ def test_the_fuel_itself_is_no_candidate() -> None:
             {"steam_ratio": 0.1},
             "feed.coal.steam_ratio: found steam_ratio with fuel; accepted is steam_ratio with "
             "amounts or analysis.",
+        ),
+        (
+            COAL,
+            {"name": "methanol"},
+            'feed.methanol: found a fuel called "methanol", as records of the library are; '
+            "accepted is a name of its own.",
         ),
         (
             COAL,

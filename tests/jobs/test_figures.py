@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from copy import deepcopy
+from pathlib import Path
 from typing import Any
 
 import pytest
@@ -231,3 +232,15 @@ def test_ash_does_not_hide_the_figures_of_the_fuel() -> None:
     for name in ("air ratio, fed", "cold-gas efficiency", "lower heating value of the gas"):
         assert figure(found, name) == pytest.approx(figure(plain, name), rel=0.03)
         assert figure(found, name) != figure(plain, name)
+
+
+def test_the_gasifier_of_the_examples_lies_where_practice_does() -> None:
+    """With air: 4 to 6 MJ/Nm3, 65 to 80 % in the cold gas (common practice); this is the limit."""
+    path = Path(__file__).parents[2] / "examples" / "biomass_gasifier" / "case.toml"
+    found = gibbsmin.predict(gibbsmin.load_case(path)).stages[0]
+    assert 0.25 < figure(found, "air ratio, fed") < 0.35
+    assert 4.0 < figure(found, "lower heating value of the gas") < 6.0
+    assert 65.0 < figure(found, "cold-gas efficiency") < 85.0
+    assert 973.0 < found.temperature < 1173.0
+    # 1000 kg/h with 0.88·18.6 − 0.12·2.442 = 16.07 MJ/kg
+    assert figure(found, "lower heating value fed") == pytest.approx(16.075e3 / 3.6, rel=1e-3)
