@@ -58,6 +58,9 @@ Temperatures = Annotated[
         help='"850 degC", "600, 700, 800 K" or "300 K to 1500 K step 100 K"; may be repeated.',
     ),
 ]
+Plot = Annotated[
+    str, typer.Option("--plot", metavar="FILE", help="Draw a .png or .svg file as well.")
+]
 AsJson = Annotated[bool, typer.Option("--json", help="Print JSON for programs to read.")]
 
 
@@ -76,6 +79,7 @@ def predict(
     uncertainty: Annotated[
         bool, typer.Option("--uncertainty", help="Give error bars and what makes them.")
     ] = False,
+    plot: Plot = "",
 ) -> None:
     """Give the outlet of a case at equilibrium, with its certificate and audit.
 
@@ -91,11 +95,17 @@ def predict(
 
     if out:
         require_ending(Path(out))
+    _require_plot_ending(plot)
     loaded = load_case(case)
     outlet = predict_case(loaded)
     bars = error_bars_of(loaded) if uncertainty else ()
     if out:
         write_outlet(outlet, Path(out), bars)
+    if plot:
+        from gibbsmin.present.plots.style import write_plot
+        from gibbsmin.present.plots.train_plots import plot_train
+
+        write_plot(plot_train(loaded), Path(plot))
     if as_json:
         _print_json(outlet_document(outlet, bars))
     else:
@@ -119,6 +129,10 @@ def scan(
     uncertainty: Annotated[
         bool, typer.Option("--uncertainty", help="Give error bars beside the values.")
     ] = False,
+    plot: Plot = "",
+    show: Annotated[
+        str, typer.Option(metavar="COLUMN", help='What to plot: "wet", "dry" or a column.')
+    ] = "",
 ) -> None:
     """Give the outlet over the grid of a case's axes: one row a state, each with its status.
 
@@ -135,6 +149,7 @@ def scan(
 
     path = Path(out)
     require_scan_ending(path)
+    _require_plot_ending(plot)
     loaded = load_case(case)
     parts: list[str | bytes] = [version("gibbsmin"), Path(case).read_bytes(), str(uncertainty)]
     conditions: Conditions
@@ -145,6 +160,11 @@ def scan(
         conditions = conditions_of(loaded)
     tally = run_scan(loaded, conditions, path, fingerprint_of(*parts), uncertainty=uncertainty)
     _print(tally.summary(path))
+    if plot:
+        from gibbsmin.present.plots.scan_plots import plot_case
+        from gibbsmin.present.plots.style import write_plot
+
+        write_plot(plot_case(loaded, show, uncertainty=uncertainty), Path(plot))
     if tally.uncertified:
         raise typer.Exit(NOT_CERTIFIED)
 
@@ -158,6 +178,7 @@ def onset(
     out: Annotated[
         str, typer.Option(metavar="FILE", help="Write a .csv, .xlsx or .json file as well.")
     ] = "",
+    plot: Plot = "",
 ) -> None:
     """Find where along an axis a phase first forms or vanishes, or a result meets a target.
 
@@ -173,6 +194,7 @@ def onset(
 
     if out:
         require_ending(Path(out))
+    _require_plot_ending(plot)
     loaded = load_case(case)
     if loaded.onset is None and loaded.target is not None:
         answers = target_of(loaded)
@@ -182,6 +204,11 @@ def onset(
         crossings = onset_of(loaded)
         document, view = onset_document(crossings), onset_view(crossings, loaded.title)
         certified = bool(crossings.certified.all())
+        if plot:
+            from gibbsmin.present.plots.scan_plots import plot_boundary
+            from gibbsmin.present.plots.style import write_plot
+
+            write_plot(plot_boundary(crossings, loaded.title), Path(plot))
     if out:
         write_search(document, Path(out))
     if as_json:
@@ -282,6 +309,14 @@ def _usual(T_low: float, T_high: float) -> FloatArray:
     T = np.array([298.15, 400, 500, 600, 800, 1000, 1200, 1500, 2000, 2500, 3000])
     kept = T[(T_low <= T) & (T_high >= T)]
     return kept if kept.size else np.array([T_low])
+
+
+def _require_plot_ending(plot: str) -> None:
+    """Refuse a plot that could not be written before any work is done."""
+    if plot:
+        from gibbsmin.present.plots.style import require_plot_ending
+
+        require_plot_ending(Path(plot))
 
 
 def _print(renderable: RenderableType) -> None:
