@@ -92,7 +92,22 @@ def method_notes(model: StageModel, state: SolvedState, found: Equilibria) -> tu
             f"{model.shift.differences[row]:g} K; its key is {key}."
             + (f" {absent} is absent, so it only bounds the outlet." if absent else "")
         )
+    notes += [_fraction_note(model, state, row) for row in model.fraction_rows]
     return tuple(notes)
+
+
+def _fraction_note(model: StageModel, state: SolvedState, row: int) -> str:
+    """How far a held fraction y of the gas moves other reactions.
+
+    Its multiplier μ adds −y μ to the potential of every gas that it counts.
+    """
+    moved = abs(float(np.min(model.balance.matrix[row]) * state.multipliers[row]))
+    name = model.balance.rows[row].removesuffix(" at a fraction")
+    return (
+        f"The held fraction of {name} weighs on the gas's other reactions: one that changes its "
+        f"moles by 1 is {100 * np.expm1(moved):.2g} % off its constant. A held share of an "
+        'element, such as "2 % of C", leaves them at equilibrium.'
+    )
 
 
 def _absent_solids(model: StageModel, state: SolvedState, stoichiometry: FloatArray) -> str:

@@ -20,13 +20,12 @@ from gibbsmin.present.quantities import (
     significant,
     temperature,
 )
-from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
+from gibbsmin.reactor.audit import AUDIT_LENGTH, ROUTES_AGREE, ROUTES_SHOWN, AuditEntry
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 from gibbsmin.thermo.species import Phase
 from gibbsmin.units import to_unit
 
 _SHOWN_FROM = 1e-9
-_ROUTES_AGREE = 1e-6
 _MANYFOLD = 1000.0
 """Per cent of what was fed; a formation beyond is read better from the composition."""
 
@@ -206,7 +205,7 @@ def _route_remark(entry: AuditEntry) -> list[str]:
     if len(entry.routes) < 2:
         return []
     first, last = entry.routes[0], entry.routes[-1]
-    if first.log_activity - last.log_activity < _ROUTES_AGREE:
+    if first.log_activity - last.log_activity < ROUTES_AGREE:
         return []
-    plainest = sorted(entry.routes, key=lambda route: route.awkwardness)[:3]
+    plainest = sorted(entry.routes, key=lambda route: route.awkwardness)[:ROUTES_SHOWN]
     return ["; ".join(f"{route.text}: {significant(route.activity, 3)}" for route in plainest)]

@@ -9,7 +9,7 @@ elements is held, records are judged by routes from the actual partial pressures
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -24,6 +24,12 @@ from gibbsmin.thermo.species import Phase, Species
 
 AUDIT_LENGTH = 10
 """The audit's entries that people are shown and warned of: the most weighty ones."""
+
+ROUTES_AGREE = 1e-6
+"""Difference of ln a below which routes agree."""
+
+ROUTES_SHOWN = 3
+"""Of the plainest routes, where they disagree."""
 
 _RANK_TOLERANCE = 1e-9
 _GAS_THRESHOLD = 1e-4
@@ -195,7 +201,8 @@ def element_activities(
 ) -> tuple[ElementActivity, ...]:
     """p(O2), a(C), p(N2) and p(S2), of those elements that the feed brings.
 
-    They are given where the outlet determines them: not where routes disagree.
+    They are given where the outlet determines them.  Where routes disagree, a(C) is given by each
+    of the plainest: methane cracking, the Boudouard reaction, carbon monoxide with hydrogen.
     """
     symbols = [symbol for symbol in _ACTIVITY_RECORDS if symbol in model.balance.elements]
     if not symbols:
@@ -205,20 +212,37 @@ def element_activities(
         values = np.exp(log_activities(model, state, records, STANDARD_PRESSURE))
     gas_total = state.amounts[model.gas].sum()
     for i, record in enumerate(records):
-        # A reference gas that is held apart from the others still shows its own pressure.
-        if np.isnan(values[i]) and record in model.records and gas_total > 0.0:
+        # A reference gas that is held apart from the others, or in a gas of which a fraction is
+        # held, still shows its own pressure.
+        if (np.isnan(values[i]) or model.fraction_rows) and record in model.records:
             share = state.amounts[model.records.index(record)] / gas_total
-            values[i] = share * state.pressure / STANDARD_PRESSURE
-    return tuple(
-        ElementActivity(
-            element=symbol,
-            label=f"p({record.formula})" if record.phase is Phase.GAS else f"a({record.formula})",
-            record=record.name,
-            value=value,
-            unit="bar" if record.phase is Phase.GAS else "",
-        )
-        for symbol, record, value in zip(symbols, records, values.tolist(), strict=True)
-    )
+            if record.phase is Phase.GAS and share > 0.0:
+                values[i] = share * state.pressure / STANDARD_PRESSURE
+    found: list[ElementActivity] = []
+    for symbol, record, value in zip(symbols, records, values.tolist(), strict=True):
+        gas = record.phase is Phase.GAS
+        label = f"p({record.formula})" if gas else f"a({record.formula})"
+        unit = "bar" if gas else ""
+        ways = () if gas else _disagreeing_routes(model, state, record)
+        found += [
+            ElementActivity(symbol, f"{label} by {way.text}", record.name, way.activity, unit)
+            for way in ways
+        ] or [ElementActivity(symbol, label, record.name, value, unit)]
+    return tuple(found)
+
+
+def _disagreeing_routes(model: StageModel, state: SolvedState, record: Species) -> Sequence[Route]:
+    """The plainest routes from the gas to a solid, where they do not agree; else none.
+
+    The solid itself, held as char is, says nothing of what the gas would do.
+    """
+    if not (model.restrained and model.reacts):
+        return ()
+    gas = replace(state, amounts=np.where(model.gas, state.amounts, 0.0))
+    (ways,) = routes_at(model, gas, [record], state.pressure)
+    if not ways or ways[0].log_activity - ways[-1].log_activity < ROUTES_AGREE:
+        return ()
+    return sorted(ways, key=lambda way: way.awkwardness)[:ROUTES_SHOWN]
 
 
 def _energies(records: Sequence[Species], temperature: float, pressure: float) -> FloatArray:

@@ -58,6 +58,13 @@ class StageModel:
         """Whether the outlet is short of full equilibrium, so that routes may disagree."""
         return len(self.balance.rows) > len(self.balance.elements) or bool(self.shift.keys)
 
+    @property
+    def fraction_rows(self) -> list[int]:
+        """Rows of the balance that hold a fraction of the gas, and so weigh on all its records."""
+        elements = len(self.balance.elements)
+        counts = np.count_nonzero(self.balance.matrix, axis=1)
+        return [row for row in range(elements, len(counts)) if elements and counts[row] > 1]
+
     def energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
         """g̃ = G/RT + δ, for gases + ln(P/P°); T.shape + (S,)."""
         energies = reduced_energies(self.properties, self.gas, temperature, pressure)

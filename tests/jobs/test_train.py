@@ -222,6 +222,31 @@ def test_carbon_margin_inside_the_tube_is_told_by_each_route() -> None:
         expected = log_constant(solid, 1000.0) - log_quotient(stage, gas)
         assert routes[text] == pytest.approx(expected, abs=1e-9)
     assert routes["CH4 = C + 2 H2"] > 0.0 > routes["2 CO = C + CO2"]
+    activities = {activity.label: activity.value for activity in stage.activities}
+    assert "a(C)" not in activities  # no single one would be true
+    for text in ("CH4 = C + 2 H2", "2 CO = C + CO2"):
+        assert np.log(activities[f"a(C) by {text}"]) == pytest.approx(routes[text], abs=1e-9)
+
+
+def test_a_held_share_leaves_the_shift_at_equilibrium_and_a_held_fraction_does_not() -> None:
+    shared = only(reformer(held_fraction={"CH4": "30 % of C"}))
+    assert log_quotient(shared, SHIFT) == pytest.approx(
+        log_constant(SHIFT, shared.temperature), abs=1e-10
+    )
+    assert shared.notes == ()
+    held = only(reformer(held_fraction={"CH4": "8 % dry"}))
+    # CO + H2O = CO2 + H2 makes one mole of dry gas
+    off = abs(log_quotient(held, SHIFT) - log_constant(SHIFT, held.temperature))
+    assert off > 1e-3
+    (note,) = held.notes
+    assert note == (
+        "The held fraction of CH4(g) weighs on the gas's other reactions: one that changes its "
+        f"moles by 1 is {100 * np.expm1(off):.2g} % off its constant. A held share of an "
+        'element, such as "2 % of C", leaves them at equilibrium.'
+    )
+    pressures = {activity.label: activity.value for activity in held.activities}
+    fractions = dict(zip((r.name for r in held.records), held.mole_fractions, strict=True))
+    assert pressures["p(N2)"] == pytest.approx(fractions["N2(g)"] * held.pressure / 1e5)
 
 
 def test_a_train_passes_on_what_is_left() -> None:
