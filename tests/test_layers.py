@@ -15,6 +15,7 @@ LAYERS = (
     ("minimise",),
     ("reactor",),
     ("results",),
+    ("sample",),
     ("jobs",),
     ("present",),
     ("cli",),
