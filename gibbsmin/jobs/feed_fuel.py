@@ -19,6 +19,9 @@ if TYPE_CHECKING:
     from gibbsmin.jobs.fuel_schema import FuelTable
 
 _WATER = "H2O(l)"
+_POSSIBLE = (3e6, 60e6)
+"""J/kg of dry and ash-free matter, wider than any solid or liquid fuel (judged)."""
+
 _UNUSUAL = 0.10
 """A heating value further than this from what the elements usually give is warned of."""
 
@@ -68,7 +71,8 @@ def fuel_feed(
             key=f"{key}.total",
         )
     fuel, remarks = _as_received(name, table)
-    heating_value = _heating_value(table, fuel, library)
+    with placed(f"{key}.fuel.{_given_heating_value(table)}"):
+        heating_value = _heating_value(table, fuel, library)
     density = float("nan") if table.density is None else table.density
     with placed(f"{key}.fuel.analysis"):
         record = fuel_record(name, fuel.matter_shares, heating_value, table.phase, density, library)
@@ -119,15 +123,27 @@ def _as_received(name: str, table: FuelTable) -> tuple[Fuel, tuple[str, ...]]:
     return fuel, (f"The analysis of {name} adds up to {text} and is scaled to 100 %.",)
 
 
+def _given_heating_value(table: FuelTable) -> str:
+    return "higher_heating_value" if table.lower_heating_value is None else "lower_heating_value"
+
+
 def _heating_value(table: FuelTable, fuel: Fuel, library: Library) -> float:
     """Higher heating value of the dry and ash-free matter, J/kg."""
     kind: Literal["higher", "lower"] = "higher"
     given = table.higher_heating_value
     if table.lower_heating_value is not None:
         kind, given = "lower", table.lower_heating_value
-    return fuel.higher_heating_value(
+    value = fuel.higher_heating_value(
         given or 0.0, kind, table.heating_value_basis or table.basis, library
     )
+    low, high = _POSSIBLE
+    if not low <= value <= high:
+        raise InputError(
+            f"found a heating value that makes {value / 1e6:.3g} MJ/kg, higher, of the dry and "
+            "ash-free fuel",
+            f"accepted is {low / 1e6:g} to {high / 1e6:g} MJ/kg of it",
+        )
+    return value
 
 
 def _ash_records(

@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
+from gibbsmin.errors import InputError
 from gibbsmin.thermo.species import Phase, Species
 
 WATER_FORMULA = "H2O"
@@ -47,8 +48,20 @@ def held_gas_fraction(name: str, fraction: float, records: Iterable[Species], dr
 def held_element_share(
     record: Species, share: float, element: str, feed: Sequence[Species]
 ) -> Hold:
-    """The record keeps this share of an element fed, such as unburnt char of the carbon."""
-    own = dict(record.elements)[element]
+    """The record keeps this share of an element fed, such as unburnt char of the carbon.
+
+    Raises
+    ------
+    InputError
+        where the record has no such element.
+    """
+    own = dict(record.elements).get(element)
+    if own is None:
+        raise InputError(
+            f'found "{element}", which {record.name} does not hold',
+            f"accepted is one of its elements: {', '.join(dict(record.elements))}",
+            key=f"held_fraction.{record.name}",
+        )
     counts = {other.name: dict(other.elements).get(element, 0.0) for other in feed}
     return Hold(
         f"{record.name} at a share of {element}",

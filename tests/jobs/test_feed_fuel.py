@@ -331,6 +331,12 @@ def test_the_fuel_itself_is_no_candidate() -> None:
             'as "28.5 MJ/kg", "6800 kcal/kg" or "12200 Btu/lb".',
         ),
         (
+            changed(lower_heating_value="26 kJ/kg"),
+            {},
+            "feed.coal.fuel.lower_heating_value: found a heating value that makes 1.44 MJ/kg, "
+            "higher, of the dry and ash-free fuel; accepted is 3 to 60 MJ/kg of it.",
+        ),
+        (
             changed(phase="gas"),
             {},
             'feed.coal.fuel.phase: found "gas"; accepted is "solid" or "liquid".',

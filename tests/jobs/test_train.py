@@ -318,6 +318,11 @@ def test_a_bypass_joins_the_outlet() -> None:
             "back.",
         ),
         (
+            {"held_fraction": {"CH4": "2 % of carbon"}},
+            'stage.0.held_fraction.CH4(g): found "carbon", which CH4(g) does not hold; accepted '
+            "is one of its elements: C, H.",
+        ),
+        (
             {"conversion": {"CO": 0.5}},
             'stage.0.conversion: found "CO(g)", which does not enter the stage; accepted is a '
             "record that does: CH4(g), H2O(g), N2(g).",
