@@ -214,10 +214,10 @@ def element_activities(
     for i, record in enumerate(records):
         # A reference gas that is held apart from the others, or in a gas of which a fraction is
         # held, still shows its own pressure.
-        if (np.isnan(values[i]) or model.fraction_rows) and record in model.records:
+        apart = np.isnan(values[i]) or bool(model.fraction_rows)
+        if apart and record in model.records and record.phase is Phase.GAS and gas_total > 0.0:
             share = state.amounts[model.records.index(record)] / gas_total
-            if record.phase is Phase.GAS and share > 0.0:
-                values[i] = share * state.pressure / STANDARD_PRESSURE
+            values[i] = share * state.pressure / STANDARD_PRESSURE
     found: list[ElementActivity] = []
     for symbol, record, value in zip(symbols, records, values.tolist(), strict=True):
         gas = record.phase is Phase.GAS
