@@ -3,6 +3,7 @@
 from gibbsmin.minimise.certificate import Certificate
 from gibbsmin.minimise.compiled import Warmth
 from gibbsmin.minimise.dispatch import minimise, minimise_heated
+from gibbsmin.minimise.kernel.form import settle_form
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
@@ -20,4 +21,5 @@ __all__ = [
     "minimise",
     "minimise_blocks",
     "minimise_heated",
+    "settle_form",
 ]

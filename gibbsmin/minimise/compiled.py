@@ -10,6 +10,7 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.form import forms
+from gibbsmin.minimise.kernel.memory import in_one_memory
 from gibbsmin.minimise.kernel.storage import Answers, network_of, scratch_for
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
@@ -100,9 +101,10 @@ def answer_heated_batch(
     def run(first: int) -> None:
         part = slice(first, first + block)
         scratch = scratch_for(network, pieces, breaks, offset)
+        own_network, scratch = in_one_memory((network, scratch))
         scratch.heat.target[1:3] = warmth.limits
         solve(
-            network,
+            own_network,
             scratch,
             programme.energies[part],
             programme.supplies[part],

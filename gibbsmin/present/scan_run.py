@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import Conditions
 from gibbsmin.jobs.scan import BLOCK, scan_block
+from gibbsmin.minimise import settle_form
 from gibbsmin.present.scan_files import require_scan_ending, write_scan
 from gibbsmin.present.scan_parts import forget_blocks, kept_blocks
 from gibbsmin.present.scan_progress import Tally
@@ -34,6 +35,9 @@ def run_scan(
     """
     require_scan_ending(path)
     count = -(-conditions.states // block)
+    if count > 1:
+        # What is kept and what is solved later must agree to the last bit.
+        settle_form()
 
     def solve(index: int) -> pd.DataFrame:
         first = index * block

@@ -66,8 +66,22 @@ class _Forms:
                 self._compiled = _compile()
             return self._compiled or interpreted
 
+    def settle(self) -> None:
+        """Serve the compiled form from here on, whatever the batches' sizes."""
+        with self._lock:
+            if self._compiled is None:
+                self._compiled = _compile()
+
 
 forms = _Forms()
+
+
+def settle_form() -> None:
+    """Choose the compiled form once and for all, so that equal batches give equal bits.
+
+    Both forms are right to the last digits, but not to the last bit.
+    """
+    forms.settle()
 
 
 def interpreted(*arguments: Any) -> None:
