@@ -2,20 +2,19 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
 from gibbsmin.jobs.train import Step
 from gibbsmin.reactor.exergy import Exergy, Surroundings, stream_exergy, szargut_surroundings
-from gibbsmin.reactor.heating import cold_gas_efficiency, heating_value
+from gibbsmin.reactor.heating import cold_gas_efficiency, heating_value, without_ash
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.reactor.streams import Stream, first
-from gibbsmin.reactor.trade_figures import air_ratio, oxygen_demand
+from gibbsmin.reactor.trade_figures import air_ratio
 from gibbsmin.results import Figure
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.species import FEED_ONLY, Species
+from gibbsmin.thermo.species import FEED_ONLY
 
 _LEAST_AIR = 0.01
 """Air ratio from which a fuel is burnt, and not by traces of oxygen."""
@@ -26,19 +25,16 @@ _LEAN = 0.05
 _COMBUSTIBLE = 0.5e6
 """J/Nm³ from which a gas is worth a heating value."""
 
-_ASH = 0.1
-"""Up to this share by mass, what has no heating value counts as ash and is passed over."""
-
 
 def fuel_figures(states: StageStates, unit: str, library: Library) -> Iterable[Figure]:
     """Air ratio, heating values of the gas, and what of the fuel's is found in it."""
     inlet, model = states.inlet, states.model
-    fed = _without_ash(inlet.records, inlet.amounts[0])
+    fed = without_ash(inlet.records, inlet.amounts[0])
     ratio = float(air_ratio(inlet.records, fed))
     if model.reacts and ratio > _LEAST_AIR:
         yield Figure("air ratio, fed", ratio, "")
     gas = np.where(model.gas, states.equilibria.amounts[0], 0.0)
-    made = heating_value(model.records, _without_ash(model.records, gas), library)
+    made = heating_value(model.records, without_ash(model.records, gas), library)
     if not (made.normal_volume > 0.0 and made.lower > _COMBUSTIBLE * made.normal_volume):
         return
     for name, value in (("lower", made.lower), ("higher", made.higher)):
@@ -51,14 +47,6 @@ def fuel_figures(states: StageStates, unit: str, library: Library) -> Iterable[F
         fuel = heating_value(inlet.records, fed, library)
         yield Figure("lower heating value fed", fuel.lower / 1e3, unit)
         yield Figure("cold-gas efficiency", 100.0 * cold_gas_efficiency(made, fuel), "%")
-
-
-def _without_ash(records: Sequence[Species], amounts: FloatArray) -> FloatArray:
-    """The amounts (S,) without those that no heating value is agreed on, where these are few."""
-    mass = amounts * np.array([record.molar_mass for record in records])
-    undefined = np.isnan(oxygen_demand(records))
-    few = mass[undefined].sum() <= _ASH * mass.sum()
-    return np.where(undefined & few, 0.0, amounts)
 
 
 def exergy_figures(

@@ -17,11 +17,13 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_ATMOSPHERE
 from gibbsmin.reactor.balance import element_counts
+from gibbsmin.reactor.trade_figures import oxygen_demand
 from gibbsmin.thermo.fuel import BURNT_TO
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Phase, Species
 
 _UNBURNT: Final = ("He", "Ne", "Ar", "Kr", "Xe")
+_ASH: Final = 0.1
 _NORMAL_MOLAR_VOLUME: Final = GAS_CONSTANT * 273.15 / STANDARD_ATMOSPHERE
 
 
@@ -76,6 +78,17 @@ def lower_heating_values(records: Sequence[Species], library: Library) -> FloatA
     """Lower heating value of a mole of each record, J/mol, shape (S,); NaN where it has none."""
     ones = np.eye(len(records))
     return np.array([heating_value(records, one, library).lower for one in ones])
+
+
+def without_ash(records: Sequence[Species], amounts: FloatArray) -> FloatArray:
+    """Amounts (..., S) less those of records without a heating value, where these are only ash.
+
+    That is up to a tenth of the mass; where there is more, nothing is left out.
+    """
+    mass = amounts * np.array([record.molar_mass for record in records])
+    undefined = np.isnan(oxygen_demand(records))
+    few = mass[..., undefined].sum(axis=-1) <= _ASH * mass.sum(axis=-1)
+    return np.where(undefined & few[..., np.newaxis], 0.0, amounts)
 
 
 def cold_gas_efficiency(product: HeatingValue, fuel: HeatingValue) -> float:

@@ -18,7 +18,7 @@ from gibbsmin.reactor.energy import (
     mixture_enthalpy,
     mixture_entropy,
 )
-from gibbsmin.reactor.heating import lower_heating_values
+from gibbsmin.reactor.heating import lower_heating_values, without_ash
 from gibbsmin.reactor.inlet import Inlet, inlet_of
 from gibbsmin.reactor.model import StageModel, stage_model
 from gibbsmin.reactor.specification import Specification, solve
@@ -68,14 +68,16 @@ def _loss(share: float, inlet: Inlet, library: Library) -> FloatArray:
         when a record of the feed has no heating value.
     """
     values = lower_heating_values(inlet.records, library)
-    for record, value in zip(inlet.records, values.tolist(), strict=True):
-        if np.isnan(value):
+    burnt = without_ash(inlet.records, inlet.amounts)
+    counts = np.any(burnt > 0.0, axis=0)
+    for record, value, counted in zip(inlet.records, values, counts, strict=True):
+        if counted and np.isnan(value):
             raise InputError(
                 f'found "{record.name}" in the feed, which has no heating value to lose a share of',
                 "accepted is a heat in its place",
                 key="heat_loss",
             )
-    return share * (inlet.amounts @ values)
+    return share * (burnt @ np.nan_to_num(values))
 
 
 def _energy_balance(

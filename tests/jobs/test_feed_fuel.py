@@ -236,6 +236,29 @@ def test_ash_of_known_composition_takes_part() -> None:
     assert not any("inert" in remark for remark in coal.remarks)
 
 
+def test_a_loss_is_a_share_of_the_heating_value_of_a_fuel_with_ash() -> None:
+    oxides = {"SiO2": "55 %", "Al2O3": "30 %", "CaO": "15 %"}
+    common = {"temperature": "298.15 K", "pressure": "1 bar"}
+    lossy = gibbsmin.load_case(
+        {
+            "feed": {
+                "coal": {**common, "total": "5 kg", "fuel": changed(ash_composition=oxides)},
+                "air": {**common, "unit": "mol", "amounts": {"air": 2000}},
+            },
+            "outlet": {"heat_loss": "3 %", "pressure": "1 bar"},
+            "species": {
+                "consider": [
+                    *("CO2", "H2O(g)", "SO2", "HCl", "N2", "O2", "Ar", "CO", "NO"),
+                    *("SiO2(quartz)", "SiO2(l)", "Al2O3(alpha)", "CaO(cr)"),
+                ]
+            },
+        }
+    )
+    found = gibbsmin.predict(lossy).final
+    assert found.certified
+    assert -found.heat == pytest.approx(0.03 * 5 * 26e6, rel=1e-3)
+
+
 def test_analysis_that_nearly_adds_up_is_scaled_and_said_so() -> None:
     coal = case_of(changed(moisture="8.3 %")).feeds[0]
     assert coal.remarks[0] == (

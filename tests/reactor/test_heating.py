@@ -5,7 +5,12 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from gibbsmin.reactor.heating import HeatingValue, cold_gas_efficiency, heating_value
+from gibbsmin.reactor.heating import (
+    HeatingValue,
+    cold_gas_efficiency,
+    heating_value,
+    without_ash,
+)
 from gibbsmin.thermo.library import load_library
 
 # Higher and lower molar heating values at 25 °C, kJ/mol: ISO 6976:2016 (real-gas corrections do
@@ -77,3 +82,12 @@ def test_cold_gas_efficiency() -> None:
     fuel = value_of(C_graphite=1.0)
     assert cold_gas_efficiency(value_of(CO_g=1.0), fuel) == pytest.approx(0.719, abs=1e-3)
     assert np.isnan(cold_gas_efficiency(fuel, value_of(N2_g=1.0)))
+
+
+def test_ash_is_left_out_where_it_is_little() -> None:
+    library = load_library()
+    records = [library["C(graphite)"], library["SiO2(quartz)"]]
+    # by mass 12.011 g of carbon with 1.2 g and with 6 g of silica, 60.08 g/mol
+    amounts = np.array([[1.0, 0.02], [1.0, 0.1]])
+    assert without_ash(records, amounts).tolist() == [[1.0, 0.0], [1.0, 0.1]]
+    assert without_ash(records, amounts[0]).tolist() == [1.0, 0.0]
