@@ -10,7 +10,8 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise import Method, Status
-from gibbsmin.reactor.audit import AuditEntry, ElementActivity
+from gibbsmin.reactor.activities import ElementActivity
+from gibbsmin.reactor.audit import AuditEntry
 from gibbsmin.thermo.species import Phase, Species
 
 if TYPE_CHECKING:

@@ -9,7 +9,7 @@ import numpy as np
 from gibbsmin.constants import STANDARD_PRESSURE
 from gibbsmin.jobs.fuel_figures import exergy_figures, fuel_figures, gas_fractions
 from gibbsmin.jobs.train import Step
-from gibbsmin.reactor.audit import ElementActivity
+from gibbsmin.reactor.activities import ElementActivity
 from gibbsmin.reactor.derivatives import derivatives, energy_slopes
 from gibbsmin.reactor.dew_points import acid_dew_point, water_dew_point
 from gibbsmin.reactor.gas_figures import gas_figures, response

@@ -14,7 +14,8 @@ from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.jobs.stage_remarks import method_notes, require_an_answer, service_notes
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Method, Status
-from gibbsmin.reactor.audit import SolvedState, audit, element_activities, element_potentials
+from gibbsmin.reactor.activities import element_activities
+from gibbsmin.reactor.audit import SolvedState, audit, element_potentials
 from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.energy import EnergyBalance
 from gibbsmin.reactor.inlet import Inlet

@@ -20,7 +20,8 @@ from gibbsmin.present.quantities import (
     significant,
     temperature,
 )
-from gibbsmin.reactor.audit import AUDIT_LENGTH, ROUTES_AGREE, ROUTES_SHOWN, AuditEntry
+from gibbsmin.reactor.activities import ROUTES_AGREE, ROUTES_SHOWN
+from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 from gibbsmin.thermo.species import Phase
 from gibbsmin.units import to_unit

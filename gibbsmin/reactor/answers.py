@@ -8,22 +8,20 @@ stretch of temperatures in which the approach holds.  What this finds is complet
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from typing import Final
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray, IntArray
+from gibbsmin.arrays import FloatArray
 from gibbsmin.reactor.approach import Shift
+from gibbsmin.reactor.roots import Residual
 
 _STEP: Final = 1.0
 """K, to which the ends of a stretch are found."""
 
 _RATIO: Final = 1.04
 """Between neighbours of the grid."""
-
-Residual = Callable[[FloatArray, IntArray], FloatArray]
-"""Content less what is wanted, of T (k,) and the indices (k,) of the states."""
 
 
 def stretches(shift: Shift, lowest: float, highest: float) -> tuple[FloatArray, ...]:

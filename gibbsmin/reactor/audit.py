@@ -9,12 +9,11 @@ elements is held, records are judged by routes from the actual partial pressures
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
-from gibbsmin.constants import STANDARD_PRESSURE
 from gibbsmin.reactor.balance import element_counts, elements_of
 from gibbsmin.reactor.model import StageModel, reduced_energies
 from gibbsmin.reactor.routes import Route, routes_to
@@ -25,18 +24,10 @@ from gibbsmin.thermo.species import Phase, Species
 AUDIT_LENGTH = 10
 """The audit's entries that people are shown and warned of: the most weighty ones."""
 
-ROUTES_AGREE = 1e-6
-"""Difference of ln a below which routes agree."""
-
-ROUTES_SHOWN = 3
-"""Of the plainest routes, where they disagree."""
-
 _RANK_TOLERANCE = 1e-9
 _GAS_THRESHOLD = 1e-4
 _PHASE_THRESHOLD = 1.0
 _SATURATION_ROUNDING = 1e-9
-
-_ACTIVITY_RECORDS = {"O": "O2(g)", "C": "C(graphite)", "N": "N2(g)", "S": "S2(g)"}
 
 
 @dataclass(frozen=True)
@@ -71,20 +62,6 @@ class AuditEntry:
     def warns(self) -> bool:
         """Whether the record is likely to have been forgotten."""
         return not self.left_out and self.weight > 1.0 + _SATURATION_ROUNDING
-
-
-@dataclass(frozen=True)
-class ElementActivity:
-    """Activity of an element in the outlet against a reference record.
-
-    For a gas the value is its partial pressure in bar, p(O2); for a solid its activity, a(C).
-    """
-
-    element: str
-    label: str
-    record: str
-    value: float
-    unit: str
 
 
 @dataclass(frozen=True)
@@ -194,55 +171,6 @@ def _is_judged(model: StageModel, record: Species) -> bool:
         organic = {"C", "H"} <= {symbol for symbol, _ in record.elements}
         return record.phase is not Phase.GAS and not organic
     return True
-
-
-def element_activities(
-    model: StageModel, state: SolvedState, library: Library
-) -> tuple[ElementActivity, ...]:
-    """p(O2), a(C), p(N2) and p(S2), of those elements that the feed brings.
-
-    They are given where the outlet determines them.  Where routes disagree, a(C) is given by each
-    of the plainest: methane cracking, the Boudouard reaction, carbon monoxide with hydrogen.
-    """
-    symbols = [symbol for symbol in _ACTIVITY_RECORDS if symbol in model.balance.elements]
-    if not symbols:
-        return ()
-    records = [library[_ACTIVITY_RECORDS[symbol]] for symbol in symbols]
-    with np.errstate(over="ignore"):
-        values = np.exp(log_activities(model, state, records, STANDARD_PRESSURE))
-    gas_total = state.amounts[model.gas].sum()
-    for i, record in enumerate(records):
-        # A reference gas that is held apart from the others, or in a gas of which a fraction is
-        # held, still shows its own pressure.
-        apart = np.isnan(values[i]) or bool(model.fraction_rows)
-        if apart and record in model.records and record.phase is Phase.GAS and gas_total > 0.0:
-            share = state.amounts[model.records.index(record)] / gas_total
-            values[i] = share * state.pressure / STANDARD_PRESSURE
-    found: list[ElementActivity] = []
-    for symbol, record, value in zip(symbols, records, values.tolist(), strict=True):
-        gas = record.phase is Phase.GAS
-        label = f"p({record.formula})" if gas else f"a({record.formula})"
-        unit = "bar" if gas else ""
-        ways = () if gas else _disagreeing_routes(model, state, record)
-        found += [
-            ElementActivity(symbol, f"{label} by {way.text}", record.name, way.activity, unit)
-            for way in ways
-        ] or [ElementActivity(symbol, label, record.name, value, unit)]
-    return tuple(found)
-
-
-def _disagreeing_routes(model: StageModel, state: SolvedState, record: Species) -> Sequence[Route]:
-    """The plainest routes from the gas to a solid, where they do not agree; else none.
-
-    The solid itself, held as char is, says nothing of what the gas would do.
-    """
-    if not (model.restrained and model.reacts):
-        return ()
-    gas = replace(state, amounts=np.where(model.gas, state.amounts, 0.0))
-    (ways,) = routes_at(model, gas, [record], state.pressure)
-    if not ways or ways[0].log_activity - ways[-1].log_activity < ROUTES_AGREE:
-        return ()
-    return sorted(ways, key=lambda way: way.awkwardness)[:ROUTES_SHOWN]
 
 
 def _energies(records: Sequence[Species], temperature: float, pressure: float) -> FloatArray:

@@ -20,9 +20,9 @@ from gibbsmin.minimise import Solution, minimise, minimise_heated
 from gibbsmin.reactor.answers import brackets, only_answers, stretches
 from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
+from gibbsmin.reactor.roots import root_near, roots_between
 
 _LOWEST_PRESSURE, _HIGHEST_PRESSURE = 1e-4, 1e10
-_RELATIVE_RESOLUTION = 4 * np.finfo(float).eps
 _SIDE = 1e-10
 """Share of T by which the two sides of a jump are solved apart from it, where forms tie."""
 
@@ -32,9 +32,6 @@ _ROUNDING = 1e-14
 
 _JUMP = 1e-9
 """A residual of this share that is left at full resolution of T is a plateau."""
-
-Residual = Callable[..., FloatArray]
-"""Of x (k,) and the indices (k,) of the states that are still open."""
 
 
 @dataclass(frozen=True)
@@ -159,7 +156,7 @@ def at_volume(
 
     start = np.log(np.maximum(feed.sum(axis=1), 1e-300) * GAS_CONSTANT * temperature / volume)
     limits = np.log(_LOWEST_PRESSURE), np.log(_HIGHEST_PRESSURE)
-    log_P = _root(residual, start, 1.0, limits)
+    log_P = root_near(residual, start, 1.0, limits)
     return solved(np.exp(log_P), np.arange(log_P.size))
 
 
@@ -208,10 +205,10 @@ def _between(
     answers = np.full((2, wanted.size), np.nan)
     if model.shift.keys:
         grids = stretches(model.shift, LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE)
-        roots = _closed_in(residual, *brackets(residual, grids, wanted.size))
+        roots = roots_between(residual, *brackets(residual, grids, wanted.size))
         T, answers = only_answers(roots)
     else:
-        T = _root(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
+        T = root_near(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
     missing = residual(T, everything)
     # Heat capacity times T: what resolution in T leaves of the content is far below it.
     scale = np.abs(residual(1.001 * T, everything) - missing) * 1e3
@@ -227,34 +224,3 @@ def _between(
     mixed = found.amounts + share[:, np.newaxis] * (upper.amounts - found.amounts)
     amounts = np.where(jumps[:, np.newaxis], mixed, found.amounts)
     return replace(found, amounts=amounts, upper_share=share)
-
-
-def _root(
-    residual: Residual, start: FloatArray, step: float, limits: tuple[float, float]
-) -> FloatArray:
-    """Root of a rising function near ``start``, or the place of its jump; NaN for none."""
-    # scipy.optimize takes a while to load, which a stage of given temperature need not wait for.
-    from scipy.optimize.elementwise import bracket_root
-
-    index = np.arange(start.size)
-    lowest, highest = limits
-    inside = np.clip(start, lowest + step, highest - step)
-    bracket = bracket_root(
-        residual, inside - step / 2, inside + step / 2, xmin=lowest, xmax=highest, args=(index,)
-    )
-    left, right = (np.where(bracket.success, end, np.nan) for end in bracket.bracket)
-    return _closed_in(residual, left, right)
-
-
-def _closed_in(residual: Residual, left: FloatArray, right: FloatArray) -> FloatArray:
-    """Roots (..., B) between ends at which the residual of B states has different signs."""
-    from scipy.optimize.elementwise import find_root
-
-    index = np.broadcast_to(np.arange(left.shape[-1]), left.shape)
-    root = find_root(
-        residual,
-        (left.ravel(), right.ravel()),
-        args=(index.ravel(),),
-        tolerances={"xatol": 0.0, "xrtol": _RELATIVE_RESOLUTION, "fatol": 0.0, "frtol": 0.0},
-    )
-    return np.where(np.isnan(left), np.nan, root.x.reshape(left.shape))

@@ -6,7 +6,8 @@ import numpy as np
 import pytest
 
 from gibbsmin.minimise import minimise
-from gibbsmin.reactor.audit import SolvedState, audit, element_activities, element_potentials
+from gibbsmin.reactor.activities import element_activities
+from gibbsmin.reactor.audit import SolvedState, audit, element_potentials
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.model import StageModel, stage_model
