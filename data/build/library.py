@@ -15,10 +15,12 @@ from gibbsmin.data.build.curated import (
 from gibbsmin.data.build.elements import elements_table
 from gibbsmin.data.build.main_records import main_records
 from gibbsmin.data.build.record import BuildRecord
+from gibbsmin.data.build.reference_tables import curated_list
 from gibbsmin.data.build.sources import MAIN_SOURCES
 from gibbsmin.data.build.write import (
     critical_table,
     heat_capacity_table,
+    interaction_table,
     sources_table,
     species_table,
 )
@@ -60,6 +62,7 @@ def tables_of(records: list[BuildRecord], critical: list[CriticalRow]) -> dict[s
         "species.csv": species_table(records),
         "heat_capacity.csv": heat_capacity_table(records),
         "critical.csv": critical_table(critical),
+        "interaction.csv": interaction_table(curated_list("interaction")),
         "elements.csv": elements_table(records),
         "sources.csv": sources_table(sources),
     }

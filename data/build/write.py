@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import csv
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from io import StringIO
 from pathlib import Path
 
@@ -42,6 +42,7 @@ HEAT_CAPACITY_HEADER = [
     "transition",
 ]
 CRITICAL_HEADER = ["name", "Tc_K", "Pc_bar", "acentric_factor", "source"]
+INTERACTION_HEADER = ["equation", "first", "second", "k", "source"]
 SOURCES_HEADER = ["key", "citation", "status"]
 
 
@@ -100,6 +101,12 @@ def critical_table(rows: Iterable[CriticalRow]) -> str:
             for row in rows
         ),
     )
+
+
+def interaction_table(rows: Iterable[Mapping[str, str]]) -> str:
+    """Text of ``interaction.csv``, sorted by equation and pair."""
+    ordered = sorted(tuple(row[field] for field in INTERACTION_HEADER) for row in rows)
+    return table_text(INTERACTION_HEADER, ordered)
 
 
 def sources_table(sources: Iterable[SourceEntry]) -> str:

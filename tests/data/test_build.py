@@ -11,10 +11,12 @@ from gibbsmin.data.build.library import with_volumes
 from gibbsmin.data.build.main_records import identities, main_records
 from gibbsmin.data.build.names import common_name, form_word, trade_formula
 from gibbsmin.data.build.record import BuildRecord
+from gibbsmin.data.build.reference_tables import curated_list
 from gibbsmin.data.build.sources import MAIN_SOURCES
 from gibbsmin.data.build.tables import read_table
 from gibbsmin.data.build.write import (
     heat_capacity_table,
+    interaction_table,
     sources_table,
     species_table,
 )
@@ -70,6 +72,10 @@ def test_rebuilt_heat_capacities_are_the_bytes_of_the_table(sample: list[BuildRe
 def test_rebuilt_sources_are_the_bytes_of_the_table() -> None:
     sources = sorted((*MAIN_SOURCES, *curated_sources()), key=lambda source: source.key)
     assert sources_table(sources).split("\n") == lines("sources.csv")
+
+
+def test_rebuilt_interactions_are_the_bytes_of_the_table() -> None:
+    assert interaction_table(curated_list("interaction")).split("\n") == lines("interaction.csv")
 
 
 @pytest.mark.parametrize("file", ["species.csv", "heat_capacity.csv", "elements.csv"])

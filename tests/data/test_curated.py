@@ -315,6 +315,17 @@ def test_critical_constants_are_published_and_plausible() -> None:
         assert 0.55 < Tb / by_name[name].Tc < 0.85
 
 
+def test_interaction_parameters_are_of_gases_with_critical_constants() -> None:
+    rows = tables.curated_list("interaction")
+    known = {row.name for row in critical_rows()}
+    pairs = [(row["equation"], row["first"], row["second"]) for row in rows]
+    assert len(set(pairs)) == len(rows) >= 30
+    for row in rows:
+        assert {row["first"], row["second"]} <= known, row
+        assert row["first"] < row["second"], row
+        assert -0.3 < float(row["k"]) < 0.3, row
+
+
 def test_every_source_that_is_cited_is_listed_once() -> None:
     listed = [source.key for source in (*MAIN_SOURCES, *curated_sources())]
     cited = {
@@ -324,6 +335,7 @@ def test_every_source_that_is_cited_is_listed_once() -> None:
     }
     cited |= {source for _, source in molar_volumes().values()}
     cited |= {key for row in critical_rows() for key in row.source.split(";")}
+    cited |= {row["source"] for row in tables.curated_list("interaction")}
     assert len(listed) == len(set(listed))
     assert cited <= set(listed)
     assert {source.key for source in curated_sources()} <= cited

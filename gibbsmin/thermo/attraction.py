@@ -1,0 +1,136 @@
+"""The attraction of pure gases as a function of temperature, α(T/Tc), in cubic equations of state.
+
+Every published form used here is a sum of terms in the reduced temperature t = T/Tc,
+
+    α = Σ w t^p exp(L (1 − t^q)),
+
+with one set of terms below Tc and one above.  On θ = d/d ln T each term answers with a factor,
+θ → p − L q t^q, so that α, θα and θ²α come together.  The slope is continuous at Tc; the curvature,
+and so the departure of the heat capacity, has a small step there.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Final, TypeAlias
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
+
+Term: TypeAlias = tuple[float, float, float, float]
+"""w, p, L and q."""
+
+Terms: TypeAlias = tuple[Term, ...]
+
+_TWU_REDLICH_KWONG: Final = (
+    ((0.141599, 0.919422, 2.496441), (0.500315, 0.799457, 3.291790)),
+    ((0.441411, 6.500018, -0.20), (0.032580, 1.289098, -8.0)),
+)
+_TWU_PENG_ROBINSON: Final = (
+    ((0.125283, 0.911807, 1.948150), (0.511614, 0.784054, 2.812520)),
+    ((0.401219, 4.963070, -0.20), (0.024955, 1.248089, -8.0)),
+)
+"""L, M and N of acentric factor 0 and 1, below and above Tc."""
+
+_WIDTH: Final = 3
+
+
+@dataclass(frozen=True, eq=False)
+class Attraction:
+    """α of S gases.
+
+    Attributes
+    ----------
+    critical_temperatures : (S,) Tc, K
+    below, above : (4, S, 3) w, p, L and q of each gas's terms below and above Tc
+    """
+
+    critical_temperatures: FloatArray
+    below: FloatArray
+    above: FloatArray
+
+    def at(self, temperature: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
+        """α, θα and θ²α with θ = d/d ln T, each T.shape + (S,)."""
+        t = temperature[..., np.newaxis] / self.critical_temperatures
+        hot = (t > 1.0)[..., np.newaxis]
+        w, p, L, q = (np.where(hot, a, b) for a, b in zip(self.above, self.below, strict=True))
+        log_t = np.log(t)[..., np.newaxis]
+        power = L * np.exp(q * log_t)
+        value = w * np.exp(p * log_t + L - power)
+        slope = p - q * power
+        parts = (value, value * slope, value * (slope * slope - q * q * power))
+        alpha, first, second = (part.sum(axis=-1) for part in parts)
+        return alpha, first, second
+
+
+def attraction(critical_temperatures: FloatArray, terms: list[tuple[Terms, Terms]]) -> Attraction:
+    """Lay out the gases' terms below and above Tc."""
+    nothing: Term = (0.0, 0.0, 0.0, 0.0)
+    below, above = (
+        np.array(
+            [(*gas[side], *[nothing] * (_WIDTH - len(gas[side]))) for gas in terms], dtype=float
+        ).reshape(len(terms), _WIDTH, 4)
+        for side in (0, 1)
+    )
+    return Attraction(critical_temperatures, np.moveaxis(below, 2, 0), np.moveaxis(above, 2, 0))
+
+
+def twu_redlich_kwong(acentric_factor: float) -> tuple[Terms, Terms]:
+    """The generalised α of Twu, Coon and Cunningham for the Redlich-Kwong equation.
+
+    Source: Fluid Phase Equilibria 105 (1995) 61.  α = α0 + ω (α1 − α0), each
+    t^(N(M−1)) exp(L (1 − t^(NM))).  It follows Soave's α (Chem. Eng. Sci. 27 (1972) 1197) below
+    Tc, and above Tc falls to zero as t rises, where Soave's vanishes near 8 Tc and rises again.
+    """
+    below, above = _TWU_REDLICH_KWONG
+    return _generalised(below, acentric_factor), _generalised(above, acentric_factor)
+
+
+def twu_peng_robinson(acentric_factor: float) -> tuple[Terms, Terms]:
+    """The same for the Peng-Robinson equation: Fluid Phase Equilibria 105 (1995) 49."""
+    below, above = _TWU_PENG_ROBINSON
+    return _generalised(below, acentric_factor), _generalised(above, acentric_factor)
+
+
+def peng_robinson(acentric_factor: float) -> tuple[Terms, Terms]:
+    """α of Peng and Robinson below Tc, continued above it as Boston and Mathias did.
+
+    Below Tc α = (1 + m (1 − √t))², m = 0.37464 + 1.54226 ω − 0.26992 ω², from ω = 0.49 on
+    m = 0.379642 + 1.48503 ω − 0.164423 ω² + 0.016666 ω³ (D.-Y. Peng, D. B. Robinson, Ind. Eng.
+    Chem. Fundam. 15 (1976) 59; Robinson and Peng, GPA Research Report 28, 1978).  Above Tc
+    α = exp(2 c (1 − t^d)), d = 1 + m/2, c = 1 − 1/d (J. F. Boston, P. M. Mathias, Second Int.
+    Conf. on Phase Equilibria and Fluid Properties in the Chemical Process Industries, 1980),
+    which falls to zero and meets the other's slope at Tc.
+    """
+    w = acentric_factor
+    m = 0.37464 + 1.54226 * w - 0.26992 * w**2
+    if w > 0.49:
+        m = 0.379642 + 1.48503 * w - 0.164423 * w**2 + 0.016666 * w**3
+    d = 1.0 + m / 2.0
+    below = (
+        ((1.0 + m) ** 2, 0.0, 0.0, 0.0),
+        (-2.0 * m * (1.0 + m), 0.5, 0.0, 0.0),
+        (m * m, 1.0, 0.0, 0.0),
+    )
+    return below, ((1.0, 0.0, 2.0 * (1.0 - 1.0 / d), d),)
+
+
+def graboski_daubert() -> tuple[Terms, Terms]:
+    """α of hydrogen in the Soave-Redlich-Kwong equation, 1.202 exp(−0.30288 t).
+
+    Source: M. S. Graboski, T. E. Daubert, Ind. Eng. Chem. Process Des. Dev. 18 (1979) 300.
+    """
+    L = 0.30288
+    terms: Terms = ((1.202 * float(np.exp(-L)), 0.0, L, 1.0),)
+    return terms, terms
+
+
+def _generalised(
+    parameters: tuple[tuple[float, float, float], tuple[float, float, float]], omega: float
+) -> Terms:
+    weights = (1.0 - omega, omega)
+    return tuple(
+        (weight, N * (M - 1.0), L, N * M)
+        for weight, (L, M, N) in zip(weights, parameters, strict=True)
+    )

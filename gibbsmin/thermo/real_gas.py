@@ -1,0 +1,364 @@
+"""Mixtures of real gases: compressibility, fugacity coefficients and departures from ideal gases.
+
+Gases without published critical constants (radicals, ions, most high-temperature molecules) are
+taken as points without attraction: a = b = 0 in the mixing rules.  Alone they are an ideal gas; in
+a mixture they share its free volume, φ = 1/(Z − B), so that the mixture stays consistent.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from enum import Enum
+from functools import cached_property
+from typing import Final, Self
+
+import numpy as np
+import numpy.typing as npt
+
+from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.constants import GAS_CONSTANT
+from gibbsmin.errors import InputError
+from gibbsmin.thermo.attraction import (
+    Attraction,
+    Terms,
+    attraction,
+    graboski_daubert,
+    peng_robinson,
+    twu_peng_robinson,
+    twu_redlich_kwong,
+)
+from gibbsmin.thermo.critical import CriticalPoint, critical_points, interactions
+from gibbsmin.thermo.cubic import Potential, Shape, compressibility, potential
+from gibbsmin.thermo.species import Species
+
+_ROOT_2: Final = float(np.sqrt(2.0))
+
+_CLASSICAL_HELIUM: Final = CriticalPoint(10.47, 6.76e5, 0.0, "Gunn-1966")
+"""The classical limit, beyond quantum effects, of helium's critical constants.
+
+R. D. Gunn, P. L. Chueh, J. M. Prausnitz, AIChE J. 12 (1966) 937.  Their correction at finite
+temperature, 1 + 21.8/(M T) on Tc, is below 3 % from 200 K up and is left out."""
+
+_POINT: Final = 1e-12
+"""m³/mol: the co-volume of gases without constants, so that nothing divides by zero."""
+
+
+class Equation(Enum):
+    """Published cubic equations of state; the value is the name in full.
+
+    SOAVE_REDLICH_KWONG: G. Soave, Chem. Eng. Sci. 27 (1972) 1197, with the generalised α of Twu,
+    Coon and Cunningham (1995), and for hydrogen that of Graboski and Daubert (1979).
+    PENG_ROBINSON: D.-Y. Peng, D. B. Robinson (1976, 1978), continued above Tc by Boston and
+    Mathias (1980), and for hydrogen the α of Twu, Coon and Cunningham (1995).
+    Helium: classical critical constants of Gunn, Chueh and Prausnitz (1966).
+    """
+
+    SOAVE_REDLICH_KWONG = "Soave-Redlich-Kwong"
+    PENG_ROBINSON = "Peng-Robinson"
+
+    @property
+    def shape(self) -> Shape:
+        """σ, ε, Ωa and Ωb."""
+        if self is Equation.SOAVE_REDLICH_KWONG:
+            root = 2.0 ** (1.0 / 3.0) - 1.0
+            return Shape(1.0, 0.0, 1.0 / (9.0 * root), root / 3.0)
+        return Shape(1.0 + _ROOT_2, 1.0 - _ROOT_2, 0.457235528921382, 0.0777960739038885)
+
+    def attraction_of(self, name: str, acentric_factor: float) -> tuple[Terms, Terms]:
+        """Terms of α of a gas, below and above its critical temperature."""
+        if self is Equation.SOAVE_REDLICH_KWONG:
+            return graboski_daubert() if name == "H2(g)" else twu_redlich_kwong(acentric_factor)
+        return (twu_peng_robinson if name == "H2(g)" else peng_robinson)(acentric_factor)
+
+
+def equation_named(name: str) -> Equation:
+    """The equation of that name.
+
+    Raises
+    ------
+    InputError
+        for any other name.
+    """
+    for equation in Equation:
+        if equation.value == name:
+            return equation
+    accepted = " or ".join(f'"{equation.value}"' for equation in Equation)
+    raise InputError(f'found the equation of state "{name}"', f"accepted is {accepted}")
+
+
+@dataclass(frozen=True, eq=False)
+class RealGas:
+    """S gases in one equation of state.
+
+    Attributes
+    ----------
+    equation : which
+    names : (S,) of the records
+    known : (S,) whether critical constants are published
+    critical_temperatures : (S,) K; NaN for gases without constants
+    critical_pressures : (S,) Pa; likewise
+    acentric_factors : (S,) likewise
+    sizes : (S,) √a at Tc, in √(Pa m⁶)/mol
+    volumes : (S,) b, m³/mol
+    attraction : α(T)
+    coupling : (S, S) 1 − k
+    """
+
+    equation: Equation
+    names: tuple[str, ...]
+    known: BoolArray
+    critical_temperatures: FloatArray
+    critical_pressures: FloatArray
+    acentric_factors: FloatArray
+    sizes: FloatArray
+    volumes: FloatArray
+    attraction: Attraction
+    coupling: FloatArray
+
+    @classmethod
+    def of(cls, equation: Equation, records: Sequence[Species]) -> Self:
+        """Lay out the records, all of them gases."""
+        names = tuple(record.name for record in records)
+        points = [_point(name) for name in names]
+        known = np.array([point is not None for point in points], dtype=bool)
+        Tc, Pc, omega = (
+            np.array([np.nan if p is None else getattr(p, field) for p in points], dtype=float)
+            for field in ("temperature", "pressure", "acentric_factor")
+        )
+        shape = equation.shape
+        with np.errstate(invalid="ignore"):
+            sizes = GAS_CONSTANT * Tc * np.sqrt(shape.omega_a / Pc)
+            volumes = shape.omega_b * GAS_CONSTANT * Tc / Pc
+        alphas: list[tuple[Terms, Terms]] = [
+            ((), ()) if point is None else equation.attraction_of(name, point.acentric_factor)
+            for name, point in zip(names, points, strict=True)
+        ]
+        return cls(
+            equation=equation,
+            names=names,
+            known=known,
+            critical_temperatures=Tc,
+            critical_pressures=Pc,
+            acentric_factors=omega,
+            sizes=np.where(known, sizes, 0.0),
+            volumes=np.where(known, volumes, _POINT),
+            attraction=attraction(np.where(known, Tc, 1.0), alphas),
+            coupling=_coupling(equation, names),
+        )
+
+    def roots(self, temperature: npt.ArrayLike) -> FloatArray:
+        """√a of each gas at T (K), T.shape + (S,), in √(Pa m⁶)/mol."""
+        alpha, _, _ = self.attraction.at(np.asarray(temperature, dtype=float))
+        return np.asarray(self.sizes * np.sqrt(alpha))
+
+    def state(
+        self,
+        temperature: npt.ArrayLike,
+        pressure: npt.ArrayLike,
+        amounts: npt.ArrayLike,
+        roots: FloatArray | None = None,
+        liquid: bool = False,
+    ) -> GasState:
+        """The mixture at T (K), P (Pa) of shape (...), amounts (..., S) in any unit.
+
+        Its volume is that of a gas, or of a liquid where the equation has both.  Without any gas
+        all is NaN.  ``roots`` of the temperatures may be given where they are at hand.
+        """
+        T, P = np.asarray(temperature, dtype=float), np.asarray(pressure, dtype=float)
+        T, P = np.broadcast_arrays(T, P)
+        n = np.asarray(amounts, dtype=float)
+        total = n.sum(axis=-1, keepdims=True)
+        y = n / np.where(total > 0.0, total, np.nan)
+        root = self.roots(T) if roots is None else roots
+        weighted = y * root
+        pulled = weighted @ self.coupling
+        D = _dot(weighted, pulled)
+        B = y @ self.volumes
+        RT = GAS_CONSTANT * T
+        Z = compressibility(self.equation.shape, D * P / RT**2, B * P / RT, liquid)
+        V = Z * RT / P
+        return GasState(
+            gas=self,
+            T=T,
+            P=P,
+            y=y,
+            Z=Z,
+            V=V,
+            root=root,
+            weighted=weighted,
+            pulled=pulled,
+            D=D,
+            B=B,
+            potential=potential(self.equation.shape, V, B),
+        )
+
+
+@dataclass(frozen=True, eq=False)
+class GasState:
+    """A real-gas mixture at T, P and composition; (...) is the shape of the states.
+
+    ``Z`` is the compressibility and ``V`` the molar volume in m³/mol.  The other attributes are
+    what its properties are made of: ``root`` is √aᵢ, ``weighted`` y √a, ``pulled``
+    Σⱼ yⱼ √aⱼ (1 − kᵢⱼ), ``D`` and ``B`` those of :mod:`gibbsmin.thermo.cubic`.
+    """
+
+    gas: RealGas
+    T: FloatArray
+    P: FloatArray
+    y: FloatArray
+    Z: FloatArray
+    V: FloatArray
+    root: FloatArray
+    weighted: FloatArray
+    pulled: FloatArray
+    D: FloatArray
+    B: FloatArray
+    potential: Potential
+
+    @cached_property
+    def log_fugacity(self) -> FloatArray:
+        """ln φᵢ, (..., S)."""
+        F, b, T = self.potential, self.gas.volumes, self.T
+        own = -2.0 * F.f / T
+        shared = -F.g - np.log(self.Z)
+        sized = -F.g_B - self.D * F.f_B / T
+        pull = self.root * self.pulled
+        return _column(own) * pull + _column(shared) + _column(sized) * b
+
+    @property
+    def enthalpy_departure(self) -> FloatArray:
+        """H − H of the ideal gas, J/mol, (...)."""
+        RT = GAS_CONSTANT * self.T
+        return RT * ((self._D1 - self.D) * self.potential.f / self.T + self.Z - 1.0)
+
+    @property
+    def entropy_departure(self) -> FloatArray:
+        """S − S of the ideal gas at the same T and P, J/mol/K, (...)."""
+        F = self.potential
+        return GAS_CONSTANT * (F.g + np.log(self.Z) + self._D1 * F.f / self.T)
+
+    @property
+    def heat_capacity_departure(self) -> FloatArray:
+        """Cp − Cp of the ideal gas, J/mol/K, (...)."""
+        R = GAS_CONSTANT
+        at_volume = R * (self._D2 - self._D1) * self.potential.f / self.T
+        return at_volume - self.T * self._P_T**2 / self._P_V - R
+
+    @property
+    def expansion(self) -> FloatArray:
+        """∂ ln V/∂ ln T at constant P and composition, (...)."""
+        return -self.T * self._P_T / (self._P_V * self.V)
+
+    @property
+    def compression(self) -> FloatArray:
+        """∂ ln V/∂ ln P at constant T and composition, (...)."""
+        return self.P / (self._P_V * self.V)
+
+    @property
+    def partial_compressibility(self) -> FloatArray:
+        """P V̄ᵢ/(R T), (..., S); ∂ ln φᵢ/∂ ln P at constant T is this less 1."""
+        per_mole = -self._P_n / _column(self._P_V)
+        return per_mole * _column(self.P / (GAS_CONSTANT * self.T))
+
+    @property
+    def log_fugacity_by_temperature(self) -> FloatArray:
+        """∂ ln φᵢ/∂ ln T at constant P and composition, (..., S): −H̄ᵢ departure/(R T)."""
+        F, b, T = self.potential, self.gas.volumes, self.T
+        pull = self.root * self.pulled
+        g, _ = self._slopes
+        heated = g * pull + self.root * ((self.weighted * g) @ self.gas.coupling)
+        sized = b * _column((self._D1 - self.D) / T * F.f_B)
+        F_nT = -2.0 * _column(F.f / T) * (heated - pull) - sized
+        volume = self.partial_compressibility * _column(T * self._P_T / self.P)
+        return F_nT + 1.0 - volume
+
+    @property
+    def log_fugacity_by_amounts(self) -> FloatArray:
+        """N ∂ ln φᵢ/∂nⱼ at constant T and P, (..., S, S), symmetric."""
+        F, b, T = self.potential, self.gas.volumes, self.T
+        pull = 2.0 * self.root * self.pulled
+        pairs = 2.0 * self.root[..., np.newaxis] * self.gas.coupling * self.root[..., np.newaxis, :]
+        each = _column(-F.g_B) * b
+        sums = each[..., np.newaxis] + each[..., np.newaxis, :]
+        mixed = pull[..., np.newaxis] * b + b[:, np.newaxis] * pull[..., np.newaxis, :]
+        sizes = np.multiply.outer(b, b)
+        F_nn = (
+            sums
+            - _square(F.f / T) * pairs
+            - _square(F.f_B / T) * mixed
+            - _square(F.g_BB + self.D * F.f_BB / T) * sizes
+        )
+        slopes = self._P_n[..., np.newaxis] * self._P_n[..., np.newaxis, :]
+        return F_nn + 1.0 + slopes * _square(1.0 / (GAS_CONSTANT * T * self._P_V))
+
+    @cached_property
+    def _slopes(self) -> tuple[FloatArray, FloatArray]:
+        """θ√a/√a and θ²√a/√a of each gas, with θ = d/d ln T."""
+        alpha, first, second = self.gas.attraction.at(self.T)
+        safe = np.where(self.gas.known, 2.0 * alpha, 1.0)
+        g = first / safe
+        return g, second / safe - g * g
+
+    @cached_property
+    def _D1(self) -> FloatArray:
+        """θD."""
+        g, _ = self._slopes
+        return 2.0 * _dot(self.weighted * g, self.pulled)
+
+    @cached_property
+    def _D2(self) -> FloatArray:
+        """θ²D."""
+        g, bend = self._slopes
+        turned = self.weighted * g
+        both = _dot(self.weighted * bend, self.pulled) + _dot(turned, turned @ self.gas.coupling)
+        return 2.0 * both
+
+    @cached_property
+    def _P_V(self) -> FloatArray:
+        F, RT = self.potential, GAS_CONSTANT * self.T
+        return RT * (F.g_VV + self.D * F.f_VV / self.T) - RT / self.V**2
+
+    @cached_property
+    def _P_T(self) -> FloatArray:
+        """∂P/∂T at constant V."""
+        R = GAS_CONSTANT
+        return R * self.potential.g_V + R / self.V + R * self.potential.f_V * self._D1 / self.T
+
+    @cached_property
+    def _P_n(self) -> FloatArray:
+        """∂P/∂nᵢ at constant T and V, one mole in all."""
+        F, b, RT = self.potential, self.gas.volumes, GAS_CONSTANT * self.T
+        pull = 2.0 * self.root * self.pulled
+        F_nV = (
+            _column(-F.g_V)
+            - _column(F.g_BV) * b
+            - (_column(F.f_V) * pull + _column(self.D * F.f_BV) * b) / _column(self.T)
+        )
+        return _column(RT) * (_column(1.0 / self.V) - F_nV)
+
+
+def _point(name: str) -> CriticalPoint | None:
+    return _CLASSICAL_HELIUM if name == "He(g)" else critical_points().get(name)
+
+
+def _coupling(equation: Equation, names: Sequence[str]) -> FloatArray:
+    coupling = np.ones((len(names), len(names)))
+    places = {name: place for place, name in enumerate(names)}
+    for pair, k in interactions(equation.value).items():
+        first, second = (places.get(name) for name in sorted(pair))
+        if first is not None and second is not None:
+            coupling[first, second] = coupling[second, first] = 1.0 - k
+    return coupling
+
+
+def _dot(a: FloatArray, b: FloatArray) -> FloatArray:
+    return np.asarray(np.einsum("...s,...s->...", a, b))
+
+
+def _column(x: FloatArray) -> FloatArray:
+    return np.asarray(x)[..., np.newaxis]
+
+
+def _square(x: FloatArray) -> FloatArray:
+    return np.asarray(x)[..., np.newaxis, np.newaxis]
