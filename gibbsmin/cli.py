@@ -129,6 +129,10 @@ def scan(
     uncertainty: Annotated[
         bool, typer.Option("--uncertainty", help="Give error bars beside the values.")
     ] = False,
+    cluster: Annotated[
+        str,
+        typer.Option(metavar="ADDRESS", help='A dask cluster to solve on, or "local" workers.'),
+    ] = "",
     plot: Plot = "",
     show: Annotated[
         str, typer.Option(metavar="COLUMN", help='What to plot: "wet", "dry" or a column.')
@@ -138,10 +142,12 @@ def scan(
 
     A scan that was broken off goes on where it stopped when it is started again.
     """
+    from contextlib import nullcontext
     from importlib.metadata import version
 
     from gibbsmin.jobs.case import load_case
     from gibbsmin.jobs.conditions import Conditions, conditions_from, conditions_of
+    from gibbsmin.present.cluster import connected
     from gibbsmin.present.conditions_file import read_conditions
     from gibbsmin.present.scan_files import require_scan_ending
     from gibbsmin.present.scan_parts import fingerprint_of
@@ -158,7 +164,11 @@ def scan(
         parts.append(Path(table).read_bytes())
     else:
         conditions = conditions_of(loaded)
-    tally = run_scan(loaded, conditions, path, fingerprint_of(*parts), uncertainty=uncertainty)
+    fingerprint = fingerprint_of(*parts)
+    with connected(cluster) if cluster else nullcontext() as client:
+        tally = run_scan(
+            loaded, conditions, path, fingerprint, uncertainty=uncertainty, client=client
+        )
     _print(tally.summary(path))
     if plot:
         from gibbsmin.present.plots.scan_plots import plot_case

@@ -6,10 +6,14 @@ import json
 from pathlib import Path
 from typing import Any
 
+import numpy as np
+import pandas as pd
 import pytest
 
 import gibbsmin
+from gibbsmin.present.conditions_file import read_conditions
 from gibbsmin.present.outlet_document import outlet_document
+from gibbsmin.present.search_document import onset_document
 
 EXAMPLES = Path(__file__).parent.parent / "examples"
 CASES = sorted(EXAMPLES.glob("*/case.toml"))
@@ -46,3 +50,38 @@ def test_example(path: Path) -> None:
 @pytest.mark.parametrize("path", CASES, ids=lambda path: path.parent.name)
 def test_example_says_that_its_data_are_invented(path: Path) -> None:
     assert "invented" in (path.parent / "README.md").read_text(encoding="utf-8")
+
+
+TABLES = sorted(EXAMPLES.glob("*/expected_scan.csv"))
+ONSETS = sorted(EXAMPLES.glob("*/expected_onset.json"))
+
+
+@pytest.mark.parametrize("path", TABLES, ids=lambda path: path.parent.name)
+def test_example_of_a_scan(path: Path) -> None:
+    case = gibbsmin.load_case(path.parent / "case.toml")
+    conditions = path.parent / "conditions.csv"
+    table = (
+        gibbsmin.scan(case, read_conditions(conditions), uncertainty=True).table
+        if conditions.exists()
+        else gibbsmin.scan(case).table
+    )
+    expected = pd.read_csv(path)
+    assert list(table) == list(expected)
+    for name in expected:
+        if name == "gap":  # it depends on the path to the answer
+            assert (table[name] < 1e-10).all()
+        elif expected[name].dtype.kind == "f":
+            np.testing.assert_allclose(table[name], expected[name], rtol=1e-7, atol=1e-12)
+        else:
+            assert table[name].astype(str).tolist() == expected[name].astype(str).tolist()
+
+
+@pytest.mark.parametrize("path", ONSETS, ids=lambda path: path.parent.name)
+def test_example_of_an_onset(path: Path) -> None:
+    found = gibbsmin.onset(gibbsmin.load_case(path.parent / "case.toml"))
+    expected = json.loads(path.read_text(encoding="utf-8"))
+    crossings = json.loads(json.dumps(onset_document(found)))["crossings"]
+    assert found.certified.all()
+    assert len(crossings) == len(expected["crossings"])
+    for a, b in zip(crossings, expected["crossings"], strict=True):
+        assert_same({**a, "gap": 0.0}, {**b, "gap": 0.0}, "crossing")

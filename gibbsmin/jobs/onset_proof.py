@@ -93,8 +93,8 @@ def _proved(
         open_pairs = [pair for pair in pairs if not bound.is_free(*pair)]
         if not open_pairs:
             text = (
-                f"Proved: no other crossing between the ends of the axis ({examined} intervals), "
-                "but for 0.1 % of it about each."
+                "Proved: no other crossing between the ends of the axis, but for 0.1 % of it "
+                "about each."
             )
             return Completeness(True, examined, text)
         pairs = [half for a, b in open_pairs for half in ((a, (a + b) / 2.0), ((a + b) / 2.0, b))]

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import Conditions
 from gibbsmin.jobs.scan import BLOCK, scan_block
 from gibbsmin.minimise import settle_form
+from gibbsmin.present.cluster import blocks_on
 from gibbsmin.present.scan_files import require_scan_ending, write_scan
 from gibbsmin.present.scan_parts import forget_blocks, kept_blocks
 from gibbsmin.present.scan_progress import Tally
@@ -25,8 +27,11 @@ def run_scan(
     *,
     block: int = BLOCK,
     uncertainty: bool = False,
+    client: Any = None,
 ) -> Tally:
     """Solve what is not kept from an earlier run, and write the file whole.
+
+    A client of a cluster (:func:`gibbsmin.present.cluster.connected`) has the blocks solved there.
 
     Raises
     ------
@@ -39,11 +44,14 @@ def run_scan(
         # What is kept and what is solved later must agree to the last bit.
         settle_form()
 
-    def solve(index: int) -> pd.DataFrame:
+    def solved_here(index: int) -> pd.DataFrame:
         first = index * block
         last = min(first + block, conditions.states)
         return scan_block(case, conditions, first, last, uncertainty=uncertainty)
 
+    solve: Callable[[int], pd.DataFrame] = solved_here
+    if client is not None:
+        solve = blocks_on(client, case, conditions, block, uncertainty=uncertainty)
     blocks = kept_blocks(path, fingerprint, count, solve)
     tally = Tally(blocks, conditions.states)
     write_scan(iter(tally), path)

@@ -1,0 +1,104 @@
+"""The blocks of a scan on a dask.distributed cluster: same rows, same order, on many machines.
+
+A worker is given the case and the numbers of the states, and sends the block's table back.  A
+block whose worker is lost is given to another.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from importlib import import_module
+from typing import TYPE_CHECKING, Any
+
+from gibbsmin.errors import InputError
+from gibbsmin.jobs.case import Case
+from gibbsmin.jobs.conditions import Conditions
+from gibbsmin.jobs.scan import scan_block
+from gibbsmin.minimise import settle_form
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+LOCAL = "local"
+"""The address that means workers on this machine, one for each processor."""
+
+_SECONDS = 20
+_LOSSES = 10
+"""Workers that a block may lose before it is given up."""
+
+
+@contextmanager
+def connected(address: str) -> Iterator[Any]:
+    """A client of the cluster at an address such as ``tcp://10.0.0.5:8786``, or ``local``.
+
+    Raises
+    ------
+    InputError
+        where dask.distributed is missing, or nothing answers at the address.
+    """
+    try:
+        config: Any = import_module("dask.config")
+        distributed: Any = import_module("distributed")
+    except ImportError:
+        raise InputError(
+            "found no dask.distributed",
+            "accepted is an installation with gibbsmin[cluster]",
+            key="cluster",
+        ) from None
+    with config.set({"distributed.scheduler.allowed-failures": _LOSSES}):
+        if address == LOCAL:
+            with (
+                distributed.LocalCluster(threads_per_worker=1, dashboard_address=None) as cluster,
+                distributed.Client(cluster) as client,
+            ):
+                yield client
+            return
+        try:
+            client = distributed.Client(address, timeout=_SECONDS)
+        except (OSError, ValueError, TimeoutError) as error:
+            reason = str(error).splitlines()[0][:100] if str(error) else type(error).__name__
+            raise InputError(
+                f'found no cluster at "{address}" ({reason})',
+                'accepted is the address of a running scheduler, or "local"',
+                key="cluster",
+            ) from None
+        with client:
+            yield client
+
+
+def blocks_on(
+    client: Any, case: Case, conditions: Conditions, block: int, *, uncertainty: bool
+) -> Callable[[int], pd.DataFrame]:
+    """A function that gives the block of a number, solved by the cluster.
+
+    All blocks are handed out at once; each call waits for its own.
+    """
+    count = -(-conditions.states // block)
+    shared = client.scatter((case, conditions), broadcast=True, hash=False)
+    coming = client.map(
+        _solve,
+        range(count),
+        shared=shared,
+        block=block,
+        uncertainty=uncertainty,
+        pure=False,
+        retries=2,
+    )
+
+    def take(index: int) -> pd.DataFrame:
+        table: pd.DataFrame = coming[index].result()
+        coming[index].release()
+        return table
+
+    return take
+
+
+def _solve(
+    index: int, *, shared: tuple[Case, Conditions], block: int, uncertainty: bool
+) -> pd.DataFrame:
+    case, conditions = shared
+    settle_form()
+    first = index * block
+    last = min(first + block, conditions.states)
+    return scan_block(case, conditions, first, last, uncertainty=uncertainty)
