@@ -34,12 +34,14 @@ _TOLERANCE = 1e-9
 class Route:
     """One way to form a record, and its activity (or mole fraction, for a gas) by that way.
 
-    ``awkwardness`` counts its species, and ten for each that takes a fraction of a mole.
+    ``awkwardness`` counts its species, and ten for each that takes a fraction of a mole; ``shares``
+    are the moles of each record that it takes for one mole formed, negative where it gives some.
     """
 
     text: str
     log_activity: float
     awkwardness: int
+    shares: tuple[tuple[str, float], ...]
 
     @property
     def activity(self) -> float:
@@ -124,7 +126,8 @@ def _route(
     right = [_term(-share, formula) for share, formula in terms if share < 0]
     text = f"{' + '.join(left)} = {' + '.join([target.formula, *right])}"
     fractions = sum(share.denominator > 1 for share, _ in terms)
-    return Route(text, float(value), len(terms) + 10 * fractions)
+    taken = tuple((r.name, share) for r, share in zip(species, shares, strict=True))
+    return Route(text, float(value), len(terms) + 10 * fractions, taken)
 
 
 def _term(share: Fraction, formula: str) -> str:

@@ -42,7 +42,7 @@ class Measurement:
 
     Attributes
     ----------
-    name : the analyte as written, lumped ones with plus signs; or the stream whose flow it is
+    name : the analyte as written, lumped ones with plus signs; or such as "flow of steam"
     stream : outlet and inlet carry fractions, the feed flows over their nominal value
     basis : ``dry`` or ``wet`` for a fraction, ``flow`` for a flow
     value, uncertainty : as measured, with its standard uncertainty

@@ -1,0 +1,168 @@
+"""What a verdict rests on, and its facts as sentences."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+
+from gibbsmin.sample.findings import (
+    Closure,
+    EquilibriumFit,
+    Estimate,
+    Leakage,
+    Measurement,
+    ReactionFinding,
+    Suspects,
+)
+from gibbsmin.sample.thresholds import Thresholds
+
+_MINUS = "\N{MINUS SIGN}"
+_CELSIUS_ZERO = 273.15
+APPROACH = f"T {_MINUS} T_eq"
+"""How sentences name the distance of a temperature from that of equilibrium."""
+
+
+@dataclass(frozen=True)
+class Evidence:
+    """All that was found about one sample, with the thresholds that it is judged by."""
+
+    temperature: Estimate
+    closure: Closure
+    measurements: Sequence[Measurement]
+    suspects: Suspects
+    reactions: Sequence[ReactionFinding]
+    leakages: Sequence[Leakage]
+    fit: EquilibriumFit
+    thresholds: Thresholds
+
+    @property
+    def closes(self) -> bool:
+        """Whether the balance closes, or cannot be tested."""
+        return not self.closure.probability < self.thresholds.credible
+
+    @property
+    def fits(self) -> bool:
+        """Whether equilibrium at the measured temperature fits."""
+        return self.fit.at_measured.probability >= self.thresholds.equilibrium
+
+    @property
+    def fits_elsewhere(self) -> bool:
+        """Whether several reactions agree on one temperature."""
+        return self.fit.anywhere.probability >= self.thresholds.equilibrium
+
+
+def facts(evidence: Evidence) -> Iterator[str]:
+    """What the figures say, without interpretation."""
+    yield from _closure(evidence)
+    yield from _fit(evidence)
+    for reaction in evidence.reactions:
+        yield _reaction(reaction)
+    for leakage in evidence.leakages:
+        yield (
+            f"{leakage.record} is {ppm(leakage.found.value)} ± {ppm(leakage.found.uncertainty)} "
+            f"of the dry gas; equilibrium would leave {ppm(leakage.equilibrium)}."
+        )
+
+
+def _closure(evidence: Evidence) -> Iterator[str]:
+    closure = evidence.closure
+    if closure.degrees_of_freedom == 0:
+        yield "Nothing in the sample is redundant, so that its closure cannot be tested."
+        return
+    closes = "closes" if evidence.closes else "does not close"
+    freedom = closure.degrees_of_freedom
+    yield (
+        f"The element balance {closes} within the stated errors: chi-square "
+        f"{closure.chi_square:.1f} with {freedom} {_plural('degree', freedom)} of freedom "
+        f"(p = {closure.probability:.2g})."
+    )
+    unjudged = [m.name for m in evidence.measurements if not m.can_be_judged]
+    if unjudged:
+        yield (
+            f"{listed(unjudged, 'and')} cannot be judged: nothing else in the sample tells about "
+            f"{'it' if len(unjudged) == 1 else 'them'}."
+        )
+
+
+def _fit(evidence: Evidence) -> Iterator[str]:
+    fit = evidence.fit
+    if not fit.certified:
+        yield "The equilibrium at the measured conditions could not be certified."
+        return
+    at, anywhere, best = fit.at_measured, fit.anywhere, fit.temperature
+    if at.degrees_of_freedom:
+        yield (
+            f"Equilibrium at the measured temperature "
+            f"{'fits' if evidence.fits else 'does not fit'} the sample: chi-square difference "
+            f"{at.chi_square:.1f} with {at.degrees_of_freedom} "
+            f"{_plural('degree', at.degrees_of_freedom)} of freedom (p = {at.probability:.2g})."
+        )
+    if best.value == best.value:
+        ending = ""
+        if anywhere.degrees_of_freedom:
+            well = "it fits" if evidence.fits_elsewhere else "it does not fit there either"
+            ending = f"; {well} (p = {anywhere.probability:.2g})"
+        yield (
+            f"Equilibrium fits best at {celsius(best.value)}, with a standard uncertainty of "
+            f"{best.uncertainty:.1f} K{ending}."
+        )
+
+
+def _reaction(reaction: ReactionFinding) -> str:
+    name = f"{reaction.text}, by the K of the case" if reaction.own_constant else reaction.text
+    if reaction.faint:
+        return f"{name}: {_limit(reaction)}; {_below(reaction.faint)}."
+    if reaction.undefined:
+        ratio = reaction.log_ratio.value
+        figure = f" ln(Q/K) is {signed(ratio, 2)}." if abs(ratio) < float("inf") else ""
+        return f"{name}: T_eq is undefined, {reaction.undefined}.{figure}"
+    return f"{name}: {approach(reaction)}, {reaction.side}."
+
+
+def _limit(reaction: ReactionFinding) -> str:
+    limit = reaction.approach_limit
+    if limit.upper < float("inf"):
+        return f"{APPROACH} is at most {signed(limit.upper)} K (95 %)"
+    if limit.lower > -float("inf"):
+        return f"{APPROACH} is at least {signed(limit.lower)} K (95 %)"
+    return f"no limit of {APPROACH} follows"
+
+
+def _below(faint: Sequence[str]) -> str:
+    verb = "is" if len(faint) == 1 else "are"
+    return f"{listed(faint, 'and')} {verb} below 5 standard uncertainties"
+
+
+def approach(reaction: ReactionFinding) -> str:
+    """T − T_eq with its uncertainty; ln(Q/K) where that is undefined."""
+    distance, ratio = reaction.approach, reaction.log_ratio
+    if distance.uncertainty == distance.uncertainty:
+        return f"{APPROACH} = {signed(distance.value)} ± {distance.uncertainty:.1f} K"
+    if ratio.uncertainty == ratio.uncertainty:
+        return f"ln(Q/K) = {signed(ratio.value, 2)} ± {ratio.uncertainty:.2g}"
+    return _limit(reaction)
+
+
+def celsius(kelvin: float) -> str:
+    """A temperature in degrees Celsius."""
+    return f"{kelvin - _CELSIUS_ZERO:.1f} °C".replace("-", _MINUS)
+
+
+def signed(value: float, decimals: int = 1) -> str:
+    """A difference with its sign."""
+    return f"{value:+.{decimals}f}".replace("-", _MINUS)
+
+
+def ppm(fraction: float) -> str:
+    """A small fraction."""
+    return f"{1e6 * fraction:.2g} ppm" if fraction == fraction else "not known"
+
+
+def listed(names: Sequence[str], conjunction: str) -> str:
+    """Names in a sentence."""
+    names = list(names)
+    return f"{', '.join(names[:-1])} {conjunction} {names[-1]}" if len(names) > 1 else names[0]
+
+
+def _plural(word: str, count: int) -> str:
+    return word if count == 1 else f"{word}s"
