@@ -39,7 +39,7 @@ def applied(
         for a name that is no number of the case, and a ratio that cannot be met.
     """
     feeds = tuple(
-        replace(stream, temperature=np.full(states[0].shape, stream.temperature))
+        replace(stream, temperature=np.broadcast_to(stream.temperature, states[0].shape))
         for stream in case.feeds
     )
     case = replace(case, feeds=feeds)

@@ -59,7 +59,7 @@ def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
     yield "heat", unit, 1e3, "heat", energy.heat
     generated = energy.entropy_generation
     yield "entropy generation", f"{unit}/K", 1e3, "entropy generation", generated
-    total = found.amounts[:, model.gas].sum(axis=1)
+    total = found.amounts @ model.gas.astype(float)
     total = np.where(total > 0.0, total, np.nan)
     for column, record in enumerate(model.records):
         amounts = found.amounts[:, column]
@@ -102,9 +102,8 @@ def _conversions(step: Step) -> dict[str, FloatArray]:
     inlet, model, amounts = step.states.inlet, step.states.model, step.states.equilibria.amounts
     conversions = {}
     for record in inlet.records:
-        fed = inlet.amounts[:, [r.formula == record.formula for r in inlet.records]].sum(axis=1)
-        left = amounts[:, [r.formula == record.formula for r in model.records]].sum(axis=1)
-        left = np.where(np.isnan(amounts).any(axis=1), np.nan, left)
+        fed = inlet.amounts @ [float(r.formula == record.formula) for r in inlet.records]
+        left = amounts @ [float(r.formula == record.formula) for r in model.records]
         with np.errstate(divide="ignore", invalid="ignore"):
             conversions[record.name] = np.where(fed > 0.0, 1.0 - left / fed, np.nan)
     return conversions

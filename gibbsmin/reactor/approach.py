@@ -74,6 +74,8 @@ class Shift:
             when a reaction's enthalpy changes sign between T and T_s.
         """
         T = np.asarray(temperature, dtype=float)
+        if not self.keys and not self.offsets.any():
+            return np.broadcast_to(self.log_activities, (*T.shape, self.log_activities.size))
         shift = self.offsets / (GAS_CONSTANT * T)[..., np.newaxis] + self.log_activities
         if not self.keys:
             return np.asarray(shift)

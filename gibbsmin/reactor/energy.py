@@ -29,7 +29,7 @@ def mixture_entropy(
     """S = Σ nᵢ Sᵢ(T) − R Σgas nᵢ ln(yᵢ P/P°) in J/K, absolute, mixing of the gases included."""
     pure = _dot(amounts, properties.entropy(temperature))
     gases = amounts[..., gas]
-    total = gases.sum(axis=-1)
+    total = np.einsum("...s->...", gases)
     logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
     mixing = _dot(gases, _log(gases)) - total * (_log(total) - logarithm)
     return np.asarray(pure - GAS_CONSTANT * mixing)

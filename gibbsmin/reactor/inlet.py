@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+import functools
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -10,7 +11,7 @@ import numpy as np
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
-from gibbsmin.reactor.streams import Stream
+from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Phase, Species
@@ -45,41 +46,84 @@ class Inlet:
 def inlet_of(streams: Sequence[Stream], library: Library) -> Inlet:
     """Sum up streams, each at its own temperature and pressure."""
     names = list(dict.fromkeys(name for stream in streams for name in stream.amounts))
-    records = tuple(library[name] for name in names)
-    table = PropertyTable.of(records)
-    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
-    T, P, amounts = _laid_out(streams, names)
+    shape = np.broadcast_shapes((1,), *(np.shape(v) for s in streams for v in _values(s)))
+    parts = [_content(stream, library) for stream in streams]
+    amounts = np.zeros((*shape, len(names)))
+    for part in parts:
+        amounts[:, [names.index(name) for name in part.names]] += part.amounts
 
-    enthalpy = mixture_enthalpy(table, T, amounts)
-    entropy = mixture_entropy(table, gas, T, P, amounts)
-    moles_of_gas = amounts[..., gas].sum(axis=-1)
-    totals = amounts.sum(axis=-1)
-    weights = np.where(totals.sum(axis=-1, keepdims=True) > 0.0, totals, 1.0)
-    carrying = moles_of_gas > 0.0
-    carries_gas = carrying.any(axis=-1)
-    counted = carrying | ~carries_gas[:, np.newaxis]
+    def total(values: Iterable[FloatArray]) -> FloatArray:
+        return sum(values, np.zeros(shape))
+
+    moles = total(part.moles for part in parts)
+    carries_gas = _most([part.gas for part in parts]) > 0.0
+    with np.errstate(invalid="ignore", divide="ignore"):
+        mean = total(part.moles * part.temperature for part in parts) / moles
+    plain = total(part.temperature for part in parts) / len(parts)
+    of_gas = _least([np.where(part.gas > 0.0, part.pressure, np.inf) for part in parts])
     return Inlet(
-        records=records,
-        amounts=amounts.sum(axis=1),
-        enthalpy=enthalpy.sum(axis=-1),
-        entropy=entropy.sum(axis=-1),
-        internal_energy=(enthalpy - moles_of_gas * GAS_CONSTANT * T).sum(axis=-1),
-        temperature=np.average(T, axis=-1, weights=weights),
-        lowest_pressure=np.where(counted, P, np.inf).min(axis=-1),
-        carries_gas=carries_gas,
-        volume=(moles_of_gas * GAS_CONSTANT * T / P).sum(axis=-1),
+        records=tuple(library[name] for name in names),
+        amounts=amounts,
+        enthalpy=total(part.enthalpy for part in parts),
+        entropy=total(part.entropy for part in parts),
+        internal_energy=total(
+            part.enthalpy - part.gas * GAS_CONSTANT * part.temperature for part in parts
+        ),
+        temperature=np.where(moles > 0.0, mean, plain),
+        lowest_pressure=total(
+            [np.where(carries_gas, of_gas, _least([part.pressure for part in parts]))]
+        ),
+        carries_gas=np.array(np.broadcast_to(carries_gas, shape)),
+        volume=total(part.gas * GAS_CONSTANT * part.temperature / part.pressure for part in parts),
     )
 
 
-def _laid_out(
-    streams: Sequence[Stream], names: Sequence[str]
-) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Temperatures and pressures (B, K) and amounts (B, K, F) of K streams."""
-    values = [
-        (stream.temperature, stream.pressure, *(stream.amounts.get(n, 0.0) for n in names))
-        for stream in streams
-    ]
-    shape = np.broadcast_shapes((1,), *(np.shape(value) for row in values for value in row))
-    table = np.array([[np.broadcast_to(value, shape) for value in row] for row in values])
-    T, P, *_ = np.moveaxis(table, 1, 0)
-    return T.T, P.T, np.transpose(table[:, 2:], (2, 0, 1)).astype(float)
+@dataclass(frozen=True)
+class _Content:
+    """One stream: each value of all states () or of each state (B,); amounts with (F,) more."""
+
+    names: tuple[str, ...]
+    temperature: FloatArray
+    pressure: FloatArray
+    amounts: FloatArray
+    enthalpy: FloatArray
+    entropy: FloatArray
+    moles: FloatArray
+    gas: FloatArray
+    """Moles of it."""
+
+
+def _content(stream: Stream, library: Library) -> _Content:
+    records = [library[name] for name in stream.amounts]
+    table = PropertyTable.of(records)
+    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
+    T, P, *each = (_shared(value) for value in _values(stream))
+    amounts = np.stack(np.broadcast_arrays(*each), axis=-1) if each else np.zeros(0)
+    return _Content(
+        names=tuple(stream.amounts),
+        temperature=T,
+        pressure=P,
+        amounts=amounts,
+        enthalpy=mixture_enthalpy(table, T, amounts),
+        entropy=mixture_entropy(table, gas, T, P, amounts),
+        moles=amounts.sum(axis=-1),
+        gas=amounts[..., gas].sum(axis=-1),
+    )
+
+
+def _values(stream: Stream) -> list[Values]:
+    return [stream.temperature, stream.pressure, *stream.amounts.values()]
+
+
+def _shared(value: Values) -> FloatArray:
+    """One value in place of an array that repeats it (strides of 0), to be looked up once."""
+    array = np.asarray(value, dtype=float)
+    return array[0] if array.ndim and not any(array.strides) else array
+
+
+def _least(values: Sequence[FloatArray]) -> FloatArray:
+    return np.asarray(functools.reduce(np.minimum, values))
+
+
+def _most(values: Sequence[FloatArray]) -> FloatArray:
+    return np.asarray(functools.reduce(np.maximum, values))

@@ -68,7 +68,8 @@ class StageModel:
     def energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
         """g̃ = G/RT + δ, for gases + ln(P/P°); T.shape + (S,)."""
         energies = reduced_energies(self.properties, self.gas, temperature, pressure)
-        return energies + self.shift.at(temperature)
+        energies += self.shift.at(temperature)
+        return energies
 
     def programme(
         self, temperature: FloatArray, pressure: FloatArray, feed: FloatArray
@@ -153,6 +154,7 @@ def reduced_energies(
 ) -> FloatArray:
     """g̃ = G(T)/RT of every record of a table, for gases + ln(P/P°); shape T.shape + (S,)."""
     T = np.asarray(temperature, dtype=float)
-    energies = properties.gibbs_energy(T) / (GAS_CONSTANT * T)[..., np.newaxis]
+    energies = properties.gibbs_energy(T)
+    energies /= (GAS_CONSTANT * T)[..., np.newaxis]
     logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
-    return energies + np.where(gas, logarithm[..., np.newaxis], 0.0)
+    return np.asarray(energies + np.where(gas, logarithm[..., np.newaxis], 0.0))
