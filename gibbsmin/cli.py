@@ -240,13 +240,27 @@ def species(
         str, typer.Option(help='Records made of these elements alone, such as "C,H,O".')
     ] = "",
     temperature: Temperatures = None,
+    file: Annotated[
+        str, typer.Option("--file", metavar="FILE", help="A library file of your own to check.")
+    ] = "",
     as_json: AsJson = False,
 ) -> None:
-    """Find species records, and show one in full: values, uncertainties, range, sources."""
-    from gibbsmin.present.species_view import species_document, species_list_view, species_view
+    """Find species records, and show one in full: values, uncertainties, range, sources.
+
+    With --file show and check the records of a library file.
+    """
+    from gibbsmin.present.species_view import (
+        species_document,
+        species_list_view,
+        species_view,
+        usual_temperatures,
+    )
     from gibbsmin.thermo.library import load_library
     from gibbsmin.thermo.temperatures import read_temperatures
 
+    if file:
+        _show_own(Path(file), read_temperatures(temperature or ()), as_json)
+        return
     if not (text or name or cas or elements):
         raise InputError(
             "found nothing to look for",
@@ -260,7 +274,9 @@ def species(
     if not records:
         raise _nothing_found(library, text, name, cas)
     if as_json:
-        chosen = [temperatures if temperature else _usual(r.T_low, r.T_high) for r in records]
+        chosen = [
+            temperatures if temperature else usual_temperatures(r.T_low, r.T_high) for r in records
+        ]
         documents = [
             species_document(record, T, library) for record, T in zip(records, chosen, strict=True)
         ]
@@ -269,7 +285,7 @@ def species(
         _print(species_list_view(records))
     else:
         (record,) = records
-        chosen_T = temperatures if temperature else _usual(record.T_low, record.T_high)
+        chosen_T = temperatures if temperature else usual_temperatures(record.T_low, record.T_high)
         _print(species_view(record, chosen_T, library))
 
 
@@ -286,17 +302,33 @@ def reaction(
     H2O(g) means that form at all temperatures, H2O whichever form is stable.
     """
     from gibbsmin.present.reaction_view import reaction_document, reaction_view
+    from gibbsmin.present.species_view import usual_temperatures
     from gibbsmin.thermo.library import load_library
     from gibbsmin.thermo.reaction import Reaction
     from gibbsmin.thermo.reaction_path import study_reaction
     from gibbsmin.thermo.temperatures import read_temperatures
 
-    temperatures = read_temperatures(temperature) if temperature else _usual(298.15, 1500.0)
+    temperatures = (
+        read_temperatures(temperature) if temperature else usual_temperatures(298.15, 1500.0)
+    )
     study = study_reaction(Reaction.read(text, load_library()), temperatures)
     if as_json:
         _print_json(reaction_document(study))
     else:
         _print(reaction_view(study))
+
+
+def _show_own(path: Path, temperatures: FloatArray, as_json: bool) -> None:
+    from gibbsmin.jobs.own_library import read_library_file
+    from gibbsmin.present.own_records_view import own_records_document, own_records_view
+    from gibbsmin.thermo.library import load_library
+
+    library = load_library()
+    own = read_library_file(path, library)
+    if as_json:
+        _print_json(own_records_document(own, temperatures, library))
+    else:
+        _print(own_records_view(own, temperatures, library))
 
 
 def _nothing_found(library: Library, text: str, name: str, cas: str) -> UnknownSpeciesError:
@@ -310,15 +342,6 @@ def _nothing_found(library: Library, text: str, name: str, cas: str) -> UnknownS
     return UnknownSpeciesError(
         "found no record that meets all the conditions", "accepted are fewer conditions"
     )
-
-
-def _usual(T_low: float, T_high: float) -> FloatArray:
-    """Temperatures in K that are shown where none is asked for, within a range."""
-    import numpy as np
-
-    T = np.array([298.15, 400, 500, 600, 800, 1000, 1200, 1500, 2000, 2500, 3000])
-    kept = T[(T_low <= T) & (T_high >= T)]
-    return kept if kept.size else np.array([T_low])
 
 
 def _require_plot_ending(plot: str) -> None:

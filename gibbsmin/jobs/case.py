@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
 from os import PathLike
+from pathlib import Path
 from typing import Any
 
 from gibbsmin.errors import InputError
@@ -70,8 +71,10 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
 
     try:
         table = validate(tables)
-        feeds, own_records = read_streams(table.feed, load_library())
-        own_sources = FUEL_SOURCES if own_records else ()
+        records, sources = _of_files(table.species.library, file)
+        feeds, fuels = read_streams(table.feed, library_with(records, sources))
+        own_records = (*records, *fuels)
+        own_sources = (*sources, *FUEL_SOURCES) if fuels else sources
         library = library_with(own_records, own_sources)
         stages = read_stages(table, feeds, library)
         axes = read_axes(table.axis, feeds, table.site_pressure, library)
@@ -99,7 +102,24 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
     )
 
 
+def _of_files(
+    names: Sequence[str], case_file: str
+) -> tuple[tuple[Species, ...], tuple[Source, ...]]:
+    """Records and sources of the case's library files, which stand beside it."""
+    if not names:
+        return (), ()
+    from gibbsmin.jobs.own_library import read_library_file
+
+    records: dict[str, Species] = {}
+    sources = []
+    for name in names:
+        found = read_library_file(Path(case_file).parent / name, load_library())
+        records |= {record.name: record for record in found.records}
+        sources.append(found.source)
+    return tuple(records.values()), tuple(sources)
+
+
 @lru_cache(maxsize=8)
 def library_with(records: tuple[Species, ...], sources: tuple[Source, ...]) -> Library:
-    """The installed library, extended by records of a case and their sources."""
-    return load_library().extended(records, sources) if records else load_library()
+    """The installed library with a case's records, which go before those of the same name."""
+    return load_library().overruled(records, sources) if records else load_library()

@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Annotated, Any, Self
 
-from pydantic import BeforeValidator, ValidationError, model_validator
+from pydantic import BeforeValidator, model_validator
 
 from gibbsmin.constants import STANDARD_ATMOSPHERE
 from gibbsmin.errors import InputError
@@ -17,8 +17,9 @@ from gibbsmin.jobs.axis_schema import AxisTable
 from gibbsmin.jobs.feed_schema import FeedTable
 from gibbsmin.jobs.search_schema import OnsetTable, TargetTable
 from gibbsmin.jobs.stage_schema import NOTHING, OutletTable, SpeciesTable, StageTable
-from gibbsmin.jobs.table_schema import MISSING, Table, UnknownKeyError
+from gibbsmin.jobs.table_schema import MISSING, Table
 from gibbsmin.jobs.uncertainty_schema import CorrelationTable, read_uncertainty_table
+from gibbsmin.jobs.validation import validated
 from gibbsmin.units import read_pressure, shown
 
 
@@ -99,21 +100,4 @@ def validate(tables: Mapping[str, Any]) -> CaseTable:
         site_pressure = read_pressure(tables.get("site_pressure", "101.325 kPa"))
     except InputError as error:
         raise error.at(key="site_pressure") from None
-    try:
-        return CaseTable.model_validate(tables, context={"site_pressure": site_pressure})
-    except ValidationError as error:
-        faults = [_fault(details) for details in error.errors()]
-    raise next((fault for fault in faults if isinstance(fault, UnknownKeyError)), faults[0])
-
-
-def _fault(details: Any) -> InputError:
-    cause = details.get("ctx", {}).get("error")
-    place = [str(part) for part in details["loc"]]
-    if not isinstance(cause, InputError):
-        return InputError(
-            f"found {shown(details['input'])}",
-            f"accepted is what the reader asks for: {details['msg']}",
-            key=".".join(place),
-        )
-    cause.key = ".".join([*place, *filter(None, [cause.key])])
-    return cause
+    return validated(CaseTable, tables, {"site_pressure": site_pressure})

@@ -27,6 +27,16 @@ def placed(key: str) -> Iterator[None]:
         raise error.at(key=key) from None
 
 
+@contextmanager
+def within(key: str) -> Iterator[None]:
+    """Puts the key before those of the errors of what stands under it."""
+    try:
+        yield
+    except InputError as error:
+        error.key = f"{key}.{error.key}".rstrip(".")
+        raise
+
+
 def resolve(text: str, library: Library) -> Species:
     """The record of a name, where a bare element such as C could not be its lone atom by mistake.
 

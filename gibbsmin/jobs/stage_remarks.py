@@ -12,6 +12,7 @@ from gibbsmin.minimise import Status
 from gibbsmin.reactor.audit import SolvedState
 from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
+from gibbsmin.thermo.species import OWN
 
 
 def require_an_answer(step: Step, status: Status) -> None:
@@ -75,8 +76,16 @@ def service_notes(stage: StageCase) -> tuple[str, ...]:
 
 
 def method_notes(model: StageModel, state: SolvedState, found: Equilibria) -> tuple[str, ...]:
-    """What the user asked for and how it was done: plateaus, approaches and their keys."""
+    """What the user asked for and how it was done: own records, plateaus, approaches."""
     notes = []
+    taking_part = dict.fromkeys([*model.feed_records, *model.records])
+    own = [record for record in taking_part if record.source_enthalpy.startswith(OWN)]
+    if own:
+        files = dict.fromkeys(record.source_enthalpy.removeprefix(OWN) for record in own)
+        notes.append(
+            f"Records of the user's own ({', '.join(files)}): "
+            f"{', '.join(record.name for record in own)}."
+        )
     share = float(found.upper_share[0])
     if not np.isnan(share):
         notes.append(

@@ -135,12 +135,21 @@ NOTHING: Any = Field(default_factory=dict)
 _Shares = Annotated[Mapping[str, float], each(read_share, '{ CH4 = "80 %" }')]
 
 
+def _files(given: object) -> tuple[str, ...]:
+    if not isinstance(given, list | tuple) or not all(isinstance(name, str) for name in given):
+        raise InputError(
+            f"found {shown(given)}", 'accepted is a list of library files, such as ["mine.toml"]'
+        )
+    return tuple(given)
+
+
 class SpeciesTable(Table):
     """``[species]`` or ``[stage.species]``: the candidates."""
 
     consider: Annotated[Literal["all"] | tuple[str, ...], BeforeValidator(_names_or_all)] = "all"
     leave_out: Names = ()
     inert: Names = ()
+    library: Annotated[tuple[str, ...], BeforeValidator(_files)] = ()
 
 
 class ApproachTable(Table):

@@ -7,6 +7,7 @@ from collections.abc import Iterator, Sequence
 from dataclasses import asdict
 from typing import Any
 
+import numpy as np
 from rich.console import Group, RenderableType
 from rich.text import Text
 
@@ -209,6 +210,13 @@ def species_document(record: Species, temperatures: FloatArray, library: Library
         "remark": record.remark,
         "warnings": species_warnings(record, temperatures),
     }
+
+
+def usual_temperatures(T_low: float, T_high: float) -> FloatArray:
+    """Temperatures in K that are shown where none is asked for, within a range."""
+    T = np.array([298.15, 400, 500, 600, 800, 1000, 1200, 1500, 2000, 2500, 3000])
+    kept = T[(T_low <= T) & (T_high >= T)]
+    return kept if kept.size else np.array([T_low])
 
 
 def _known(value: float) -> float | None:

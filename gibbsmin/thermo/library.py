@@ -48,6 +48,13 @@ class Library:
         """This library with further records and their sources."""
         return type(self)((*self.records, *records), (*self.sources, *sources))
 
+    def overruled(self, records: Iterable[Species], sources: Iterable[Source] = ()) -> Self:
+        """This library with records that take the place of those of the same name."""
+        records = tuple(records)
+        names = {record.name for record in records}
+        kept = tuple(record for record in self.records if record.name not in names)
+        return type(self)((*kept, *records), (*self.sources, *sources))
+
     @cached_property
     def _index(self) -> Index:
         return Index(self.records)

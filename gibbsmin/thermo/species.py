@@ -18,6 +18,10 @@ class Phase(StrEnum):
     SOLID = "solid"
 
 
+OWN = "own: "
+"""What the source of a user's own record begins with; the file's name follows."""
+
+
 @dataclass(frozen=True, slots=True)
 class Piece:
     """One temperature range of a heat capacity.

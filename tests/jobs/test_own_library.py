@@ -1,0 +1,279 @@
+"""Library files of the user's own: every way to give a record, and every way to mistype one."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import numpy as np
+import pytest
+from typer.testing import CliRunner
+
+import gibbsmin
+from gibbsmin.cli import app
+from gibbsmin.errors import InputError
+from gibbsmin.jobs.own_library import OwnRecords, read_library_file
+from gibbsmin.thermo.library import load_library
+from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.record_checks import check_record
+
+NITROGEN = """
+[[record]]
+name = "N2(g)"
+source = "Huber and Herzberg 1979 (recalled)"
+enthalpy = "0 kJ/mol"
+[record.spectrum]
+symmetry_number = 2
+rotational_constants = [1.99824]
+vibrations = [2358.57]
+anharmonicity = 14.324
+coupling = 0.017318
+distortion = 5.76e-6
+"""
+
+SHOMATE = """
+[[record]]
+name = "XeO4(g)"
+source = "invented"
+enthalpy = "153.5 kcal/mol"
+entropy = "70.2 cal/(mol K)"
+enthalpy_uncertainty = "2 kJ/mol"
+molar_mass = 195.29
+[[record.heat_capacity]]
+first = "298 K"
+last = "800 K"
+unit = "cal/(mol K)"
+A = 14.0
+B = 20.0
+C = -8.0
+"""
+
+TABLE = """
+[[record]]
+name = "LiB3O5(cr)"
+source = "invented"
+enthalpy = "-2660 kJ/mol"
+entropy = "120 J/(mol K)"
+[record.table]
+unit = "J/(mol K)"
+temperature = ["298.15 K", "400 K", "500 K", "600 K", "700 K", "800 K"]
+heat_capacity = [131.0, 158.0, 177.0, 191.0, 202.0, 211.0]
+"""
+
+
+def read(tmp_path: Path, text: str, name: str = "mine.toml") -> OwnRecords:
+    path = tmp_path / name
+    path.write_text(text)
+    return read_library_file(path, load_library())
+
+
+def test_a_spectrum_gives_entropy_and_heat_capacity(tmp_path: Path) -> None:
+    own = read(tmp_path, NITROGEN)
+    (record,) = own.records
+    ours = load_library()["N2(g)"]
+    assert pytest.approx(ours.S298, abs=0.02) == record.S298
+    T = np.array([300.0, 1000.0, 3000.0])
+    table = PropertyTable.of([record, ours])
+    Cp = table.heat_capacity(T)
+    assert Cp[:, 0] == pytest.approx(Cp[:, 1], rel=1e-3)
+    assert own.findings["N2(g)"][0].startswith(
+        "Functions from the spectrum (levels of a vibrating rotor), 50 to 6000 K, |ΔG/RT| ≤ "
+    )
+    checks = list(check_record(record, load_library()))
+    assert checks[0] == "Against the library: ΔfH +0.000 kJ/mol, S +0.001 J/(mol K)."
+
+
+def test_coefficients_in_calories_become_joules(tmp_path: Path) -> None:
+    (record,) = read(tmp_path, SHOMATE).records
+    assert record.dfH298 == pytest.approx(153.5 * 4184.0)
+    assert pytest.approx(70.2 * 4.184) == record.S298
+    assert record.u_dfH298 == 2000.0
+    t = 0.5
+    expected = 4.184 * (14.0 + 20.0 * t - 8.0 * t**2)
+    assert PropertyTable.of([record]).heat_capacity(500.0)[0] == pytest.approx(expected)
+
+
+def test_a_table_is_fitted_and_says_how_well(tmp_path: Path) -> None:
+    own = read(tmp_path, TABLE)
+    (record,) = own.records
+    assert PropertyTable.of([record]).heat_capacity(600.0)[0] == pytest.approx(191.0, rel=2e-3)
+    assert record.fit_error < 1e-3
+    assert own.findings[record.name][0].startswith("Heat capacity fitted to 6 points, |ΔG/RT| ≤ ")
+
+
+def test_calorimetry_gives_the_entropy_by_the_third_law(tmp_path: Path) -> None:
+    T = [10, 15, 20, 25, 30, 40, 50, 60, 70, 80, 90, 100, 120, 140, 160, 180, 200, 250, 300]
+    Cp = [0.0555, 0.184, 0.462, 0.963, 1.693, 3.740, 6.154, 8.595, 10.86, 12.85, 14.56, 16.01,
+          18.25, 19.87, 21.05, 21.94, 22.63, 23.79, 24.48]  # fmt: skip
+    text = f"""
+[[record]]
+name = "Cu(mine)"
+source = "White and Collocott 1984 (recalled)"
+enthalpy = "0 kJ/mol"
+[record.calorimetry]
+unit = "J/(mol K)"
+temperature = [{", ".join(f'"{t} K"' for t in T)}]
+heat_capacity = {Cp}
+"""
+    own = read(tmp_path, text)
+    (record,) = own.records
+    assert pytest.approx(33.15, abs=0.2) == record.S298
+    findings = own.findings[record.name]
+    assert any(line.startswith("Third law: S(298.15 K) = 33.") for line in findings)
+    assert "  0 K to 10 K, T³ law: 0.018 ± 0.001" in findings
+
+
+def test_groups_and_measured_constants(tmp_path: Path) -> None:
+    groups = (
+        '[[record]]\nname = "CH3CH2OCHO(g)"\nsource = "estimate"\n'
+        "groups = { CH3 = 1, CH2 = 1, O = 1, CHO = 1 }\n"
+    )
+    own = read(tmp_path, groups)
+    assert own.records[0].u_dfH298 == 8400.0
+    assert own.findings[own.records[0].name][0].startswith("An estimate by groups")
+    library = load_library()
+    T = [700.0, 800.0, 900.0, 1000.0]
+    records = [library[f"{name}(g)"] for name in ("CO", "H2O", "CO2", "H2")]
+    G = PropertyTable.of(records).gibbs_energy(np.array(T)) @ [-1.0, -1.0, 1.0, 1.0]
+    log10_K = (-G / (8.31446261815324 * np.array(T) * np.log(10.0))).tolist()
+    constants = f"""
+[[record]]
+name = "CO2(g)"
+source = "invented measurement"
+entropy = "213.79 J/(mol K)"
+[[record.heat_capacity]]
+first = "298 K"
+last = "1200 K"
+unit = "J/(mol K)"
+A = 24.99735
+B = 55.18696
+C = -33.69137
+D = 7.948387
+E = -0.136638
+[record.constants]
+reaction = "CO + H2O = CO2 + H2"
+temperature = ["700 K", "800 K", "900 K", "1000 K"]
+log10_K = {log10_K}
+"""
+    own = read(tmp_path, constants)
+    (record,) = own.records
+    assert record.dfH298 == pytest.approx(library["CO2(g)"].dfH298, abs=60.0)
+    second, third = own.findings["CO2(g)"]
+    assert second.startswith("Second law: ΔfH = -393.")
+    assert "the laws " in third
+
+
+def test_a_case_takes_the_records_and_says_so(tmp_path: Path) -> None:
+    (tmp_path / "mine.toml").write_text(NITROGEN)
+    case = tmp_path / "case.toml"
+    case.write_text(
+        '[feed.gas]\ntemperature = "400 degC"\npressure = "100 bar"\nunit = "mol"\n'
+        "amounts = { N2 = 1, H2 = 3 }\n"
+        '[outlet]\ntemperature = "450 degC"\npressure = "100 bar"\n'
+        '[species]\nconsider = ["N2", "H2", "NH3"]\nlibrary = ["mine.toml"]\n'
+    )
+    loaded = gibbsmin.load_case(case)
+    assert loaded.library["N2(g)"].source_enthalpy == "own: mine.toml"
+    outlet = gibbsmin.predict(loaded).final
+    assert outlet.certified
+    assert "Records of the user's own (mine.toml): N2(g)." in outlet.notes
+    plain = case.read_text().replace('library = ["mine.toml"]\n', "")
+    case.write_text(plain)
+    ours = gibbsmin.predict(gibbsmin.load_case(case)).final
+    assert outlet.mole_fractions == pytest.approx(ours.mole_fractions, rel=2e-3)
+
+
+def test_simple_records_come_from_a_table(tmp_path: Path) -> None:
+    text = (
+        'name,source,"enthalpy, kJ/mol","entropy, J/(mol K)","first, K","last, K",A,B\n'
+        "XeO4(g),invented,642.2,293.7,298,800,58.6,83.7\n"
+    )
+    (record,) = read(tmp_path, text, "mine.csv").records
+    assert record.dfH298 == pytest.approx(642.2e3)
+    assert PropertyTable.of([record]).heat_capacity(500.0)[0] == pytest.approx(58.6 + 83.7 * 0.5)
+    with pytest.raises(InputError) as error:
+        read(tmp_path, text.replace("last, K", "end, K"), "mine.csv")
+    assert str(error.value).startswith(f"{tmp_path / 'mine.csv'}: found no column last, K; ")
+
+
+def test_the_command_shows_and_checks_them(tmp_path: Path) -> None:
+    path = tmp_path / "mine.toml"
+    path.write_text(NITROGEN)
+    result = CliRunner().invoke(app, ["species", "--file", str(path)])
+    assert result.exit_code == 0, result.output
+    assert "How it came about" in result.output
+    assert "Against the library: ΔfH +0.000 kJ/mol" in result.output
+    result = CliRunner().invoke(app, ["species", "--file", str(path), "--json"])
+    assert result.exit_code == 0
+    assert '"checks"' in result.output
+
+
+MISTAKES = {
+    "a unit is missing": (
+        SHOMATE.replace('unit = "cal/(mol K)"\n', ""),
+        "record.0.heat_capacity.0.unit: found no unit; accepted is one such as "
+        '"J/(mol K)" or "cal/(mol K)".',
+    ),
+    "a table does not rise": (
+        TABLE.replace('"500 K"', '"390 K"'),
+        "record.0.table.temperature: found temperatures that do not rise at 390 K; accepted are "
+        "temperatures in rising order.",
+    ),
+    "a heat capacity is negative": (
+        TABLE.replace("177.0", "-177.0"),
+        "record.0.table.heat_capacity: found a heat capacity of -177 J/(mol K); accepted are heat "
+        "capacities above zero.",
+    ),
+    "a polynomial turns negative": (
+        SHOMATE.replace("C = -8.0", "C = -80.0"),
+        "record.0.heat_capacity: found a heat capacity of -88.7 J/(mol K) near 800 K; accepted "
+        "is one above zero.",
+    ),
+    "a symmetry number is impossible": (
+        NITROGEN.replace("symmetry_number = 2", "symmetry_number = 7"),
+        "record.0.spectrum.symmetry_number: found the symmetry number 7; accepted is one of 1, 2, "
+        "3, 4, 6, 8, 10, 12, 24, 60.",
+    ),
+    "a molar mass disagrees": (
+        SHOMATE.replace("195.29", "200.0"),
+        "record.0.molar_mass: found 200 g/mol, while XeO4 has 195.29 g/mol; accepted is the molar "
+        "mass of the formula, or none.",
+    ),
+    "a key is unknown": (
+        SHOMATE.replace("entropy =", "entropi ="),
+        'record.0.entropi: found an unknown key (nearest: "entropy"); accepted is name, '
+        "common_name, cas, source, molar_mass, enthalpy, enthalpy_uncertainty, entropy, "
+        "entropy_uncertainty, heat_capacity, table, calorimetry, spectrum, groups or constants.",
+    ),
+    "an enthalpy is missing": (
+        NITROGEN.replace('enthalpy = "0 kJ/mol"\n', ""),
+        'record.0.enthalpy: found no enthalpy; accepted is enthalpy = "…", or what gives it: '
+        "constants or groups.",
+    ),
+    "two heat capacities": (
+        NITROGEN + "[record.groups]\nCH3 = 1\n",
+        "record.0.heat_capacity: found spectrum and groups; accepted is one of heat_capacity, "
+        "table, calorimetry, spectrum, groups.",
+    ),
+    "no state": (
+        SHOMATE.replace("XeO4(g)", "XeO4"),
+        'record.0.name: found "XeO4" without a state; accepted is a formula and its state, such '
+        'as "CO2(g)" or "NaCl(cr)".',
+    ),
+    "vibrations that do not fit": (
+        NITROGEN.replace("[2358.57]", "[2358.57, 100.0]").replace("anharmonicity = 14.324\n", ""),
+        "record.0.spectrum.vibrations: found 2 vibrations and internal rotations of N2; accepted "
+        "are 1, each counted by its degeneracy.",
+    ),
+    "a record twice": (
+        NITROGEN + NITROGEN,
+        'record.1.name: found "N2(g)" twice; accepted is each record once.',
+    ),
+}
+
+
+@pytest.mark.parametrize("mistake", MISTAKES)
+def test_a_mistake_is_one_sentence(tmp_path: Path, mistake: str) -> None:
+    text, sentence = MISTAKES[mistake]
+    with pytest.raises(InputError) as error:
+        read(tmp_path, text)
+    assert str(error.value) == f"{tmp_path / 'mine.toml'}: {sentence}"
