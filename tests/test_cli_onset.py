@@ -136,7 +136,7 @@ def test_a_prediction_with_error_bars_tells_what_makes_them(tmp_path: Path) -> N
         "%",
     ]
     assert "What a step of each number changes" in output
-    assert "Numbers of the case without a stated uncertainty are taken as exact." in output
+    assert "Numbers of the case without a stated uncertainty are taken as exact; " in output
     plain = run(path, "predict")
     assert "±" not in plain
 

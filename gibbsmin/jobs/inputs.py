@@ -20,6 +20,7 @@ from gibbsmin.reactor.stage_changes import SpecificationChanges
 from gibbsmin.reactor.stream_changes import RecordChanges, StreamChanges
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.species import Species
+from gibbsmin.thermo.uncertainty import record_uncertainties
 
 _STAGE_STEPS: Mapping[str, tuple[float, str]] = {
     "temperature": (10.0, "10 K"),
@@ -61,24 +62,17 @@ class InputChanges:
     stages: Mapping[str, SpecificationChanges]
 
 
-def record_inputs(records: Iterable[Species]) -> list[Input]:
-    """Enthalpies of formation and entropies, with the library's own uncertainties."""
+def record_inputs(records: Sequence[Species]) -> list[Input]:
+    """Enthalpies of formation and entropies, published or by class of record."""
+    known = record_uncertainties(records)
     inputs = []
-    for record in records:
-        for kind, step, text, value in (
-            ("enthalpy", 1e3, "1 kJ/mol", record.u_dfH298),
-            ("entropy", 1.0, "1 J/(mol K)", record.u_S298),
+    for k, record in enumerate(records):
+        for kind, step, text, values, origins in (
+            ("enthalpy", 1e3, "1 kJ/mol", known.enthalpy, known.enthalpy_origins),
+            ("entropy", 1.0, "1 J/(mol K)", known.entropy, known.entropy_origins),
         ):
-            known = not np.isnan(value)
-            inputs.append(
-                Input(
-                    f"{record.name}.{kind}",
-                    step,
-                    text,
-                    value / step if known else 0.0,
-                    "published" if known else "not known, taken as exact",
-                )
-            )
+            name = f"{record.name}.{kind}"
+            inputs.append(Input(name, step, text, float(values[k]) / step, origins[k]))
     return inputs
 
 

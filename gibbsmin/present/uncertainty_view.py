@@ -21,7 +21,8 @@ _COUNTS = 0.01
 
 ASSUMPTIONS = (
     "Uncertainties are standard ones (one sigma), to first order.",
-    "Numbers of the case without a stated uncertainty are taken as exact.",
+    "Numbers of the case without a stated uncertainty are taken as exact; enthalpies and entropies "
+    "without a published one have a stated default of their class of record.",
     "Different numbers are taken as independent unless the case states a correlation, though "
     "enthalpies from one network of reactions are not.",
 )
