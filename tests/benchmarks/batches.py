@@ -1,0 +1,113 @@
+"""What batches of stages cost beside the minimiser: ratios within one run.
+
+    cd tests; ../.venv/bin/python -m benchmarks.batches [states]
+
+prints, on all cores: what a scan adds to the minimiser's own time on a reformer grid, what an
+adiabatic batch costs beside an isothermal one, and what error bars cost.
+"""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Callable
+from copy import deepcopy
+from time import perf_counter
+from typing import Any
+
+import gibbsmin
+from gibbsmin.jobs.axes import applied
+from gibbsmin.jobs.case import Case
+from gibbsmin.jobs.conditions import conditions_of
+from gibbsmin.jobs.train import run_train
+from gibbsmin.minimise import minimise, minimise_heated, settle_form
+
+CASE: dict[str, Any] = {
+    "feed": {
+        "gas": {
+            "temperature": "520 degC",
+            "pressure": "29 bar",
+            "unit": "mol",
+            "amounts": {"CH4": 1.0, "C2H6": 0.03, "N2": 0.02},
+        },
+        "steam": {
+            "temperature": "520 degC",
+            "pressure": "29 bar",
+            "unit": "mol",
+            "amounts": {"H2O": 3.0},
+        },
+        "air": {
+            "temperature": "700 degC",
+            "pressure": "29 bar",
+            "unit": "mol",
+            "amounts": {"O2": 0.5, "N2": 1.88},
+        },
+    },
+    "species": {"consider": ["CH4", "C2H6", "H2O", "CO", "CO2", "H2", "N2", "O2", "C(graphite)"]},
+}
+STEAM = {"vary": "feed.steam.amounts.H2O", "first": "2 mol", "last": "4 mol", "count": 100}
+REPEATS = 5
+
+
+def best(task: Callable[[], object]) -> float:
+    """Shortest of some runs, s."""
+    times = []
+    for _ in range(REPEATS):
+        begun = perf_counter()
+        task()
+        times.append(perf_counter() - begun)
+    return min(times)
+
+
+def cases(states: int) -> tuple[Case, Case]:
+    """The same stage at given temperatures, and adiabatic over the preheat."""
+    count = states // 100
+    outlet = {"vary": "outlet.temperature", "first": "800 degC", "last": "1100 degC"}
+    preheat = {"vary": "feed.gas.temperature", "first": "300 degC", "last": "600 degC"}
+    at_temperature = deepcopy(CASE) | {
+        "outlet": {"temperature": "900 degC", "pressure": "25 bar"},
+        "axis": [outlet | {"count": count}, STEAM],
+    }
+    adiabatic = deepcopy(CASE) | {
+        "outlet": {"heat": "0 kJ", "pressure": "25 bar"},
+        "axis": [preheat | {"count": count}, STEAM],
+    }
+    return gibbsmin.load_case(at_temperature), gibbsmin.load_case(adiabatic)
+
+
+def main() -> None:
+    states = int(sys.argv[1]) if len(sys.argv) > 1 else 100_000
+    settle_form()
+    isothermal, adiabatic = cases(states)
+    programmes = []
+    for case in (isothermal, adiabatic):
+        grid = conditions_of(case)
+        values = [inside for inside, _ in grid.block(0, grid.states)]
+        varied = applied(case, case.axes, values, case.library)
+        found = next(iter(run_train(varied, case.library))).states
+        at, inlet = found.equilibria, found.inlet
+        if case is isothermal:
+            problem = found.model.programme(at.temperature, at.pressure, inlet.amounts)
+            programmes.append(best(lambda p=problem: minimise(p)))
+        else:
+            heated = found.model.heated_programme(
+                inlet.enthalpy, at.pressure, inlet.amounts, inlet.temperature
+            )
+            programmes.append(best(lambda p=heated: minimise_heated(*p)))
+    scans = [best(lambda c=case: list(gibbsmin.scan_blocks(c))) for case in (isothermal, adiabatic)]
+    few = cases(states // 10)[0]
+    plain = best(lambda: list(gibbsmin.scan_blocks(few)))
+    bars = best(lambda: list(gibbsmin.scan_blocks(few, uncertainty=True)))
+    print(f"{states} states of a reformer with air, all cores, best of {REPEATS}")
+    print(f"minimiser alone, at temperature     {1e6 * programmes[0] / states:8.2f} µs a state")
+    print(f"minimiser alone, adiabatic          {programmes[1] / programmes[0]:8.2f} times that")
+    print(
+        f"scan, at temperature                {scans[0] / programmes[0]:8.2f} times the minimiser"
+    )
+    print(
+        f"scan, adiabatic                     {scans[1] / scans[0]:8.2f} times that at temperature"
+    )
+    print(f"scan with error bars                {bars / plain:8.2f} times that without")
+
+
+if __name__ == "__main__":
+    main()
