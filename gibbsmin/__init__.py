@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
     from gibbsmin.jobs.onset import Onset, onset
+    from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
     from gibbsmin.jobs.predict import predict
     from gibbsmin.jobs.scan import Scan, scan, scan_blocks
     from gibbsmin.jobs.sensitivity import Sensitivities
@@ -29,6 +30,7 @@ __all__ = [
     "Target",
     "load_case",
     "onset",
+    "onset_uncertainty",
     "predict",
     "scan",
     "scan_blocks",
@@ -43,6 +45,7 @@ _HOMES = {
     "load_case": "gibbsmin.jobs.case",
     "Onset": "gibbsmin.jobs.onset",
     "onset": "gibbsmin.jobs.onset",
+    "onset_uncertainty": "gibbsmin.jobs.onset_uncertainty",
     "Target": "gibbsmin.jobs.target",
     "target": "gibbsmin.jobs.target",
     "predict": "gibbsmin.jobs.predict",

@@ -188,6 +188,9 @@ def onset(
     out: Annotated[
         str, typer.Option(metavar="FILE", help="Write a .csv, .xlsx or .json file as well.")
     ] = "",
+    uncertainty: Annotated[
+        bool, typer.Option("--uncertainty", help="Tell how sure each onset is.")
+    ] = False,
     plot: Plot = "",
 ) -> None:
     """Find where along an axis a phase first forms or vanishes, or a result meets a target.
@@ -196,6 +199,7 @@ def onset(
     """
     from gibbsmin.jobs.case import load_case
     from gibbsmin.jobs.onset import onset as onset_of
+    from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
     from gibbsmin.jobs.target import target as target_of
     from gibbsmin.present.outlet_files import require_ending
     from gibbsmin.present.search_document import onset_document, target_document
@@ -212,7 +216,9 @@ def onset(
         certified = bool(answers.certified.all())
     else:
         crossings = onset_of(loaded)
-        document, view = onset_document(crossings), onset_view(crossings, loaded.title)
+        sizes = onset_uncertainty(loaded, crossings) if uncertainty else None
+        document = onset_document(crossings, sizes)
+        view = onset_view(crossings, loaded.title, sizes)
         certified = bool(crossings.certified.all())
         if plot:
             from gibbsmin.present.plots.scan_plots import plot_boundary

@@ -82,7 +82,7 @@ def onset(case: Case) -> Onset:
     stage = stage_named(case, case.onset.stage, "onset.stage")
     path = path_of(case, stage, case.library)
     phase = _phase(case, path, case.onset.phase)
-    kept_out = _without(case, stage, phase)
+    kept_out = without_phase(case, stage, phase)
 
     def force(position: FloatArray, row: IntArray) -> FloatArray:
         return driving_force(path.step(kept_out, position, row), phase)
@@ -133,7 +133,7 @@ def _amount(
     return found.amounts[:, column], found.solution.certificate.gap
 
 
-def _without(case: Case, stage: StageCase, phase: str) -> Case:
+def without_phase(case: Case, stage: StageCase, phase: str) -> Case:
     """The case with the phase kept out of the stage by an energy at which it never forms."""
     offsets = dict(stage.chemistry.offsets)
     offsets[phase] = offsets.get(phase, 0.0) + KEPT_OUT

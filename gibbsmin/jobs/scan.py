@@ -29,7 +29,7 @@ BLOCK = 25_000
 _AHEAD = 2
 """Blocks in memory at a time."""
 
-_BLOCK_WITH_ERROR_BARS = 5_000
+_BLOCK_WITH_ERROR_BARS = 1_000
 
 
 @dataclass(frozen=True, eq=False)
@@ -185,7 +185,7 @@ def _solved(
     steps = list(run_train(varied, library))
     bars: Sequence[Any] = [None] * len(steps)
     if uncertainty:
-        bars = list(error_bars(varied, steps, library))
+        bars = list(error_bars(varied, steps, library, of_scan=True))
     columns: dict[str, Any] = {}
     for step, bar in zip(steps, bars, strict=True):
         columns |= columns_of(step, values[0].size, bar, prefix=len(case.stages) > 1)

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 
@@ -55,7 +56,7 @@ class Sensitivities:
         sizes = [np.broadcast_to(each.uncertainty, (len(self.matrix),)) for each in self.inputs]
         return np.asarray(self.matrix * np.stack(sizes, axis=-1)[:, np.newaxis])
 
-    @property
+    @cached_property
     def uncertainties(self) -> FloatArray:
         """(B, R) standard uncertainty of each result, in SI."""
         variance = self.contributions.sum(axis=2)
@@ -89,9 +90,17 @@ class Sensitivities:
 
 
 def sensitivities(
-    steps: Sequence[Step], changes: InputChanges, correlation: FloatArray, library: Library
+    steps: Sequence[Step],
+    changes: InputChanges,
+    correlation: FloatArray,
+    library: Library,
+    *,
+    dry: bool = True,
 ) -> Iterator[Sensitivities]:
-    """Follow the train through once more, with what one step of each input changes."""
+    """Follow the train through once more, with what one step of each input changes.
+
+    ``dry`` leaves fractions of the dry gas away where it is false.
+    """
     entering: list[StreamChanges] = []
     passing: list[StreamChanges] = []
     pressure: FloatArray = np.zeros(len(changes.inputs))
@@ -117,7 +126,7 @@ def sensitivities(
             library,
         )
         passing, pressure = [_leaving(step, found)], found.pressure
-        rows = dict(_results(step, found, inlet.amounts))
+        rows = dict(_results(step, found, inlet.amounts, dry))
         model, equilibria = step.states.model, step.states.equilibria
         yield Sensitivities(
             step.stage.name,
@@ -149,7 +158,7 @@ def _leaving(step: Step, found: StageChanges) -> StreamChanges:
 
 
 def _results(
-    step: Step, found: StageChanges, entering: FloatArray
+    step: Step, found: StageChanges, entering: FloatArray, dry: bool
 ) -> Iterator[tuple[str, FloatArray]]:
     """Each result's change, (B, K)."""
     states = step.states
@@ -162,7 +171,7 @@ def _results(
     yield "lost work", step.stage.surroundings_temperature * found.entropy_generation
     for column, record in enumerate(records):
         yield f"amount {record.name}", found.amounts[:, column]
-    for label, without in (("fraction", ""), ("dry fraction", WATER)):
+    for label, without in (("fraction", ""), *([("dry fraction", WATER)] if dry else ())):
         counted = np.array([r.phase is Phase.GAS and r.name != without for r in records])
         total = n[:, counted].sum(axis=1)[:, np.newaxis]
         change = found.amounts[:, counted].sum(axis=1)

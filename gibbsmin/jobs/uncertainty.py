@@ -42,8 +42,13 @@ def uncertainty(case: Case) -> tuple[Sensitivities, ...]:
     return tuple(error_bars(case, list(run_train(case, library)), library))
 
 
-def error_bars(case: Case, steps: Sequence[Step], library: Library) -> Iterable[Sensitivities]:
-    """The same for a train that is solved already, in all its states."""
+def error_bars(
+    case: Case, steps: Sequence[Step], library: Library, *, of_scan: bool = False
+) -> Iterable[Sensitivities]:
+    """The same for a train that is solved already, in all its states.
+
+    A scan tells uncertainties alone, so that it leaves exact inputs and dry fractions away.
+    """
     inputs = _stated(
         case,
         [
@@ -52,7 +57,11 @@ def error_bars(case: Case, steps: Sequence[Step], library: Library) -> Iterable[
             *record_inputs(_records(steps)),
         ],
     )
-    return sensitivities(steps, input_changes(case, inputs), _correlation(case, inputs), library)
+    if of_scan:
+        inputs = [each for each in inputs if np.any(each.uncertainty)]
+    return sensitivities(
+        steps, input_changes(case, inputs), _correlation(case, inputs), library, dry=not of_scan
+    )
 
 
 def _records(steps: Sequence[Step]) -> list[Species]:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.onset import Onset
 from gibbsmin.jobs.target import Target
@@ -14,8 +15,16 @@ if TYPE_CHECKING:
     import pandas as pd
 
 
-def onset_document(found: Onset) -> dict[str, Any]:
-    """The crossings and the statement on completeness."""
+def onset_document(found: Onset, uncertainty: FloatArray | None = None) -> dict[str, Any]:
+    """The crossings, with their uncertainties if given, and the statement on completeness."""
+    document = _onset_document(found)
+    if uncertainty is not None:
+        for crossing, size in zip(document["crossings"], uncertainty.tolist(), strict=True):
+            crossing["uncertainty"] = size if math.isfinite(size) else None
+    return document
+
+
+def _onset_document(found: Onset) -> dict[str, Any]:
     return {
         "phase": found.phase,
         "stage": found.stage,

@@ -9,6 +9,7 @@ from rich.console import Group, RenderableType
 from rich.padding import Padding
 from rich.text import Text
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.onset import Onset
 from gibbsmin.jobs.target import Target
@@ -17,19 +18,20 @@ from gibbsmin.present.quantities import significant
 from gibbsmin.results import CAUTIONS
 
 
-def onset_view(found: Onset, title: str) -> RenderableType:
-    """Each crossing in a line, then what is known of further ones."""
+def onset_view(found: Onset, title: str, uncertainty: FloatArray | None = None) -> RenderableType:
+    """Each crossing in a line, with its uncertainty if given; then what is known of others."""
     parts: list[RenderableType] = [
         heading(title),
         Text(f"Onset of {found.phase} in {found.stage}"),
         Text(""),
     ]
     if found.row.size:
-        rows = [_crossing(found, k) for k in range(found.row.size)]
+        rows = [_crossing(found, k, uncertainty) for k in range(found.row.size)]
         parts.append(
             table(
                 (
                     *_axis_headers(found.axis, found.second),
+                    *(() if uncertainty is None else ("uncertainty",)),
                     "as it rises, the phase",
                     "temperature, K",
                     "pressure, bar",
@@ -65,9 +67,10 @@ def target_view(found: Target, title: str) -> RenderableType:
     return Group(*parts, Text(""), *sentences("Cautions", CAUTIONS))
 
 
-def _crossing(found: Onset, k: int) -> tuple[str, ...]:
+def _crossing(found: Onset, k: int, uncertainty: FloatArray | None) -> tuple[str, ...]:
     return (
         *_axis_cells(found.second, found.row[k], found.shown[k]),
+        *(() if uncertainty is None else (f"± {significant(float(uncertainty[k]), 2)}",)),
         "forms" if found.forms[k] else "vanishes",
         f"{found.temperature[k]:.2f}",
         significant(float(found.pressure[k]) / 1e5),

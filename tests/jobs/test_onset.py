@@ -260,3 +260,33 @@ def test_a_case_without_the_table_is_refused() -> None:
         "onset: found no [onset] table; accepted is one, such as [onset] with phase = "
         '"C(graphite)".'
     )
+
+
+def test_an_onset_is_as_unsure_as_the_numbers_it_rests_on() -> None:
+    """The crossing moved by one standard uncertainty of a number, solved anew."""
+    stated = {"feed.steam": "1 %", "CO(g).enthalpy": "0.5 kJ/mol"}
+    exact = {
+        f"{name}.{kind}": f"0 {unit}"
+        for name in ("CH4(g)", "H2O(g)", "CO(g)", "CO2(g)", "H2(g)", "C(graphite)")
+        for kind, unit in (("enthalpy", "kJ/mol"), ("entropy", "J/(mol K)"))
+    }
+    stated |= {"outlet.temperature": "30 K"}  # what is looked for: of no account
+    tables = case(IN_T) | {"uncertainty": exact | stated}
+    loaded = gibbsmin.load_case(tables)
+    found = gibbsmin.onset(loaded)
+    size = gibbsmin.onset_uncertainty(loaded, found)
+    assert size.shape == (2,)
+
+    def moved_by_steam(share: float) -> np.ndarray:
+        return onset(case(IN_T, steam=1.1 * (1.0 + share))).position
+
+    by_steam = 0.01 * (moved_by_steam(1e-3) - moved_by_steam(-1e-3)) / 2e-3
+    only_steam = gibbsmin.load_case(tables | {"uncertainty": exact | {"feed.steam": "1 %"}})
+    alone = gibbsmin.onset_uncertainty(only_steam, gibbsmin.onset(only_steam))
+    assert alone == pytest.approx(np.abs(by_steam), rel=1e-3)
+    assert np.all(size > alone)
+
+
+def test_an_axis_without_a_crossing_has_no_uncertainty() -> None:
+    loaded = gibbsmin.load_case(case(IN_T, steam=9.0))
+    assert gibbsmin.onset_uncertainty(loaded, gibbsmin.onset(loaded)).size == 0
