@@ -13,6 +13,7 @@ from gibbsmin.reactor.activities import ElementActivity
 from gibbsmin.reactor.derivatives import derivatives, energy_slopes
 from gibbsmin.reactor.dew_points import acid_dew_point, water_dew_point
 from gibbsmin.reactor.gas_figures import gas_figures, response
+from gibbsmin.reactor.mixture_slopes import mixture_slopes
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.reactor.trade_figures import (
     at_reference_oxygen,
@@ -63,14 +64,16 @@ def figures_of(
 def _of_the_gas(states: StageStates, unit: str) -> Iterable[Figure]:
     model, found = states.model, states.equilibria
     T, P, n = found.temperature, found.pressure, found.amounts
-    gas = gas_figures(model.properties, model.gas, T, P, n)
+    gas = gas_figures(model.mixture, T, P, n)
+    slopes = mixture_slopes(model.mixture, T, P, n)
     changes = derivatives(
         model.programme(T, P, states.inlet.amounts),
         found.solution,
-        energy_slopes(model, T),
+        energy_slopes(model, T, slopes.enthalpies),
+        slopes.energies_by_pressure,
         np.zeros((len(model.balance.rows), 0)),
     )
-    answer = response(model.properties, model.gas, T, n, changes)
+    answer = response(slopes, T, changes)
     yield Figure("molar mass of the gas", gas.molar_mass[0] * 1e3, "g/mol")
     yield Figure("density of the gas", gas.density[0], "kg/m3")
     yield Figure("heat capacity of the gas, frozen", gas.heat_capacity[0], "J/(mol K)")

@@ -33,8 +33,8 @@ class Warmth:
         A, B, C, D, E, h, s over R of each species' pieces, shape (7, species, K).
     breaks
         Temperatures at which a further piece begins, shape (K − 1, species).
-    offset
-        Added to H/R, K, shape (species,).
+    offsets
+        Added to H/R, K, shape (states, species).
     contents
         H/R wanted, K mol, shape (states,).
     start
@@ -45,7 +45,7 @@ class Warmth:
 
     pieces: FloatArray
     breaks: FloatArray
-    offset: FloatArray
+    offsets: FloatArray
     contents: FloatArray
     start: FloatArray
     limits: tuple[float, float]
@@ -57,7 +57,7 @@ def answer_batch(programme: Programme, settings: Settings, solution: Solution) -
     cold = Warmth(
         np.zeros((7, none.size, 1)),
         np.zeros((0, none.size)),
-        none,
+        none[np.newaxis],
         np.zeros(programme.states),
         np.zeros(programme.states),
         (0.0, 0.0),
@@ -96,11 +96,11 @@ def answer_heated_batch(
 
     pieces = np.ascontiguousarray(warmth.pieces[:, network.order]).reshape(7, -1)
     breaks = np.ascontiguousarray(warmth.breaks[:, network.order])
-    offset = warmth.offset[network.order]
+    offsets = np.ascontiguousarray(warmth.offsets)
 
     def run(first: int) -> None:
         part = slice(first, first + block)
-        scratch = scratch_for(network, pieces, breaks, offset)
+        scratch = scratch_for(network, pieces, breaks)
         own_network, scratch = in_one_memory((network, scratch))
         scratch.heat.target[1:3] = warmth.limits
         solve(
@@ -111,6 +111,7 @@ def answer_heated_batch(
             tolerances,
             settings.warm_start,
             warmth.contents[part],
+            offsets[part],
             temperatures[part],
             Answers._make(array[part] for array in answers),
         )

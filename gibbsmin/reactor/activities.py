@@ -50,7 +50,14 @@ def element_activities(
         return ()
     records = [library[_ACTIVITY_RECORDS[symbol]] for symbol in symbols]
     with np.errstate(over="ignore"):
-        values = np.exp(log_activities(model, state, records, STANDARD_PRESSURE))
+        # Gases against 1 bar, so that they tell a pressure; solids as they would form here.
+        values = np.exp(
+            np.where(
+                [record.phase is Phase.GAS for record in records],
+                log_activities(model, state, records, STANDARD_PRESSURE),
+                log_activities(model, state, records, state.pressure),
+            )
+        )
     gas_total = state.amounts[model.gas].sum()
     for i, record in enumerate(records):
         # A reference gas that is held apart from the others, or in a gas of which a fraction is

@@ -15,7 +15,8 @@ import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.reactor.balance import element_counts, elements_of
-from gibbsmin.reactor.model import StageModel, reduced_energies
+from gibbsmin.reactor.mixture import Mixture
+from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.routes import Route, routes_to
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
@@ -105,9 +106,7 @@ def routes_at(
     gas_total = state.amounts[present].sum()
     logs = np.zeros(state.amounts.shape)
     logs[present] = np.log(state.amounts[present] / gas_total)
-    potentials = logs + reduced_energies(
-        model.properties, model.gas, state.temperature, state.pressure
-    )
+    potentials = logs + model.mixture.reduced_energies(state.temperature, state.pressure)
     energies = _energies(records, state.temperature, pressure)
     return routes_to(records, energies, model.records, state.amounts, potentials, model.reacts)
 
@@ -174,8 +173,7 @@ def _is_judged(model: StageModel, record: Species) -> bool:
 
 
 def _energies(records: Sequence[Species], temperature: float, pressure: float) -> FloatArray:
-    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
-    return reduced_energies(PropertyTable.of(records), gas, temperature, pressure)
+    return Mixture.of(PropertyTable.of(records)).reduced_energies(temperature, pressure)
 
 
 def _determined(model: StageModel, state: SolvedState, columns: FloatArray) -> BoolArray:

@@ -18,7 +18,6 @@ from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.minimise import Solution, minimise, minimise_heated
 from gibbsmin.reactor.answers import brackets, only_answers, stretches
-from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
 from gibbsmin.reactor.roots import root_near, roots_between
 
@@ -101,7 +100,7 @@ def at_enthalpy(
     """
 
     def content(found: Equilibria) -> FloatArray:
-        return mixture_enthalpy(model.properties, found.temperature, found.amounts)
+        return model.mixture.enthalpy(found.temperature, found.pressure, found.amounts)
 
     if model.shift.keys:
         return _at_content(model, enthalpy, content, pressure, feed, start)
@@ -130,9 +129,7 @@ def at_entropy(
     """Equilibria whose entropy (B,) in J/K is given, such as those of a reversible expansion."""
 
     def content(found: Equilibria) -> FloatArray:
-        return mixture_entropy(
-            model.properties, model.gas, found.temperature, found.pressure, found.amounts
-        )
+        return model.mixture.entropy(found.temperature, found.pressure, found.amounts)
 
     return _at_content(model, entropy, content, pressure, feed, start)
 
@@ -140,7 +137,7 @@ def at_entropy(
 def at_volume(
     model: StageModel, temperature: FloatArray, volume: FloatArray, feed: FloatArray
 ) -> Equilibria:
-    """Equilibria in a closed vessel: P V = N_gas R T; solids and liquids take up no room.
+    """Equilibria in a closed vessel: P V = Z N_gas R T; solids and liquids take up no room.
 
     N_gas(P)/P falls as P rises, so that there is at most one pressure.
     """
@@ -150,9 +147,8 @@ def at_volume(
 
     def residual(log_P: FloatArray, index: IntArray) -> FloatArray:
         P = np.exp(log_P)
-        moles = solved(P, index).amounts[:, model.gas].sum(axis=1)
-        filled = moles * GAS_CONSTANT * temperature[index]
-        return np.asarray(np.log(P * volume[index]) - np.log(np.maximum(filled, 1e-300)))
+        filled = model.mixture.gas_volume(temperature[index], P, solved(P, index).amounts)
+        return np.asarray(np.log(volume[index]) - np.log(np.maximum(filled, 1e-300)))
 
     start = np.log(np.maximum(feed.sum(axis=1), 1e-300) * GAS_CONSTANT * temperature / volume)
     limits = np.log(_LOWEST_PRESSURE), np.log(_HIGHEST_PRESSURE)
@@ -168,9 +164,8 @@ def at_energy_and_volume(
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
         return at_volume(model, T, volume[index], feed[index])
 
-    def content(found: Equilibria, index: IntArray) -> FloatArray:
-        enthalpy = mixture_enthalpy(model.properties, found.temperature, found.amounts)
-        return enthalpy - found.pressure * volume[index]
+    def content(found: Equilibria, _: IntArray) -> FloatArray:
+        return model.mixture.internal_energy(found.temperature, found.pressure, found.amounts)
 
     return _between(model, solved, content, energy, start)
 

@@ -71,7 +71,11 @@ class Derivatives:
 
 
 def derivatives(
-    programme: Programme, solution: Solution, slopes: FloatArray, directions: FloatArray
+    programme: Programme,
+    solution: Solution,
+    slopes: FloatArray,
+    pressure_slopes: FloatArray,
+    directions: FloatArray,
 ) -> Derivatives:
     """Implicit derivatives of solved states.
 
@@ -81,12 +85,12 @@ def derivatives(
         The states and their answers.
     slopes
         ∂g̃/∂ln T at constant P, shape (B, S), such as :func:`energy_slopes` gives.
+    pressure_slopes
+        ∂g̃/∂ln P, shape (B, S): 1 for an ideal gas.
     directions
         Changes of the supplies b, shape (m, K), such as the feed matrix of the balance.
     """
-    energies = np.stack(
-        [slopes, np.broadcast_to(programme.gas.astype(float), slopes.shape)], axis=-1
-    )
+    energies = np.stack([slopes, pressure_slopes], axis=-1)
     found = responses(programme, solution, energies, directions)
     changes = found.amounts
     return Derivatives(changes[..., 0], changes[..., 1], changes[..., 2:], found.regular)
@@ -128,10 +132,14 @@ def responses(
     return Responses(changes, forces, regular)
 
 
-def energy_slopes(model: StageModel, temperature: FloatArray) -> FloatArray:
+def energy_slopes(
+    model: StageModel, temperature: FloatArray, partial_enthalpies: FloatArray
+) -> FloatArray:
     """∂g̃/∂ln T at constant P of a stage's candidates: (B,) K to (B, S).
 
-    It is −H/RT, with the slope of an offset, −offset/RT, and of an approach,
+    It is −H̄/RT, H̄ the partial molar enthalpies (B, S) of
+    :func:`gibbsmin.reactor.mixture_slopes.mixture_slopes`, with the slope of an offset,
+    −offset/RT, and of an approach,
 
         ∂δ_K/∂ln T = ν_K⁻¹ (ν H(T)/RT − (T/T_s) ν H(T_s)/R T_s),
 
@@ -139,9 +147,9 @@ def energy_slopes(model: StageModel, temperature: FloatArray) -> FloatArray:
     """
     T, shift = temperature, model.shift
     RT = GAS_CONSTANT * T[:, np.newaxis]
-    enthalpies = model.properties.enthalpy(T)
-    slopes = -(enthalpies + shift.offsets) / RT
+    slopes = -(partial_enthalpies + shift.offsets) / RT
     if shift.keys:
+        enthalpies = model.properties.enthalpy(T)
         keys = list(shift.keys)
         nu = shift.stoichiometry
         gaps = enthalpies @ nu.T / RT

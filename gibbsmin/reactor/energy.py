@@ -1,48 +1,12 @@
-"""Enthalpy, entropy and what follows from them: duty, entropy generation and lost work."""
+"""The energy and entropy balance of a stage: duty, shaft work and entropy generation."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 
 import numpy as np
-import numpy.typing as npt
 
 from gibbsmin.arrays import BoolArray, FloatArray
-from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
-from gibbsmin.thermo.properties import PropertyTable
-
-
-def mixture_enthalpy(
-    properties: PropertyTable, temperature: npt.ArrayLike, amounts: FloatArray
-) -> FloatArray:
-    """H = Σ nᵢ Hᵢ(T) in J, from the elements at 298.15 K; amounts (..., S) in mol."""
-    return _dot(amounts, properties.enthalpy(temperature))
-
-
-def mixture_entropy(
-    properties: PropertyTable,
-    gas: BoolArray,
-    temperature: npt.ArrayLike,
-    pressure: npt.ArrayLike,
-    amounts: FloatArray,
-) -> FloatArray:
-    """S = Σ nᵢ Sᵢ(T) − R Σgas nᵢ ln(yᵢ P/P°) in J/K, absolute, mixing of the gases included."""
-    pure = _dot(amounts, properties.entropy(temperature))
-    gases = amounts[..., gas]
-    total = np.einsum("...s->...", gases)
-    logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
-    mixing = _dot(gases, _log(gases)) - total * (_log(total) - logarithm)
-    return np.asarray(pure - GAS_CONSTANT * mixing)
-
-
-def _dot(a: FloatArray, b: FloatArray) -> FloatArray:
-    """Sum of products over the records, without a temporary array."""
-    return np.asarray(np.einsum("...s,...s->...", a, b))
-
-
-def _log(x: FloatArray) -> FloatArray:
-    """ln x, 0 at 0: there x ln x is 0."""
-    return np.log(x, out=np.zeros_like(x), where=x > 0.0)
 
 
 @dataclass(frozen=True)

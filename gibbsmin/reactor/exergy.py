@@ -28,7 +28,7 @@ from gibbsmin.constants import (
     STANDARD_PRESSURE,
 )
 from gibbsmin.errors import InputError
-from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Phase, Species
@@ -120,12 +120,11 @@ def stream_exergy(
 ) -> Exergy:
     """Exergy of a mixture at T (K) and P (Pa); amounts (S,) in mol."""
     T0, P0 = surroundings.temperature, surroundings.pressure
-    table = PropertyTable.of(records)
-    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
+    mixture = Mixture.of(PropertyTable.of(records))
 
     def availability(T: float, P: float) -> float:
-        H = mixture_enthalpy(table, T, amounts)
-        return float(H - T0 * mixture_entropy(table, gas, T, P, amounts))
+        H = mixture.enthalpy(T, P, amounts)
+        return float(H - T0 * mixture.entropy(T, P, amounts))
 
     at_rest = availability(T0, P0)
     present = [r for r, amount in zip(records, amounts.tolist(), strict=True) if amount > 0.0]

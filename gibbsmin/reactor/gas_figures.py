@@ -2,7 +2,7 @@
 
 Heat capacities are those of all the state's records together, in thermal contact.  Frozen means
 that the amounts stay as they are; at equilibrium they follow the change, reactions and formation
-of solids included.  The gas is ideal, and solids and liquids take up no room.
+of solids included.  Solids and liquids take up no room.
 """
 
 from __future__ import annotations
@@ -12,10 +12,11 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.reactor.derivatives import Derivatives
-from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.reactor.mixture import Mixture
+from gibbsmin.reactor.mixture_slopes import MixtureSlopes, mixture_slopes
 
 
 @dataclass(frozen=True)
@@ -25,40 +26,45 @@ class GasFigures:
     Attributes
     ----------
     molar_mass : kg/mol
-    density : P M/(R T), kg/m³
-    volume : N R T/P, m³ (m³/s for a flow)
-    heat_capacity : Σ y Cp, J/mol/K, composition frozen
-    heat_capacity_ratio : Cp/(Cp − R)
+    density : P M/(Z R T), kg/m³
+    volume : Z N R T/P, m³ (m³/s for a flow)
+    compressibility : Z, 1 for an ideal gas
+    heat_capacity : Cp of a mole, J/mol/K, composition frozen
+    heat_capacity_ratio : Cp/Cv, composition frozen
     """
 
     molar_mass: FloatArray
     density: FloatArray
     volume: FloatArray
+    compressibility: FloatArray
     heat_capacity: FloatArray
     heat_capacity_ratio: FloatArray
 
 
 def gas_figures(
-    properties: PropertyTable,
-    gas: BoolArray,
-    temperature: npt.ArrayLike,
-    pressure: npt.ArrayLike,
-    amounts: FloatArray,
+    mixture: Mixture, temperature: npt.ArrayLike, pressure: npt.ArrayLike, amounts: FloatArray
 ) -> GasFigures:
-    """Figures of the ideal gas; T in K and P in Pa of shape (...), amounts (..., S) in mol."""
+    """Figures of the gas; T in K and P in Pa of shape (B,), amounts (B, S) in mol."""
     T, P = np.asarray(temperature, dtype=float), np.asarray(pressure, dtype=float)
-    n = np.where(gas, amounts, 0.0)
+    n = np.where(mixture.gas, amounts, 0.0)
     total = n.sum(axis=-1)
-    with np.errstate(invalid="ignore"):
-        y = n / np.where(total > 0.0, total, np.nan)[..., np.newaxis]
-    M = y @ np.array([record.molar_mass for record in properties.records])
-    Cp = np.sum(y * properties.heat_capacity(T), axis=-1)
+    present = np.where(total > 0.0, total, np.nan)
+    slopes = mixture_slopes(mixture, T, P, n)
+    volume = slopes.room / P
+    mass = n @ np.array([record.molar_mass for record in mixture.properties.records])
     return GasFigures(
-        molar_mass=M,
-        density=P * M / (GAS_CONSTANT * T),
-        volume=total * GAS_CONSTANT * T / P,
-        heat_capacity=Cp,
-        heat_capacity_ratio=Cp / (Cp - GAS_CONSTANT),
+        molar_mass=mass / present,
+        density=mass / np.where(total > 0.0, volume, np.nan),
+        volume=volume,
+        compressibility=slopes.room / (present * GAS_CONSTANT * T),
+        heat_capacity=slopes.heat_capacity / present,
+        heat_capacity_ratio=slopes.heat_capacity
+        / _at_volume(
+            slopes.heat_capacity,
+            np.where(total > 0.0, slopes.room, np.nan) / T,
+            slopes.expansion,
+            slopes.compression,
+        ),
     )
 
 
@@ -69,8 +75,8 @@ class Response:
     Attributes
     ----------
     frozen, equilibrium : Cp = (∂H/∂T)_P of the whole state, J/K (W/K for a flow)
-    expansion : (∂ln V/∂ln T)_P at equilibrium; 1 when frozen
-    compression : (∂ln V/∂ln P)_T at equilibrium; −1 when frozen
+    expansion : (∂ln V/∂ln T)_P at equilibrium; 1 when frozen and ideal
+    compression : (∂ln V/∂ln P)_T at equilibrium; −1 when frozen and ideal
     frozen_exponent, equilibrium_exponent : isentropic exponent −(∂ln P/∂ln V)_S
     """
 
@@ -87,44 +93,43 @@ class Response:
         return self.equilibrium / self.frozen
 
 
-def response(
-    properties: PropertyTable,
-    gas: BoolArray,
-    temperature: FloatArray,
-    amounts: FloatArray,
-    changes: Derivatives,
-) -> Response:
+def response(slopes: MixtureSlopes, temperature: FloatArray, changes: Derivatives) -> Response:
     """Heat capacities and isentropic exponents of B states.
 
-    Cp = Σ n cp + Σ H ∂n/∂T,  Cv = Cp + N R α²/β,  exponent = −Cp/(Cv β), with α the expansion and
-    β the compression.  The figures at equilibrium are NaN where the state has no derivatives;
+    Cp = Σ n cp + Σ H̄ ∂n/∂T,  Cv = Cp + (P V/T) α²/β,  exponent = −Cp/(Cv β), with α the expansion
+    and β the compression.  The figures at equilibrium are NaN where the state has no derivatives;
     under an approach the exponent is that of unchanged approach.
 
     Parameters
     ----------
-    temperature, amounts
-        K, shape (B,), and mol, shape (B, S).
+    slopes
+        Those of the states' mixtures.
+    temperature
+        K, shape (B,).
     changes
         The derivatives of these states.
     """
     T = temperature
-    N = np.where(gas, amounts, 0.0).sum(axis=-1)
-    N = np.where(N > 0.0, N, np.nan)
-    frozen = np.sum(amounts * properties.heat_capacity(T), axis=-1)
-    reaction = np.sum(properties.enthalpy(T) * changes.log_temperature, axis=-1) / T
-    alpha = 1.0 + np.sum(changes.log_temperature[..., gas], axis=-1) / N
-    beta = -1.0 + np.sum(changes.log_pressure[..., gas], axis=-1) / N
+    room = np.where(slopes.room > 0.0, slopes.room, np.nan)
+    frozen = slopes.heat_capacity
+    reaction = np.sum(slopes.enthalpies * changes.log_temperature, axis=-1) / T
+    alpha = slopes.expansion + np.sum(slopes.rooms * changes.log_temperature, axis=-1) / room
+    beta = slopes.compression + np.sum(slopes.rooms * changes.log_pressure, axis=-1) / room
     equilibrium = frozen + reaction
     return Response(
         frozen=frozen,
         equilibrium=equilibrium,
         expansion=alpha,
         compression=beta,
-        frozen_exponent=_exponent(frozen, N, np.ones_like(N), -np.ones_like(N)),
-        equilibrium_exponent=_exponent(equilibrium, N, alpha, beta),
+        frozen_exponent=_exponent(frozen, room / T, slopes.expansion, slopes.compression),
+        equilibrium_exponent=_exponent(equilibrium, room / T, alpha, beta),
     )
 
 
-def _exponent(Cp: FloatArray, N: FloatArray, alpha: FloatArray, beta: FloatArray) -> FloatArray:
-    Cv = Cp + N * GAS_CONSTANT * alpha**2 / beta
-    return -Cp / (Cv * beta)
+def _exponent(Cp: FloatArray, pV_T: FloatArray, alpha: FloatArray, beta: FloatArray) -> FloatArray:
+    return -Cp / (_at_volume(Cp, pV_T, alpha, beta) * beta)
+
+
+def _at_volume(Cp: FloatArray, pV_T: FloatArray, alpha: FloatArray, beta: FloatArray) -> FloatArray:
+    """Cv."""
+    return Cp + pV_T * alpha**2 / beta

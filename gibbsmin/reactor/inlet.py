@@ -9,12 +9,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
-from gibbsmin.constants import GAS_CONSTANT
-from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
-from gibbsmin.thermo.species import Phase, Species
+from gibbsmin.thermo.species import Species
 
 
 @dataclass(frozen=True)
@@ -66,15 +65,13 @@ def inlet_of(streams: Sequence[Stream], library: Library) -> Inlet:
         amounts=amounts,
         enthalpy=total(part.enthalpy for part in parts),
         entropy=total(part.entropy for part in parts),
-        internal_energy=total(
-            part.enthalpy - part.gas * GAS_CONSTANT * part.temperature for part in parts
-        ),
+        internal_energy=total(part.internal_energy for part in parts),
         temperature=np.where(moles > 0.0, mean, plain),
         lowest_pressure=total(
             [np.where(carries_gas, of_gas, _least([part.pressure for part in parts]))]
         ),
         carries_gas=np.array(np.broadcast_to(carries_gas, shape)),
-        volume=total(part.gas * GAS_CONSTANT * part.temperature / part.pressure for part in parts),
+        volume=total(part.volume for part in parts),
     )
 
 
@@ -88,6 +85,8 @@ class _Content:
     amounts: FloatArray
     enthalpy: FloatArray
     entropy: FloatArray
+    internal_energy: FloatArray
+    volume: FloatArray
     moles: FloatArray
     gas: FloatArray
     """Moles of it."""
@@ -95,8 +94,7 @@ class _Content:
 
 def _content(stream: Stream, library: Library) -> _Content:
     records = [library[name] for name in stream.amounts]
-    table = PropertyTable.of(records)
-    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
+    mixture = Mixture.of(PropertyTable.of(records))
     T, P, *each = (_shared(value) for value in _values(stream))
     amounts = np.stack(np.broadcast_arrays(*each), axis=-1) if each else np.zeros(0)
     return _Content(
@@ -104,10 +102,12 @@ def _content(stream: Stream, library: Library) -> _Content:
         temperature=T,
         pressure=P,
         amounts=amounts,
-        enthalpy=mixture_enthalpy(table, T, amounts),
-        entropy=mixture_entropy(table, gas, T, P, amounts),
+        enthalpy=mixture.enthalpy(T, P, amounts),
+        entropy=mixture.entropy(T, P, amounts),
+        internal_energy=mixture.internal_energy(T, P, amounts),
+        volume=mixture.gas_volume(T, P, amounts),
         moles=amounts.sum(axis=-1),
-        gas=amounts[..., gas].sum(axis=-1),
+        gas=amounts[..., mixture.gas].sum(axis=-1),
     )
 
 

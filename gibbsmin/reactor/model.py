@@ -21,9 +21,10 @@ from gibbsmin.reactor.balance import (
 )
 from gibbsmin.reactor.candidates import choose_candidates, forms_of_feed, gases_first
 from gibbsmin.reactor.chemistry import Chemistry, holds_of
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
-from gibbsmin.thermo.species import Phase, Species
+from gibbsmin.thermo.species import Species
 
 LOWEST_TEMPERATURE = 100.0
 HIGHEST_TEMPERATURE = 6000.0
@@ -37,8 +38,7 @@ class StageModel:
     Attributes
     ----------
     records : the S candidates, gases first
-    gas : (S,) which of them share the gas mixture
-    properties : Cp, H, S and G of the candidates
+    mixture : what they make together: energies, enthalpy, entropy and volume
     feed_records : the F records that enter
     balance : what is conserved between both
     shift : what is added to the candidates' energies
@@ -46,12 +46,21 @@ class StageModel:
     """
 
     records: tuple[Species, ...]
-    gas: BoolArray
-    properties: PropertyTable
+    mixture: Mixture
     feed_records: tuple[Species, ...]
     balance: Balance
     shift: Shift
     reacts: bool
+
+    @property
+    def gas(self) -> BoolArray:
+        """(S,) which of the candidates share the gas."""
+        return self.mixture.gas
+
+    @property
+    def properties(self) -> PropertyTable:
+        """Standard Cp, H, S and G of the candidates."""
+        return self.mixture.properties
 
     @property
     def restrained(self) -> bool:
@@ -66,8 +75,8 @@ class StageModel:
         return [row for row in range(elements, len(counts)) if elements and counts[row] > 1]
 
     def energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
-        """g̃ = G/RT + δ, for gases + ln(P/P°); T.shape + (S,)."""
-        energies = reduced_energies(self.properties, self.gas, temperature, pressure)
+        """g̃ = G/RT + δ, for gases + ln(P/P°) and as if ideal; T.shape + (S,)."""
+        energies = self.mixture.reduced_energies(temperature, pressure)
         energies += self.shift.at(temperature)
         return energies
 
@@ -105,7 +114,7 @@ class StageModel:
         warmth = Warmth(
             pieces=pieces / GAS_CONSTANT,
             breaks=breaks,
-            offset=self.shift.offsets / GAS_CONSTANT,
+            offsets=(self.shift.offsets + self.mixture.pressure_terms(pressure)) / GAS_CONSTANT,
             contents=contents / GAS_CONSTANT,
             start=start,
             limits=(LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE),
@@ -140,21 +149,9 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
     holds = holds_of(chemistry, records, feed, library)
     return StageModel(
         records=records,
-        gas=np.array([record.phase is Phase.GAS for record in records], dtype=bool),
-        properties=shift.properties,
+        mixture=Mixture.of(shift.properties),
         feed_records=tuple(feed),
         balance=balance.with_holds(records, feed, holds),
         shift=shift,
         reacts=chemistry.reactions == "equilibrium",
     )
-
-
-def reduced_energies(
-    properties: PropertyTable, gas: BoolArray, temperature: npt.ArrayLike, pressure: npt.ArrayLike
-) -> FloatArray:
-    """g̃ = G(T)/RT of every record of a table, for gases + ln(P/P°); shape T.shape + (S,)."""
-    T = np.asarray(temperature, dtype=float)
-    energies = properties.gibbs_energy(T)
-    energies /= (GAS_CONSTANT * T)[..., np.newaxis]
-    logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
-    return np.asarray(energies + np.where(gas, logarithm[..., np.newaxis], 0.0))

@@ -8,16 +8,10 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.errors import InputError
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.conditions import Equilibria
-from gibbsmin.reactor.energy import (
-    EnergyBalance,
-    energy_balance,
-    mixture_enthalpy,
-    mixture_entropy,
-)
+from gibbsmin.reactor.energy import EnergyBalance, energy_balance
 from gibbsmin.reactor.heating import lower_heating_values, without_ash
 from gibbsmin.reactor.inlet import Inlet, inlet_of
 from gibbsmin.reactor.model import StageModel, stage_model
@@ -93,15 +87,14 @@ def _energy_balance(
     internal energy as heat.
     """
     T, P = found.temperature, found.pressure
-    change = mixture_enthalpy(model.properties, T, found.amounts) - inlet.enthalpy
+    change = model.mixture.enthalpy(T, P, found.amounts) - inlet.enthalpy
     heat, work = change, np.zeros_like(change)
     needs_compressor = inlet.carries_gas & (inlet.lowest_pressure < P)
     if specification.entropy_of_feed:
         heat, work = work, change
         needs_compressor = np.zeros_like(needs_compressor)
     elif specification.volume is not None:
-        room = found.amounts[:, model.gas].sum(axis=1) * GAS_CONSTANT * T
-        heat = change + inlet.enthalpy - room - inlet.internal_energy
+        heat = model.mixture.internal_energy(T, P, found.amounts) - inlet.internal_energy
         needs_compressor = specification.volume < inlet.volume
     if specification.heat is not None:
         heat = np.where(np.isnan(change), np.nan, specification.heat)
@@ -112,7 +105,7 @@ def _energy_balance(
         heat=heat,
         shaft_work=work,
         entropy_in=inlet.entropy,
-        entropy_out=mixture_entropy(model.properties, model.gas, T, P, found.amounts),
+        entropy_out=model.mixture.entropy(T, P, found.amounts),
         boundary_temperature=boundary,
         needs_compressor=needs_compressor,
     )

@@ -15,10 +15,11 @@ from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.reactor.derivatives import Responses, energy_slopes, responses
 from gibbsmin.reactor.heating import lower_heating_values
+from gibbsmin.reactor.mixture_slopes import MixtureSlopes, mixture_slopes
 from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.stage import StageStates
-from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges, partial_entropies
+from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges
 from gibbsmin.thermo.library import Library
 
 
@@ -74,8 +75,9 @@ def stage_changes(
     """
     model, found, energy = states.model, states.equilibria, states.energy
     T, P, n = found.temperature, found.pressure, found.amounts
-    answer = _answers(states, inlet, records)
-    outlet = _outlet(states, answer.amounts, records)
+    slopes = mixture_slopes(model.mixture, T, P, n)
+    answer = _answers(states, inlet, records, slopes)
+    outlet = _outlet(states, answer.amounts, records, slopes)
     heat_in = asked.heat
     if specification.heat_loss is not None:
         values = lower_heating_values(states.inlet.records, library)
@@ -83,7 +85,7 @@ def stage_changes(
     closed = specification.volume is not None
 
     if specification.temperature is not None:
-        thermal = _row(outlet.moles, -asked.temperature / T[:, np.newaxis], 1.0, 0.0)
+        thermal = _row(outlet.room, -asked.temperature / T[:, np.newaxis], 1.0, 0.0)
     elif specification.entropy_of_feed:
         thermal = _less(outlet.entropy, inlet.entropy)
     elif closed:
@@ -91,15 +93,14 @@ def stage_changes(
     else:
         thermal = _less(outlet.enthalpy, inlet.enthalpy + heat_in)
     if closed:
-        # P V = N R T
-        N = n[:, model.gas].sum(axis=1)[:, np.newaxis]
         volume = np.reshape(np.asarray(specification.volume, dtype=float), (-1, 1))
-        room = _row(outlet.moles, asked.volume / volume, -1.0, 1.0) - outlet.moles / N
+        room = _row(outlet.room, asked.volume / volume, 0.0, 1.0)
+        room = room - outlet.room / slopes.room[:, np.newaxis]
     elif specification.pressure is not None:
-        room = _row(outlet.moles, -asked.pressure / P[:, np.newaxis], 0.0, 1.0)
+        room = _row(outlet.room, -asked.pressure / P[:, np.newaxis], 0.0, 1.0)
     else:
         drop = asked.pressure_drop - inlet.lowest_pressure
-        room = _row(outlet.moles, drop / P[:, np.newaxis], 0.0, 1.0)
+        room = _row(outlet.room, drop / P[:, np.newaxis], 0.0, 1.0)
     logarithms = _solve_two(thermal, room)
 
     content, entering = (
@@ -139,19 +140,21 @@ class _OutletRows:
     enthalpy: FloatArray
     energy: FloatArray
     entropy: FloatArray
-    moles: FloatArray
-    """Of its gas."""
+    room: FloatArray
+    """P V of its gas."""
 
 
-def _answers(states: StageStates, inlet: InletChanges, records: RecordChanges) -> Responses:
+def _answers(
+    states: StageStates, inlet: InletChanges, records: RecordChanges, slopes: MixtureSlopes
+) -> Responses:
     """dn along the K + 2 columns: of the records' and the feed's changes, of ln T and of ln P."""
     model, found = states.model, states.equilibria
     T = found.temperature
     K = records.count
     energies = np.zeros((len(T), len(model.records), K + 2))
     energies[..., :K] = _energy_changes(model, T, records)
-    energies[..., K] = energy_slopes(model, T)
-    energies[..., K + 1] = model.gas
+    energies[..., K] = energy_slopes(model, T, slopes.enthalpies)
+    energies[..., K + 1] = slopes.energies_by_pressure
     programme = model.programme(T, found.pressure, states.inlet.amounts)
     answer = responses(programme, found.solution, energies, model.balance.feed_matrix)
     # A record that no change touches may bring a new element, which has no derivative.
@@ -184,29 +187,29 @@ def _energy_changes(model: StageModel, T: FloatArray, records: RecordChanges) ->
     return changes
 
 
-def _outlet(states: StageStates, dn: FloatArray, records: RecordChanges) -> _OutletRows:
+def _outlet(
+    states: StageStates, dn: FloatArray, records: RecordChanges, slopes: MixtureSlopes
+) -> _OutletRows:
     model, found = states.model, states.equilibria
     T, P, n = found.temperature, found.pressure, found.amounts
     dH, dS = records.of(model.records)
-    heat_capacity = np.sum(n * model.properties.heat_capacity(T), axis=1)
-    N = n[:, model.gas].sum(axis=1)
-    s = partial_entropies(model.properties, model.gas, T, P, n)
-    H = model.properties.enthalpy(T)
-    moles = dn[:, model.gas].sum(axis=1)
-    enthalpy = _content(H, dn, n @ dH, heat_capacity * T, 0.0)
-    RT = GAS_CONSTANT * T[:, np.newaxis]
+    Cp, pV = slopes.heat_capacity, slopes.room
+    terms = model.mixture.pressure_terms(P)
+    room = _content(slopes.rooms, dn, 0.0, pV * slopes.expansion, pV * (1.0 + slopes.compression))
+    enthalpy = _content(slopes.enthalpies, dn, n @ dH, Cp * T, slopes.enthalpy_by_pressure)
+    of_solids = _content(terms, dn, 0.0, 0.0, P * (n @ model.mixture.volumes))
     return _OutletRows(
         enthalpy=enthalpy,
-        energy=enthalpy - RT * _row(moles, moles[:, :-2], moles[:, -2] + N, moles[:, -1]),
-        entropy=_content(s, dn, n @ dS, heat_capacity, -GAS_CONSTANT * N),
-        moles=moles,
+        energy=enthalpy - room - of_solids,
+        entropy=_content(slopes.entropies, dn, n @ dS, Cp, slopes.entropy_by_pressure),
+        room=room,
     )
 
 
 def _content(
     partial: FloatArray,
     dn: FloatArray,
-    of_records: FloatArray,
+    of_records: FloatArray | float,
     of_T: FloatArray | float,
     of_P: FloatArray | float,
 ) -> FloatArray:
@@ -216,7 +219,10 @@ def _content(
 
 
 def _row(
-    like: FloatArray, of_data: FloatArray, of_T: FloatArray | float, of_P: FloatArray | float
+    like: FloatArray,
+    of_data: FloatArray | float,
+    of_T: FloatArray | float,
+    of_P: FloatArray | float,
 ) -> FloatArray:
     """A row of K + 2 columns, shaped as another one."""
     row = np.empty_like(like)

@@ -12,13 +12,14 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from gibbsmin.arrays import BoolArray, FloatArray
-from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
+from gibbsmin.arrays import FloatArray
 from gibbsmin.reactor.inlet import Inlet
+from gibbsmin.reactor.mixture import Mixture
+from gibbsmin.reactor.mixture_slopes import mixture_slopes
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
-from gibbsmin.thermo.species import Phase, Species
+from gibbsmin.thermo.species import Species
 
 
 @dataclass(frozen=True)
@@ -89,15 +90,15 @@ def inlet_changes(
 ) -> InletChanges:
     """Sum up the streams' changes; the inlet is that of these streams.
 
-    With s̄ = S − R ln(y P/P°) for gases, S for the rest:
+    With partial molar H̄ and S̄, mixing included, V of the gas and V̄ its partial molar volume:
 
-        dH = Σ (H dn + n dH° + n Cp dT)
-        dS = Σ (s̄ dn + n dS° + n Cp dT/T) − R N dP/P
-        dU = dH − R d(N T)
+        dH = Σ (H̄ dn + n dH°) + Cp dT + (V − T ∂V/∂T) dP + Σ n V dP of solids and liquids
+        dS = Σ (S̄ dn + n dS°) + Cp dT/T − ∂V/∂T dP
+        dU = dH − d(P V), without the pressure terms of solids and liquids
     """
     B, K = len(inlet.temperature), records.count
     amounts = np.zeros((B, len(inlet.records), K))
-    enthalpy, entropy, room, lowest = (np.zeros((B, K)) for _ in range(4))
+    enthalpy, entropy, energy, lowest = (np.zeros((B, K)) for _ in range(4))
     places = {record.name: place for place, record in enumerate(inlet.records)}
     for stream, change in zip(streams, changes, strict=True):
         part = [library[name] for name in stream.amounts]
@@ -106,10 +107,10 @@ def inlet_changes(
             amounts[:, place] += amount
         enthalpy += of_stream[1]
         entropy += of_stream[2]
-        room += of_stream[3]
+        energy += of_stream[3]
         pressure = np.broadcast_to(np.asarray(stream.pressure, dtype=float), (B,))
         lowest = np.where((pressure == inlet.lowest_pressure)[:, None], change.pressure, lowest)
-    return InletChanges(amounts, enthalpy, entropy, enthalpy - GAS_CONSTANT * room, lowest)
+    return InletChanges(amounts, enthalpy, entropy, energy, lowest)
 
 
 def _mixture_changes(
@@ -119,29 +120,31 @@ def _mixture_changes(
     records: RecordChanges,
     states: int,
 ) -> tuple[list[FloatArray], FloatArray, FloatArray, FloatArray]:
-    """dn of each record, and dH, dS and d(N T) of one stream."""
-    table = PropertyTable.of(part)
-    gas = np.array([record.phase is Phase.GAS for record in part], dtype=bool)
+    """dn of each record, and dH, dS and dU of one stream."""
+    mixture = Mixture.of(PropertyTable.of(part))
     T = np.broadcast_to(np.asarray(stream.temperature, dtype=float), (states,))
     P = np.broadcast_to(np.asarray(stream.pressure, dtype=float), (states,))
     n = np.stack([np.broadcast_to(v, (states,)) for v in stream.amounts.values()], axis=1)
     nothing = np.zeros((1, records.count))
     dn = [change.amounts.get(record.name, nothing) for record in part]
     dH, dS = records.of(part)
-    heat_capacity = np.sum(n * table.heat_capacity(T), axis=1)[:, np.newaxis]
-    H = table.enthalpy(T)
-    s = partial_entropies(table, gas, T, P, n)
-    moles = np.where(gas, n, 0.0).sum(axis=1)[:, np.newaxis]
-    of_gas = sum((d for d, in_gas in zip(dn, gas.tolist(), strict=True) if in_gas), nothing)
-    dT, log_dP = change.temperature, change.pressure / P[:, np.newaxis]
+    slopes = mixture_slopes(mixture, T, P, n)
+    log_dT = change.temperature / T[:, np.newaxis]
+    log_dP = change.pressure / P[:, np.newaxis]
+
+    def total(partial: FloatArray, of_T: FloatArray, of_P: FloatArray) -> FloatArray:
+        row = _along(partial, dn) + of_T[:, np.newaxis] * log_dT + of_P[:, np.newaxis] * log_dP
+        return np.asarray(row)
+
+    pV, Cp = slopes.room, slopes.heat_capacity
+    enthalpy = total(slopes.enthalpies, Cp * T, slopes.enthalpy_by_pressure) + n @ dH
+    room = total(slopes.rooms, pV * slopes.expansion, pV * (1.0 + slopes.compression))
+    of_solids = total(mixture.pressure_terms(P), 0.0 * T, P * (n @ mixture.volumes))
     return (
         dn,
-        _along(H, dn) + n @ dH + heat_capacity * dT,
-        _along(s, dn)
-        + n @ dS
-        + heat_capacity * dT / T[:, np.newaxis]
-        - GAS_CONSTANT * moles * log_dP,
-        of_gas * T[:, np.newaxis] + moles * dT,
+        enthalpy,
+        total(slopes.entropies, Cp, slopes.entropy_by_pressure) + n @ dS,
+        enthalpy - room - of_solids,
     )
 
 
@@ -152,15 +155,3 @@ def _along(values: FloatArray, changes: Sequence[FloatArray]) -> FloatArray:
         if change.any():
             total = total + values[:, column, np.newaxis] * change
     return np.asarray(total)
-
-
-def partial_entropies(
-    properties: PropertyTable, gas: BoolArray, T: FloatArray, P: FloatArray, amounts: FloatArray
-) -> FloatArray:
-    """s̄ = ∂S/∂n of each record, (B, S) in J/mol/K; that of an absent gas is given as its S."""
-    n = np.where(gas, amounts, 0.0)
-    total = n.sum(axis=1, keepdims=True)
-    present = n > 0.0
-    with np.errstate(divide="ignore", invalid="ignore"):
-        logarithm = np.log(n / total) + np.log(P / STANDARD_PRESSURE)[:, np.newaxis]
-    return properties.entropy(T) - GAS_CONSTANT * np.where(present, logarithm, 0.0)

@@ -55,6 +55,7 @@ def carbon_activity(T: float, steam: float, pressure: float = 1e5) -> float:
         + [library["C(graphite)"]]
     )
     CH4, H2O, CO, CO2, H2, C = table.gibbs_energy(T) / (GAS_CONSTANT * T)
+    C += table.records[5].molar_volume * (pressure - STANDARD_PRESSURE) / (GAS_CONSTANT * T)
     reform, shift, boudouard = CH4 + H2O - CO - 3 * H2, CO + H2O - CO2 - H2, 2 * CO - C - CO2
     log_P = np.log(pressure / STANDARD_PRESSURE)
 
@@ -171,6 +172,7 @@ def test_water_drops_out_at_its_saturation() -> None:
 
     def excess(T: float) -> float:
         gas, liquid = table.gibbs_energy(T)
+        liquid += table.records[1].molar_volume * (5e5 - STANDARD_PRESSURE)
         return float((liquid - gas) / (GAS_CONSTANT * T) - np.log(0.5e5 / STANDARD_PRESSURE))
 
     assert found.shown == pytest.approx([brentq(excess, 300.0, 400.0) - 273.15], abs=1e-6)

@@ -10,9 +10,9 @@ import pytest
 import gibbsmin
 from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.errors import InputError
-from gibbsmin.reactor import conditions
 from gibbsmin.reactor.answers import brackets, only_answers, stretches
 from gibbsmin.reactor.approach import Approach, shift_of
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.results import StageOutlet
 from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.reaction import Reaction
@@ -96,13 +96,13 @@ def test_no_temperature_where_the_approach_has_a_meaning() -> None:
 
 def test_several_temperatures_are_told_and_none_is_chosen(monkeypatch: pytest.MonkeyPatch) -> None:
     """No mixture of the trade is known that has two; an enthalpy bent by force has three."""
-    straight = conditions.mixture_enthalpy
+    straight = Mixture.enthalpy
 
-    def bent(properties: Any, T: FloatArray, amounts: FloatArray) -> FloatArray:
+    def bent(mixture: Any, T: FloatArray, P: FloatArray, amounts: FloatArray) -> FloatArray:
         bump = 1e5 * np.exp(-(((np.asarray(T) - 1900.0) / 40.0) ** 2))
-        return np.asarray(straight(properties, T, amounts) - bump)
+        return np.asarray(straight(mixture, T, P, amounts) - bump)
 
-    monkeypatch.setattr(conditions, "mixture_enthalpy", bent)
+    monkeypatch.setattr(Mixture, "enthalpy", bent)
     with pytest.raises(InputError) as caught:
         outlet(1700.0, 30.0)
     sentence = str(caught.value)

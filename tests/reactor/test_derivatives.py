@@ -15,6 +15,7 @@ from gibbsmin.reactor.approach import Approach
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.derivatives import Derivatives, derivatives, energy_slopes
+from gibbsmin.reactor.mixture_slopes import mixture_slopes
 from gibbsmin.reactor.model import StageModel, stage_model
 from gibbsmin.thermo.library import load_library
 
@@ -53,9 +54,15 @@ class States:
         return minimise(self.programme())
 
     def derivatives(self) -> Derivatives:
-        slopes = energy_slopes(self.model, self.T)
-        directions = self.model.balance.feed_matrix
-        return derivatives(self.programme(), self.solution, slopes, directions)
+        solution = self.solution
+        slopes = mixture_slopes(self.model.mixture, self.T, self.P, solution.amounts)
+        return derivatives(
+            self.programme(),
+            solution,
+            energy_slopes(self.model, self.T, slopes.enthalpies),
+            slopes.energies_by_pressure,
+            self.model.balance.feed_matrix,
+        )
 
     def difference(self, change: Callable[[float], Programme], step: float) -> FloatArray:
         """Central difference of the fourth order."""

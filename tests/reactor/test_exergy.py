@@ -12,8 +12,8 @@ from gibbsmin.errors import InputError
 from gibbsmin.minimise import minimise
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry
-from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
 from gibbsmin.reactor.exergy import Exergy, Surroundings, stream_exergy, szargut_surroundings
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.model import stage_model
 from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.properties import PropertyTable
@@ -137,13 +137,11 @@ def test_exergy_lost_is_the_lost_work_of_a_stage() -> None:
     model = stage_model(Chemistry(Selection(consider=consider)), feed, library)
     amounts, T_in, P_in, T, P = np.array([1.0, 0.6, 0.3, 0.4]), 600.0, 30e5, 1100.0, 20e5
     outlet = minimise(model.programme(np.array([T]), np.array([P]), amounts[None])).amounts[0]
-    table, gas = PropertyTable.of(feed), np.ones(4, dtype=bool)
+    entering_gas = Mixture.of(PropertyTable.of(feed))
     around = szargut_surroundings(T0)
-    heat = mixture_enthalpy(model.properties, T, outlet) - mixture_enthalpy(table, T_in, amounts)
+    heat = model.mixture.enthalpy(T, P, outlet) - entering_gas.enthalpy(T_in, P_in, amounts)
     generated = (
-        mixture_entropy(model.properties, model.gas, T, P, outlet)
-        - mixture_entropy(table, gas, T_in, P_in, amounts)
-        - heat / T
+        model.mixture.entropy(T, P, outlet) - entering_gas.entropy(T_in, P_in, amounts) - heat / T
     )
     entering = stream_exergy(feed, amounts, T_in, P_in, around, library).total
     leaving = stream_exergy(model.records, outlet, T, P, around, library).total

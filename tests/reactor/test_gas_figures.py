@@ -11,8 +11,9 @@ from gibbsmin.minimise import minimise
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.derivatives import derivatives, energy_slopes
-from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
 from gibbsmin.reactor.gas_figures import Response, gas_figures, response
+from gibbsmin.reactor.mixture import Mixture
+from gibbsmin.reactor.mixture_slopes import mixture_slopes
 from gibbsmin.reactor.model import StageModel, stage_model
 from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.properties import PropertyTable
@@ -36,9 +37,15 @@ def solved(model: StageModel, T: FloatArray, P: FloatArray) -> FloatArray:
 def make_response(model: StageModel) -> Response:
     programme = model.programme(T, P, FEED)
     solution = minimise(programme)
-    slopes = energy_slopes(model, T)
-    changes = derivatives(programme, solution, slopes, model.balance.feed_matrix)
-    return response(model.properties, model.gas, T, solution.amounts, changes)
+    slopes = mixture_slopes(model.mixture, T, P, solution.amounts)
+    changes = derivatives(
+        programme,
+        solution,
+        energy_slopes(model, T, slopes.enthalpies),
+        slopes.energies_by_pressure,
+        model.balance.feed_matrix,
+    )
+    return response(slopes, T, changes)
 
 
 def test_air_has_its_density_and_heat_capacity_ratio() -> None:
@@ -50,8 +57,7 @@ def test_air_has_its_density_and_heat_capacity_ratio() -> None:
     library = load_library()
     composition = {"N2(g)": 0.78084, "O2(g)": 0.209476, "Ar(g)": 0.00934, "CO2(g)": 0.000314}
     figures = gas_figures(
-        PropertyTable.of([library[name] for name in composition]),
-        np.ones(4, dtype=bool),
+        Mixture.of(PropertyTable.of([library[name] for name in composition])),
         288.15,
         101325.0,
         np.array(list(composition.values())),
@@ -65,9 +71,7 @@ def test_air_has_its_density_and_heat_capacity_ratio() -> None:
 def test_heat_capacity_at_equilibrium_is_the_slope_of_the_enthalpy() -> None:
     model = make_model()
     found, h = make_response(model), 0.05
-    above, below = (
-        mixture_enthalpy(model.properties, T + d, solved(model, T + d, P)) for d in (h, -h)
-    )
+    above, below = (model.mixture.enthalpy(T + d, P, solved(model, T + d, P)) for d in (h, -h))
     assert solved(model, T, P)[0, -1] > 0.0, "the first state is to hold carbon"
     assert found.equilibrium == pytest.approx((above - below) / (2 * h), rel=1e-6)
     assert (found.ratio > 1.0).all()
@@ -79,7 +83,7 @@ def test_exponent_is_that_of_a_reversible_compression() -> None:
     found = make_response(model)
 
     def entropy(T: FloatArray, P: FloatArray) -> FloatArray:
-        return mixture_entropy(model.properties, model.gas, T, P, solved(model, T, P))
+        return model.mixture.entropy(T, P, solved(model, T, P))
 
     S, step, volumes = entropy(T, P), 1e-3, []
     for sign in (1.0, -1.0):
@@ -100,8 +104,15 @@ def test_without_reaction_frozen_and_equilibrium_figures_are_the_same() -> None:
     T, P, feed = np.array([500.0]), np.array([1e5]), np.array([[2.0]])
     programme = model.programme(T, P, feed)
     solution = minimise(programme)
-    changes = derivatives(programme, solution, energy_slopes(model, T), np.ones((1, 1)))
-    found = response(model.properties, model.gas, T, solution.amounts, changes)
+    slopes = mixture_slopes(model.mixture, T, P, solution.amounts)
+    changes = derivatives(
+        programme,
+        solution,
+        energy_slopes(model, T, slopes.enthalpies),
+        slopes.energies_by_pressure,
+        np.ones((1, 1)),
+    )
+    found = response(slopes, T, changes)
     assert found.equilibrium == pytest.approx(found.frozen, rel=1e-12)
     assert found.equilibrium_exponent == pytest.approx(found.frozen_exponent, rel=1e-12)
     assert found.frozen_exponent == pytest.approx(5 / 3, rel=1e-4)
@@ -112,7 +123,7 @@ def test_without_reaction_frozen_and_equilibrium_figures_are_the_same() -> None:
 def test_no_gas_has_no_figures() -> None:
     library = load_library()
     table = PropertyTable.of([library["H2O(g)"], library["H2O(l)"]])
-    figures = gas_figures(table, np.array([True, False]), 300.0, 1e5, np.array([0.0, 1.0]))
+    figures = gas_figures(Mixture.of(table), 300.0, 1e5, np.array([0.0, 1.0]))
     assert np.isnan(figures.molar_mass)
     assert np.isnan(figures.density)
     assert figures.volume == 0.0

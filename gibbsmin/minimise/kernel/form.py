@@ -130,6 +130,7 @@ def _entry(fingerprint: int) -> SolveStates:
         tolerances: Any,
         warm: Any,
         contents: Any,
+        offsets: Any,
         temperatures: Any,
         answers: Any,
     ) -> int:
@@ -141,6 +142,7 @@ def _entry(fingerprint: int) -> SolveStates:
             tolerances,
             warm,
             contents,
+            offsets,
             temperatures,
             answers,
         )

@@ -13,10 +13,12 @@ from __future__ import annotations
 
 from math import inf, log
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.storage import (
     FORBIDDEN,
     Equations,
     Heat,
+    Network,
     Point,
     Scratch,
     State,
@@ -28,11 +30,12 @@ _GUESSES = 30
 _GUESSED = 1e-3
 
 
-def load_heated(scratch: Scratch, content: float) -> None:
+def load_heated(network: Network, scratch: Scratch, content: float, offsets: FloatArray) -> None:
     """Take what was loaded as g̃ for its constant part, and evaluate all of it at T."""
     state, heat = scratch.state, scratch.heat
     for i in range(state.energies.size):
         heat.constant[i] = state.energies[i]
+        heat.offset[i] = offsets[network.order[i]]
     heat.target[0] = content
     evaluate_energies(state, heat, scratch.temperature[0])
 

@@ -37,6 +37,7 @@ def solve_states(
     tolerances: FloatArray,
     warm: bool,
     contents: FloatArray,
+    offsets: FloatArray,
     temperatures: FloatArray,
     answers: Answers,
 ) -> None:
@@ -56,14 +57,23 @@ def solve_states(
         while status == UNCERTIFIED and way <= LAST:
             if way == WARM:
                 log_total = resume(
-                    network, scratch, energies, supplies, contents, temperatures, answers, s, run
+                    network,
+                    scratch,
+                    energies,
+                    supplies,
+                    contents,
+                    offsets,
+                    temperatures,
+                    answers,
+                    s,
+                    run,
                 )
             else:
                 run = 0
                 load(network, state, energies[s], supplies[s])
                 scratch.temperature[0] = start
                 if heated:
-                    load_heated(scratch, contents[s])
+                    load_heated(network, scratch, contents[s], offsets[s])
                 log_total = start_cold(network, scratch, way)
             if log_total == inf:
                 status = INFEASIBLE

@@ -167,9 +167,7 @@ def network_of(
     )
 
 
-def scratch_for(
-    network: Network, pieces: FloatArray, breaks: FloatArray, offset: FloatArray
-) -> Scratch:
+def scratch_for(network: Network, pieces: FloatArray, breaks: FloatArray) -> Scratch:
     """Memory for one worker, of order rows × (species + rows), beside the energies' pieces."""
     rows, species = network.matrix.shape
     return Scratch(
@@ -194,7 +192,7 @@ def scratch_for(
         Heat(
             pieces,
             breaks,
-            offset,
+            offset=np.zeros(species),
             constant=np.zeros(species),
             enthalpy=np.zeros(species),
             capacity=np.zeros(species),

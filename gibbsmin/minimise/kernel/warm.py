@@ -24,6 +24,7 @@ def resume(
     energies: FloatArray,
     supplies: FloatArray,
     contents: FloatArray,
+    offsets: FloatArray,
     temperatures: FloatArray,
     answers: Answers,
     s: int,
@@ -56,7 +57,7 @@ def resume(
             temperatures[s - 3] if points == 3 else 0.0,
             points,
         )
-        load_heated(scratch, contents[s])
+        load_heated(network, scratch, contents[s], offsets[s])
     renew_supply(state, tableau)
     renew_reduced(state, tableau)
     if not retired_rows_hold(state, tableau):
