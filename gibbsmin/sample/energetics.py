@@ -9,11 +9,10 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.reactor.conditions import Equilibria
-from gibbsmin.reactor.energy import mixture_enthalpy, mixture_entropy
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.streams import first
 from gibbsmin.sample.plan import Plan
 from gibbsmin.thermo.properties import PropertyTable
-from gibbsmin.thermo.species import Phase
 
 
 @dataclass(frozen=True, eq=False)
@@ -66,17 +65,15 @@ def _entering(
     plan: Plan, inlet: FloatArray, pressure: FloatArray
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
     """Entropy and enthalpy of the streams, each at its own conditions; a compressor's need."""
-    records = plan.model.feed_records
-    table = PropertyTable.of(records)
-    gas = np.array([record.phase is Phase.GAS for record in records], dtype=bool)
+    mixture = Mixture.of(PropertyTable.of(plan.model.feed_records))
     entropy, enthalpy = np.zeros(len(inlet)), np.zeros(len(inlet))
     compressor = np.zeros(len(inlet), dtype=bool)
     for feed, brought in zip(plan.feeds, plan.inlets, strict=True):
         amounts = inlet @ brought.T
         T, P = first(feed.stream.temperature), first(feed.stream.pressure)
-        entropy += mixture_entropy(table, gas, T, P, amounts)
-        enthalpy += mixture_enthalpy(table, T, amounts)
-        compressor |= (amounts[:, gas] > 0.0).any(axis=1) & (pressure > P)
+        entropy += mixture.entropy(T, P, amounts)
+        enthalpy += mixture.enthalpy(T, P, amounts)
+        compressor |= (amounts[:, mixture.gas] > 0.0).any(axis=1) & (pressure > P)
     return entropy, enthalpy, compressor
 
 
@@ -89,8 +86,8 @@ def _generated(
 ) -> FloatArray:
     """S_out − S_in − Q/T with the boundary at the outlet's temperature."""
     model, T = plan.model, found.temperature
-    entropy = mixture_entropy(model.properties, model.gas, T, found.pressure, amounts)
-    heat = mixture_enthalpy(model.properties, T, amounts) - enthalpy_in
+    entropy = model.mixture.entropy(T, found.pressure, amounts)
+    heat = model.mixture.enthalpy(T, found.pressure, amounts) - enthalpy_in
     return np.asarray(entropy - entropy_in - heat / T)
 
 

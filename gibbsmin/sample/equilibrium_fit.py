@@ -16,6 +16,7 @@ import numpy as np
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.minimise import minimise
 from gibbsmin.reactor.derivatives import derivatives, energy_slopes
+from gibbsmin.reactor.mixture_slopes import mixture_slopes
 from gibbsmin.sample.plan import Plan
 
 LOWEST, HIGHEST = 250.0, 4000.0
@@ -142,7 +143,14 @@ def _trial(plan: Plan, readings: Readings, inlet: FloatArray, temperature: Float
     programme = model.programme(T, readings.pressure, feed)
     solution = minimise(programme)
     supplied = model.balance.feed_matrix @ plan.inlets.sum(axis=0)
-    found = derivatives(programme, solution, energy_slopes(model, T), supplied)
+    gas = mixture_slopes(model.mixture, T, readings.pressure, solution.amounts)
+    found = derivatives(
+        programme,
+        solution,
+        energy_slopes(model, T, gas.enthalpies),
+        gas.energies_by_pressure,
+        supplied,
+    )
 
     x = np.hstack([solution.amounts, inlet])
     own = np.broadcast_to(np.eye(inlet.shape[1]), (len(inlet), *[inlet.shape[1]] * 2))

@@ -13,7 +13,7 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.reactor.balance import elements_of
-from gibbsmin.reactor.model import reduced_energies
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.routes import Route, routes_to
 from gibbsmin.sample.findings import SolidFinding
 from gibbsmin.thermo.library import Library
@@ -51,13 +51,11 @@ def solids_of(
     ]
     if not targets or not len(amounts):
         return [() for _ in amounts]
-    gas = np.ones(len(species), dtype=bool)
     with np.errstate(divide="ignore"):
         logs = np.log(amounts / amounts.sum(axis=1, keepdims=True))
-    potentials = logs + reduced_energies(PropertyTable.of(species), gas, temperature, pressure)
-    energies = reduced_energies(
-        PropertyTable.of(targets), np.zeros(len(targets), dtype=bool), temperature, pressure
-    )
+    of_gas, of_targets = (Mixture.of(PropertyTable.of(part)) for part in (species, targets))
+    potentials = logs + of_gas.reduced_energies(temperature, pressure)
+    energies = of_targets.reduced_energies(temperature, pressure)
     typical = np.nanmean(amounts, axis=0)
     ways = routes_to(targets, energies[0], species, typical, np.zeros(len(species)))
     names = [record.name for record in species]
