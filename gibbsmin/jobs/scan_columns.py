@@ -11,6 +11,7 @@ from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Status
+from gibbsmin.reactor.conversion import conversions
 from gibbsmin.thermo.species import Phase
 
 _STATUSES = [status.name.lower() for status in Status]
@@ -67,7 +68,7 @@ def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
             yield f"y {record.name}", "", 1.0, f"fraction {record.name}", amounts / total
         else:
             yield f"amount {record.name}", "mol", 1.0, f"amount {record.name}", amounts
-    for name, share in _conversions(step).items():
+    for name, share in conversions(step.states.inlet, model.records, found.amounts).items():
         yield f"conversion {name}", "", 1.0, f"conversion {name}", share
 
 
@@ -95,15 +96,3 @@ def _row_numbers(present: BoolArray) -> IntArray:
             np.random.default_rng(width).integers(1 << 50, size=width, dtype=np.int64)
         )
     return np.asarray(present @ weights)
-
-
-def _conversions(step: Step) -> dict[str, FloatArray]:
-    """Share of each substance of the feed that is used up, all its forms counted together."""
-    inlet, model, amounts = step.states.inlet, step.states.model, step.states.equilibria.amounts
-    conversions = {}
-    for record in inlet.records:
-        fed = inlet.amounts @ [float(r.formula == record.formula) for r in inlet.records]
-        left = amounts @ [float(r.formula == record.formula) for r in model.records]
-        with np.errstate(divide="ignore", invalid="ignore"):
-            conversions[record.name] = np.where(fed > 0.0, 1.0 - left / fed, np.nan)
-    return conversions

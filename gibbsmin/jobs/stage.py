@@ -17,6 +17,7 @@ from gibbsmin.minimise import Method, Status
 from gibbsmin.reactor.activities import element_activities
 from gibbsmin.reactor.audit import SolvedState, audit, element_potentials
 from gibbsmin.reactor.conditions import Equilibria
+from gibbsmin.reactor.conversion import conversions
 from gibbsmin.reactor.energy import EnergyBalance
 from gibbsmin.reactor.inlet import Inlet
 from gibbsmin.results import EntropyGeneration, StageOutlet, StateCertificate
@@ -118,15 +119,14 @@ def conversion(inlet: Inlet, records: Sequence[Species], outlet: FloatArray) -> 
 
     Traces below a millionth of the feed, such as a former stage's radicals, are left away.
     """
-    entering: dict[str, float] = {}
-    leaving: dict[str, float] = {}
-    for record, amount in zip(inlet.records, inlet.amounts[0].tolist(), strict=True):
-        entering[record.formula] = entering.get(record.formula, 0.0) + amount
-    for record, amount in zip(records, outlet.tolist(), strict=True):
-        leaving[record.formula] = leaving.get(record.formula, 0.0) + amount
-    missing = float("nan") if np.isnan(outlet).any() else 0.0
-    return {
-        record.name: 1.0 - leaving.get(record.formula, missing) / entering[record.formula]
-        for record in inlet.records
-        if entering[record.formula] > _TRACE * inlet.amounts[0].sum()
+    floor = _TRACE * inlet.amounts[0].sum()
+    entering = {
+        fed.name: sum(
+            amount
+            for record, amount in zip(inlet.records, inlet.amounts[0].tolist(), strict=True)
+            if record.formula == fed.formula
+        )
+        for fed in inlet.records
     }
+    shares = conversions(inlet, records, outlet[np.newaxis])
+    return {name: float(share[0]) for name, share in shares.items() if entering[name] > floor}

@@ -15,6 +15,7 @@ from gibbsmin.jobs.crossings import find_crossings
 from gibbsmin.jobs.feed_parts import resolve
 from gibbsmin.jobs.search import Path, path_of, stage_named
 from gibbsmin.jobs.train import Step
+from gibbsmin.reactor.conversion import conversions
 from gibbsmin.results import WATER
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Phase
@@ -196,21 +197,16 @@ def _fraction(step: Step, name: str, without: str = "") -> FloatArray:
 
 
 def _conversion(step: Step, name: str) -> FloatArray:
-    """Share of a substance of the feed that is used up, all its forms counted together."""
-    inlet, records = step.states.inlet, step.states.model.records
-    fed = [record for record in inlet.records if record.name == name]
-    if not fed:
+    shares = conversions(
+        step.states.inlet, step.states.model.records, step.states.equilibria.amounts
+    )
+    if name not in shares:
         raise InputError(
             f'found "{name}", which does not enter {step.stage.name}',
-            f"accepted is one of {', '.join(record.name for record in inlet.records)}",
+            f"accepted is one of {', '.join(shares)}",
             key="target.result",
         )
-    into = [record.formula == fed[0].formula for record in inlet.records]
-    out = [record.formula == fed[0].formula for record in records]
-    with np.errstate(invalid="ignore", divide="ignore"):
-        entering = inlet.amounts[:, into].sum(axis=1)
-        left = step.states.equilibria.amounts[:, out].sum(axis=1)
-        return np.asarray(1.0 - left / entering)
+    return shares[name]
 
 
 def _activity(step: Step, name: str) -> FloatArray:

@@ -1,0 +1,31 @@
+"""Conversion: how much of each substance of the feed is used up."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
+from gibbsmin.reactor.inlet import Inlet
+from gibbsmin.thermo.species import Species
+
+
+def conversions(
+    inlet: Inlet, records: Sequence[Species], amounts: FloatArray
+) -> dict[str, FloatArray]:
+    """1 − out/in of each record of the feed, (B,), all forms of a substance counted together.
+
+    NaN where nothing of it is fed or the outlet's amounts (B, S) are not known; below 0 where the
+    stage forms it.
+    """
+    unknown = np.isnan(amounts).any(axis=1)
+    shares = {}
+    for fed in inlet.records:
+        into = [record.formula == fed.formula for record in inlet.records]
+        out = [record.formula == fed.formula for record in records]
+        entering = inlet.amounts[:, into].sum(axis=1)
+        leaving = np.where(unknown, np.nan, amounts[:, out].sum(axis=1))
+        with np.errstate(divide="ignore", invalid="ignore"):
+            shares[fed.name] = np.where(entering > 0.0, 1.0 - leaving / entering, np.nan)
+    return shares
