@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
+    from gibbsmin.jobs.check import check
     from gibbsmin.jobs.onset import Onset, onset
     from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
     from gibbsmin.jobs.predict import predict
@@ -19,15 +20,19 @@ if TYPE_CHECKING:
     from gibbsmin.jobs.target import Target, target
     from gibbsmin.jobs.uncertainty import uncertainty
     from gibbsmin.results import Outlet, StageOutlet
+    from gibbsmin.sample.findings import Checks, SampleCheck
 
 __all__ = [
     "Case",
+    "Checks",
     "Onset",
     "Outlet",
+    "SampleCheck",
     "Scan",
     "Sensitivities",
     "StageOutlet",
     "Target",
+    "check",
     "load_case",
     "onset",
     "onset_uncertainty",
@@ -40,6 +45,9 @@ __all__ = [
 
 _HOMES = {
     "Case": "gibbsmin.jobs.case",
+    "Checks": "gibbsmin.sample.findings",
+    "SampleCheck": "gibbsmin.sample.findings",
+    "check": "gibbsmin.jobs.check",
     "Outlet": "gibbsmin.results",
     "StageOutlet": "gibbsmin.results",
     "load_case": "gibbsmin.jobs.case",

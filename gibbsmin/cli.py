@@ -24,6 +24,7 @@ if TYPE_CHECKING:
 
 NOT_CERTIFIED: Final = 1
 INPUT_ERROR: Final = 2
+SOME_NOT_USED: Final = 1
 
 # Wide enough that a table sent to a file or another program is not broken.
 _PIPED_WIDTH: Final = 200
@@ -233,6 +234,44 @@ def onset(
         _print(view)
     if not certified:
         raise typer.Exit(NOT_CERTIFIED)
+
+
+@app.command(short_help="Check plant samples against equilibrium.")
+def check(
+    case: Annotated[str, typer.Argument(metavar="CASE", help="A case file with [sample].")],
+    samples: Annotated[
+        str, typer.Option(metavar="FILE", help="A .csv, .xlsx or .parquet file, a row a sample.")
+    ] = "",
+    as_json: AsJson = False,
+    out: Annotated[
+        str,
+        typer.Option(metavar="FILE", help="Write a .csv, .xlsx, .parquet or .json file as well."),
+    ] = "",
+) -> None:
+    """Say whether plant samples are believable and how far they are from equilibrium.
+
+    Exit code 1 means that a row of the samples could not be used.
+    """
+    from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.check import check as check_samples
+    from gibbsmin.present.check_document import check_document
+    from gibbsmin.present.check_files import require_check_ending, write_checks
+    from gibbsmin.present.check_view import check_view
+    from gibbsmin.present.conditions_file import read_conditions
+
+    if out:
+        require_check_ending(Path(out))
+    loaded = load_case(case)
+    table = read_conditions(Path(samples)) if samples else None
+    checks = check_samples(loaded, table, samples)
+    if out:
+        write_checks(checks, Path(out))
+    if as_json:
+        _print_json(check_document(checks))
+    else:
+        _print(check_view(checks))
+    if checks.faults:
+        raise typer.Exit(SOME_NOT_USED)
 
 
 @app.command(short_help="Find species records, and show one in full.")

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import lru_cache
 from os import PathLike
 from pathlib import Path
@@ -13,9 +13,11 @@ from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis, SoughtPhase, SoughtValue
 from gibbsmin.jobs.case_axis import read_axes
 from gibbsmin.jobs.case_feed import read_streams
+from gibbsmin.jobs.case_sample import read_rules, read_sample
 from gibbsmin.jobs.case_stage import StageCase, read_stages
 from gibbsmin.jobs.case_text import read_tables
 from gibbsmin.jobs.case_uncertainty import read_correlations, read_uncertainties
+from gibbsmin.jobs.sample import PlantSample, SampleRules
 from gibbsmin.jobs.stated import Correlation, StatedUncertainty
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.fuel_correlations import FUEL_SOURCES
@@ -30,6 +32,7 @@ class Case:
 
     ``file`` is the case file's path, empty where the case came as a mapping; ``site_pressure``
     in Pa is what gauge pressures stand on.  The streams are all flows or all quantities.
+    ``sample_rules`` tell how plant samples are taken, of which ``sample`` may be one.
     ``own_records`` are those that the case itself defines, with their ``own_sources``; they extend
     the installed library.
     """
@@ -46,6 +49,8 @@ class Case:
     target: SoughtValue | None = None
     own_records: tuple[Species, ...] = ()
     own_sources: tuple[Source, ...] = ()
+    sample_rules: SampleRules = field(default_factory=SampleRules)
+    sample: PlantSample | None = None
 
     @property
     def library(self) -> Library:
@@ -80,6 +85,10 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         axes = read_axes(table.axis, feeds, table.site_pressure, library)
         uncertainties = read_uncertainties(table.uncertainty, feeds, stages, library)
         correlations = read_correlations(table.correlation, feeds, stages, library)
+        rules, sample = SampleRules(), None
+        if table.sample is not None:
+            rules = read_rules(table.sample, feeds, stages, library)
+            sample = read_sample(table.sample, rules, feeds, library)
     except InputError as error:
         raise error.at(file=file) from None
     return Case(
@@ -99,6 +108,8 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         correlations=correlations,
         own_records=own_records,
         own_sources=own_sources,
+        sample_rules=rules,
+        sample=sample,
     )
 
 

@@ -15,6 +15,7 @@ from gibbsmin.constants import STANDARD_ATMOSPHERE
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis_schema import AxisTable
 from gibbsmin.jobs.feed_schema import FeedTable
+from gibbsmin.jobs.sample_schema import SampleTable
 from gibbsmin.jobs.search_schema import OnsetTable, TargetTable
 from gibbsmin.jobs.stage_schema import NOTHING, OutletTable, SpeciesTable, StageTable
 from gibbsmin.jobs.table_schema import MISSING, Table
@@ -73,6 +74,7 @@ class CaseTable(Table):
     axis: Annotated[tuple[AxisTable, ...], BeforeValidator(_axes)] = ()
     onset: OnsetTable | None = None
     target: TargetTable | None = None
+    sample: SampleTable | None = None
     uncertainty: Annotated[dict[str, Any], BeforeValidator(read_uncertainty_table)] = NOTHING
     correlation: Annotated[tuple[CorrelationTable, ...], BeforeValidator(_correlations)] = ()
 

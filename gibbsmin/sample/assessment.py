@@ -22,6 +22,7 @@ from gibbsmin.sample.findings import (
     ReactionFinding,
     SampleCheck,
     SpeciesFinding,
+    Stream,
 )
 from gibbsmin.sample.plan import Reading
 from gibbsmin.sample.reaction_findings import reaction_findings
@@ -64,7 +65,7 @@ def findings_of(batch: Batch, labels: Sequence[Label], thresholds: Thresholds) -
     checks = []
     for state, label in enumerate(labels):
         closure, own = closures[state], reactions[state]
-        leakages = _leakages(species[state], own)
+        leakages = _leakages(species[state], own, measurements[state])
         evidence = Evidence(
             T[state],
             closure,
@@ -128,7 +129,7 @@ def _measurements(batch: Batch) -> list[tuple[Measurement, ...]]:
     arrays = (
         batch.readings.values,
         batch.readings.uncertainties,
-        batch.below_limit,
+        batch.below,
         ratio,
         u,
         closed.redundancy,
@@ -150,7 +151,7 @@ def _measurement(
     reading: Reading,
     value: float,
     uncertainty: float,
-    below_limit: bool,
+    below: float,
     fitted: float,
     u_fitted: float,
     redundancy: float,
@@ -159,11 +160,12 @@ def _measurement(
 ) -> Measurement:
     return Measurement(
         reading.name,
+        reading.record,
         reading.place,
         reading.basis,
         value,
         uncertainty,
-        below_limit,
+        below,
         Estimate(fitted, u_fitted),
         redundancy,
         adjustment,
@@ -215,11 +217,14 @@ def _measured(batch: Batch) -> FloatArray:
 
 
 def _leakages(
-    species: Sequence[SpeciesFinding], reactions: Sequence[ReactionFinding]
+    species: Sequence[SpeciesFinding],
+    reactions: Sequence[ReactionFinding],
+    measurements: Sequence[Measurement],
 ) -> tuple[Leakage, ...]:
+    below = {m.record: m.below for m in measurements if m.stream is Stream.OUTLET}
     reacting = {name for reaction in reactions for name in reaction.coefficients}
     return tuple(
-        Leakage(each.record, each.reconciled, each.equilibrium)
+        Leakage(each.record, each.reconciled, below.get(each.record, 0.0), each.equilibrium)
         for each in species
         if each.record in reacting and each.reconciled.value < _TRACE
     )

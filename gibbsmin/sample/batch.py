@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from scipy.special import chdtrc
 
-from gibbsmin.arrays import BoolArray, FloatArray, IntArray
+from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.reactor.conditions import Equilibria, at_temperature
 from gibbsmin.sample.energetics import EnergeticsBatch, energetics
 from gibbsmin.sample.equilibrium_fit import Fit, Readings, fit_equilibrium
@@ -29,7 +29,7 @@ class Batch:
     Attributes
     ----------
     plan, readings : what was measured
-    below_limit : (B, M) readings that were below a detection limit
+    below : (B, M) detection limits of the readings that were below one, else 0
     u_pressure : (B,) Pa
     closed : the closure on the element balance
     equilibria : of the reconciled feed at the measured temperature and pressure
@@ -42,7 +42,7 @@ class Batch:
 
     plan: Plan
     readings: Readings
-    below_limit: BoolArray
+    below: FloatArray
     u_pressure: FloatArray
     closed: Reconciliation
     equilibria: Equilibria
@@ -58,7 +58,7 @@ class Batch:
 def run_batch(
     plan: Plan,
     readings: Readings,
-    below_limit: BoolArray,
+    below: FloatArray,
     u_pressure: FloatArray,
     reactions: Sequence[JudgedReaction],
     library: Library,
@@ -85,7 +85,7 @@ def run_batch(
     return Batch(
         plan,
         readings,
-        below_limit,
+        below,
         u_pressure,
         closed,
         equilibria,
@@ -95,7 +95,7 @@ def run_batch(
         lower,
         upper,
         energetics(plan, y, z, equilibria),
-        solids_of(plan.species, y, T, P, library),
+        solids_of(plan.species, y, gas.faint, T, P, library),
     )
 
 

@@ -58,9 +58,11 @@ def facts(evidence: Evidence) -> Iterator[str]:
     for reaction in evidence.reactions:
         yield _reaction(reaction)
     for leakage in evidence.leakages:
+        found = f"{ppm(leakage.found.value)} ± {ppm(leakage.found.uncertainty)}"
+        found = f"below {ppm(leakage.below)}" if leakage.below else found
         yield (
-            f"{leakage.record} is {ppm(leakage.found.value)} ± {ppm(leakage.found.uncertainty)} "
-            f"of the dry gas; equilibrium would leave {ppm(leakage.equilibrium)}."
+            f"{leakage.record} is {found} of the dry gas; equilibrium would leave "
+            f"{ppm(leakage.equilibrium)}."
         )
 
 

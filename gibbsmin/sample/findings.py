@@ -43,10 +43,11 @@ class Measurement:
     Attributes
     ----------
     name : the analyte as written, lumped ones with plus signs; or such as "flow of steam"
+    record : that it is of, empty for lumped analytes and flows
     stream : outlet and inlet carry fractions, the feed flows over their nominal value
     basis : ``dry`` or ``wet`` for a fraction, ``flow`` for a flow
     value, uncertainty : as measured, with its standard uncertainty
-    below_limit : whether it was reported below a detection limit; it is then taken as half the
+    below : the detection limit below which it was reported, else 0; it is then taken as half the
         limit with the standard uncertainty of a rectangular distribution from 0 to the limit
     reconciled : the value that closes the balance
     redundancy : r from 0 to 1: which share of an error would show in this measurement's residual
@@ -56,11 +57,12 @@ class Measurement:
     """
 
     name: str
+    record: str
     stream: Stream
     basis: str
     value: float
     uncertainty: float
-    below_limit: bool
+    below: float
     reconciled: Estimate
     redundancy: float
     adjustment: float
@@ -162,10 +164,14 @@ class SpeciesFinding:
 
 @dataclass(frozen=True, slots=True)
 class Leakage:
-    """A trace residue, as a fraction of the dry gas, beside what equilibrium would leave."""
+    """A trace residue, as a fraction of the dry gas, beside what equilibrium would leave.
+
+    ``below`` is the detection limit where it was read to be below one, else 0.
+    """
 
     record: str
     found: Estimate
+    below: float
     equilibrium: float
 
 

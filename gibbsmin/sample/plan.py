@@ -64,11 +64,17 @@ class Feed:
 
 @dataclass(frozen=True)
 class Reading:
-    """What one column of measurements is: its place, name and basis."""
+    """What one column of measurements is: its place, name and basis.
+
+    ``record`` is empty where several are counted together; a flow names its ``stream``, and the
+    record where it is of one part of that.
+    """
 
     name: str
     place: Place
     basis: str
+    stream: str = ""
+    record: str = ""
 
 
 @dataclass(frozen=True, eq=False)
@@ -182,7 +188,10 @@ def _records_of(feed: Feed) -> tuple[str, ...]:
 
 def _readings(analysis: Analysis, place: Place) -> list[Reading]:
     basis = "dry" if analysis.dry else "wet"
-    return [Reading(name, place, basis) for name in analysis.names]
+    return [
+        Reading(name, place, basis, record=records[0] if len(records) == 1 else "")
+        for name, records in zip(analysis.names, analysis.analytes, strict=True)
+    ]
 
 
 def _outlet_rows(
@@ -250,7 +259,9 @@ class _Inlet:
             place, share = (places[name], 1.0) if name in places else (main, amount / rest)
             self._brought.append((stream, self._names.index(name), place, share))
         for name, place in places.items():
-            reading = Reading(f"{name} in {feed.stream.name}", Place.FEED, "flow")
+            reading = Reading(
+                f"{name} in {feed.stream.name}", Place.FEED, "flow", feed.stream.name, name
+            )
             self._rows.append((reading, {place: rest / nominal[name]}, {main: 1.0}))
         self._totals.append([main, *places.values()])
 
@@ -272,7 +283,7 @@ class _Inlet:
         scale = self.unknown()
         for feed, places, total in zip(feeds, self._totals, totals, strict=True):
             share = total / sum(totals)
-            reading = Reading(f"flow of {feed.stream.name}", Place.FEED, "flow")
+            reading = Reading(f"flow of {feed.stream.name}", Place.FEED, "flow", feed.stream.name)
             self._rows.append((reading, dict.fromkeys(places, 1.0 / share), {scale: 1.0}))
 
     def amounts(self, streams: int) -> FloatArray:

@@ -11,7 +11,7 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.reactor.balance import elements_of
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.routes import Route, routes_to
@@ -21,6 +21,9 @@ from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Phase, Species
 
 _SHOWN = 5
+_NEGLIGIBLE = 1e-3
+"""Activity below which a record is told only if no other is nearer to forming."""
+
 _ROUTES = 4
 _AWKWARD = 10
 """Routes in fractions of a mole are shown only where there is no other."""
@@ -31,6 +34,7 @@ _LARGEST_LOG = 700.0
 def solids_of(
     species: Sequence[Species],
     amounts: FloatArray,
+    faint: BoolArray,
     temperature: FloatArray,
     pressure: FloatArray,
     library: Library,
@@ -42,7 +46,9 @@ def solids_of(
     species
         The gas records of the samples.
     amounts
-        Of them, (B, n); a route from what is not there has no figure.
+        Of them, (B, n).
+    faint
+        Which of them are below their uncertainty, (B, n); no route starts from them.
     """
     targets = [
         record
@@ -51,13 +57,13 @@ def solids_of(
     ]
     if not targets or not len(amounts):
         return [() for _ in amounts]
+    seen = np.where(faint, 0.0, amounts)
     with np.errstate(divide="ignore"):
-        logs = np.log(amounts / amounts.sum(axis=1, keepdims=True))
+        logs = np.log(seen / amounts.sum(axis=1, keepdims=True))
     of_gas, of_targets = (Mixture.of(PropertyTable.of(part)) for part in (species, targets))
     potentials = logs + of_gas.reduced_energies(temperature, pressure)
     energies = of_targets.reduced_energies(temperature, pressure)
-    typical = np.nanmean(amounts, axis=0)
-    ways = routes_to(targets, energies[0], species, typical, np.zeros(len(species)))
+    ways = routes_to(targets, energies[0], species, seen.max(axis=0), np.zeros(len(species)))
     names = [record.name for record in species]
     values = [
         _values(routes, names, potentials) - energies[:, [j]] for j, routes in enumerate(ways)
@@ -99,4 +105,5 @@ def _likeliest(
         if told:
             pairs = tuple((text, float(np.exp(min(log, _LARGEST_LOG)))) for log, text in told)
             found.append(SolidFinding(target.name, pairs))
-    return tuple(sorted(found, key=lambda finding: -finding.activity)[:_SHOWN])
+    found = sorted(found, key=lambda finding: -finding.activity)[:_SHOWN]
+    return tuple(f for place, f in enumerate(found) if place == 0 or f.activity >= _NEGLIGIBLE)

@@ -28,7 +28,7 @@ def run(samples: Samples, readings: Readings) -> Batch:
     return run_batch(
         samples.plan,
         readings,
-        np.zeros(readings.values.shape, dtype=bool),
+        np.zeros(readings.values.shape),
         np.full(readings.pressure.shape, U_PRESSURE) * readings.pressure,
         reforming_and_shift(samples.plan),
         load_library(),

@@ -1,0 +1,218 @@
+"""Checked samples on the terminal: one in full, or many in a short table."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Iterator
+
+from rich.console import Group, RenderableType
+from rich.text import Text
+
+from gibbsmin.present.check_table import NOT_USED
+from gibbsmin.present.layout import heading, number, pairs, sentences, table
+from gibbsmin.present.quantities import fraction, pressure, significant, temperature
+from gibbsmin.results import CAUTIONS
+from gibbsmin.sample.findings import (
+    Checks,
+    Interval,
+    Measurement,
+    ReactionFinding,
+    SampleCheck,
+    Stream,
+    Verdict,
+)
+
+_LONGEST = 40
+"""Samples listed one by one; of more, those that need a look are."""
+
+_INFINITE = float("inf")
+
+
+def check_view(checks: Checks) -> RenderableType:
+    """One sample in full, several as a table of a line each."""
+    parts: list[RenderableType] = [heading(checks.title)] if checks.title else []
+    if len(checks.samples) + len(checks.faults) == 1 and checks.samples:
+        parts += _sample(checks.samples[0])
+    else:
+        parts += _history(checks)
+    parts += sentences("Assumptions", checks.assumptions)
+    parts += sentences("Cautions", CAUTIONS)
+    return Group(*parts)
+
+
+def _sample(sample: SampleCheck) -> list[RenderableType]:
+    judgement = sample.judgement
+    conditions = f"{temperature(sample.temperature.value)}, {pressure(sample.pressure.value)}"
+    parts: list[RenderableType] = [
+        Text(f"{sample.label}: {conditions}, ideal gas"),
+        Text(""),
+        heading(judgement.headline),
+    ]
+    parts += sentences("What is fact", judgement.facts)
+    parts += sentences("What is likely", judgement.likely)
+    parts += sentences("What to look at next", judgement.look_at)
+    parts += [heading("Measurements"), _measurements(sample)]
+    parts += [heading("Reactions"), _reactions(sample.reactions)]
+    parts += [heading("Gas, beside equilibrium at the measured conditions"), _composition(sample)]
+    parts.append(pairs(_lines(sample)))
+    if sample.solids:
+        parts += [heading("Solids and liquids that the gas could form"), _solids(sample)]
+    parts += sentences("Notes", sample.notes)
+    return parts
+
+
+def _measurements(sample: SampleCheck) -> RenderableType:
+    rows = [
+        (
+            f"{m.stream.value} {m.name}" if m.stream is Stream.INLET else m.name,
+            _read(m, m.value) if not m.below else f"<{_read(m, m.below)}",
+            _read(m, m.uncertainty),
+            _read(m, m.reconciled.value),
+            number(m.redundancy, 2),
+            number(m.adjustment, 2) if m.can_be_judged else "cannot be judged",
+        )
+        for m in sample.measurements
+    ]
+    headers = ("measurement", "measured", "± u", "reconciled", "redundancy", "adjustment, in u √r")
+    return table(headers, rows, words=("measurement",))
+
+
+def _read(measurement: Measurement, value: float) -> str:
+    """Fractions as such; flows over what the case gives."""
+    if measurement.stream is Stream.FEED:
+        return f"{significant(value, 4)} ×"
+    return fraction(value)
+
+
+def _reactions(reactions: tuple[ReactionFinding, ...]) -> RenderableType:
+    rows = []
+    for reaction in reactions:
+        told = not reaction.faint
+        rows.append(
+            (
+                reaction.text,
+                number(reaction.log_ratio.value, 3),
+                number(reaction.log_ratio.uncertainty, 3),
+                number(reaction.affinity.value / 1e3, 2),
+                number(reaction.equilibrium_temperature.value - 273.15, 1) if told else "–",
+                number(reaction.approach.value, 1) if told else "–",
+                number(reaction.approach.uncertainty, 1) if told else "–",
+                _interval(reaction.approach_limit),
+                reaction.side.value,
+            )
+        )
+    headers = (
+        "reaction",
+        "ln(Q/K)",
+        "± u",
+        "affinity, kJ/mol",
+        "T_eq, °C",
+        "T − T_eq, K",
+        "± u, K",
+        "95 %, K",
+        "stands",
+    )
+    return table(headers, rows, words=("reaction", "stands"))
+
+
+def _probability(value: float) -> str:
+    return "<0.001" if value < 0.001 else number(value, 3)
+
+
+def _interval(interval: Interval) -> str:
+    if interval.lower == -_INFINITE and interval.upper == _INFINITE:
+        return "no limit"
+    if interval.lower == -_INFINITE:
+        return f"at most {number(interval.upper, 1)}"
+    if interval.upper == _INFINITE:
+        return f"at least {number(interval.lower, 1)}"
+    return f"{number(interval.lower, 1)} to {number(interval.upper, 1)}"
+
+
+def _composition(sample: SampleCheck) -> RenderableType:
+    rows = [
+        (
+            each.record,
+            fraction(each.measured),
+            fraction(each.reconciled.value),
+            fraction(each.reconciled.uncertainty),
+            fraction(each.equilibrium),
+            number(each.difference, 1),
+            fraction(each.wet_fraction.value),
+        )
+        for each in sample.composition
+    ]
+    headers = (
+        "of the dry gas",
+        "measured",
+        "reconciled",
+        "± u",
+        "equilibrium",
+        "difference, in u",
+        "wet gas",
+    )
+    return table(headers, rows, words=("of the dry gas",))
+
+
+def _lines(sample: SampleCheck) -> Iterator[tuple[str, str]]:
+    fit, energetics = sample.equilibrium, sample.energetics
+    if fit.temperature.value == fit.temperature.value:
+        limits = Interval(
+            fit.temperature_limit.lower - 273.15, fit.temperature_limit.upper - 273.15, 0.95
+        )
+        yield (
+            "temperature of best fit",
+            f"{temperature(fit.temperature.value)}, 95 %: {_interval(limits)} °C",
+        )
+    yield (
+        "excess Gibbs energy",
+        f"{significant(energetics.excess_gibbs_energy)} J per mole of dry gas, "
+        f"{significant(energetics.excess_over_RT)} RT",
+    )
+    if energetics.entropy_as_run == energetics.entropy_as_run:
+        yield (
+            "entropy generated, as run",
+            f"{significant(energetics.entropy_as_run)} J/K per mole of dry gas",
+        )
+        yield (
+            "entropy generated, at equilibrium",
+            f"{significant(energetics.entropy_limit)} J/K per mole of dry gas",
+        )
+
+
+def _solids(sample: SampleCheck) -> RenderableType:
+    rows = [
+        (solid.record if place == 0 else "", text, significant(activity, 3))
+        for solid in sample.solids
+        for place, (text, activity) in enumerate(solid.routes)
+    ]
+    return table(("record", "route", "activity"), rows, words=("record", "route"))
+
+
+def _history(checks: Checks) -> list[RenderableType]:
+    counts = Counter(sample.judgement.verdict for sample in checks.samples)
+    rows = [(verdict.value, str(counts[verdict])) for verdict in Verdict if counts[verdict]]
+    if checks.faults:
+        rows.append((NOT_USED, str(len(checks.faults))))
+    parts: list[RenderableType] = [heading("Verdicts"), table(("verdict", "samples"), rows)]
+    every = len(checks.samples) <= _LONGEST
+    listed = [
+        sample
+        for sample in checks.samples
+        if every or sample.judgement.verdict is not Verdict.AT_EQUILIBRIUM
+    ][:_LONGEST]
+    lines = [
+        (
+            sample.label,
+            f"{sample.temperature.value - 273.15:.1f}",
+            _probability(sample.closure.probability),
+            _probability(sample.equilibrium.at_measured.probability),
+            sample.judgement.headline,
+        )
+        for sample in listed
+    ]
+    headers = ("sample", "T, °C", "closure p", "equilibrium p", "verdict")
+    parts.append(heading("Samples" if every else "Samples off equilibrium, the first ones"))
+    parts.append(table(headers, lines, words=("sample", "verdict")))
+    faults = [f"{fault.label}: {fault.sentence}" for fault in checks.faults[:_LONGEST]]
+    return parts + sentences("Not used", faults)
