@@ -282,7 +282,7 @@ def test_composition_of_air_sums_to_one() -> None:
             {},
             'oulet: found an unknown key (nearest: "outlet"); '
             "accepted is title, site_pressure, feed, outlet, stage, species, axis, onset, target, "
-            "uncertainty or correlation.",
+            "sample, uncertainty or correlation.",
         ),
         (
             "feed/gas/temperature",
