@@ -9,7 +9,10 @@ from gibbsmin.jobs.sample_plan import Reactor
 from gibbsmin.sample.findings import SampleCheck
 from gibbsmin.thermo.library import Library
 
-NOT_COUNTED = "The uncertainty of the thermochemical values themselves is not counted."
+NOT_COUNTED = (
+    "The uncertainty of the thermochemical values is the same in all samples; it is told beside each "
+    "reaction (u of the data) and not counted in the verdict."
+)
 
 
 def assumptions_of(reactor: Reactor, samples: Sequence[PlantSample]) -> tuple[str, ...]:

@@ -110,7 +110,8 @@ def _reaction(reaction: ReactionFinding) -> dict[str, Any]:
     return {
         "reaction": reaction.text,
         "ln_Q": _estimate(reaction.log_quotient),
-        "ln_K": _number(reaction.log_constant),
+        "ln_K": _estimate(reaction.log_constant),
+        "data_uncertainty_K": _number(reaction.data_uncertainty),
         "ln_Q_over_K": _estimate(reaction.log_ratio),
         "affinity_J_per_mol": _estimate(reaction.affinity),
         "equilibrium_temperature_K": _estimate(reaction.equilibrium_temperature),

@@ -46,6 +46,7 @@ def _row(sample: SampleCheck) -> dict[str, Any]:
     for reaction in sample.reactions:
         name = reaction.text
         row |= _pair(f"T - T_eq, K: {name}", reaction.approach)
+        row[f"u of the data, K: {name}"] = reaction.data_uncertainty
         row[f"T - T_eq lower 95 %, K: {name}"] = reaction.approach_limit.lower
         row[f"T - T_eq upper 95 %, K: {name}"] = reaction.approach_limit.upper
         row |= _pair(f"ln(Q/K): {name}", reaction.log_ratio)

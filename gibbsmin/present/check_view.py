@@ -98,6 +98,7 @@ def _reactions(reactions: tuple[ReactionFinding, ...]) -> RenderableType:
                 number(reaction.approach.value, 1) if told else "–",
                 number(reaction.approach.uncertainty, 1) if told else "–",
                 _interval(reaction.approach_limit),
+                number(reaction.data_uncertainty, 1) if told else "–",
                 reaction.side.value,
             )
         )
@@ -110,6 +111,7 @@ def _reactions(reactions: tuple[ReactionFinding, ...]) -> RenderableType:
         "T − T_eq, K",
         "± u, K",
         "95 %, K",
+        "u of the data, K",
         "stands",
     )
     return table(headers, rows, words=("reaction", "stands"))

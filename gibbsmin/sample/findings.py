@@ -116,7 +116,9 @@ class ReactionFinding:
     text : the reaction as written
     coefficients : ν by record name, products positive
     log_quotient : ln Q at the sample's composition and pressure
-    log_constant : ln K at the sample's temperature
+    log_constant : ln K at the sample's temperature; its uncertainty is that of the thermochemical
+        values, alike in all samples, which no other figure here counts (NaN for a K of the user's)
+    data_uncertainty : what that makes of T_eq and the approach, K
     log_ratio : ln(Q/K); its uncertainty includes those of temperature and pressure
     affinity : −RT ln(Q/K), J/mol, positive where the reaction wants to go on as written
     equilibrium_temperature : K at which K = Q; NaN where undefined
@@ -133,7 +135,8 @@ class ReactionFinding:
     text: str
     coefficients: Mapping[str, float]
     log_quotient: Estimate
-    log_constant: float
+    log_constant: Estimate
+    data_uncertainty: float
     log_ratio: Estimate
     affinity: Estimate
     equilibrium_temperature: Estimate

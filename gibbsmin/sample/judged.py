@@ -74,6 +74,8 @@ class Judged:
     log_Q: FloatArray
     u_log_Q: FloatArray
     log_K: FloatArray
+    u_log_K: FloatArray
+    data_uncertainty: FloatArray
     log_ratio: FloatArray
     u_log_ratio: FloatArray
     temperature: FloatArray
@@ -137,6 +139,7 @@ def _judged(gas: Gas, reaction: JudgedReaction, nu: FloatArray, extent: FloatArr
         u_T_eq = np.where(
             np.isfinite(T_eq), u_Q * GAS_CONSTANT * T_eq**2 / np.abs(enthalpy), np.nan
         )
+        of_data = constant.u_log_K(T_eq) * GAS_CONSTANT * T_eq**2 / np.abs(enthalpy)
     of_temperature = constant.enthalpy(T) / (GAS_CONSTANT * T**2) * gas.u_temperature
     u_ratio = np.hypot(u_Q, of_temperature)
     u_approach = np.hypot(gas.u_temperature, u_T_eq)
@@ -147,6 +150,8 @@ def _judged(gas: Gas, reaction: JudgedReaction, nu: FloatArray, extent: FloatArr
         log_Q,
         u_Q,
         log_K,
+        constant.u_log_K(T),
+        of_data,
         log_Q - log_K,
         u_ratio,
         T_eq,

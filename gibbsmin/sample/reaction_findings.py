@@ -44,6 +44,8 @@ def _findings(batch: Batch, judged: Judged, thresholds: Thresholds) -> list[Reac
         judged.lower,
         judged.upper,
         judged.forward,
+        judged.u_log_K,
+        judged.data_uncertainty,
     )
     sides = _sides(judged, thresholds)
     reasons = _reasons(judged)
@@ -59,7 +61,8 @@ def _findings(batch: Batch, judged: Judged, thresholds: Thresholds) -> list[Reac
             text=reaction.text,
             coefficients=reaction.coefficients,
             log_quotient=Estimate(row[0], row[1]),
-            log_constant=row[2],
+            log_constant=Estimate(row[2], row[14]),
+            data_uncertainty=row[15],
             log_ratio=Estimate(row[3], row[4]),
             affinity=Estimate(row[5], row[6]),
             equilibrium_temperature=Estimate(row[7], row[8]),

@@ -37,6 +37,9 @@ class Constant(Protocol):
     def enthalpy(self, T: FloatArray) -> FloatArray:
         """ΔrH, J/mol."""
 
+    def u_log_K(self, T: FloatArray) -> FloatArray:
+        """Standard uncertainty of ln K from that of the values behind it; NaN where unknown."""
+
 
 @dataclass(frozen=True, eq=False)
 class LibraryConstant:
@@ -54,6 +57,13 @@ class LibraryConstant:
     def enthalpy(self, T: FloatArray) -> FloatArray:
         """ΔrH = Σ ν H."""
         return np.asarray(self.properties.enthalpy(T) @ self.coefficients)
+
+    def u_log_K(self, T: FloatArray) -> FloatArray:
+        """u² = Σ ν² (u(ΔfH)²/(RT)² + u(S)²/R²), the values of all records taken as independent."""
+        squares = self.coefficients**2
+        of_H = squares @ np.array([r.u_dfH298**2 for r in self.properties.records])
+        of_S = squares @ np.array([r.u_S298**2 for r in self.properties.records])
+        return np.asarray(np.sqrt(of_H / T**2 + of_S) / GAS_CONSTANT)
 
 
 @dataclass(frozen=True, eq=False)
@@ -75,6 +85,10 @@ class GivenConstant:
     def enthalpy(self, T: FloatArray) -> FloatArray:
         """ΔrH = −R d ln K/d(1/T)."""
         return np.asarray(-GAS_CONSTANT * self._slope(self._piece(T)))
+
+    def u_log_K(self, T: FloatArray) -> FloatArray:
+        """Nothing is known of it."""
+        return np.full(T.shape, np.nan)
 
     def _piece(self, T: FloatArray) -> FloatArray:
         return np.clip(np.searchsorted(self.temperatures, T) - 1, 0, len(self.temperatures) - 2)
