@@ -10,8 +10,8 @@ from gibbsmin.sample.findings import SampleCheck
 from gibbsmin.thermo.library import Library
 
 NOT_COUNTED = (
-    "The uncertainty of the thermochemical values is the same in all samples; it is told beside each "
-    "reaction (u of the data) and not counted in the verdict."
+    "The uncertainty of the thermochemical values is the same in all samples; it is told beside "
+    "each reaction (u of the data) and not counted in the verdict."
 )
 
 
