@@ -127,8 +127,10 @@ class SpectrumTable(Table):
         (0.0, 1.0),
     )
     anharmonicity: Number = 0.0
+    cubic_anharmonicity: Number = 0.0
     coupling: Number = 0.0
     distortion: Number = 0.0
+    stretching: Number = 0.0
     internal_rotation: Annotated[tuple[RotorTable, ...], BeforeValidator(tuple)] = ()
 
 

@@ -172,6 +172,8 @@ def _of_spectrum(given: SpectrumTable, composition: Formula, mass: float) -> The
         vibrations=tuple((w, int(count)) for w, count in given.vibrations),
         electronic=given.electronic,
         anharmonicity=given.anharmonicity,
+        cubic_anharmonicity=given.cubic_anharmonicity,
+        stretching=given.stretching,
         coupling=given.coupling,
         distortion=given.distortion,
         internal_rotations=tuple(

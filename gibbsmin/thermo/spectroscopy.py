@@ -6,14 +6,11 @@ Each kind of motion has a partition function; with x = E/kT over levels of degen
 
 and the kinds add up.  Translation is that of the ideal gas at P° (O. Sackur, H. Tetrode, 1912);
 rotation that of a rigid top, with the first terms of H. P. Mulholland (Proc. Camb. Phil. Soc. 24
-(1928) 280) where it is linear; vibration that of harmonic oscillators.  A diatomic molecule whose
-anharmonicity is given is summed over its levels
-
-    E(v, J) = ωe (v + ½) − ωexe (v + ½)² + (Be − αe (v + ½)) J(J + 1) − De J²(J + 1)²
-
-up to where they cease to rise (G. Herzberg, Spectra of Diatomic Molecules, 1950).  An internal
-rotation in V (1 − cos nφ)/2 is summed over its eigenvalues (K. S. Pitzer, J. Chem. Phys. 5 (1937)
-469, found here by diagonalising the Hamiltonian of free rotors).
+(1928) 280) where it is linear, and with a factor 1 + ρT where it stretches (E. B. Wilson, J. Chem.
+Phys. 4 (1936) 526); vibration that of harmonic oscillators.  A diatomic molecule with an
+anharmonicity, and an internal rotation, are summed over their levels, see ``energy_levels``.
+Nuclear spin is left out, as tables do: hydrogen below 300 K, whose ortho and para forms matter,
+is not described.
 """
 
 from __future__ import annotations
@@ -30,20 +27,16 @@ from gibbsmin.constants import (
     BOLTZMANN_CONSTANT,
     GAS_CONSTANT,
     PLANCK_CONSTANT,
-    SPEED_OF_LIGHT,
     STANDARD_PRESSURE,
 )
 from gibbsmin.errors import InputError
+from gibbsmin.thermo.energy_levels import KELVIN_PER_WAVENUMBER, Diatomic, hindered_levels
 
-_KELVIN_PER_WAVENUMBER: Final = 100.0 * PLANCK_CONSTANT * SPEED_OF_LIGHT / BOLTZMANN_CONSTANT
-"""hc/k of 1 cm⁻¹, K."""
-
-SYMMETRY_NUMBERS: Final = (1, 2, 3, 4, 6, 8, 10, 12, 24, 60)
+SYMMETRY_NUMBERS: Final = (1, 2, 3, 4, 5, 6, 8, 10, 12, 24, 60)
 """Numbers of rotations that bring a molecule onto itself (of the point groups molecules have)."""
 
-_HIGHEST_ROTATION: Final = 400
-_FREE_ROTORS: Final = 80
-_HIGHEST_LEVEL: Final = 60
+_CLASSICAL: Final = 1.5
+"""kT/hcB from which a rotation counts as classical: S then is good to 0.1 J/mol/K."""
 
 
 @dataclass(frozen=True)
@@ -73,9 +66,10 @@ class Spectrum:
     rotational_constants : cm⁻¹; none of an atom, one of a linear molecule, three of another
     vibrations : wavenumber in cm⁻¹ and degeneracy of each
     electronic : energy in cm⁻¹ and degeneracy of each level, the lowest at 0
-    anharmonicity, coupling, distortion : ωexe, αe and De of a diatomic molecule, cm⁻¹; its
-        rotational constant then is Be and its one wavenumber ωe
+    anharmonicity, cubic_anharmonicity, coupling, distortion : ωexe, ωeye, αe and De of a diatomic
+        molecule, cm⁻¹; its rotational constant then is Be and its one wavenumber ωe
     internal_rotations : in place of as many vibrations
+    stretching : ρ in 1/K, of a molecule that stretches as it rotates
     """
 
     molar_mass: float
@@ -84,9 +78,11 @@ class Spectrum:
     vibrations: tuple[tuple[float, int], ...]
     electronic: tuple[tuple[float, float], ...] = ((0.0, 1.0),)
     anharmonicity: float = 0.0
+    cubic_anharmonicity: float = 0.0
     coupling: float = 0.0
     distortion: float = 0.0
     internal_rotations: tuple[InternalRotation, ...] = ()
+    stretching: float = 0.0
 
     def __post_init__(self) -> None:
         if self.symmetry_number not in SYMMETRY_NUMBERS:
@@ -114,6 +110,13 @@ class Spectrum:
                 "accepted are wavenumbers in 1/cm",
                 key="vibrations",
             )
+
+    @property
+    def classical_from(self) -> float:
+        """T in K from which the rotation is classical within 0.1 J/mol/K of S; 0 of a sum."""
+        if self.anharmonicity or not self.rotational_constants:
+            return 0.0
+        return _CLASSICAL * KELVIN_PER_WAVENUMBER * max(self.rotational_constants)
 
     @property
     def motions(self) -> int:
@@ -161,26 +164,34 @@ def _translation(molar_mass: float, T: FloatArray) -> _Part:
 
 
 def _rotation(spectrum: Spectrum, T: FloatArray) -> _Part:
-    constants = np.array(spectrum.rotational_constants) * _KELVIN_PER_WAVENUMBER
+    constants = np.array(spectrum.rotational_constants) * KELVIN_PER_WAVENUMBER
     nothing = np.zeros(T.shape)
     if constants.size == 0:
         return nothing, nothing, nothing
     log_sigma = np.log(spectrum.symmetry_number)
     if constants.size == 3:
         log_q = 0.5 * (np.log(np.pi) + 3.0 * np.log(T) - np.log(constants).sum()) - log_sigma
-        return nothing + 1.5, log_q + 1.5, nothing + 1.5
+        return _stretched(spectrum.stretching, T, (nothing + 1.5, log_q + 1.5, nothing + 1.5))
     x = constants[0] / T
     series = 1.0 + x / 3.0 + x**2 / 15.0
     # −d ln(series)/d ln x gives H/RT beyond 1.
     slope = (x / 3.0 + 2.0 * x**2 / 15.0) / series
     H = 1.0 - slope
     bend = (x / 3.0 + 4.0 * x**2 / 15.0) / series - slope**2
-    return 1.0 + bend, np.log(series / x) - log_sigma + H, H
+    rigid = (H + bend, np.log(series / x) - log_sigma + H, H)
+    return _stretched(spectrum.stretching, T, rigid)
+
+
+def _stretched(rho: float, T: FloatArray, rigid: _Part) -> _Part:
+    """The factor 1 + ρT of the partition function."""
+    share = rho * T / (1.0 + rho * T)
+    Cp, S, H = rigid
+    return Cp + share * (2.0 - share), S + np.log1p(rho * T) + share, H + share
 
 
 def _vibration(wavenumber: float, count: int, T: FloatArray) -> _Part:
     """Above the level of no quantum, whose energy belongs to the enthalpy of formation."""
-    x = wavenumber * _KELVIN_PER_WAVENUMBER / T
+    x = wavenumber * KELVIN_PER_WAVENUMBER / T
     left = -np.expm1(-x)
     mean = x * np.exp(-x) / left
     Cp = x**2 * np.exp(-x) / left**2
@@ -191,7 +202,7 @@ def _of_levels(
     energies: FloatArray, degeneracies: FloatArray, T: FloatArray, symmetry_number: int = 1
 ) -> _Part:
     """Levels in cm⁻¹, (L,), counted from the lowest."""
-    x = (energies - energies.min())[:, np.newaxis] * _KELVIN_PER_WAVENUMBER / T
+    x = (energies - energies.min())[:, np.newaxis] * KELVIN_PER_WAVENUMBER / T
     weights = degeneracies[:, np.newaxis] * np.exp(-x)
     Z = weights.sum(axis=0)
     mean = (weights * x).sum(axis=0) / Z
@@ -205,7 +216,6 @@ def _electronic(spectrum: Spectrum) -> tuple[FloatArray, FloatArray]:
 
 
 def _diatomic_levels(spectrum: Spectrum) -> tuple[FloatArray, FloatArray]:
-    """Levels of vibration and rotation below the top of the vibrational ladder."""
     if len(spectrum.rotational_constants) != 1 or len(spectrum.vibrations) != 1:
         raise InputError(
             "found an anharmonicity of a molecule that is not diatomic",
@@ -213,29 +223,16 @@ def _diatomic_levels(spectrum: Spectrum) -> tuple[FloatArray, FloatArray]:
             key="anharmonicity",
         )
     (B,), ((w, _),) = spectrum.rotational_constants, spectrum.vibrations
-    v = np.arange(_HIGHEST_LEVEL) + 0.5
-    ladder = w * v - spectrum.anharmonicity * v**2
-    rising = np.flatnonzero(np.diff(ladder) <= 0.0)
-    v = v[: rising[0] + 1] if rising.size else v
-    J = np.arange(_HIGHEST_ROTATION)
-    turn = (J * (J + 1))[np.newaxis]
-    constants = (B - spectrum.coupling * v)[:, np.newaxis]
-    levels = (
-        (w * v - spectrum.anharmonicity * v**2)[:, np.newaxis]
-        + constants * turn
-        - spectrum.distortion * turn**2
-    )
-    # Where the centrifugal term outweighs, levels would fall again: these are no bound states.
-    bound = (constants > 0.0) & (constants - 2.0 * spectrum.distortion * turn > 0.0)
-    weights = np.broadcast_to(2.0 * J + 1.0, levels.shape)
-    return levels[bound], weights[bound]
+    return Diatomic(
+        we=w,
+        wexe=spectrum.anharmonicity,
+        weye=spectrum.cubic_anharmonicity,
+        Be=B,
+        alpha_e=spectrum.coupling,
+        De=spectrum.distortion,
+    ).levels()
 
 
 def _rotor_levels(rotor: InternalRotation) -> tuple[FloatArray, FloatArray]:
-    """Eigenvalues of −F d²/dφ² + V (1 − cos nφ)/2 among free rotors exp(imφ)."""
-    m = np.arange(-_FREE_ROTORS, _FREE_ROTORS + 1)
-    hamiltonian = np.diag(rotor.constant * m.astype(float) ** 2 + rotor.barrier / 2.0)
-    for shift in (-rotor.fold, rotor.fold):
-        hamiltonian += np.diag(np.full(m.size - rotor.fold, -rotor.barrier / 4.0), shift)
-    levels = np.asarray(np.linalg.eigvalsh(hamiltonian), dtype=np.float64)
+    levels = hindered_levels(rotor.constant, rotor.barrier, rotor.fold)
     return levels, np.ones(levels.size)
