@@ -15,6 +15,7 @@ from gibbsmin.jobs.feed_parts import placed, resolve
 from gibbsmin.jobs.sample import AskedReaction, GasRules, PlantSample, SampleRules
 from gibbsmin.jobs.sample_flow import flow_ratio
 from gibbsmin.jobs.sample_reading import (
+    STEAM_RATIO,
     GasReading,
     UncertaintyRules,
     read_own_uncertainty,
@@ -29,7 +30,7 @@ from gibbsmin.units import read_share, read_temperature, read_temperature_differ
 if TYPE_CHECKING:
     from gibbsmin.jobs.sample_schema import ReactionTable, SampleTable
 
-_SHARES = ("reading", "floor", "trace_floor", "pressure", "flow")
+_SHARES = ("reading", "floor", "trace_floor", "pressure", "flow", "steam_ratio")
 
 
 def read_rules(
@@ -99,6 +100,13 @@ def read_sample(
     inlet = {}
     if table.inlet is not None and table.inlet.analysis is not None:
         inlet = _readings("sample.inlet.analysis", table.inlet.analysis, own)
+    outlet = _readings("sample.analysis", table.analysis, own)
+    for readings, ratio in (
+        (outlet, table.steam_ratio),
+        (inlet, table.inlet.steam_ratio if table.inlet else None),
+    ):
+        if ratio is not None:
+            readings[STEAM_RATIO] = GasReading(ratio, own.steam_ratio * ratio)
     feeds = {}
     for name, amount in table.feed.items():
         with placed(f"sample.feed.{name}"):
@@ -112,7 +120,7 @@ def read_sample(
         u_pressure=own.pressure * table.pressure,
         dry=rules.outlet.dry,
         normalised=rules.outlet.normalised,
-        outlet=_readings("sample.analysis", table.analysis, own),
+        outlet=outlet,
         inlet=inlet,
         inlet_dry=rules.inlet.dry,
         inlet_normalised=rules.inlet.normalised,

@@ -9,7 +9,7 @@ from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.feed_parts import resolve
 from gibbsmin.jobs.sample_flow import nominal_flow, stream_named
-from gibbsmin.jobs.sample_reading import in_fraction_unit, read_fraction_unit
+from gibbsmin.jobs.sample_reading import STEAM_RATIO, in_fraction_unit, read_fraction_unit
 from gibbsmin.units import Unit, read_amount, read_quantity
 
 _LABELS = ("label", "time")
@@ -60,6 +60,8 @@ def read_column(title: str, case: Case) -> Column:
         return _feed_column(title, name, unit, is_uncertainty, case)
     place = "inlet" if text.startswith(_INLET) else "outlet"
     analyte = text.removeprefix(_INLET).strip()
+    if analyte == STEAM_RATIO:
+        return Column(title, place, analyte, is_uncertainty)
     for part in analyte.split("+"):
         resolve(part.strip(), case.library)
     basis = unit.rpartition(" ")[2] if unit.endswith((" dry", " wet")) else ""

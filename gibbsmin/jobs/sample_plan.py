@@ -14,9 +14,10 @@ from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.feed_parts import ANALYSIS_SPREAD, resolve
 from gibbsmin.jobs.sample import GasRules, PlantSample, SampleRules
-from gibbsmin.jobs.sample_reading import GasReading
+from gibbsmin.jobs.sample_reading import STEAM_RATIO, GasReading
 from gibbsmin.reactor.balance import elements_of
 from gibbsmin.reactor.streams import Stream, first
+from gibbsmin.results import WATER
 from gibbsmin.sample.equilibrium_fit import Readings
 from gibbsmin.sample.findings import Stream as Place
 from gibbsmin.sample.plan import Analysis, Feed, Plan, Reading, plan_of
@@ -72,23 +73,30 @@ def require_sense(sample: PlantSample, dried: Sequence[str], library: Library) -
     ------
     InputError
         for readings that add up to far more than 100 % (or to less, if they were scaled to it),
-        a record counted twice, and one in a dry analysis that drying removes.
+        a record counted twice, one in a dry analysis that drying removes, and a steam ratio
+        beside a wet analysis.
     """
     gases = (
         ("", sample.outlet, sample.dry, sample.normalised),
         ("inlet ", sample.inlet, sample.inlet_dry, sample.inlet_normalised),
     )
     for place, readings, dry, normalised in gases:
-        total = sum(reading.value for reading in readings.values())
+        fractions = {name: read for name, read in readings.items() if name != STEAM_RATIO}
+        total = sum(reading.value for reading in fractions.values())
         if total > _LARGEST_SUM:
             raise InputError(
                 f"found {place}readings that add up to {100 * total:.4g} %",
                 f"accepted is at most {100 * _LARGEST_SUM:.0f} %",
             )
-        if readings and normalised and abs(total - 1.0) > ANALYSIS_SPREAD:
+        if fractions and normalised and abs(total - 1.0) > ANALYSIS_SPREAD:
             raise InputError(
                 f"found {place}readings that add up to {100 * total:.4g} %, said to be normalised",
                 "accepted is 99.5 to 100.5 %, or an analysis that is not normalised",
+            )
+        if STEAM_RATIO in readings and not (dry and WATER in dried):
+            raise InputError(
+                f"found a steam ratio beside a wet {place}analysis",
+                "accepted is a reading of H2O in its place",
             )
         counted: set[str] = set()
         for analyte, reading in readings.items():
@@ -99,7 +107,7 @@ def require_sense(sample: PlantSample, dried: Sequence[str], library: Library) -
                         "accepted is each record in one reading",
                     )
                 counted.add(name)
-                if dry and name in dried and reading.value > 0.0:
+                if dry and name in dried and analyte != STEAM_RATIO and reading.value > 0.0:
                     raise InputError(
                         f"found a {place}reading of {name} in a dry analysis",
                         f"accepted is a wet analysis, or one without {name}",
@@ -148,7 +156,7 @@ def batch_plan(
                 rules.inlet,
                 samples[0].inlet_dry,
                 samples[0].inlet_normalised,
-                [name for name in rules.dried if name in stream.amounts],
+                [name for name in rules.dried if _is_wet(name, stream, samples)],
                 fed,
                 library,
             )
@@ -211,7 +219,15 @@ def _analysis(
     return Analysis(analytes, tuple(names), dry, normalised, records, tuple(dried))
 
 
+def _is_wet(name: str, stream: Stream, samples: Sequence[PlantSample]) -> bool:
+    """Whether an analysed stream holds what drying removes: by the case, or by a steam ratio."""
+    stated = name == WATER and any(STEAM_RATIO in sample.inlet for sample in samples)
+    return name in stream.amounts or stated
+
+
 def _records(analyte: str, library: Library) -> tuple[str, ...]:
+    if analyte == STEAM_RATIO:
+        return (WATER,)
     return tuple(resolve(part.strip(), library).name for part in analyte.split("+"))
 
 

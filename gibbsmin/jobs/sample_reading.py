@@ -45,6 +45,7 @@ class UncertaintyRules:
     temperature : K
     pressure : share of the absolute pressure
     flow : share of a feed flow
+    steam_ratio : share of a ratio of steam to dry gas
     own : fraction of the gas, by analyte
     """
 
@@ -54,6 +55,7 @@ class UncertaintyRules:
     temperature: float = 3.0
     pressure: float = 0.005
     flow: float = 0.01
+    steam_ratio: float = 0.02
     own: Mapping[str, float] = field(default_factory=dict)
 
     def of_reading(self, analyte: str, value: float, unit: str) -> float:
@@ -62,6 +64,10 @@ class UncertaintyRules:
             return self.own[analyte]
         floor = self.trace_floor if unit in ("ppm", "ppb") else self.floor
         return math.hypot(self.reading * value, floor)
+
+
+STEAM_RATIO = "steam ratio"
+"""The analyte that stands for moles of steam to a mole of dry gas."""
 
 
 def read_reading(

@@ -41,6 +41,14 @@ def _tables(given: object) -> tuple[Any, ...]:
     return tuple(given)
 
 
+def _steam_ratio(given: object) -> float:
+    if isinstance(given, bool) or not isinstance(given, int | float) or not 0.0 < given < 1e6:
+        raise InputError(
+            f"found {shown(given)}", "accepted is moles of steam to a mole of dry gas, such as 0.4"
+        )
+    return float(given)
+
+
 def _probability(given: object) -> float:
     share = read_share(given)
     if not 0.0 < share < 1.0:
@@ -59,6 +67,7 @@ _Analysis = Annotated[
     Mapping[str, Any],
     _table('accepted is a table of readings, such as { H2 = "71.9 %", CO = "<50 ppm" }'),
 ]
+_SteamRatio = Annotated[float, BeforeValidator(_steam_ratio)]
 _Basis = Annotated[Literal["dry", "wet"], word("dry", "wet")]
 _Normalised = Annotated[bool, BeforeValidator(_yes)]
 _Uncertainty = Annotated[
@@ -74,6 +83,7 @@ class InletTable(Table):
     basis: _Basis = "dry"
     normalised: _Normalised = False
     analysis: _Analysis | None = None
+    steam_ratio: _SteamRatio | None = None
     unmeasured: Names = ()
 
 
@@ -109,6 +119,7 @@ class SampleTable(Table):
     basis: _Basis = "dry"
     normalised: _Normalised = False
     analysis: _Analysis | None = None
+    steam_ratio: _SteamRatio | None = None
     removed_by_drying: Names = ("H2O",)
     unmeasured: Names = ()
     feed: Annotated[

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import replace
+from functools import partial
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
@@ -18,7 +19,12 @@ from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.sample import PlantSample, SampleRules
 from gibbsmin.jobs.sample_columns import Column, read_column, refuse_doubles
-from gibbsmin.jobs.sample_reading import GasReading, read_reading
+from gibbsmin.jobs.sample_reading import (
+    STEAM_RATIO,
+    GasReading,
+    UncertaintyRules,
+    read_reading,
+)
 from gibbsmin.sample.findings import SampleFault
 from gibbsmin.units import shown
 
@@ -95,9 +101,7 @@ def _sample(
         return values
 
     def gas(kind: str) -> dict[str, GasReading]:
-        readings = each(
-            kind, False, lambda c, cell: read_reading(_number_or_text(cell), c.name, own, c.unit)
-        )
+        readings = each(kind, False, partial(_reading, rules=own))
         given = each(kind, True, lambda c, cell: _positive(cell) * c.scale)
         return {
             name: replace(reading, uncertainty=given[name])
@@ -186,6 +190,13 @@ def _is_dry(filled: Sequence[tuple[Column, Any]], kind: str, default: bool, numb
             key=f"row {number}",
         )
     return "dry" in stated if stated else default
+
+
+def _reading(column: Column, cell: Any, rules: UncertaintyRules) -> GasReading:
+    if column.name == STEAM_RATIO:
+        ratio = _positive(cell)
+        return GasReading(ratio, rules.steam_ratio * ratio)
+    return read_reading(_number_or_text(cell), column.name, rules, column.unit)
 
 
 def _in_si(column: Column, cell: Any) -> float:

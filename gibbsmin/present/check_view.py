@@ -78,9 +78,11 @@ def _measurements(sample: SampleCheck) -> RenderableType:
 
 
 def _read(measurement: Measurement, value: float) -> str:
-    """Fractions as such; flows over what the case gives."""
+    """Fractions as such, ratios as numbers; flows over what the case gives."""
     if measurement.stream is Stream.FEED:
         return f"{significant(value, 4)} ×"
+    if measurement.basis == "ratio":
+        return significant(value, 4)
     return fraction(value)
 
 

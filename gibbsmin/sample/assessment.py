@@ -235,7 +235,7 @@ def _fits(batch: Batch) -> list[EquilibriumFit]:
     anywhere = _closures(*difference(batch.best_fit, batch.closed))
     temperatures = _paired(batch.best_fit.temperature, batch.best_fit.u_temperature)
     limits = zip(batch.lower.tolist(), batch.upper.tolist(), strict=True)
-    certified = batch.equilibria.solution.certified & np.isfinite(batch.measured_fit.chi_square)
+    certified = np.isfinite(batch.measured_fit.chi_square)
     return [
         EquilibriumFit(first, second, temperature, Interval(*ends, 0.95), proved)
         for first, second, temperature, ends, proved in zip(

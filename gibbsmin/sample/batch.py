@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from scipy.special import chdtrc
 
-from gibbsmin.arrays import FloatArray, IntArray
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.reactor.conditions import Equilibria, at_temperature
 from gibbsmin.sample.energetics import EnergeticsBatch, energetics
 from gibbsmin.sample.equilibrium_fit import Fit, Readings, fit_equilibrium
@@ -67,11 +67,13 @@ def run_batch(
     closed = reconcile(plan.closure, readings.values, readings.uncertainties)
     y, z = closed.unknowns[:, : plan.outlet_count], closed.unknowns[:, plan.outlet_count :]
     T, P = readings.temperature, readings.pressure
-    feed = z @ plan.inlets.sum(axis=0).T
+    known: BoolArray = np.asarray(closed.determined.all(axis=1))
+    # An inlet that is not determined has no equilibrium of its own; the fits below still hold.
+    feed = np.where(known[:, np.newaxis], z @ plan.inlets.sum(axis=0).T, np.nan)
     equilibria = at_temperature(plan.model, T, P, feed)
     names = [record.name for record in plan.species]
     conditions = (T, readings.u_temperature, P, u_pressure)
-    gas = gas_of(names, closed, _of_gas(plan, feed), conditions)
+    gas = gas_of(names, closed, _of_gas(plan, np.nan_to_num(feed)), conditions)
     judged = judge(gas, reactions)
 
     measured_fit = fit_equilibrium(plan, readings, z, T)

@@ -18,6 +18,9 @@ from gibbsmin.sample.thresholds import Thresholds
 
 _MINUS = "\N{MINUS SIGN}"
 _CELSIUS_ZERO = 273.15
+_MISREADING = 100.0
+"""K by which a thermocouple may well be wrong, or off the place where the gas froze."""
+
 APPROACH = f"T {_MINUS} T_eq"
 """How sentences name the distance of a temperature from that of equilibrium."""
 
@@ -50,6 +53,12 @@ class Evidence:
         """Whether several reactions agree on one temperature."""
         return self.fit.anywhere.probability >= self.thresholds.equilibrium
 
+    @property
+    def thermocouple_may_err(self) -> bool:
+        """Whether equilibrium fits so near to the measured temperature that it may be misread."""
+        away = abs(self.fit.temperature.value - self.temperature.value)
+        return self.fits_elsewhere and away <= _MISREADING
+
 
 def facts(evidence: Evidence) -> Iterator[str]:
     """What the figures say, without interpretation."""
@@ -58,12 +67,7 @@ def facts(evidence: Evidence) -> Iterator[str]:
     for reaction in evidence.reactions:
         yield _reaction(reaction)
     for leakage in evidence.leakages:
-        found = f"{ppm(leakage.found.value)} ± {ppm(leakage.found.uncertainty)}"
-        found = f"below {ppm(leakage.below)}" if leakage.below else found
-        yield (
-            f"{leakage.record} is {found} of the dry gas; equilibrium would leave "
-            f"{ppm(leakage.equilibrium)}."
-        )
+        yield f"{residue(leakage)}."
 
 
 def _closure(evidence: Evidence) -> Iterator[str]:
@@ -89,7 +93,7 @@ def _closure(evidence: Evidence) -> Iterator[str]:
 def _fit(evidence: Evidence) -> Iterator[str]:
     fit = evidence.fit
     if not fit.certified:
-        yield "The equilibrium at the measured conditions could not be certified."
+        yield "The equilibrium of this sample's feed could not be certified."
         return
     at, anywhere, best = fit.at_measured, fit.anywhere, fit.temperature
     if at.degrees_of_freedom:
@@ -99,6 +103,8 @@ def _fit(evidence: Evidence) -> Iterator[str]:
             f"{at.chi_square:.1f} with {at.degrees_of_freedom} "
             f"{_plural('degree', at.degrees_of_freedom)} of freedom (p = {at.probability:.2g})."
         )
+    else:
+        yield "Equilibrium cannot be tested: it leaves as much open as the measurements fix."
     if best.value == best.value:
         ending = ""
         if anywhere.degrees_of_freedom:
@@ -112,7 +118,7 @@ def _fit(evidence: Evidence) -> Iterator[str]:
 
 def _reaction(reaction: ReactionFinding) -> str:
     name = f"{reaction.text}, by the K of the case" if reaction.own_constant else reaction.text
-    if reaction.faint:
+    if reaction.faint and reaction.log_quotient.value == reaction.log_quotient.value:
         return f"{name}: {_limit(reaction)}; {_below(reaction.faint)}."
     if reaction.undefined:
         ratio = reaction.log_ratio.value
@@ -143,6 +149,21 @@ def approach(reaction: ReactionFinding) -> str:
     if ratio.uncertainty == ratio.uncertainty:
         return f"ln(Q/K) = {signed(ratio.value, 2)} ± {ratio.uncertainty:.2g}"
     return _limit(reaction)
+
+
+def residue(leakage: Leakage) -> str:
+    """A trace beside what equilibrium would leave."""
+    found = f"{ppm(leakage.found.value)} ± {ppm(leakage.found.uncertainty)}"
+    found = f"below {ppm(leakage.below)}" if leakage.below else found
+    return f"{leakage.record} is {found} of the dry gas, {ppm(leakage.equilibrium)} at equilibrium"
+
+
+def standing(evidence: Evidence, reaction: ReactionFinding) -> str:
+    """How far a reaction is from equilibrium, by its trace residue where that says more."""
+    for leakage in evidence.leakages:
+        if leakage.record in reaction.coefficients and not leakage.below:
+            return residue(leakage)
+    return approach(reaction)
 
 
 def celsius(kelvin: float) -> str:

@@ -45,7 +45,7 @@ class Measurement:
     name : the analyte as written, lumped ones with plus signs; or such as "flow of steam"
     record : that it is of, empty for lumped analytes and flows
     stream : outlet and inlet carry fractions, the feed flows over their nominal value
-    basis : ``dry`` or ``wet`` for a fraction, ``flow`` for a flow
+    basis : ``dry`` or ``wet`` for a fraction, ``ratio`` for moles to a mole of dry gas, ``flow``
     value, uncertainty : as measured, with its standard uncertainty
     below : the detection limit below which it was reported, else 0; it is then taken as half the
         limit with the standard uncertainty of a rectangular distribution from 0 to the limit

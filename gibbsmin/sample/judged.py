@@ -4,12 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import partial
 
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
-from gibbsmin.sample.limits import ONE_SIDED, Function, extreme
+from gibbsmin.sample.limits import ONE_SIDED, TWO_SIDED, Function, extreme
 from gibbsmin.sample.reactions import (
     Constant,
     JudgedReaction,
@@ -190,7 +191,11 @@ def _limits(
     approach: tuple[FloatArray, FloatArray],
     ratio: tuple[FloatArray, FloatArray],
 ) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray]:
-    """95 % limits of T − T_eq and of ln(Q/K): two-sided, or one-sided where a record is faint."""
+    """95 % limits of T − T_eq and of ln(Q/K).
+
+    Where a record is faint those of T − T_eq are one-sided; those of ln(Q/K) are so only where the
+    record may be absent altogether.
+    """
     lower, upper = approach[0] - Z_95 * approach[1], approach[0] + Z_95 * approach[1]
     low_ratio, high_ratio = ratio[0] - Z_95 * ratio[1], ratio[0] + Z_95 * ratio[1]
     for ends, sign in ((lower, -1), (upper, 1), (low_ratio, -1), (high_ratio, 1)):
@@ -201,27 +206,31 @@ def _limits(
     if not states.size:
         return lower, upper, low_ratio, high_ratio
     # A faint reactant may be more, not less, than it seems: ln Q has a lower limit, and so on.
-    sense = np.where(down[states], -1.0, 1.0)
-    end = _extreme(gas, _ratio(constant, nu), nu, faint, states, sense)
-    low_ratio[states] = np.where((sense < 0.0) & np.isfinite(end), end, -np.inf)
-    high_ratio[states] = np.where((sense > 0.0) & np.isfinite(end), end, np.inf)
+    away = np.where(down[states], -1.0, 1.0)
+    search = partial(_extreme, gas, nu, faint, states)
+    near = search(_ratio(constant, nu), -away, TWO_SIDED)
+    both = np.isfinite(near)
+    far = search(_ratio(constant, nu), away, np.where(both, TWO_SIDED, ONE_SIDED))
+    low_ratio[states] = np.where(away < 0.0, far, near)
+    high_ratio[states] = np.where(away < 0.0, near, far)
     # T − T_eq falls as ln Q rises where the reaction takes up heat.
-    sense = -sense * np.sign(constant.enthalpy(gas.temperature[states]))
-    end = _extreme(gas, _approach(constant, nu), nu, faint, states, sense)
-    lower[states] = np.where((sense < 0.0) & np.isfinite(end), end, -np.inf)
-    upper[states] = np.where((sense > 0.0) & np.isfinite(end), end, np.inf)
+    away = -away * np.sign(constant.enthalpy(gas.temperature[states]))
+    far = search(_approach(constant, nu), away, ONE_SIDED)
+    lower[states] = np.where(away < 0.0, far, -np.inf)
+    upper[states] = np.where(away > 0.0, far, np.inf)
     return lower, upper, low_ratio, high_ratio
 
 
 def _extreme(
     gas: Gas,
-    function: Function,
     nu: FloatArray,
     faint: BoolArray,
     states: IntArray,
+    function: Function,
     sense: FloatArray,
+    rise: FloatArray | float,
 ) -> FloatArray:
-    """One-sided 95 % limit over x = (y, ln P, T)."""
+    """Limit of a function of x = (y, ln P, T) at a rise of chi-square."""
     n = len(gas.names)
     u = np.sqrt(np.diagonal(gas.covariance[states], axis1=1, axis2=2))
     covariance = np.zeros((len(states), n + 2, n + 2))
@@ -231,11 +240,12 @@ def _extreme(
     outside = [np.log(gas.pressure[states]), gas.temperature[states]]
     centre = np.column_stack([gas.centre[states], *outside])
     lowest = np.full(centre.shape, -np.inf)
-    lowest[:, :n] = np.where(nu != 0.0, _LOWEST_SHARE * u, 0.0)
+    lowest[:, :n] = np.where(nu != 0.0, _LOWEST_SHARE * u, -np.inf)
     start = centre.copy()
-    start[:, :n] += np.where(faint[states], 2.0 * u, 0.0)
-    rise = ONE_SIDED + gas.excess[states]
-    return extreme(function, centre, covariance, rise, sense, np.maximum(start, lowest), lowest)
+    start[:, :n] = np.where(faint[states], np.maximum(start[:, :n], 2.0 * u), start[:, :n])
+    start = np.maximum(start, lowest)
+    rise = rise + gas.excess[states]
+    return extreme(function, centre, covariance, rise, sense, start, lowest)
 
 
 def _ratio(constant: Constant, nu: FloatArray) -> Function:

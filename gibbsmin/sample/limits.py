@@ -37,7 +37,9 @@ def extreme(
     start: FloatArray,
     lowest: FloatArray,
 ) -> FloatArray:
-    """Largest g where ``sense`` (B,) is +1, least where it is −1; NaN where it does not settle.
+    """Largest g where ``sense`` (B,) is +1, least where it is −1.
+
+    It is infinite where nothing settles or a bound is met, where g goes on without end.
 
     Parameters
     ----------
@@ -48,9 +50,9 @@ def extreme(
     start
         A point where g is defined, (B, n).
     lowest
-        Bounds (B, n) that x is kept above while it moves.
+        Bounds (B, n), above which x is kept while it moves.
     """
-    x = start
+    x, held = start, np.zeros(len(start), dtype=bool)
     value = np.full(len(x), np.nan)
     still = np.zeros(len(x), dtype=bool)
     for _ in range(_STEPS):
@@ -62,5 +64,7 @@ def extreme(
         along = np.einsum("bij,bj->bi", covariance, slope)
         length = np.sqrt(np.maximum(np.einsum("bi,bi->b", along, slope), 0.0))
         scale = np.where(length > 0.0, sense * np.sqrt(rise) / np.where(length > 0, length, 1), 0.0)
-        x = np.maximum(centre + scale[:, np.newaxis] * along, lowest)
-    return np.where(still, value, np.nan)
+        x = centre + scale[:, np.newaxis] * along
+        held = np.any(x <= lowest, axis=1)
+        x = np.maximum(x, lowest)
+    return np.where(still & ~held, value, sense * np.inf)

@@ -28,6 +28,8 @@ from gibbsmin.thermo.species import Species
 class Analysis:
     """How a gas was analysed.
 
+    A reading of what drying removed is a ratio to the dry gas, such as of steam.
+
     Attributes
     ----------
     analytes : records that each reading counts together
@@ -189,7 +191,12 @@ def _records_of(feed: Feed) -> tuple[str, ...]:
 def _readings(analysis: Analysis, place: Place) -> list[Reading]:
     basis = "dry" if analysis.dry else "wet"
     return [
-        Reading(name, place, basis, record=records[0] if len(records) == 1 else "")
+        Reading(
+            name,
+            place,
+            "ratio" if analysis.dry and set(records) <= set(analysis.dried) else basis,
+            record=records[0] if len(records) == 1 else "",
+        )
         for name, records in zip(analysis.names, analysis.analytes, strict=True)
     ]
 
@@ -209,7 +216,7 @@ def _outlet_rows(
         counted *= [name not in analysis.dried for name in records]
     for row, names in enumerate(analysis.analytes):
         above[row, [records.index(name) for name in names]] = 1.0
-        if scale >= 0:
+        if scale >= 0 and not set(names) <= set(analysis.dried):
             below[row, len(records) + scale] = 1.0
         else:
             below[row, : len(records)] = counted
@@ -266,14 +273,14 @@ class _Inlet:
         self._totals.append([main, *places.values()])
 
     def _analysed(self, analysis: Analysis, places: Mapping[str, int]) -> None:
-        if analysis.normalised:
-            whole = {self.unknown(): 1.0}
-        else:
-            out = analysis.dried if analysis.dry else ()
-            whole = {place: 1.0 for name, place in places.items() if name not in out}
+        out = analysis.dried if analysis.dry else ()
+        held = {place: 1.0 for name, place in places.items() if name not in out}
+        whole = {self.unknown(): 1.0} if analysis.normalised else held
         readings = _readings(analysis, Place.INLET)
         for reading, names in zip(readings, analysis.analytes, strict=True):
-            self._rows.append((reading, {places[name]: 1.0 for name in names}, whole))
+            of_dry = set(names) <= set(out)
+            counted = {places[name]: 1.0 for name in names}
+            self._rows.append((reading, counted, held if of_dry else whole))
 
     def scale_flows(self, feeds: Sequence[Feed], measured: bool) -> None:
         """Flows over their nominal values, all against one scale."""

@@ -17,6 +17,7 @@ from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.uncertainty import record_uncertainties
 
 LOWEST, HIGHEST = 200.0, 4000.0
 """K; where an equilibrium temperature is looked for."""
@@ -61,8 +62,8 @@ class LibraryConstant:
     def u_log_K(self, T: FloatArray) -> FloatArray:
         """u² = Σ ν² (u(ΔfH)²/(RT)² + u(S)²/R²), the values of all records taken as independent."""
         squares = self.coefficients**2
-        of_H = squares @ np.array([r.u_dfH298**2 for r in self.properties.records])
-        of_S = squares @ np.array([r.u_S298**2 for r in self.properties.records])
+        known = record_uncertainties(self.properties.records)
+        of_H, of_S = squares @ known.enthalpy**2, squares @ known.entropy**2
         return np.asarray(np.sqrt(of_H / T**2 + of_S) / GAS_CONSTANT)
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from gibbsmin.sample.evidence import Evidence, approach, celsius, facts, listed, ppm
+from gibbsmin.sample.evidence import Evidence, celsius, facts, listed, ppm, standing
 from gibbsmin.sample.findings import (
     Judgement,
     ReactionFinding,
@@ -100,13 +100,13 @@ def _short(evidence: Evidence, main: ReactionFinding) -> Judgement:
     else:
         likely.append("Unreacted feed that went around the catalyst would look the same.")
         look.append(_BYPASS)
-    if evidence.fits_elsewhere:
+    if evidence.thermocouple_may_err:
         likely.append(
             f"All reactions agree on {celsius(evidence.fit.temperature.value)}: a thermocouple "
             "that reads wrong would explain it as well."
         )
         look.append(_THERMOCOUPLE)
-    headline = f"Short of equilibrium: {main.text}, {approach(main)}."
+    headline = f"Short of equilibrium: {main.text}; {standing(evidence, main)}."
     return _judgement(evidence, Verdict.SHORT, headline, tuple(likely), tuple(look))
 
 
@@ -132,7 +132,7 @@ def _beyond(evidence: Evidence, main: ReactionFinding) -> Judgement:
             )
             look.append(_BYPASS)
         look += [_SAMPLE_LINE, _CANDIDATES]
-    headline = f"Beyond equilibrium: {main.text}, {approach(main)}."
+    headline = f"Beyond equilibrium: {main.text}; {standing(evidence, main)}."
     return _judgement(evidence, Verdict.BEYOND, headline, tuple(likely), tuple(look))
 
 
@@ -140,13 +140,17 @@ def _open(evidence: Evidence) -> Judgement:
     unknown = [r for r in evidence.reactions if r.side is Side.UNKNOWN]
     if unknown:
         wanted = unknown[0].faint or tuple(unknown[0].coefficients)
+        open_still = unknown[0].log_quotient.value != unknown[0].log_quotient.value
         return _judgement(
             evidence,
             Verdict.NOT_DECIDABLE,
             f"Not decidable: {unknown[0].text} is not known to "
             f"{evidence.thresholds.resolution:.0f} K.",
             (),
-            (f"A more certain measurement of {listed(wanted, 'and')} would decide.",),
+            (
+                f"A {'' if open_still else 'more certain '}measurement of {listed(wanted, 'and')} "
+                "would decide.",
+            ),
         )
     if evidence.reactions and evidence.fit.certified:
         return _judgement(
