@@ -26,8 +26,11 @@ from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.sample.bounds import NEGATIVE, bounded
 
 _RANK = 1e-12
-_STEPS = 12
+_STEPS = 20
 _STILL = 1e-12
+_SCALE_STILL = 1e-9
+"""Scales q·x only weigh the residuals, so that they need not be as exact as the ratios."""
+
 _ZERO = 1e-9
 """Shares below this are round-off: of an unknown in a direction, of an error in a residual."""
 
@@ -155,10 +158,11 @@ def _at_rest(
         rows = rows * (weights / scale)[..., np.newaxis]
         right = (s - ratio) * weights
         x = solve(rows, right, x)
-        scale = _positive(x @ equations.below.T)
-        new = x @ equations.above.T / scale
-        still = np.all(np.abs(new - ratio) * weights <= _STILL * (1 + np.abs(s) * weights), axis=1)
-        ratio = new
+        whole = _positive(x @ equations.below.T)
+        new = x @ equations.above.T / whole
+        moved = np.abs(new - ratio) * weights > _STILL * (1.0 + np.abs(s) * weights)
+        moved |= (np.abs(whole - scale) > _SCALE_STILL * scale) & (weights > 0.0)
+        still, ratio, scale = np.asarray(~moved.any(axis=1)), new, whole
         if still.all():
             break
     return x, rows, right, still
