@@ -1,11 +1,8 @@
 """Puts the values of axes into a case.
 
-An axis names a number by its place in the case file: ``outlet.temperature``,
-``stage.high shift.pressure_drop``, ``feed.steam.temperature``, ``feed.steam.amounts.H2O``; or it
+An axis names a number by its place in the case file (:mod:`gibbsmin.jobs.axis_place`); or it
 names a ratio of what the streams bring, ``ratio = "H2O/C"``, with the stream that is scaled to
-meet it.  Numbers that shape a stage's equations (``outlet.bypass``, ``outlet.conversion.CH4``,
-``outlet.approach.1``, …) give each of their values a case of its own: see
-:mod:`gibbsmin.jobs.axis_stage`.
+meet it.
 """
 
 from __future__ import annotations
@@ -19,13 +16,12 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis
-from gibbsmin.jobs.axis_stage import stage_field, with_number
+from gibbsmin.jobs.axis_place import Place, place_of
+from gibbsmin.jobs.axis_stage import with_number
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.feed_parts import resolve
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
-
-_STREAM_NUMBERS = ("temperature", "pressure")
 
 
 def applied(
@@ -53,32 +49,23 @@ def applied(
 
 
 def _number(case: Case, axis: Axis, values: FloatArray, library: Library) -> Case:
-    kind, _, rest = axis.name.partition(".")
-    if kind == "feed":
-        name, _, field = rest.partition(".")
-        return _changed_stream(
-            case, name, lambda stream: _stream_number(stream, field, values, library)
-        )
-    placed = stage_field(axis.name, case.stages)
-    if placed is None:
-        raise _nothing(axis.name, case)
-    chosen, field = placed
-    changed = with_number(chosen, field, values, library)
-    stages = tuple(changed if stage is chosen else stage for stage in case.stages)
-    return replace(case, stages=stages)
+    place = place_of(axis.name, case.feeds, case.stages, library)
+    if isinstance(place.holder, Stream):
+        changed = _with_stream_number(place.holder, place, values)
+        feeds = tuple(changed if stream is place.holder else stream for stream in case.feeds)
+        return replace(case, feeds=feeds)
+    stage = with_number(place.holder, place, values)
+    return replace(case, stages=tuple(stage if s is place.holder else s for s in case.stages))
 
 
-def _stream_number(stream: Stream, field: str, values: FloatArray, library: Library) -> Stream:
-    if field in _STREAM_NUMBERS:
-        change: dict[str, Any] = {field: values}
-        return replace(stream, **change)
-    table, _, species = field.partition(".")
-    if table != "amounts":
-        raise InputError(
-            f'found "{field}", which is no number of a stream',
-            f"accepted is {', '.join(_STREAM_NUMBERS)} or amounts.SPECIES",
-        )
-    return replace(stream, amounts={**stream.amounts, resolve(species, library).name: values})
+def _with_stream_number(stream: Stream, place: Place, values: FloatArray) -> Stream:
+    if place.kind == "amounts":
+        return replace(stream, amounts={**stream.amounts, place.which: values})
+    if place.kind == "total":
+        total = sum(stream.amounts.values(), np.zeros(()))
+        return _scaled(stream, values / total)
+    change: dict[str, Any] = {place.kind: values}
+    return replace(stream, **change)
 
 
 def _ratio(case: Case, axis: Axis, values: FloatArray, library: Library) -> Case:
@@ -87,8 +74,8 @@ def _ratio(case: Case, axis: Axis, values: FloatArray, library: Library) -> Case
     With the stream's own share (p, q) and the others' (a, b): (a + s p)/(b + s q) = r, so that
     s = (r b − a)/(p − r q).
     """
-    above, _, below = axis.name.partition("/")
-    counts = [_counter(text.strip(), library) for text in (above, below)]
+    above, below = (text.strip() for text in axis.name.split("/", 1))
+    counts = [_counter(text, library) for text in (above, below)]
     chosen = [stream for stream in case.feeds if stream.name == axis.scale]
     if not chosen:
         raise InputError(
@@ -100,15 +87,21 @@ def _ratio(case: Case, axis: Axis, values: FloatArray, library: Library) -> Case
         sum((count(s.amounts) for s in case.feeds if s.name != axis.scale), np.zeros(()))
         for count in counts
     ]
+    if not np.any(own[1] + others[1] > 0.0):
+        raise InputError(
+            f'found a ratio "{axis.name}" whose denominator is zero: no stream brings "{below}"',
+            "accepted is a ratio to what is fed",
+        )
     with np.errstate(divide="ignore", invalid="ignore"):
         factor = (values * others[1] - others[0]) / (own[0] - values * own[1])
         denominator = others[1] + factor * own[1]
     if not np.all(np.isfinite(factor) & (factor >= 0.0) & (denominator > 0.0)):
         raise InputError(
             f'found a ratio "{axis.name}" that no amount of "{axis.scale}" can meet',
-            "accepted is a ratio whose denominator is fed, and a stream that moves it",
+            "accepted is a ratio that the other streams leave open, and a stream that moves it",
         )
-    return _changed_stream(case, axis.scale, lambda stream: _scaled(stream, factor))
+    changed = _scaled(chosen[0], factor)
+    return replace(case, feeds=tuple(changed if s is chosen[0] else s for s in case.feeds))
 
 
 def _counter(text: str, library: Library) -> Callable[[Mapping[str, Values]], FloatArray]:
@@ -128,21 +121,3 @@ def _counter(text: str, library: Library) -> Callable[[Mapping[str, Values]], Fl
 
 def _scaled(stream: Stream, factor: FloatArray) -> Stream:
     return replace(stream, amounts={n: factor * np.asarray(v) for n, v in stream.amounts.items()})
-
-
-def _changed_stream(case: Case, name: str, change: Callable[[Stream], Stream]) -> Case:
-    if name not in [stream.name for stream in case.feeds]:
-        raise _nothing(f"feed.{name}", case)
-    feeds = tuple(change(stream) if stream.name == name else stream for stream in case.feeds)
-    return replace(case, feeds=feeds)
-
-
-def _nothing(name: str, case: Case) -> InputError:
-    stages = [f"stage.{stage.name}" for stage in case.stages]
-    if stages == ["stage.outlet"]:
-        stages = ["outlet"]
-    places = [*stages, *(f"feed.{stream.name}" for stream in case.feeds)]
-    return InputError(
-        f'found "{name}", which names no number of the case',
-        f"accepted is a number of {', '.join(places)}, such as {places[0]}.temperature",
-    )

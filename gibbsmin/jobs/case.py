@@ -11,7 +11,7 @@ from typing import Any
 
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis, SoughtPhase, SoughtValue
-from gibbsmin.jobs.case_axis import read_axes
+from gibbsmin.jobs.case_axis import Holders, read_axes
 from gibbsmin.jobs.case_feed import read_streams
 from gibbsmin.jobs.case_sample import read_rules, read_sample
 from gibbsmin.jobs.case_stage import StageCase, read_stages
@@ -82,7 +82,7 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
         own_sources = (*sources, *FUEL_SOURCES) if fuels else sources
         library = library_with(own_records, own_sources)
         stages = read_stages(table, feeds, library)
-        axes = read_axes(table.axis, feeds, table.site_pressure, library)
+        axes = read_axes(table.axis, Holders(feeds, stages, table.site_pressure, library))
         uncertainties = read_uncertainties(table.uncertainty, feeds, stages, library)
         correlations = read_correlations(table.correlation, feeds, stages, library)
         rules, sample = SampleRules(), None

@@ -15,7 +15,7 @@ from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry, HeldFraction
 from gibbsmin.reactor.services import Service, find_service
 from gibbsmin.reactor.specification import Specification
-from gibbsmin.reactor.streams import Stream
+from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 
 if TYPE_CHECKING:
@@ -43,7 +43,7 @@ class StageCase:
     specification
         Its two given conditions.
     boundary_temperature
-        Where heat crosses into the stage, K; None means at the outlet's temperature.
+        Where heat crosses into the stage, K, one or (B,); None means at the outlet's temperature.
     surroundings_temperature
         For lost work, K.
     reference_oxygen
@@ -51,9 +51,9 @@ class StageCase:
     extents
         Reactions whose extents are told, as ν by record name.
     bypass
-        Share of what enters that goes around the reaction and joins its outlet.
+        Share of what enters that goes around the reaction and joins its outlet; one or (B,).
     removed
-        Share of each record that is taken out of the outlet.
+        Share of each record that is taken out of the outlet; each one or (B,).
     own_species
         Whether it names its candidates itself, in place of the case's.
     service
@@ -65,10 +65,10 @@ class StageCase:
     feeds: tuple[str, ...]
     chemistry: Chemistry
     specification: Specification
-    boundary_temperature: float | None
+    boundary_temperature: Values | None
     surroundings_temperature: float
-    bypass: float
-    removed: Mapping[str, float]
+    bypass: Values
+    removed: Mapping[str, Values]
     own_species: bool = False
     service: Service | None = None
     reference_oxygen: float | None = None

@@ -11,8 +11,9 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis
+from gibbsmin.jobs.axis_place import place_of
 from gibbsmin.jobs.case import Case
-from gibbsmin.jobs.case_axis import axis_of_column
+from gibbsmin.jobs.case_axis import Holders, axis_of_column
 from gibbsmin.units import shown
 
 if TYPE_CHECKING:
@@ -113,7 +114,7 @@ def conditions_from(table: pd.DataFrame, case: Case, file: str = "") -> Rows:
     ------
     InputError
         for a column that names no number, a unit that does not fit, and a cell that is empty or
-        no number, named by row (2 is the first below the header) and column.
+        no number, each told by its row (2 is the first below the header) and column.
     """
     axes = []
     names: tuple[str, ...] | None = None
@@ -126,7 +127,8 @@ def conditions_from(table: pd.DataFrame, case: Case, file: str = "") -> Rows:
         try:
             axes.append(_axis(str(column), table[column].tolist(), case))
         except InputError as error:
-            raise error.at(key=f'column "{column}"', file=file) from None
+            error.key = f'column "{column}"' + (f", {error.key}" if error.key else "")
+            raise error.at(file=file) from None
     if not axes:
         raise InputError(
             "found no column but the labels",
@@ -139,15 +141,18 @@ def conditions_from(table: pd.DataFrame, case: Case, file: str = "") -> Rows:
 def _axis(column: str, cells: Sequence[object], case: Case) -> Axis:
     name, _, unit = column.partition(",")
     name, _, scale = name.strip().partition(_BY)
+    if not scale:
+        # A column that is something else altogether is told before what stands in it.
+        place_of(name, case.feeds, case.stages, case.library)
     values = np.empty(len(cells))
     for row, cell in enumerate(cells):
         if isinstance(cell, bool) or not isinstance(cell, int | float) or not np.isfinite(cell):
             empty = cell is None or cell != cell
             raise InputError(
-                f"found {'an empty cell' if empty else shown(cell)} in row {row + 2}",
+                f"found {'an empty cell' if empty else shown(cell)}",
                 "accepted is a number",
+                key=f"row {row + 2}",
             )
         values[row] = cell
-    return axis_of_column(
-        name, unit.strip(), scale.strip(), values, case.feeds, case.site_pressure, case.library
-    )
+    holders = Holders(case.feeds, case.stages, case.site_pressure, case.library)
+    return axis_of_column(name, unit.strip(), scale.strip(), values, holders)

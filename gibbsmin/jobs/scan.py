@@ -8,16 +8,10 @@ from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
-import numpy as np
-
-from gibbsmin.jobs.axes import applied
 from gibbsmin.jobs.axis import Axis
-from gibbsmin.jobs.axis_stage import shapes_equations
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import LABEL, Conditions, Grid, conditions_from, conditions_of
-from gibbsmin.jobs.scan_columns import columns_of
-from gibbsmin.jobs.train import run_train
-from gibbsmin.jobs.uncertainty import error_bars
+from gibbsmin.jobs.scan_states import columns_of_states
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -148,45 +142,10 @@ def scan_block(
     columns: dict[str, Any] = {} if labels is None else {LABEL: labels}
     for axis, (_, shown) in zip(axes, values, strict=True):
         columns[column_of(axis)] = shown
-    answers = _answers(case, axes, [inside for inside, _ in values], uncertainty)
+    answers = columns_of_states(case, conditions, first, last, uncertainty=uncertainty)
     return pd.DataFrame(columns | answers)
 
 
 def column_of(axis: Axis) -> str:
     """The name of an axis's column."""
     return f"{axis.name}, {axis.unit}" if axis.unit else axis.name
-
-
-def _answers(
-    case: Case, axes: Sequence[Axis], values: Sequence[np.ndarray], uncertainty: bool
-) -> dict[str, Any]:
-    """Columns of the states; those that share what shapes their equations are solved together."""
-    import pandas as pd
-
-    shaping = [k for k, axis in enumerate(axes) if shapes_equations(axis.name, case.stages)]
-    if not shaping:
-        return _solved(case, axes, values, uncertainty)
-    keys = np.stack([values[k] for k in shaping], axis=1)
-    kinds, kind = np.unique(keys, axis=0, return_inverse=True)
-    parts = []
-    for which in range(len(kinds)):
-        rows = np.flatnonzero(kind.reshape(-1) == which)
-        part = _solved(case, axes, [value[rows] for value in values], uncertainty)
-        parts.append(pd.DataFrame(part, index=rows))
-    whole = pd.concat(parts).sort_index()
-    return {str(name): whole[name].to_numpy() for name in whole}
-
-
-def _solved(
-    case: Case, axes: Sequence[Axis], values: Sequence[np.ndarray], uncertainty: bool
-) -> dict[str, Any]:
-    library = case.library
-    varied = applied(case, axes, values, library)
-    steps = list(run_train(varied, library))
-    bars: Sequence[Any] = [None] * len(steps)
-    if uncertainty:
-        bars = list(error_bars(varied, steps, library, of_scan=True))
-    columns: dict[str, Any] = {}
-    for step, bar in zip(steps, bars, strict=True):
-        columns |= columns_of(step, values[0].size, bar, prefix=len(case.stages) > 1)
-    return columns

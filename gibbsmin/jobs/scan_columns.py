@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
+from gibbsmin.jobs.scan_layout import StageLayout
 from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Status
@@ -17,41 +18,58 @@ from gibbsmin.thermo.species import Phase
 _STATUSES = [status.name.lower() for status in Status]
 
 
-def columns_of(step: Step, states: int, bars: Sensitivities | None, prefix: bool) -> dict[str, Any]:
+def columns_of(
+    step: Step, layout: StageLayout, states: int, bars: Sensitivities | None, before: str
+) -> dict[str, Any]:
     """A stage's columns, with units in their names where they are not plain numbers.
 
-    With error bars, ``u(NAME)`` is the standard uncertainty of the column NAME, in its unit.
+    With error bars, ``u(NAME)`` is the standard uncertainty of the column NAME, in its unit.  All
+    names start with ``before``.
     """
     found = step.states.equilibria
     columns: dict[str, Any] = {
-        "status": _named(found.solution.status, _STATUSES),
+        "status": named(found.solution.status, _STATUSES),
         "gap": found.solution.certificate.gap,
     }
     uncertainties = None if bars is None else bars.uncertainties
-    for name, unit, factor, result, values in _values(step):
+    for name, unit, factor, result, values in _values(step, layout):
         label = f"{name}, {unit}" if unit else name
         columns[label] = values / factor if factor != 1.0 else values
-        if bars is not None and uncertainties is not None and result in bars.results:
-            size = uncertainties[:, bars.results.index(result)]
-            columns[f"u({name}), {unit}" if unit else f"u({name})"] = size / factor
+        if bars is not None and uncertainties is not None:
+            # A record that cannot be in these states is not there for sure.
+            size = 0.0 * values
+            if result in bars.results:
+                size = uncertainties[:, bars.results.index(result)] / factor
+            columns[f"u({name}), {unit}" if unit else f"u({name})"] = size
     columns["phases"] = _phases(step)
     if bars is not None:
         columns["near an onset"] = bars.near_onset.any(axis=1)
-    before = f"{step.stage.name}: " if prefix else ""
     return {
         f"{before}{key}": np.broadcast_to(v, (states,)) if isinstance(v, np.ndarray) else v
         for key, v in columns.items()
     }
 
 
-def _named(codes: Any, names: Sequence[str]) -> Any:
+def reasons_of(steps: Sequence[Step]) -> Any:
+    """Why a state has no answer, by the first stage that has none; empty where it has."""
+    texts, codes = [""], np.zeros(len(steps[0].states.equilibria.temperature), dtype=np.int64)
+    for step in steps:
+        status = step.states.equilibria.solution.status
+        before = f"{step.stage.name}: " if len(steps) > 1 else ""
+        failed = (codes == 0) & (status != Status.CERTIFIED)
+        codes[failed] = len(texts) + status[failed]
+        texts += [f"{before}{member.sentence}" for member in Status]
+    return named(codes, texts)
+
+
+def named(codes: Any, names: Sequence[str]) -> Any:
     """Names by their numbers, without a text in memory for each state."""
     import pandas as pd
 
     return pd.Categorical.from_codes(codes, categories=pd.Index(list(names)))
 
 
-def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
+def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, str, FloatArray]]:
     """Name, unit, SI per unit, the result's name among the sensitivities, and SI values."""
     found, energy, model = step.states.equilibria, step.states.energy, step.states.model
     unit = "kW" if step.streams[0].is_flow else "kJ"
@@ -62,14 +80,19 @@ def _values(step: Step) -> Iterator[tuple[str, str, float, str, FloatArray]]:
     yield "entropy generation", f"{unit}/K", 1e3, "entropy generation", generated
     total = found.amounts @ model.gas.astype(float)
     total = np.where(total > 0.0, total, np.nan)
-    for column, record in enumerate(model.records):
-        amounts = found.amounts[:, column]
+    columns = {record.name: column for column, record in enumerate(model.records)}
+    absent = 0.0 * found.amounts[:, 0]
+    for record in layout.records:
+        column = columns.get(record.name)
+        amounts = absent if column is None else found.amounts[:, column]
         if record.phase is Phase.GAS:
             yield f"y {record.name}", "", 1.0, f"fraction {record.name}", amounts / total
         else:
             yield f"amount {record.name}", "mol", 1.0, f"amount {record.name}", amounts
-    for name, share in conversions(step.states.inlet, model.records, found.amounts).items():
-        yield f"conversion {name}", "", 1.0, f"conversion {name}", share
+    shares = conversions(step.states.inlet, model.records, found.amounts)
+    not_fed = np.full(len(total), np.nan)
+    for name in (record.name for record in layout.fed):
+        yield f"conversion {name}", "", 1.0, f"conversion {name}", shares.get(name, not_fed)
 
 
 def _phases(step: Step) -> Any:
@@ -78,16 +101,16 @@ def _phases(step: Step) -> Any:
     condensed = np.flatnonzero(~model.gas)
     present = amounts[:, condensed] > 0.0
     # Rows are told apart by a number each: most tables hold a handful of kinds.
-    _, first, kind = np.unique(_row_numbers(present), return_index=True, return_inverse=True)
+    _, first, kind = np.unique(row_numbers(present), return_index=True, return_inverse=True)
     names = [
         " + ".join(model.records[c].name for c in condensed[present[row]]) or "gas"
         for row in first.tolist()
     ]
     unsolved = np.isnan(amounts[:, 0])
-    return _named(np.where(unsolved, len(names), kind), [*names, ""])
+    return named(np.where(unsolved, len(names), kind), [*names, ""])
 
 
-def _row_numbers(present: BoolArray) -> IntArray:
+def row_numbers(present: BoolArray) -> IntArray:
     """The same number for equal rows and, beyond 62 columns but for chance, only for these."""
     width = present.shape[1]
     weights: Any = np.left_shift(1, np.arange(width, dtype=np.int64))

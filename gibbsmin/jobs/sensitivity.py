@@ -19,6 +19,7 @@ from gibbsmin.jobs.inputs import Input, InputChanges
 from gibbsmin.jobs.train import Step
 from gibbsmin.reactor.stage_changes import SpecificationChanges, StageChanges, stage_changes
 from gibbsmin.reactor.stream_changes import StreamChanges, inlet_changes
+from gibbsmin.reactor.streams import Values
 from gibbsmin.results import WATER
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Phase
@@ -140,8 +141,9 @@ def sensitivities(
         )
 
 
-def _scaled(change: StreamChanges, share: float) -> StreamChanges:
-    return replace(change, amounts={name: share * dn for name, dn in change.amounts.items()})
+def _scaled(change: StreamChanges, share: Values) -> StreamChanges:
+    shares = np.reshape(share, (-1, 1))
+    return replace(change, amounts={name: shares * dn for name, dn in change.amounts.items()})
 
 
 def _leaving(step: Step, found: StageChanges) -> StreamChanges:
@@ -151,7 +153,8 @@ def _leaving(step: Step, found: StageChanges) -> StreamChanges:
         found.temperature,
         found.pressure,
         {
-            record.name: found.amounts[:, column] * (1.0 - removed.get(record.name, 0.0))
+            record.name: found.amounts[:, column]
+            * (1.0 - np.reshape(removed.get(record.name, 0.0), (-1, 1)))
             for column, record in enumerate(step.states.model.records)
         },
     )

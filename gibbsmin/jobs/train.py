@@ -34,7 +34,7 @@ class Step:
 
     stage: StageCase
     streams: tuple[Stream, ...]
-    shares: tuple[float, ...]
+    shares: tuple[Values, ...]
     states: StageStates
     joins: str = ""
 
@@ -57,6 +57,11 @@ def run_train(case: Case, library: Library) -> Iterator[Step]:
             passing = [_leaving(step)]
 
 
+def has_bypass(stage: StageCase) -> bool:
+    """Whether some of what enters goes around; shares that vary count even where they are 0."""
+    return np.ndim(stage.bypass) > 0 or stage.bypass != 0.0
+
+
 def placed_in(stage: StageCase, case: Case, error: InputError) -> InputError:
     """The error at its key: within the stage, unless the case's own species table is meant."""
     if not error.key.startswith(_AT_TOP) or stage.own_species:
@@ -67,7 +72,7 @@ def placed_in(stage: StageCase, case: Case, error: InputError) -> InputError:
 def _steps(
     stage: StageCase, streams: Sequence[Stream], case: Case, library: Library
 ) -> Iterator[Step]:
-    if not stage.bypass:
+    if not has_bypass(stage):
         yield _solved(stage, streams, [1.0] * len(streams), case, library)
         return
     around, through = stage.bypass, 1.0 - stage.bypass
@@ -92,7 +97,7 @@ def _steps(
 def _solved(
     stage: StageCase,
     streams: Sequence[Stream],
-    shares: Sequence[float],
+    shares: Sequence[Values],
     case: Case,
     library: Library,
 ) -> Step:
@@ -112,7 +117,8 @@ def _leaving(step: Step) -> Stream:
     amounts: dict[str, Values] = {}
     for column, record in enumerate(step.states.model.records):
         going_on = found.amounts[:, column] * (1.0 - removed.get(record.name, 0.0))
-        if np.any(going_on > 0.0):
+        # Where no state has an answer all are kept, so that the next stage has none either.
+        if np.any(going_on > 0.0) or np.isnan(going_on).all():
             amounts[record.name] = going_on
     first = step.streams[0]
     return Stream(
@@ -125,8 +131,8 @@ def _leaving(step: Step) -> Stream:
     )
 
 
-def _share(stream: Stream, share: float) -> Stream:
-    if share == 1.0:
+def _share(stream: Stream, share: Values) -> Stream:
+    if np.ndim(share) == 0 and share == 1.0:
         return stream
     return replace(
         stream, amounts={name: share * amount for name, amount in stream.amounts.items()}

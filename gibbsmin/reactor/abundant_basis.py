@@ -47,12 +47,13 @@ def abundant_basis(
     matrix
         A, shape (m, S).
     directions
-        Columns to reduce beside it, shape (m, K).
+        Columns to reduce beside it, shape (m, K) or (B, m, K).
     weights
         Shape (B, S); a column of weight 0 is never chosen.
     """
     (m, S), B = matrix.shape, len(weights)
-    work = np.repeat(np.hstack([matrix, directions])[np.newaxis], B, axis=0)
+    sides = [np.broadcast_to(part, (B, *part.shape[-2:])) for part in (matrix, directions)]
+    work = np.concatenate(sides, axis=2)
     columns = np.full((B, m), -1, dtype=np.int64)
     state = np.arange(B)
     for _ in range(m):

@@ -13,15 +13,38 @@ from typing import Final
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.reactor.approach import Shift
-from gibbsmin.reactor.roots import Residual
+from gibbsmin.reactor.roots import Residual, roots_between
 
 _STEP: Final = 1.0
 """K, to which the ends of a stretch are found."""
 
 _RATIO: Final = 1.04
 """Between neighbours of the grid."""
+
+
+def every_answer(
+    shift: Shift, residual: Residual, states: int, limits: tuple[float, float]
+) -> tuple[FloatArray, FloatArray]:
+    """The only temperature (B,) of each state, and the lowest and highest (2, B) where it has more.
+
+    States that share their approaches share the grid on which they are looked at.
+    """
+    T, ends = np.full(states, np.nan), np.full((2, states), np.nan)
+    differences = shift.differences.reshape(len(shift.keys), -1)
+    _, kinds = np.unique(differences, axis=1, return_inverse=True)
+    kind = np.broadcast_to(kinds.reshape(-1), (states,))
+    for which in range(kind.max(initial=-1) + 1):
+        index = np.flatnonzero(kind == which)
+        own = shift if shift.differences.ndim == 1 else shift.of_states(index[0])
+
+        def of_own(T: FloatArray, place: IntArray, index: IntArray = index) -> FloatArray:
+            return residual(T, index[place])
+
+        roots = roots_between(of_own, *brackets(of_own, stretches(own, *limits), index.size))
+        T[index], ends[:, index] = only_answers(roots)
+    return T, ends
 
 
 def stretches(shift: Shift, lowest: float, highest: float) -> tuple[FloatArray, ...]:

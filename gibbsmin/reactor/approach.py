@@ -12,14 +12,15 @@ A least-norm δ is never taken: it would move the reactions that nobody named.
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.errors import InputError
+from gibbsmin.reactor.streams import Values
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Species
 
@@ -32,13 +33,13 @@ class Approach:
     ----------
     text : the reaction as the user wrote it
     coefficients : ν by record name, products positive
-    difference : ΔT in K, positive when short of equilibrium as written
+    difference : ΔT in K, positive when short of equilibrium as written; (B,) for B states
     key : the record that takes the shift, empty for the reaction's record with most atoms
     """
 
     text: str
     coefficients: Mapping[str, float]
-    difference: float
+    difference: Values
     key: str = ""
 
 
@@ -50,7 +51,7 @@ class Shift:
     ----------
     properties : of the S candidates
     stoichiometry : (R, S) ν of the named reactions
-    differences : (R,) ΔT in K
+    differences : ΔT in K, (R,), or (R, B) where B states differ in them
     keys : (R,) columns of the key records
     offsets : (S,) energies in J/mol, such as that of whisker carbon over graphite
     log_activities : (S,) ln a of records whose activity is fixed, such as carbon in an alloy
@@ -84,10 +85,17 @@ class Shift:
         shift[..., list(self.keys)] += np.linalg.solve(nu_keys, missing[..., np.newaxis])[..., 0]
         return np.asarray(shift)
 
+    def of_states(self, index: IntArray) -> Shift:
+        """The shift of some of the states."""
+        if self.differences.ndim == 1:
+            return self
+        return replace(self, differences=self.differences[:, index])
+
     def senses(self, temperature: npt.ArrayLike) -> FloatArray:
         """Sign of ΔrH of each named reaction, (R,) + T.shape; 0 where its approach has no meaning.
 
-        That is where T_s is not above absolute zero or ΔrH changes sign between T and T_s.
+        That is where T_s is not above absolute zero or ΔrH changes sign between T and T_s.  All
+        temperatures are for the same differences.
         """
         T = np.asarray(temperature, dtype=float)
         senses = []
@@ -101,21 +109,23 @@ class Shift:
     def shifted_temperature(self, reaction: int, temperature: npt.ArrayLike) -> FloatArray:
         """T_s of one reaction."""
         T = np.asarray(temperature, dtype=float)
-        nu, difference = self.stoichiometry[reaction], self.differences[reaction]
+        nu = self.stoichiometry[reaction]
+        differences = np.broadcast_to(self.differences[reaction], T.shape)
         enthalpy = self.properties.enthalpy(T) @ nu
-        shifted = T - np.sign(enthalpy) * difference
+        shifted = T - np.sign(enthalpy) * differences
         if np.any(shifted <= 0.0):
             raise InputError(
-                f'found an approach of {difference:g} K for "{self.texts[reaction]}", which '
-                "leads below absolute zero",
+                f"found an approach of {differences[shifted <= 0.0][0]:g} K for "
+                f'"{self.texts[reaction]}", which leads below absolute zero',
                 "accepted is a smaller approach",
                 key="approach",
             )
         changed = np.sign(self.properties.enthalpy(shifted) @ nu) != np.sign(enthalpy)
-        if np.any(changed & ~np.isnan(T)):
+        changed &= ~np.isnan(T)
+        if np.any(changed):
             raise InputError(
-                f'found an approach of {difference:g} K for "{self.texts[reaction]}", whose '
-                "enthalpy changes sign within it",
+                f"found an approach of {differences[changed][0]:g} K for "
+                f'"{self.texts[reaction]}", whose enthalpy changes sign within it',
                 "accepted is a smaller approach, or a fixed conversion in its place",
                 key="approach",
             )
@@ -173,7 +183,7 @@ def shift_of(
     return Shift(
         properties=PropertyTable.of(records),
         stoichiometry=stoichiometry,
-        differences=np.array([approach.difference for approach in approaches]),
+        differences=np.array(np.broadcast_arrays(*(each.difference for each in approaches))),
         keys=tuple(keys),
         offsets=np.array([offsets.get(name, 0.0) for name in names]),
         log_activities=np.log([activities.get(name, 1.0) for name in names]),

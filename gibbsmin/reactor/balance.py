@@ -11,9 +11,10 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.errors import BalanceError
 from gibbsmin.reactor.holds import Hold
+from gibbsmin.reactor.streams import Values
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
@@ -30,7 +31,8 @@ class Balance:
     elements : symbols of the first rows (and ``charge``); empty where elements have no rows
     rows : names of all m rows
     matrix : (m, S) coefficients of the candidates
-    feed_matrix : (m, F) coefficients of the feed's records, so that b = feed_matrix @ feed
+    feed_matrix : coefficients of the feed's records, so that b = feed_matrix @ feed; (m, F), or
+        (B, m, F) where B states differ in what they hold
     direction : (m,) a dual direction d with Aᵀd ≥ 1 for every candidate
     atoms : (S,) element atoms of each candidate
     """
@@ -44,7 +46,15 @@ class Balance:
 
     def supplies(self, feed: FloatArray) -> FloatArray:
         """b of feed amounts; (..., F) to (..., m)."""
-        return feed @ self.feed_matrix.T
+        if self.feed_matrix.ndim == 2:
+            return feed @ self.feed_matrix.T
+        return np.asarray(np.einsum("bmf,bf->bm", self.feed_matrix, feed))
+
+    def of_states(self, index: IntArray) -> Balance:
+        """The balance of some of the states."""
+        if self.feed_matrix.ndim == 2:
+            return self
+        return replace(self, feed_matrix=self.feed_matrix[index])
 
     def with_holds(
         self, candidates: Sequence[Species], feed: Sequence[Species], holds: Sequence[Hold]
@@ -58,11 +68,17 @@ class Balance:
             matrix=np.vstack(
                 [self.matrix, [[h.outlet.get(r.name, 0.0) for r in candidates] for h in holds]]
             ),
-            feed_matrix=np.vstack(
-                [self.feed_matrix, [[h.feed.get(r.name, 0.0) for r in feed] for h in holds]]
+            feed_matrix=_stacked(
+                [*self.feed_matrix, *([h.feed.get(r.name, 0.0) for r in feed] for h in holds)]
             ),
             direction=np.concatenate([self.direction, np.zeros(len(holds))]),
         )
+
+
+def _stacked(rows: Sequence[Sequence[Values] | FloatArray]) -> FloatArray:
+    """Rows of coefficients, some of which may be arrays (B,), as (m, F) or (B, m, F)."""
+    cells = np.broadcast_arrays(*(np.asarray(cell, dtype=float) for row in rows for cell in row))
+    return np.stack(cells, axis=-1).reshape(*np.shape(cells[0]), len(rows), -1)
 
 
 def element_counts(records: Sequence[Species], rows: Sequence[str]) -> FloatArray:

@@ -16,6 +16,7 @@ from gibbsmin.reactor.holds import (
     held_element_share,
     held_gas_fraction,
 )
+from gibbsmin.reactor.streams import Values, first
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
@@ -25,7 +26,7 @@ class HeldFraction:
     """A record's fraction in the outlet: of the wet or dry gas, or of an element fed."""
 
     record: str
-    value: float
+    value: Values
     basis: Literal["wet", "dry"] | str
     """``wet``, ``dry``, or the symbol of the element whose share stays in the record."""
 
@@ -39,8 +40,8 @@ class Chemistry:
     selection : the candidates; its inert records are held at their inlet amounts
     reactions : ``equilibrium``; or ``none``, where substances only change their form
     condense : names of substances that may condense or evaporate where nothing reacts
-    conversions : fixed conversion by record of the feed
-    fractions : fractions held at the outlet
+    conversions : fixed conversion by record of the feed, (B,) for B states
+    fractions : fractions held at the outlet; of the gas, the same in all states
     approaches : named reactions and their distance from equilibrium
     others : what the reactions do that no approach names
     offsets : energy added to a record, J/mol
@@ -50,7 +51,7 @@ class Chemistry:
     selection: Selection = field(default_factory=Selection)
     reactions: Literal["equilibrium", "none"] = "equilibrium"
     condense: tuple[str, ...] = ()
-    conversions: Mapping[str, float] = field(default_factory=dict)
+    conversions: Mapping[str, Values] = field(default_factory=dict)
     fractions: tuple[HeldFraction, ...] = ()
     approaches: tuple[Approach, ...] = ()
     others: Literal["equilibrium", "frozen"] = "equilibrium"
@@ -82,7 +83,7 @@ def holds_of(
     for held in chemistry.fractions:
         if held.basis in ("wet", "dry"):
             holds.append(
-                held_gas_fraction(held.record, held.value, candidates, held.basis == "dry")
+                held_gas_fraction(held.record, first(held.value), candidates, held.basis == "dry")
             )
         else:
             holds.append(held_element_share(library[held.record], held.value, held.basis, feed))

@@ -17,9 +17,9 @@ import numpy as np
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.minimise import Solution, minimise, minimise_heated
-from gibbsmin.reactor.answers import brackets, only_answers, stretches
+from gibbsmin.reactor.answers import every_answer
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
-from gibbsmin.reactor.roots import root_near, roots_between
+from gibbsmin.reactor.roots import root_near
 
 _LOWEST_PRESSURE, _HIGHEST_PRESSURE = 1e-4, 1e10
 _SIDE = 1e-10
@@ -109,7 +109,8 @@ def at_enthalpy(
     left = np.flatnonzero(~_holds(found, content(found), enthalpy))
     if left.size == 0:
         return found
-    bracketed = _at_content(model, enthalpy[left], content, pressure[left], feed[left], start[left])
+    some = model.of_states(left)
+    bracketed = _at_content(some, enthalpy[left], content, pressure[left], feed[left], start[left])
     return found.with_states(left, bracketed)
 
 
@@ -143,7 +144,7 @@ def at_volume(
     """
 
     def solved(P: FloatArray, index: IntArray) -> Equilibria:
-        return at_temperature(model, temperature[index], P, feed[index])
+        return at_temperature(model.of_states(index), temperature[index], P, feed[index])
 
     def residual(log_P: FloatArray, index: IntArray) -> FloatArray:
         P = np.exp(log_P)
@@ -162,7 +163,7 @@ def at_energy_and_volume(
     """Equilibria of a closed rigid vessel whose internal energy U = H − P V (B,) in J is given."""
 
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
-        return at_volume(model, T, volume[index], feed[index])
+        return at_volume(model.of_states(index), T, volume[index], feed[index])
 
     def content(found: Equilibria, _: IntArray) -> FloatArray:
         return model.mixture.internal_energy(found.temperature, found.pressure, found.amounts)
@@ -179,7 +180,7 @@ def _at_content(
     start: FloatArray,
 ) -> Equilibria:
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
-        return at_temperature(model, T, pressure[index], feed[index])
+        return at_temperature(model.of_states(index), T, pressure[index], feed[index])
 
     return _between(model, solved, lambda found, _: content(found), wanted, start)
 
@@ -199,9 +200,9 @@ def _between(
     everything = np.arange(wanted.size)
     answers = np.full((2, wanted.size), np.nan)
     if model.shift.keys:
-        grids = stretches(model.shift, LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE)
-        roots = roots_between(residual, *brackets(residual, grids, wanted.size))
-        T, answers = only_answers(roots)
+        T, answers = every_answer(
+            model.shift, residual, wanted.size, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE)
+        )
     else:
         T = root_near(residual, start, 50.0, (LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE))
     missing = residual(T, everything)

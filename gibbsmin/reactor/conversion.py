@@ -19,13 +19,11 @@ def conversions(
     NaN where nothing of it is fed or the outlet's amounts (B, S) are not known; below 0 where the
     stage forms it.
     """
-    unknown = np.isnan(amounts).any(axis=1)
     shares = {}
     for fed in inlet.records:
-        into = [record.formula == fed.formula for record in inlet.records]
-        out = [record.formula == fed.formula for record in records]
-        entering = inlet.amounts[:, into].sum(axis=1)
-        leaving = np.where(unknown, np.nan, amounts[:, out].sum(axis=1))
+        # Products count a record that is not known in all of them.
+        entering = inlet.amounts @ [float(each.formula == fed.formula) for each in inlet.records]
+        leaving = amounts @ [float(each.formula == fed.formula) for each in records]
         with np.errstate(divide="ignore", invalid="ignore"):
             shares[fed.name] = np.where(entering > 0.0, 1.0 - leaving / entering, np.nan)
     return shares

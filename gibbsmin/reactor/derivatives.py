@@ -108,7 +108,7 @@ def responses(
     energies
         Changes dg̃ at constant supplies, shape (B, S, K₁).
     directions
-        Changes of the supplies b at constant g̃, shape (m, K₂); K = K₁ + K₂.
+        Changes of the supplies b at constant g̃, shape (m, K₂) or (B, m, K₂); K = K₁ + K₂.
     """
     amounts, gas = solution.amounts, programme.gas
     usable = solution.certified & (np.where(gas, amounts, 0.0).sum(axis=1) > 0.0)
@@ -118,7 +118,7 @@ def responses(
     n = np.where(usable[:, np.newaxis], amounts, 0.0)
     weights = np.where(gas, n, np.where(n > 0.0, np.inf, 0.0))
     basis = abundant_basis(programme.matrix, directions, weights)
-    given, along = energies.shape[-1], directions.shape[1]
+    given, along = energies.shape[-1], directions.shape[-1]
     energies = np.concatenate([energies, np.zeros((*n.shape, along))], axis=2)
     supplies = np.concatenate([np.zeros((*basis.columns.shape, given)), basis.directions], axis=2)
     changes, forces, solvable = _solve(basis, n, gas, energies, supplies)

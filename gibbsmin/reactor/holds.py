@@ -10,6 +10,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 from gibbsmin.errors import InputError
+from gibbsmin.reactor.streams import Values
 from gibbsmin.thermo.species import Phase, Species
 
 WATER_FORMULA = "H2O"
@@ -17,11 +18,14 @@ WATER_FORMULA = "H2O"
 
 @dataclass(frozen=True)
 class Hold:
-    """One condition: coefficients by record name on the outlet and on the feed."""
+    """One condition: coefficients by record name on the outlet and on the feed.
+
+    Those on the feed may be arrays (B,), one for each of B states.
+    """
 
     label: str
     outlet: Mapping[str, float]
-    feed: Mapping[str, float]
+    feed: Mapping[str, Values]
 
 
 def frozen(name: str) -> Hold:
@@ -29,7 +33,7 @@ def frozen(name: str) -> Hold:
     return Hold(f"{name} frozen", {name: 1.0}, {name: 1.0})
 
 
-def fixed_conversion(name: str, conversion: float) -> Hold:
+def fixed_conversion(name: str, conversion: Values) -> Hold:
     """n_out = (1 − x) n_in; a negative x is formation."""
     return Hold(f"{name} converted", {name: 1.0}, {name: 1.0 - conversion})
 
@@ -46,7 +50,7 @@ def held_gas_fraction(name: str, fraction: float, records: Iterable[Species], dr
 
 
 def held_element_share(
-    record: Species, share: float, element: str, feed: Sequence[Species]
+    record: Species, share: Values, element: str, feed: Sequence[Species]
 ) -> Hold:
     """The record keeps this share of an element fed, such as unburnt char of the carbon.
 

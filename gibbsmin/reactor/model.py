@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
 from gibbsmin.minimise import Programme, Warmth
 from gibbsmin.reactor.approach import Shift, shift_of
@@ -51,6 +51,12 @@ class StageModel:
     balance: Balance
     shift: Shift
     reacts: bool
+
+    def of_states(self, index: IntArray) -> StageModel:
+        """The model of some of the states, where they differ in holds or approaches."""
+        return replace(
+            self, balance=self.balance.of_states(index), shift=self.shift.of_states(index)
+        )
 
     @property
     def gas(self) -> BoolArray:
@@ -132,13 +138,9 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
     InputError
         when the chemistry names records or reactions that do not fit.
     """
-    if chemistry.reactions == "none":
-        records = forms_of_feed(chemistry.condense, feed, library)
-    else:
-        records = choose_candidates(chemistry.selection, feed, library)
+    records = candidates_of(chemistry, feed, library)
+    if chemistry.reactions != "none":
         require_every_element_held(records, feed, library)
-    if chemistry.others == "frozen":
-        records = gases_first(list(dict.fromkeys([*records, *feed])))
     shift = shift_of(records, chemistry.approaches, chemistry.offsets, chemistry.activities)
     if chemistry.reactions == "none":
         balance = substance_balance(records, feed)
@@ -155,3 +157,22 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
         shift=shift,
         reacts=chemistry.reactions == "equilibrium",
     )
+
+
+def candidates_of(
+    chemistry: Chemistry, feed: Sequence[Species], library: Library
+) -> tuple[Species, ...]:
+    """The records that may leave a stage with this feed, gases first.
+
+    Raises
+    ------
+    InputError
+        when the chemistry names records that do not fit.
+    """
+    if chemistry.reactions == "none":
+        records = forms_of_feed(chemistry.condense, feed, library)
+    else:
+        records = choose_candidates(chemistry.selection, feed, library)
+    if chemistry.others == "frozen":
+        records = gases_first(list(dict.fromkeys([*records, *feed])))
+    return records

@@ -40,7 +40,7 @@ class Specification:
 
     temperature: Values | None = None
     heat: Values | None = None
-    heat_loss: float | None = None
+    heat_loss: Values | None = None
     entropy_of_feed: bool = False
     pressure: Values | None = None
     pressure_drop: Values | None = None
@@ -89,7 +89,7 @@ def _why(model: StageModel, inlet: Inlet, states: IntArray) -> npt.NDArray[np.in
     # Whether amounts exist does not depend on energies, which an approach may leave undefined.
     trial = Programme(
         matrix=model.balance.matrix,
-        supplies=model.balance.supplies(inlet.amounts[states]),
+        supplies=model.balance.of_states(states).supplies(inlet.amounts[states]),
         energies=np.zeros((states.size, len(model.records))),
         gas=model.gas,
         direction=model.balance.direction,

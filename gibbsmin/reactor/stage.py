@@ -16,7 +16,7 @@ from gibbsmin.reactor.heating import lower_heating_values, without_ash
 from gibbsmin.reactor.inlet import Inlet, inlet_of
 from gibbsmin.reactor.model import StageModel, stage_model
 from gibbsmin.reactor.specification import Specification, solve
-from gibbsmin.reactor.streams import Stream
+from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 
 
@@ -33,7 +33,7 @@ class StageStates:
 def solve_stage(
     chemistry: Chemistry,
     specification: Specification,
-    boundary_temperature: float | None,
+    boundary_temperature: Values | None,
     streams: Sequence[Stream],
     library: Library,
 ) -> StageStates:
@@ -53,7 +53,7 @@ def solve_stage(
     return StageStates(inlet, model, equilibria, energy)
 
 
-def _loss(share: float, inlet: Inlet, library: Library) -> FloatArray:
+def _loss(share: Values, inlet: Inlet, library: Library) -> FloatArray:
     """Heat lost in each state, as a share of what the feed would give by burning.
 
     Raises
@@ -76,7 +76,7 @@ def _loss(share: float, inlet: Inlet, library: Library) -> FloatArray:
 
 def _energy_balance(
     specification: Specification,
-    boundary_temperature: float | None,
+    boundary_temperature: Values | None,
     inlet: Inlet,
     model: StageModel,
     found: Equilibria,
@@ -99,7 +99,7 @@ def _energy_balance(
     if specification.heat is not None:
         heat = np.where(np.isnan(change), np.nan, specification.heat)
     boundary: FloatArray = (
-        T if boundary_temperature is None else np.full(T.shape, boundary_temperature)
+        T if boundary_temperature is None else np.broadcast_to(boundary_temperature, T.shape)
     )
     return energy_balance(
         heat=heat,

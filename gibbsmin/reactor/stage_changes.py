@@ -20,6 +20,7 @@ from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges
+from gibbsmin.reactor.streams import Values
 from gibbsmin.thermo.library import Library
 
 
@@ -61,7 +62,7 @@ class StageChanges:
 def stage_changes(
     states: StageStates,
     specification: Specification,
-    boundary_temperature: float | None,
+    boundary_temperature: Values | None,
     asked: SpecificationChanges,
     inlet: InletChanges,
     records: RecordChanges,
@@ -81,7 +82,8 @@ def stage_changes(
     heat_in = asked.heat
     if specification.heat_loss is not None:
         values = lower_heating_values(states.inlet.records, library)
-        heat_in = -specification.heat_loss * np.einsum("f,bfk->bk", values, inlet.amounts)
+        share = np.reshape(specification.heat_loss, (-1, 1))
+        heat_in = -share * np.einsum("f,bfk->bk", values, inlet.amounts)
     closed = specification.volume is not None
 
     if specification.temperature is not None:

@@ -242,8 +242,9 @@ def test_crossings_of_a_known_function_are_all_found() -> None:
         ),
         (
             {"axis": [{"vary": "outlet.colour", "first": 1, "last": 2, "count": 3}]},
-            'axis.0.values: found "colour", which is no quantity with a unit; accepted is one of '
-            "temperature, pressure, pressure_drop, heat, volume.",
+            'axis.0.vary: found "outlet.colour", which names no number of the case; accepted is '
+            "one of outlet.temperature, outlet.pressure, outlet.boundary_temperature, "
+            "outlet.bypass.",
         ),
     ],
 )

@@ -58,11 +58,57 @@ AXES: dict[str, tuple[Any, ...]] = {
     "stage.shift.heat": ("-5 kJ", "5 kJ"),
     "stage.shift.pressure_drop": ("0.2 bar", "1 bar"),
     "stage.shift.conversion.CH4": ("0 %", "2 %"),
-    "stage.shift.bypass": ("5 %", 0.3),
+    "stage.shift.bypass": ("5 %", "30 %"),
     "stage.shift.remove.CO2": ("0 %", "90 %"),
     "feed.steam.temperature": ("400 degC", "600 degC"),
     "feed.steam.pressure": ("28 bar", "40 bar"),
     "feed.gas.amounts.N2": ("0.01 mol", "0.5 mol"),
+}
+
+HELD: dict[str, Any] = {
+    "feed": {
+        **CASE["feed"],
+        "air": {
+            "temperature": "20 degC",
+            "pressure": "30 bar",
+            "unit": "mol",
+            "amounts": {"O2": 0.6, "N2": 2.3},
+        },
+    },
+    "stage": [
+        {"name": "burner", "heat_loss": "1 %", "pressure": "25 bar"},
+        {
+            "name": "converter",
+            "heat": "20 kJ",
+            "pressure": "20 bar",
+            "approach": [{"reaction": "CH4 + H2O = CO + 3 H2", "approach": "5 K"}],
+            "offset": {"C(graphite)": "2 kJ/mol"},
+        },
+        {
+            "name": "furnace",
+            "temperature": "500 degC",
+            "pressure": "10 bar",
+            "held_fraction": {"CH4": "1 % dry"},
+            "activity": {"C(graphite)": 0.5},
+        },
+        {
+            "name": "char bed",
+            "temperature": "500 degC",
+            "pressure": "10 bar",
+            "held_fraction": {"CH4": "5 % of C"},
+        },
+    ],
+    "species": {"consider": [*CASE["species"]["consider"], "O2"]},
+}
+
+HELD_AXES: dict[str, tuple[Any, ...]] = {
+    "stage.burner.heat_loss": ("0.5 %", "5 %"),
+    "stage.converter.approach.1": ("0 K", "30 K", "10 K"),
+    "stage.converter.offset.C(graphite)": ("0 kJ/mol", "-20 kJ/mol"),
+    "stage.furnace.held_fraction.CH4": ("1 %", "3 %"),
+    "stage.furnace.activity.C(graphite)": (1.0, 0.1),
+    "stage.char bed.held_fraction.CH4": ("2 %", "6 %"),
+    "feed.air.total": ("2.7 mol", "3.2 mol"),
 }
 
 
@@ -76,6 +122,12 @@ def put(tables: dict[str, Any], name: str, value: Any) -> dict[str, Any]:
     else:
         table = next(s for s in tables["stage"] if s["name"] == parts[1])
         keys = parts[2:]
+    if keys[0] == "total":
+        factor = float(value.split()[0]) / sum(table["amounts"].values())
+        table["amounts"] = {k: n * factor for k, n in table["amounts"].items()}
+        return tables
+    if keys[0] == "held_fraction":
+        value += " dry" if parts[1] == "furnace" else " of C"
     if keys[0] == "approach":
         table["approach"][int(keys[1]) - 1]["approach"] = value
         return tables
@@ -85,14 +137,18 @@ def put(tables: dict[str, Any], name: str, value: Any) -> dict[str, Any]:
     return tables
 
 
-@pytest.mark.parametrize("name", AXES)
-def test_rows_of_every_kind_of_axis_equal_single_predictions(name: str) -> None:
-    values = AXES[name]
-    tables = deepcopy(CASE) | {"axis": [{"vary": name, "values": list(values)}]}
+KINDS = [(CASE, *axis) for axis in AXES.items()] + [(HELD, *axis) for axis in HELD_AXES.items()]
+
+
+@pytest.mark.parametrize(("case", "name", "values"), KINDS, ids=[name for _, name, _ in KINDS])
+def test_rows_of_every_kind_of_axis_equal_single_predictions(
+    case: dict[str, Any], name: str, values: tuple[Any, ...]
+) -> None:
+    tables = deepcopy(case) | {"axis": [{"vary": name, "values": list(values)}]}
     table = gibbsmin.scan(gibbsmin.load_case(tables)).table
     assert len(table) == len(values)
     for row, value in enumerate(values):
-        outlet = gibbsmin.predict(gibbsmin.load_case(put(CASE, name, value)))
+        outlet = gibbsmin.predict(gibbsmin.load_case(put(case, name, value)))
         for stage in outlet.stages:
             before = f"{stage.name}: "
             for record, y in zip(stage.records, stage.mole_fractions, strict=True):
@@ -143,22 +199,41 @@ def test_a_table_of_conditions_is_a_row_a_state(tmp_path: Path) -> None:
     [
         (
             {"stage.reformer.colour": [1.0]},
-            'cond.csv: column "stage.reformer.colour": found "colour", which is no quantity with a '
-            "unit; accepted is one of temperature, pressure, pressure_drop, heat, volume.",
+            'cond.csv: column "stage.reformer.colour": found "stage.reformer.colour", which names '
+            "no number of the case; accepted is one of stage.reformer.temperature, "
+            "stage.reformer.pressure, stage.reformer.boundary_temperature, "
+            "stage.reformer.bypass, stage.reformer.approach.1.",
         ),
         (
             {"stage.reformer.temperature, bar": [800.0]},
-            'cond.csv: column "stage.reformer.temperature, bar": found "800.0 bar", which is a '
-            'pressure; accepted is a temperature such as "850 degC" or "1123 K".',
+            'cond.csv: column "stage.reformer.temperature, bar", row 2: found "800.0 bar", which '
+            'is a pressure; accepted is a temperature such as "850 degC" or "1123 K".',
+        ),
+        (
+            {"stage.reformer.temperature, degC": [800.0, -300.0, 820.0]},
+            'cond.csv: column "stage.reformer.temperature, degC", row 3: found "-300.0 degC", '
+            "which is not above absolute zero; accepted is a temperature such as "
+            '"850 degC" or "1123 K".',
+        ),
+        (
+            {"stage.shift.bypass, %": [10.0, 120.0]},
+            'cond.csv: column "stage.shift.bypass, %", row 3: found "120.0 %", which is not '
+            'between 0 and 1; accepted is a share from 0 to 1, such as 0.8 or "80 %".',
+        ),
+        (
+            {"label": ["a"], "shift of": ["night"], "outlet.temperature, degC": [1.0]},
+            'cond.csv: column "shift of": found "shift of", which names no number of the case; '
+            "accepted is a number of stage.reformer, stage.shift, feed.gas, feed.steam, such as "
+            "stage.reformer.temperature.",
         ),
         (
             {"stage.reformer.temperature, degC": [800.0, None]},
-            'cond.csv: column "stage.reformer.temperature, degC": found an empty cell in row 3; '
+            'cond.csv: column "stage.reformer.temperature, degC", row 3: found an empty cell; '
             "accepted is a number.",
         ),
         (
             {"stage.reformer.temperature, degC": [800.0, "hot", 820.0]},
-            'cond.csv: column "stage.reformer.temperature, degC": found "hot" in row 3; accepted '
+            'cond.csv: column "stage.reformer.temperature, degC", row 3: found "hot"; accepted '
             "is a number.",
         ),
         (
@@ -183,9 +258,9 @@ def test_a_column_that_names_no_stage_or_stream_is_refused() -> None:
     with pytest.raises(InputError) as error:
         gibbsmin.scan(gibbsmin.load_case(CASE), table)
     assert str(error.value) == (
-        'axis.stage.oven.temperature: found "stage.oven.temperature", which names no number of '
-        "the case; accepted is a number of stage.reformer, stage.shift, feed.gas, feed.steam, "
-        "such as stage.reformer.temperature."
+        'column "stage.oven.temperature, degC": found "stage.oven.temperature", which names no '
+        "number of the case; accepted is a number of stage.reformer, stage.shift, feed.gas, "
+        "feed.steam, such as stage.reformer.temperature."
     )
 
 
@@ -195,20 +270,26 @@ def test_a_column_that_names_no_stage_or_stream_is_refused() -> None:
         (
             "stage.shift.conversion.CO",
             "1 %",
-            'axis.stage.shift.conversion.CO: found "conversion.CO", which the stage does not '
-            "give; accepted is one of CH4(g).",
+            'axis.0.vary: found "stage.shift.conversion.CO", which names no number of the case; '
+            "accepted is one of stage.shift.heat, stage.shift.pressure_drop, "
+            "stage.shift.boundary_temperature, stage.shift.bypass, "
+            "stage.shift.conversion.CH4(g), stage.shift.remove.CO2(g).",
         ),
         (
             "stage.reformer.approach.2",
             "1 K",
-            'axis.stage.reformer.approach.2: found "approach.2", which the stage does not give; '
-            "accepted is approach.1 to approach.1.",
+            'axis.0.vary: found "stage.reformer.approach.2", which names no number of the case; '
+            "accepted is one of stage.reformer.temperature, stage.reformer.pressure, "
+            "stage.reformer.boundary_temperature, stage.reformer.bypass, "
+            "stage.reformer.approach.1.",
         ),
         (
             "stage.reformer.held_fraction.CH4",
             "1 %",
-            'axis.stage.reformer.held_fraction.CH4: found "held_fraction.CH4", which the stage '
-            "does not give; accepted is a key of the stage.",
+            'axis.0.vary: found "stage.reformer.held_fraction.CH4", which names no number of the '
+            "case; accepted is one of stage.reformer.temperature, stage.reformer.pressure, "
+            "stage.reformer.boundary_temperature, stage.reformer.bypass, "
+            "stage.reformer.approach.1.",
         ),
     ],
 )
