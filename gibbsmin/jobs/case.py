@@ -122,11 +122,11 @@ def _of_files(
     from gibbsmin.jobs.own_library import read_library_file
 
     records: dict[str, Species] = {}
-    sources = []
+    sources: list[Source] = []
     for name in names:
         found = read_library_file(Path(case_file).parent / name, load_library())
         records |= {record.name: record for record in found.records}
-        sources.append(found.source)
+        sources += found.sources
     return tuple(records.values()), tuple(sources)
 
 

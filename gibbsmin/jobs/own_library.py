@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
+from collections.abc import Mapping
+from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -12,19 +12,18 @@ import numpy as np
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case_text import read_tables
 from gibbsmin.jobs.feed_parts import within
+from gibbsmin.jobs.record_evaluations import with_calorimetry, with_constants
 from gibbsmin.jobs.record_files import read_record_rows
 from gibbsmin.jobs.record_thermal import thermal_of
 from gibbsmin.thermo.elements import molar_mass
 from gibbsmin.thermo.formula import parse_formula
 from gibbsmin.thermo.index import split_name
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.measured_constants import compare_laws
-from gibbsmin.thermo.reaction import Reaction
 from gibbsmin.thermo.species import OWN, Phase, Species
 from gibbsmin.thermo.tables import Source
 
 if TYPE_CHECKING:
-    from gibbsmin.jobs.record_schema import ConstantsTable, RecordTable
+    from gibbsmin.jobs.record_schema import RecordTable
 
 _MASS_AGREES = 1e-3
 _GIVING = {
@@ -35,14 +34,15 @@ _GIVING = {
 
 @dataclass(frozen=True)
 class OwnRecords:
-    """Records of a file, the file's own source, and what was worked out on the way.
+    """Records of a file, their sources, and what was worked out on the way.
 
-    ``findings`` are sentences by record name: fit errors, contributions to an entropy, how the
+    Each record has a source of its own, whose key names the file and the record.  ``findings`` are
+    sentences by record name: fit errors, contributions to an entropy, how the
     second and the third law agree.
     """
 
     records: tuple[Species, ...]
-    source: Source
+    sources: tuple[Source, ...]
     findings: Mapping[str, tuple[str, ...]]
 
 
@@ -64,22 +64,23 @@ def read_library_file(path: Path, library: Library) -> OwnRecords:
         tables = {"record": read_record_rows(path)}
     try:
         rows = validated(LibraryTable, tables).record
-        citations = "; ".join(dict.fromkeys(row.source for row in rows))
-        source = Source(f"{OWN}{path.name}", citations, "the user's")
         records: list[Species] = []
+        sources: list[Source] = []
         findings: dict[str, tuple[str, ...]] = {}
         for index, row in enumerate(rows):
             with within(f"record.{index}"):
+                source = Source(f"{OWN}{path.name}, {row.name}", row.source, "the user's")
                 record, found = _record(row, source.key, library)
                 if record.name in findings:
                     raise InputError(
                         f'found "{record.name}" twice', "accepted is each record once", key="name"
                     )
             records.append(record)
+            sources.append(source)
             findings[record.name] = found
     except InputError as error:
         raise error.at(file=file) from None
-    return OwnRecords(tuple(records), source, findings)
+    return OwnRecords(tuple(records), tuple(sources), findings)
 
 
 def _record(row: RecordTable, source: str, library: Library) -> tuple[Species, tuple[str, ...]]:
@@ -122,8 +123,12 @@ def _record(row: RecordTable, source: str, library: Library) -> tuple[Species, t
         remark="the user's own record",
     )
     findings = thermal.findings
+    if row.calorimetry is not None:
+        known = row.entropy is not None or row.spectrum is not None
+        record, said = with_calorimetry(row.calorimetry, record, known=known)
+        findings = (*findings, *said)
     if row.constants is not None:
-        record, said = _with_constants(row.constants, record, library)
+        record, said = with_constants(row.constants, record, library)
         findings = (*findings, *said)
     for key, value in (("enthalpy", record.dfH298), ("entropy", record.S298)):
         if np.isnan(value):
@@ -141,50 +146,3 @@ def _given(value: float | None, otherwise: float) -> float:
 
 def _phase(state: str) -> Phase:
     return {"g": Phase.GAS, "l": Phase.LIQUID}.get(state, Phase.SOLID)
-
-
-def _with_constants(
-    given: ConstantsTable, record: Species, library: Library
-) -> tuple[Species, tuple[str, ...]]:
-    """The record with what measured constants say of it."""
-    with within("constants"):
-        bare = replace(record, dfH298=_or(record.dfH298, 0.0), S298=_or(record.S298, 0.0))
-        reaction = Reaction.read(given.reaction, library.overruled([bare]))
-        coefficients = {
-            _form(substance.forms, record.name): float(number)
-            for number, substance in reaction.terms
-        }
-        laws = compare_laws(record, coefficients, given.temperature, given.log10_K)
-    said = [
-        f"Second law: ΔfH = {laws.second_law_enthalpy / 1e3:.3f} ± "
-        f"{laws.u_second_law_enthalpy / 1e3:.3f} kJ/mol, S = {laws.second_law_entropy:.2f} ± "
-        f"{laws.u_second_law_entropy:.2f} J/(mol K)."
-    ]
-    enthalpy, u_enthalpy = laws.second_law_enthalpy, laws.u_second_law_enthalpy
-    entropy, u_entropy = laws.second_law_entropy, laws.u_second_law_entropy
-    if np.isfinite(record.S298):
-        agree = "agree" if laws.consistent else "DISAGREE"
-        said.append(
-            f"Third law: ΔfH = {laws.third_law_enthalpy / 1e3:.3f} ± "
-            f"{laws.u_third_law_enthalpy / 1e3:.3f} kJ/mol, drifting by {1e3 * laws.drift:.3f} ± "
-            f"{1e3 * laws.u_drift:.3f} J/mol in 1000 K: the laws {agree}."
-        )
-        enthalpy, u_enthalpy = laws.third_law_enthalpy, laws.u_third_law_enthalpy
-        entropy, u_entropy = record.S298, record.u_S298
-    return replace(
-        record,
-        dfH298=_or(record.dfH298, enthalpy),
-        u_dfH298=_or(record.u_dfH298, u_enthalpy),
-        S298=entropy,
-        u_S298=u_entropy,
-    ), tuple(said)
-
-
-def _form(forms: Sequence[Species], name: str) -> Species:
-    """The form of a substance that bears the name, else its gas, else its first."""
-    named = [form for form in forms if form.name == name]
-    return next(iter([*named, *(form for form in forms if form.phase is Phase.GAS), *forms]))
-
-
-def _or(value: float, otherwise: float) -> float:
-    return otherwise if np.isnan(value) else value

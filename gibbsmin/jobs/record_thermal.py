@@ -18,7 +18,7 @@ from gibbsmin.thermo.group_estimates import estimate_by_groups
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Piece
 from gibbsmin.thermo.spectroscopy import InternalRotation, Spectrum, gas_functions
-from gibbsmin.thermo.third_law import Contribution, ThirdLawEntropy, Transition, third_law_entropy
+from gibbsmin.thermo.third_law import Transition, phases_of
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.record_schema import (
@@ -30,6 +30,9 @@ if TYPE_CHECKING:
     )
 
 _SPECTRUM_RANGE = np.concatenate([np.arange(50.0, 300.0, 10.0), np.geomspace(300.0, 6000.0, 80)])
+_U_SUMMED, _U_HARMONIC = 0.05, 0.2
+"""J/mol/K; judgement, from how far entropies of published molecules come out, at most 0.12."""
+
 _BY_GROUPS = (
     "An estimate by groups (Joback and Reid 1987); the method's mean errors are 8.4 kJ/mol in the "
     "energies and 1.4 % in the heat capacity."
@@ -80,28 +83,22 @@ def thermal_of(row: RecordTable, composition: Formula, mass: float, library: Lib
     elif row.calorimetry is not None:
         with within("calorimetry"):
             thermal = _of_table(_last_phase(row.calorimetry))
-    if row.calorimetry is not None:
-        with within("calorimetry"):
-            law = _third_law(row.calorimetry)
-        said = (
-            f"Third law: S(298.15 K) = {law.entropy:.3f} ± {law.uncertainty:.3f} J/(mol K), of",
-            *(
-                f"  {part.name}: {part.value:.3f} ± {part.uncertainty:.3f}"
-                for part in law.contributions
-            ),
-        )
-        thermal = replace(
-            thermal,
-            entropy=law.entropy,
-            u_entropy=law.uncertainty,
-            findings=(*thermal.findings, *said),
-        )
     return thermal
 
 
 def _pieces(given: Sequence[PieceTable]) -> tuple[Piece, ...]:
     pieces = tuple(
-        Piece(p.first, p.last, p.unit * p.A, p.unit * p.B, p.unit * p.C, p.unit * p.D, p.unit * p.E)
+        Piece(
+            p.first,
+            p.last,
+            A=p.unit * p.A,
+            B=p.unit * p.B,
+            C=p.unit * p.C,
+            D=p.unit * p.D,
+            E=p.unit * p.E,
+            transition=p.transition,
+            label="transition" if p.transition else "",
+        )
         for p in given
     )
     for k, piece in enumerate(pieces):
@@ -154,8 +151,12 @@ def _fitted(T: FloatArray, Cp: FloatArray, what: str) -> Thermal:
 
 def _last_phase(given: CalorimetryTable) -> HeatCapacityTable:
     """The heat capacities above the last transition, which the record goes on with."""
-    last = max([0.0, *(t.temperature for t in given.transition)])
-    kept = [k for k, T in enumerate(given.temperature) if last <= T]
+    transitions = sorted(
+        (Transition(t.temperature, t.enthalpy) for t in given.transition),
+        key=lambda transition: transition.temperature,
+    )
+    phases = phases_of(np.array(given.temperature), transitions)
+    kept = np.flatnonzero(phases == len(transitions)).tolist()
     return given.model_copy(
         update={
             "temperature": tuple(given.temperature[k] for k in kept),
@@ -168,7 +169,7 @@ def _of_spectrum(given: SpectrumTable, composition: Formula, mass: float) -> The
     spectrum = Spectrum(
         molar_mass=mass,
         symmetry_number=given.symmetry_number,
-        rotational_constants=tuple(map(float, given.rotational_constants)),
+        rotational_constants=given.rotational_constants or given.moments_of_inertia,
         vibrations=tuple((w, int(count)) for w, count in given.vibrations),
         electronic=given.electronic,
         anharmonicity=given.anharmonicity,
@@ -180,6 +181,13 @@ def _of_spectrum(given: SpectrumTable, composition: Formula, mass: float) -> The
             InternalRotation(r.barrier, r.fold, r.constant) for r in given.internal_rotation
         ),
     )
+    alike = 2 if len(composition.elements) == 1 else 1
+    if composition.atoms == 2 and spectrum.symmetry_number != alike:
+        raise InputError(
+            f"found the symmetry number {spectrum.symmetry_number} of {composition.text}",
+            f"accepted is {alike}, since its two atoms are {'' if alike == 2 else 'not '}alike",
+            key="symmetry_number",
+        )
     rotations = {0: 0, 1: 2, 3: 3}[len(spectrum.rotational_constants)]
     expected = max(0, int(3 * composition.atoms) - 3 - rotations)
     if spectrum.motions != expected:
@@ -188,27 +196,24 @@ def _of_spectrum(given: SpectrumTable, composition: Formula, mass: float) -> The
             f"accepted are {expected}, each counted by its degeneracy",
             key="vibrations",
         )
-    model = "levels of a vibrating rotor" if given.anharmonicity else "rigid and harmonic"
-    Cp = gas_functions(spectrum, _SPECTRUM_RANGE).heat_capacity
-    thermal = _fitted(_SPECTRUM_RANGE, Cp, f"Functions from the spectrum ({model}), 50 to 6000 K")
-    findings = thermal.findings
+    summed = bool(given.anharmonicity)
+    model = "levels of a vibrating rotor" if summed else "rigid and harmonic"
+    T = _SPECTRUM_RANGE[spectrum.classical_from <= _SPECTRUM_RANGE]
+    Cp = gas_functions(spectrum, T).heat_capacity
+    what = f"Functions from the spectrum ({model}), {T[0]:.0f} to 6000 K"
+    thermal = _fitted(T, Cp, what)
+    u_entropy = _U_SUMMED if summed or spectrum.motions == 0 else _U_HARMONIC
+    findings = [*thermal.findings, f"Its entropy is good to {u_entropy:g} J/(mol K), by judgement."]
+    if not summed and spectrum.motions:
+        findings.append(
+            "Anharmonicity, which is left out, adds to Cp at high temperature: 1 to 3 % at 2000 K "
+            "in CO2, H2O and diatomics."
+        )
     if not given.internal_rotation and len(spectrum.rotational_constants) == 3:
-        findings = (*findings, "Internal rotations, if there are any, are treated as vibrations.")
-    entropy = float(gas_functions(spectrum, REFERENCE_TEMPERATURE).entropy)
-    return replace(thermal, entropy=entropy, findings=findings)
-
-
-def _third_law(given: CalorimetryTable) -> ThirdLawEntropy:
-    residual = None
-    if given.residual_entropy:
-        residual = Contribution("residual entropy", given.residual_entropy, 0.0)
-    return third_law_entropy(
-        given.temperature,
-        given.unit * np.array(given.heat_capacity),
-        REFERENCE_TEMPERATURE,
-        transitions=[
-            Transition(t.temperature, t.enthalpy, t.uncertainty, t.name) for t in given.transition
-        ],
-        relative_uncertainty=given.relative_uncertainty,
-        residual=residual,
+        findings.append("Internal rotations, if there are any, are treated as vibrations.")
+    return replace(
+        thermal,
+        entropy=float(gas_functions(spectrum, REFERENCE_TEMPERATURE).entropy),
+        u_entropy=u_entropy,
+        findings=tuple(findings),
     )

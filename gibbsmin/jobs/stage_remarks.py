@@ -81,7 +81,10 @@ def method_notes(model: StageModel, state: SolvedState, found: Equilibria) -> tu
     taking_part = dict.fromkeys([*model.feed_records, *model.records])
     own = [record for record in taking_part if record.source_enthalpy.startswith(OWN)]
     if own:
-        files = dict.fromkeys(record.source_enthalpy.removeprefix(OWN) for record in own)
+        files = dict.fromkeys(
+            record.source_enthalpy.removeprefix(OWN).removesuffix(f", {record.name}")
+            for record in own
+        )
         notes.append(
             f"Records of the user's own ({', '.join(files)}): "
             f"{', '.join(record.name for record in own)}."

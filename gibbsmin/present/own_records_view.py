@@ -17,7 +17,7 @@ from gibbsmin.thermo.species import Species
 
 def own_records_view(own: OwnRecords, temperatures: FloatArray, library: Library) -> RenderableType:
     """Each record in full, then how it came about and how it stands to the library's."""
-    extended = library.overruled(own.records, [own.source])
+    extended = library.overruled(own.records, own.sources)
     parts: list[RenderableType] = []
     for record in own.records:
         parts.append(species_view(record, _shown(record, temperatures), extended))
@@ -30,7 +30,7 @@ def own_records_document(
     own: OwnRecords, temperatures: FloatArray, library: Library
 ) -> dict[str, Any]:
     """The same for JSON."""
-    extended = library.overruled(own.records, [own.source])
+    extended = library.overruled(own.records, own.sources)
     return {
         "species": [
             {

@@ -11,6 +11,7 @@ either energy and of 1.4 % in Cp; it states Cp for 273 to about 1000 K.
 from __future__ import annotations
 
 import csv
+from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache
@@ -21,6 +22,7 @@ import numpy as np
 
 from gibbsmin.constants import REFERENCE_TEMPERATURE
 from gibbsmin.errors import InputError
+from gibbsmin.thermo.formula import parse_formula
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Piece
 
@@ -69,7 +71,8 @@ def estimate_by_groups(
     Raises
     ------
     InputError
-        for an unknown group, a count below 1, or an element without groups.
+        for an unknown group, a count below 1, or groups that do not
+        add up to the formula.
     """
     table = contributions()
     for name, count in groups.items():
@@ -83,17 +86,12 @@ def estimate_by_groups(
                 "accepted is a whole number from 1",
                 key="groups",
             )
+    _check_composition(groups, elements)
     total = np.sum([count * table[name] for name, count in groups.items()], axis=0)
     enthalpy, gibbs = 1e3 * (68.29 + total[0]), 1e3 * (53.88 + total[1])
     a, b, c, d = total[2:] + np.array([-37.93, 0.210, -3.91e-4, 2.06e-7])
     entropy_of_elements = 0.0
     for symbol, amount in elements.items():
-        if symbol not in _REFERENCES:
-            raise InputError(
-                f"found the element {symbol}, for which the method has no group",
-                f"accepted are {', '.join(_REFERENCES)}",
-                key="groups",
-            )
         name, atoms = _REFERENCES[symbol]
         entropy_of_elements += amount / atoms * library[name].S298
     u_entropy = np.sqrt(2.0) * ENTHALPY_ERROR / REFERENCE_TEMPERATURE
@@ -111,6 +109,23 @@ def estimate_by_groups(
             D=float(d * 1e9),
         ),
     )
+
+
+def _check_composition(groups: Mapping[str, int], elements: Mapping[str, float]) -> None:
+    """Refuse groups whose atoms are not those of the formula."""
+    atoms: Counter[str] = Counter()
+    for name, count in groups.items():
+        # "ring =CH" and "phenol OH" hold the atoms of their last word.
+        for symbol, number in parse_formula(name.split()[-1].strip("=#")).elements:
+            atoms[symbol] += count * int(number)
+    for symbol in sorted({*atoms, *elements}):
+        if atoms[symbol] != elements.get(symbol, 0.0):
+            raise InputError(
+                f"found groups with {atoms[symbol]} {symbol}, while the formula has "
+                f"{elements.get(symbol, 0.0):g}",
+                "accepted are groups that add up to the formula",
+                key="groups",
+            )
 
 
 @cache

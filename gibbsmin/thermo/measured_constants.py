@@ -6,6 +6,9 @@ integrals of its heat capacity, G − ΔG_Cp = ΔfH298 − T S298:
 
 - second law: a straight line through it gives ΔfH298 and S298 together;
 - third law: with S298 known, each point gives ΔfH298, and they should not drift with T.
+
+Uncertainties hold the scatter of the points, an error common to them, and the other species'
+enthalpies and entropies; those of the third law that of the entropy too.
 """
 
 from __future__ import annotations
@@ -21,6 +24,7 @@ from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.errors import InputError
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Species
+from gibbsmin.thermo.uncertainty import record_uncertainties
 
 
 @dataclass(frozen=True)
@@ -30,9 +34,9 @@ class LawComparison:
     Attributes
     ----------
     second_law_enthalpy, second_law_entropy : ΔfH298 in J/mol and S298 in J/mol/K
-    u_second_law_enthalpy, u_second_law_entropy : standard uncertainties, from the scatter
+    u_second_law_enthalpy, u_second_law_entropy : standard uncertainties
     third_law_enthalpy, u_third_law_enthalpy : with the entropy given; NaN without one
-    drift : of the third-law enthalpy, J/mol per K, with its standard uncertainty ``u_drift``
+    drift : of the third-law enthalpy, kJ/mol in 1000 K, with its standard uncertainty ``u_drift``
     """
 
     second_law_enthalpy: float
@@ -55,11 +59,13 @@ def compare_laws(
     coefficients: Mapping[Species, float],
     temperatures: npt.ArrayLike,
     log10_constants: npt.ArrayLike,
+    common_uncertainty: float = 0.0,
 ) -> LawComparison:
     """Evaluate log10 K (n,) at T (n,) for a species of known heat capacity.
 
     ``unknown.dfH298`` is of no account; ``unknown.S298`` serves the third law, and NaN leaves it
-    away.  ``coefficients`` holds all species of the reaction, products positive.
+    away.  ``coefficients`` holds all species of the reaction, products positive;
+    ``common_uncertainty`` is that of log10 K which all points share.
 
     Raises
     ------
@@ -87,20 +93,33 @@ def compare_laws(
     G = (-GAS_CONSTANT * T * log_K - known) / nu
     reduced = G - _of_heat_capacity(unknown, T)
     line = _straight_line(-T, reduced)
+    # Of the other species' enthalpies and entropies, and of the error common to all points.
+    known_u = record_uncertainties(others)
+    u_H = float(np.linalg.norm(weights * known_u.enthalpy / nu))
+    u_S = float(
+        np.hypot(
+            np.linalg.norm(weights * known_u.entropy / nu),
+            GAS_CONSTANT * np.log(10.0) * common_uncertainty / nu,
+        )
+    )
     third = np.full(T.shape, np.nan)
     drift = (np.nan, np.nan, np.nan, np.nan)
+    own_u_S = np.nan
     if np.isfinite(unknown.S298):
         third = reduced + T * unknown.S298
         drift = _straight_line(T, third)
+        own_u_S = float(record_uncertainties([unknown]).entropy[0])
+    scatter = third.std(ddof=1) / np.sqrt(T.size)
+    all_S = np.hypot(u_S, own_u_S)
     return LawComparison(
         second_law_enthalpy=line[0],
-        u_second_law_enthalpy=line[1],
+        u_second_law_enthalpy=float(np.hypot(line[1], u_H)),
         second_law_entropy=line[2],
-        u_second_law_entropy=line[3],
+        u_second_law_entropy=float(np.hypot(line[3], u_S)),
         third_law_enthalpy=float(third.mean()),
-        u_third_law_enthalpy=float(third.std(ddof=1) / np.sqrt(T.size)),
+        u_third_law_enthalpy=float(np.linalg.norm([scatter, u_H, T.mean() * all_S])),
         drift=drift[2],
-        u_drift=drift[3],
+        u_drift=float(np.hypot(drift[3], all_S)),
     )
 
 

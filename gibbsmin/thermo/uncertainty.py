@@ -17,9 +17,10 @@ from typing import Literal
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.thermo.species import Species
+from gibbsmin.thermo.species import OWN, Species
 
 PUBLISHED = "published"
+OWN_RECORD = "the user's record"
 BY_DEFINITION = "exact by definition of the reference state"
 
 Quantity = Literal["enthalpy", "entropy"]
@@ -33,9 +34,9 @@ class RecordUncertainties:
     ----------
     enthalpy : u(dfH298) in J/mol, (S,); none is NaN
     entropy : u(S298) in J/mol/K, (S,); none is NaN
-    enthalpy_origins, entropy_origins : "published" for what the record carries itself (the
-        library's, or the user's own), "exact by definition …" for the enthalpy of a reference
-        state, else the reason of the class, which begins with "judgement: "
+    enthalpy_origins, entropy_origins : "published" for what the library's record carries, "the
+        user's record" for what a user's own does, "exact by definition …" for the enthalpy of a
+        reference state, else the reason of the class, which begins with "judgement: "
     """
 
     enthalpy: FloatArray
@@ -81,14 +82,18 @@ def _enthalpy(record: Species) -> tuple[float, str]:
     if record.dfH298 == 0.0 and len(record.elements) <= 1:
         return 0.0, BY_DEFINITION
     if not math.isnan(record.u_dfH298):
-        return record.u_dfH298, PUBLISHED
+        return record.u_dfH298, _carried(record.source_enthalpy)
     return _by_class("enthalpy", record.source_enthalpy, record)
 
 
 def _entropy(record: Species) -> tuple[float, str]:
     if not math.isnan(record.u_S298):
-        return record.u_S298, PUBLISHED
+        return record.u_S298, _carried(record.source_entropy)
     return _by_class("entropy", record.source_entropy, record)
+
+
+def _carried(source: str) -> str:
+    return OWN_RECORD if source.startswith(OWN) else PUBLISHED
 
 
 def _by_class(quantity: Quantity, source: str, record: Species) -> tuple[float, str]:

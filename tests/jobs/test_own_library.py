@@ -6,6 +6,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+from published_values import rows
 from typer.testing import CliRunner
 
 import gibbsmin
@@ -122,6 +123,86 @@ heat_capacity = {Cp}
     assert "  0 K to 10 K, T³ law: 0.018 ± 0.001" in findings
 
 
+RECALLED = "relative_uncertainty = 0.01"
+"""Of heat capacities that are recalled from memory."""
+
+
+def vapour(changes: str = "") -> str:
+    """Nitrogen with its calorimetry, W. F. Giauque and J. O. Clayton (1933), recalled."""
+    found = [row for row in rows("calorimetric_points") if row["substance"] == "nitrogen"]
+    transitions = (
+        ("alpha to beta", 35.61, 54.71, 0.5),
+        ("fusion", 63.14, 172.3, 1.0),
+        ("vaporisation", 77.32, 1332.9, 3.0),
+    )
+    text = f"""[record.calorimetry]
+unit = "cal/(mol K)"
+temperature = [{", ".join(f'"{row["T_K"]} K"' for row in found)}]
+heat_capacity = [{", ".join(row["Cp"] for row in found)}]
+{changes}
+[record.calorimetry.vapour]
+boiling = "77.32 K"
+pressure = "1 atm"
+critical_temperature = "126.2 K"
+critical_pressure = "33.9 bar"
+"""
+    for name, T, enthalpy, u in transitions:
+        text += (
+            f'[[record.calorimetry.transition]]\nname = "{name}"\ntemperature = "{T} K"\n'
+            f'enthalpy = "{enthalpy} cal/mol"\nuncertainty = "{u} cal/mol"\n'
+        )
+    return text
+
+
+def test_a_vapours_calorimetry_is_held_against_its_spectrum(tmp_path: Path) -> None:
+    own = read(tmp_path, NITROGEN + vapour(RECALLED))
+    (record,) = own.records
+    assert pytest.approx(191.61, abs=0.01) == record.S298
+    findings = own.findings["N2(g)"]
+    assert "  77.32 K to 298.15 K, gas: 39.284 ± 0.000" in findings
+    assert findings[-1].startswith("That is +1.028 ± ")
+    assert findings[-1].endswith(
+        " J/(mol K) from the entropy that the record takes, 191.610: they agree."
+    )
+    # Residual entropy that nitrogen does not have.
+    disordered = vapour(RECALLED + '\nresidual_entropy = "5.76 J/(mol K)"')
+    findings = read(tmp_path, NITROGEN + disordered).findings["N2(g)"]
+    assert findings[-1].endswith("191.610: they DISAGREE.")
+
+
+def test_moments_of_inertia_stand_for_rotational_constants(tmp_path: Path) -> None:
+    # h/(8π² c B): 1.40090e-46 kg m² makes 1.99824 1/cm.
+    moment = NITROGEN.replace(
+        "rotational_constants = [1.99824]", 'moments_of_inertia = ["1.40090e-46 kg m2"]'
+    )
+    (record,) = read(tmp_path, moment).records
+    (same,) = read(tmp_path, NITROGEN).records
+    assert pytest.approx(same.S298, abs=1e-3) == record.S298
+    in_grams = moment.replace("1.40090e-46 kg m2", "1.40090e-39 g cm2")
+    assert pytest.approx(record.S298, abs=1e-9) == read(tmp_path, in_grams).records[0].S298
+    in_atoms = moment.replace("1.40090e-46 kg m2", "8.43645 u A2")
+    assert pytest.approx(record.S298, abs=1e-3) == read(tmp_path, in_atoms).records[0].S298
+
+
+def test_a_piece_may_begin_with_a_transition(tmp_path: Path) -> None:
+    piece = (
+        '[[record.heat_capacity]]\nfirst = "800 K"\nlast = "900 K"\nunit = "J/(mol K)"\nA = 100\n'
+        'transition = "3 kJ/mol"\n'
+    )
+    (record,) = read(tmp_path, SHOMATE + piece).records
+    H = PropertyTable.of([record]).enthalpy(np.array([800.0 - 1e-9, 800.0]))[:, 0]
+    assert H[1] - H[0] == pytest.approx(3000.0, abs=1e-3)
+
+
+def test_each_record_has_its_own_source(tmp_path: Path) -> None:
+    own = read(tmp_path, NITROGEN + SHOMATE)
+    assert [(source.key, source.citation) for source in own.sources] == [
+        ("own: mine.toml, N2(g)", "Huber and Herzberg 1979 (recalled)"),
+        ("own: mine.toml, XeO4(g)", "invented"),
+    ]
+    assert [record.source_entropy for record in own.records] == [s.key for s in own.sources]
+
+
 def test_groups_and_measured_constants(tmp_path: Path) -> None:
     groups = (
         '[[record]]\nname = "CH3CH2OCHO(g)"\nsource = "estimate"\n'
@@ -172,7 +253,7 @@ def test_a_case_takes_the_records_and_says_so(tmp_path: Path) -> None:
         '[species]\nconsider = ["N2", "H2", "NH3"]\nlibrary = ["mine.toml"]\n'
     )
     loaded = gibbsmin.load_case(case)
-    assert loaded.library["N2(g)"].source_enthalpy == "own: mine.toml"
+    assert loaded.library["N2(g)"].source_enthalpy == "own: mine.toml, N2(g)"
     outlet = gibbsmin.predict(loaded).final
     assert outlet.certified
     assert "Records of the user's own (mine.toml): N2(g)." in outlet.notes
@@ -258,6 +339,51 @@ MISTAKES = {
         SHOMATE.replace("XeO4(g)", "XeO4"),
         'record.0.name: found "XeO4" without a state; accepted is a formula and its state, such '
         'as "CO2(g)" or "NaCl(cr)".',
+    ),
+    "a symmetry number does not fit": (
+        NITROGEN.replace("symmetry_number = 2", "symmetry_number = 1"),
+        "record.0.spectrum.symmetry_number: found the symmetry number 1 of N2; accepted is 2, "
+        "since its two atoms are alike.",
+    ),
+    "no record": (
+        "",
+        "record: found nothing; accepted are [[record]] tables.",
+    ),
+    "a negative entropy": (
+        TABLE.replace('"120 J', '"-120 J'),
+        'record.0.entropy: found "-120 J/(mol K)"; accepted is a value above zero.',
+    ),
+    "a negative uncertainty": (
+        SHOMATE.replace('"2 kJ/mol"', '"-2 kJ/mol"'),
+        'record.0.enthalpy_uncertainty: found "-2 kJ/mol"; accepted is zero or more.',
+    ),
+    "a number that is none": (
+        SHOMATE.replace("A = 14.0", "A = nan"),
+        "record.0.heat_capacity.0.A: found nan; accepted is a number.",
+    ),
+    "a unit that is none": (
+        SHOMATE.replace('unit = "cal/(mol K)"', 'unit = "cal/mol"'),
+        'record.0.heat_capacity.0.unit: found "cal/mol", which is no unit of it; accepted is one '
+        'such as "J/(mol K)" or "cal/(mol K)".',
+    ),
+    "half a degeneracy": (
+        NITROGEN.replace("[2358.57]", "[[2358.57, 1.5]]"),
+        "record.0.spectrum.vibrations: found the degeneracy 1.5; accepted is a whole number "
+        "from 1.",
+    ),
+    "no moment of inertia": (
+        NITROGEN.replace("rotational_constants = [1.99824]", "moments_of_inertia = [1.4]"),
+        "record.0.spectrum.moments_of_inertia: found 1.4, which is no moment of inertia; accepted "
+        'is one such as "1.4e-46 kg m2", "1.4e-39 g cm2" or "84 u A2".',
+    ),
+    "rotation twice": (
+        NITROGEN.replace("anharmonicity", 'moments_of_inertia = ["1 u A2"]\nanharmonicity'),
+        "record.0.spectrum.moments_of_inertia: found rotational constants and moments of inertia; "
+        "accepted is one of the two.",
+    ),
+    "a symmetry number that is no number": (
+        NITROGEN.replace("symmetry_number = 2", 'symmetry_number = "two"'),
+        'record.0.spectrum.symmetry_number: found "two"; accepted is a whole number from 1.',
     ),
     "vibrations that do not fit": (
         NITROGEN.replace("[2358.57]", "[2358.57, 100.0]").replace("anharmonicity = 14.324\n", ""),

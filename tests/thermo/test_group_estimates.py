@@ -64,9 +64,27 @@ def test_the_table_has_the_methods_groups() -> None:
             {"CH3": 0},
             "groups: found 0 of the group CH3; accepted is a whole number from 1.",
         ),
+        (
+            {"CH3": 1, "OH": 1},
+            "groups: found groups with 0 Cl, while the formula has 1; accepted are groups that add "
+            "up to the formula.",
+        ),
     ],
 )
 def test_what_is_no_group_is_refused(groups: dict[str, int], sentence: str) -> None:
     with pytest.raises(InputError) as error:
-        estimate_by_groups(groups, {"C": 1.0, "H": 4.0}, load_library())
+        estimate_by_groups(groups, {"C": 1.0, "H": 4.0, "Cl": 1.0}, load_library())
     assert str(error.value).startswith(sentence)
+
+
+def test_acetone_is_the_papers_own_kind_of_example() -> None:
+    """ΔfH298 −217.83 and ΔfG298 −154.54 kJ/mol, Cp(300 K) 75.32 J/(mol K): recalled from
+    textbooks that work the method through for acetone."""
+    library = load_library()
+    found = estimate_by_groups({"CH3": 2, "CO": 1}, {"C": 3.0, "H": 6.0, "O": 1.0}, library)
+    assert found.enthalpy / 1e3 == pytest.approx(-217.83, abs=0.01)
+    elements = 3 * 5.740 + 3 * 130.680 + 0.5 * 205.147
+    gibbs = found.enthalpy - 298.15 * (found.entropy - elements)
+    assert gibbs / 1e3 == pytest.approx(-154.54, abs=0.02)
+    p, t = found.piece, 0.3
+    assert p.A + t * (p.B + t * (p.C + t * p.D)) == pytest.approx(75.32, abs=0.02)

@@ -12,6 +12,7 @@ from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.species import Species
 from gibbsmin.thermo.uncertainty import (
     BY_DEFINITION,
+    OWN_RECORD,
     PUBLISHED,
     record_uncertainties,
     uncertainty_classes,
@@ -26,6 +27,13 @@ def test_published_ones_are_taken_as_they_are() -> None:
     assert found.enthalpy[0] == record.u_dfH298
     assert found.entropy[0] == record.u_S298
     assert (*found.enthalpy_origins, *found.entropy_origins) == (PUBLISHED, PUBLISHED)
+
+
+def test_those_of_a_users_own_record_say_so() -> None:
+    record = replace(LIBRARY["CO2(g)"], source_entropy="own: mine.toml, CO2(g)")
+    found = record_uncertainties([record])
+    assert found.entropy_origins == (OWN_RECORD,)
+    assert found.enthalpy_origins == (PUBLISHED,)
 
 
 def test_every_record_of_the_library_has_one_with_its_origin() -> None:
