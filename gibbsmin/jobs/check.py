@@ -16,10 +16,9 @@ from gibbsmin.jobs.sample_plan import (
     batch_readings,
     elements_fed,
     reactor_of,
-    require_elements,
-    require_sense,
 )
 from gibbsmin.jobs.sample_remarks import assumptions_of, notes_of, sources_of
+from gibbsmin.jobs.sample_sense import require_elements, require_sense
 from gibbsmin.jobs.sample_table import samples_from
 from gibbsmin.jobs.train import run_train
 from gibbsmin.reactor.extents import independent_reactions

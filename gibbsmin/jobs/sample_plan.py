@@ -9,12 +9,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.feed_parts import ANALYSIS_SPREAD, resolve
 from gibbsmin.jobs.sample import GasRules, PlantSample, SampleRules
 from gibbsmin.jobs.sample_reading import STEAM_RATIO, GasReading
+from gibbsmin.jobs.sample_sense import records_of
 from gibbsmin.reactor.balance import elements_of
 from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.results import WATER
@@ -24,8 +23,6 @@ from gibbsmin.sample.plan import Analysis, Feed, Plan, Reading, plan_of
 from gibbsmin.thermo.library import Library
 
 _AMOUNTS = ".amounts."
-_LARGEST_SUM = 1.1
-"""Readings that add up to more are a mistake of the person, not of the instrument."""
 
 
 @dataclass(frozen=True)
@@ -64,73 +61,6 @@ def elements_fed(reactor: Reactor, library: Library) -> set[str]:
     """Symbols of all elements that the streams bring."""
     names = {name for stream in reactor.streams for name in stream.amounts}
     return set(elements_of([library[name] for name in names]))
-
-
-def require_sense(sample: PlantSample, dried: Sequence[str], library: Library) -> None:
-    """Refuse what cannot be an error of measurement.
-
-    Raises
-    ------
-    InputError
-        for readings that add up to far more than 100 % (or to less, if they were scaled to it),
-        a record counted twice, one in a dry analysis that drying removes, and a steam ratio
-        beside a wet analysis.
-    """
-    gases = (
-        ("", sample.outlet, sample.dry, sample.normalised),
-        ("inlet ", sample.inlet, sample.inlet_dry, sample.inlet_normalised),
-    )
-    for place, readings, dry, normalised in gases:
-        fractions = {name: read for name, read in readings.items() if name != STEAM_RATIO}
-        total = sum(reading.value for reading in fractions.values())
-        if total > _LARGEST_SUM:
-            raise InputError(
-                f"found {place}readings that add up to {100 * total:.4g} %",
-                f"accepted is at most {100 * _LARGEST_SUM:.0f} %",
-            )
-        if fractions and normalised and abs(total - 1.0) > ANALYSIS_SPREAD:
-            raise InputError(
-                f"found {place}readings that add up to {100 * total:.4g} %, said to be normalised",
-                "accepted is 99.5 to 100.5 %, or an analysis that is not normalised",
-            )
-        if STEAM_RATIO in readings and not (dry and WATER in dried):
-            raise InputError(
-                f"found a steam ratio beside a wet {place}analysis",
-                "accepted is a reading of H2O in its place",
-            )
-        counted: set[str] = set()
-        for analyte, reading in readings.items():
-            for name in _records(analyte, library):
-                if name in counted:
-                    raise InputError(
-                        f"found {name} in two {place}readings",
-                        "accepted is each record in one reading",
-                    )
-                counted.add(name)
-                if dry and name in dried and analyte != STEAM_RATIO and reading.value > 0.0:
-                    raise InputError(
-                        f"found a {place}reading of {name} in a dry analysis",
-                        f"accepted is a wet analysis, or one without {name}",
-                    )
-
-
-def require_elements(sample: PlantSample, fed: set[str], library: Library) -> None:
-    """Refuse a reading above zero of a record with an element that no feed brings.
-
-    Raises
-    ------
-    InputError
-        names the record and the element.
-    """
-    for analyte, reading in sample.outlet.items():
-        for name in _records(analyte, library):
-            foreign = [s for s, _ in library[name].elements if s not in fed]
-            if foreign and reading.value > 0.0 and not reading.below:
-                raise InputError(
-                    f'found "{analyte}", with the element {foreign[0]} that no feed brings',
-                    f"accepted are records of {', '.join(sorted(fed))}",
-                    key=analyte,
-                )
 
 
 def batch_plan(
@@ -211,9 +141,10 @@ def _analysis(
     names = [
         analyte
         for analyte in dict.fromkeys(name for sample in readings for name in sample)
-        if all(_made_of(name, fed, library) for name in _records(analyte, library))
+        if (analyte == STEAM_RATIO or not dry or not {*dried} & {*records_of(analyte, library)})
+        and all(_made_of(name, fed, library) for name in records_of(analyte, library))
     ]
-    analytes = tuple(_records(name, library) for name in names)
+    analytes = tuple(records_of(name, library) for name in names)
     held = [record for analyte in analytes for record in analyte]
     records = tuple(dict.fromkeys([*held, *rules.unmeasured, *dried]))
     return Analysis(analytes, tuple(names), dry, normalised, records, tuple(dried))
@@ -223,12 +154,6 @@ def _is_wet(name: str, stream: Stream, samples: Sequence[PlantSample]) -> bool:
     """Whether an analysed stream holds what drying removes: by the case, or by a steam ratio."""
     stated = name == WATER and any(STEAM_RATIO in sample.inlet for sample in samples)
     return name in stream.amounts or stated
-
-
-def _records(analyte: str, library: Library) -> tuple[str, ...]:
-    if analyte == STEAM_RATIO:
-        return (WATER,)
-    return tuple(resolve(part.strip(), library).name for part in analyte.split("+"))
 
 
 def _made_of(name: str, fed: set[str], library: Library) -> bool:
