@@ -148,6 +148,7 @@ def scan(
 
     from gibbsmin.jobs.case import load_case
     from gibbsmin.jobs.conditions import Conditions, conditions_from, conditions_of
+    from gibbsmin.jobs.remarks import own_records_notes
     from gibbsmin.present.cluster import connected
     from gibbsmin.present.conditions_file import read_conditions
     from gibbsmin.present.scan_files import require_scan_ending
@@ -159,6 +160,8 @@ def scan(
     _require_plot_ending(plot)
     loaded = load_case(case)
     parts: list[str | bytes] = [version("gibbsmin"), Path(case).read_bytes(), str(uncertainty)]
+    # A library file may change while the case that names it does not.
+    parts.append(repr(loaded.own_records))
     conditions: Conditions
     if table:
         conditions = conditions_from(read_conditions(Path(table)), loaded, table)
@@ -171,6 +174,8 @@ def scan(
             loaded, conditions, path, fingerprint, uncertainty=uncertainty, client=client
         )
     _print(tally.summary(path))
+    for note in own_records_notes(loaded.own_records):
+        _print(note)
     if plot:
         from gibbsmin.present.plots.scan_plots import plot_case
         from gibbsmin.present.plots.style import write_plot
@@ -201,6 +206,7 @@ def onset(
     from gibbsmin.jobs.case import load_case
     from gibbsmin.jobs.onset import onset as onset_of
     from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
+    from gibbsmin.jobs.remarks import own_records_notes
     from gibbsmin.jobs.target import target as target_of
     from gibbsmin.present.outlet_files import require_ending
     from gibbsmin.present.search_document import onset_document, target_document
@@ -226,12 +232,17 @@ def onset(
             from gibbsmin.present.plots.style import write_plot
 
             write_plot(plot_boundary(crossings, loaded.title), Path(plot))
+    notes = own_records_notes(loaded.own_records)
+    if notes:
+        document["notes"] = list(notes)
     if out:
         write_search(document, Path(out))
     if as_json:
         _print_json(document)
     else:
         _print(view)
+        for note in notes:
+            _print(note)
     if not certified:
         raise typer.Exit(NOT_CERTIFIED)
 

@@ -11,7 +11,7 @@ from pydantic import BeforeValidator, model_validator
 
 from gibbsmin.constants import AVOGADRO_CONSTANT, PLANCK_CONSTANT, SPEED_OF_LIGHT
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.stage_schema import read_text
+from gibbsmin.jobs.stage_schema import read_text, word
 from gibbsmin.jobs.table_schema import MISSING, Table
 from gibbsmin.thermo.third_law import RELATIVE_UNCERTAINTY
 from gibbsmin.units import (
@@ -143,7 +143,7 @@ Text = Annotated[str, BeforeValidator(read_text)]
 
 
 class PieceTable(Table):
-    """Cp = A + B t + C t² + D t³ + E/t², t = T/(1000 K), between two temperatures.
+    """Cp = A + B t + C t² + D t³ + E/t² between two temperatures, t as stated.
 
     ``transition`` is the enthalpy taken up at the first of them, where the piece below ends.
     """
@@ -151,12 +151,23 @@ class PieceTable(Table):
     first: Temperature = MISSING
     last: Temperature = MISSING
     unit: Annotated[float, BeforeValidator(_unit)] = MISSING
+    t: Annotated[str, word("T/1000 K", "T/K")] = "T/1000 K"
     A: Number = MISSING
     B: Number = 0.0
     C: Number = 0.0
     D: Number = 0.0
     E: Number = 0.0
     transition: MolarEnergy = 0.0
+
+    @property
+    def coefficients(self) -> dict[str, float]:
+        """A to E in J/(mol K), with t = T/(1000 K)."""
+        factor = 1.0 if self.t == "T/1000 K" else 1e3
+        powers = {"A": 0, "B": 1, "C": 2, "D": 3, "E": -2}
+        return {
+            letter: self.unit * factor**power * getattr(self, letter)
+            for letter, power in powers.items()
+        }
 
 
 class HeatCapacityTable(Table):

@@ -91,11 +91,7 @@ def _pieces(given: Sequence[PieceTable]) -> tuple[Piece, ...]:
         Piece(
             p.first,
             p.last,
-            A=p.unit * p.A,
-            B=p.unit * p.B,
-            C=p.unit * p.C,
-            D=p.unit * p.D,
-            E=p.unit * p.E,
+            **p.coefficients,
             transition=p.transition,
             label="transition" if p.transition else "",
         )

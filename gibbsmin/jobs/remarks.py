@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 
 import numpy as np
 
@@ -12,7 +12,7 @@ from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry, SolvedState
 from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.thermo.hazards import hazards
-from gibbsmin.thermo.species import Phase, Species
+from gibbsmin.thermo.species import OWN, Phase, Species
 
 _MATTERS = 1e-6
 """A record matters from this share of the outlet's amounts."""
@@ -37,6 +37,16 @@ def warnings(
     if entropy_remark:
         sentences.append(f"Entropy: {entropy_remark}.")
     return tuple(sentences)
+
+
+def own_records_notes(records: Iterable[Species]) -> tuple[str, ...]:
+    """Which of the records are the user's own, and from which files."""
+    own = [record for record in records if record.source_enthalpy.startswith(OWN)]
+    files = dict.fromkeys(
+        record.source_enthalpy.removeprefix(OWN).removesuffix(f", {record.name}") for record in own
+    )
+    names = ", ".join(record.name for record in own)
+    return (f"Records of the user's own ({', '.join(files)}): {names}.",) if own else ()
 
 
 def outlet_hazards(model: StageModel, amounts: FloatArray) -> tuple[str, ...]:

@@ -7,12 +7,12 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import BalanceError, InputError
 from gibbsmin.jobs.case_stage import StageCase
+from gibbsmin.jobs.remarks import own_records_notes
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Status
 from gibbsmin.reactor.audit import SolvedState
 from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
-from gibbsmin.thermo.species import OWN
 
 
 def require_an_answer(step: Step, status: Status) -> None:
@@ -77,18 +77,9 @@ def service_notes(stage: StageCase) -> tuple[str, ...]:
 
 def method_notes(model: StageModel, state: SolvedState, found: Equilibria) -> tuple[str, ...]:
     """What the user asked for and how it was done: own records, plateaus, approaches."""
-    notes = []
+    notes: list[str] = []
     taking_part = dict.fromkeys([*model.feed_records, *model.records])
-    own = [record for record in taking_part if record.source_enthalpy.startswith(OWN)]
-    if own:
-        files = dict.fromkeys(
-            record.source_enthalpy.removeprefix(OWN).removesuffix(f", {record.name}")
-            for record in own
-        )
-        notes.append(
-            f"Records of the user's own ({', '.join(files)}): "
-            f"{', '.join(record.name for record in own)}."
-        )
+    notes += own_records_notes(taking_part)
     share = float(found.upper_share[0])
     if not np.isnan(share):
         notes.append(

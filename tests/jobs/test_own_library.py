@@ -5,6 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 
 import numpy as np
+import pandas as pd
 import pytest
 from published_values import rows
 from typer.testing import CliRunner
@@ -274,6 +275,68 @@ def test_simple_records_come_from_a_table(tmp_path: Path) -> None:
     with pytest.raises(InputError) as error:
         read(tmp_path, text.replace("last, K", "end, K"), "mine.csv")
     assert str(error.value).startswith(f"{tmp_path / 'mine.csv'}: found no column last, K; ")
+
+
+def test_simple_records_come_from_a_workbook(tmp_path: Path) -> None:
+    path = tmp_path / "mine.xlsx"
+    pd.DataFrame(
+        {
+            "name": ["XeO4(g)"],
+            "source": ["invented"],
+            "enthalpy, kJ/mol": [642.2],
+            "entropy, J/(mol K)": [293.7],
+            "first, K": [298],
+            "last, K": [800],
+            "A": [58.6],
+        }
+    ).to_excel(path, index=False)
+    (record,) = read_library_file(path, load_library()).records
+    assert record.dfH298 == pytest.approx(642.2e3)
+    assert record.source_enthalpy == "own: mine.xlsx, XeO4(g)"
+
+
+def test_coefficients_may_be_those_of_powers_of_kelvin(tmp_path: Path) -> None:
+    text = SHOMATE.replace("A = 14.0\nB = 20.0\nC = -8.0", "A = 14.0\nB = 20e-3\nC = -8e-6")
+    (record,) = read(tmp_path, text.replace("A = 14.0", 't = "T/K"\nA = 14.0')).records
+    (same,) = read(tmp_path, SHOMATE).records
+    T = np.array([300.0, 500.0, 800.0])
+    table = PropertyTable.of([record, same])
+    assert table.heat_capacity(T)[:, 0] == pytest.approx(table.heat_capacity(T)[:, 1])
+
+
+ON_AN_AXIS = """
+[feed.gas]
+temperature = "400 degC"
+pressure = "1 bar"
+unit = "mol"
+amounts = { CO = 1, N2 = 1 }
+[outlet]
+temperature = "450 degC"
+pressure = "1 bar"
+[species]
+consider = ["N2", "CO", "CO2", "C(graphite)"]
+library = ["mine.toml"]
+[[axis]]
+vary = "outlet.temperature"
+first = "400 degC"
+last = "1100 degC"
+count = 8
+[onset]
+phase = "C(graphite)"
+"""
+
+
+def test_scans_and_onsets_say_whose_the_records_are(tmp_path: Path) -> None:
+    (tmp_path / "mine.toml").write_text(NITROGEN)
+    case = tmp_path / "case.toml"
+    case.write_text(ON_AN_AXIS)
+    note = "Records of the user's own (mine.toml): N2(g)."
+    runner = CliRunner()
+    scan = ["scan", str(case), "--out", str(tmp_path / "scan.csv")]
+    for command in (scan, ["onset", str(case)], ["onset", str(case), "--json"]):
+        result = runner.invoke(app, command)
+        assert result.exit_code == 0, result.output
+        assert note in result.output
 
 
 def test_the_command_shows_and_checks_them(tmp_path: Path) -> None:

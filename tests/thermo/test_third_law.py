@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from published_values import rows
@@ -18,6 +20,7 @@ from gibbsmin.thermo.third_law import (
     ideal_gas_parts,
     third_law_entropy,
 )
+from gibbsmin.thermo.uncertainty import record_uncertainties
 
 CALORIE = 4.184
 
@@ -203,3 +206,27 @@ def test_constants_of_a_reaction_give_back_the_species_they_were_made_of() -> No
     assert abs(laws.second_law_enthalpy - CO2.dfH298) < 4.0 * laws.u_second_law_enthalpy
     tilted = log10_K + 0.2 * (1000.0 / T - 1.0)
     assert not compare_laws(CO2, dict(zip(records, nu.tolist(), strict=True)), T, tilted).consistent
+
+
+def test_uncertainties_of_measured_constants_hold_those_of_all_that_is_known() -> None:
+    """CaCO3 = CaO + CO2 with exact points: what is left are the other records' own."""
+    library = load_library()
+    names = ("CaCO3(calcite)", "CaO(cr)", "CO2(g)")
+    records = [library[name] for name in names]
+    nu = dict(zip(records, (-1.0, 1.0, 1.0), strict=True))
+    T = np.linspace(900.0, 1200.0, 7)
+    G = PropertyTable.of(records).gibbs_energy(T) @ list(nu.values())
+    log10_K = -G / (GAS_CONSTANT * T * np.log(10.0))
+    known = record_uncertainties(records[1:])
+    u_S = float(np.linalg.norm(known.entropy))
+    unknown = replace(records[0], u_S298=0.5)
+    laws = compare_laws(unknown, nu, T, log10_K)
+    assert laws.u_second_law_enthalpy == pytest.approx(np.linalg.norm(known.enthalpy), rel=1e-6)
+    assert laws.u_second_law_entropy == pytest.approx(u_S, rel=1e-6)
+    assert laws.u_drift == pytest.approx(np.hypot(u_S, 0.5), rel=1e-6)
+    of_third = np.linalg.norm([*known.enthalpy, 1050.0 * u_S, 1050.0 * 0.5])
+    assert laws.u_third_law_enthalpy == pytest.approx(of_third, rel=1e-6)
+    # 0.1 in log10 K, common to all points, counts as R ln 10 · 0.1 in an entropy.
+    shared = compare_laws(unknown, nu, T, log10_K, 0.1)
+    expected = np.hypot(u_S, 0.1 * GAS_CONSTANT * np.log(10.0))
+    assert shared.u_second_law_entropy == pytest.approx(expected, rel=1e-6)
