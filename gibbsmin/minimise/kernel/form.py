@@ -28,6 +28,7 @@ _MODULES = (
     "tableau",
     "simplex",
     "linear",
+    "exponential",
     "residuals",
     "active_set",
     "heat",

@@ -19,7 +19,10 @@ Nested = TypeVar("Nested", bound=tuple[Any, ...])
 
 
 def in_one_memory(parts: Nested) -> Nested:
-    """Copies of all arrays in (nested) named tuples, laid out one after another."""
+    """Copies of all arrays in (nested) named tuples, laid out one after another.
+
+    An array that views the memory of the one before it goes on viewing that.
+    """
     total = _length(parts) + _ALIGNED
     memory = np.zeros(total, dtype=np.uint8)
     first = -memory.ctypes.data % _ALIGNED
@@ -42,8 +45,13 @@ def _laid_out(part: Any, memory: np.ndarray, at: int) -> tuple[Any, int]:
         return room, at + _length(part)
     if not isinstance(part, tuple):
         return part, at
-    members = []
+    members: list[Any] = []
+    before: Any = None
     for member in part:
-        copy, at = _laid_out(member, memory, at)
+        if isinstance(member, np.ndarray) and member.base is not None and member.base is before:
+            copy = members[-1].view(member.dtype)
+        else:
+            copy, at = _laid_out(member, memory, at)
         members.append(copy)
+        before = member
     return (type(part)._make(members) if hasattr(part, "_make") else tuple(members)), at

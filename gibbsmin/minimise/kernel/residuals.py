@@ -14,9 +14,9 @@ from __future__ import annotations
 
 from math import exp, inf, log
 
+from gibbsmin.minimise.kernel.exponential import exponentials
 from gibbsmin.minimise.kernel.storage import Equations, Point, Tableau
 
-_LARGEST_EXPONENT = 300.0
 _ROUND_OFF = 1e-12
 
 
@@ -42,10 +42,11 @@ def evaluate_gas(tableau: Tableau, point: Point, gases: int, log_total: float) -
         if u != 0.0:
             for i in range(gases):
                 exponent[i] += u * tableau.entries[j, i]
+    exponentials(point, gases)
     total = exp(log_total)
     fractions = 0.0
     for i in range(gases):
-        y = exp(min(exponent[i], _LARGEST_EXPONENT))
+        y = point.fraction[i]
         fractions += y
         amounts[i] = total * y
     return fractions

@@ -87,13 +87,18 @@ class Point(NamedTuple):
     """Where the iteration stands.
 
     ``log_fraction`` is u_j = ln y of the gas members, 0 for condensed ones; ``exponent`` is ln y
-    of every gas; ``amounts`` is n; ``condensed`` the amount of each row's condensed member.
+    of every gas and ``fraction`` y itself; ``amounts`` is n; ``condensed`` the amount of each row's
+    condensed member.  ``power`` and ``bits`` are one piece of memory, read as doubles and as whole
+    numbers.
     """
 
     log_fraction: FloatArray
     exponent: FloatArray
     amounts: FloatArray
     condensed: FloatArray
+    fraction: FloatArray
+    power: FloatArray
+    bits: IntArray
 
 
 class Equations(NamedTuple):
@@ -170,6 +175,7 @@ def network_of(
 def scratch_for(network: Network, pieces: FloatArray, breaks: FloatArray) -> Scratch:
     """Memory for one worker, of order rows × (species + rows), beside the energies' pieces."""
     rows, species = network.matrix.shape
+    power = np.zeros(species)
     return Scratch(
         State(np.zeros(species), np.zeros(rows), np.ones(species, dtype=np.bool_)),
         Tableau(
@@ -179,7 +185,15 @@ def scratch_for(network: Network, pieces: FloatArray, breaks: FloatArray) -> Scr
             reduced=np.zeros(species),
             rank=np.zeros(1, dtype=np.int64),
         ),
-        Point(np.zeros(rows), np.zeros(species), np.zeros(species), np.zeros(rows)),
+        Point(
+            np.zeros(rows),
+            np.zeros(species),
+            np.zeros(species),
+            np.zeros(rows),
+            np.zeros(species),
+            power=power,
+            bits=power.view(np.int64),
+        ),
         Equations(
             unknown=np.zeros(rows, dtype=np.int64),
             gain=np.zeros(rows),
