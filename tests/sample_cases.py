@@ -11,7 +11,7 @@ from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry
 from gibbsmin.reactor.conditions import at_temperature
 from gibbsmin.reactor.extents import independent_reactions
-from gibbsmin.reactor.streams import Stream
+from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.sample.equilibrium_fit import Readings
 from gibbsmin.sample.plan import Analysis, Feed, Plan, plan_of
 from gibbsmin.sample.reactions import JudgedReaction, judged_reaction
@@ -51,7 +51,10 @@ def reformer_plan(outlet: Analysis | None = None) -> Plan:
 
 
 def reforming_and_shift(plan: Plan) -> list[JudgedReaction]:
-    found = independent_reactions(plan.species, {"CH4(g)", "H2O(g)", "N2(g)"})
+    """What runs between the records that are not inert."""
+    inert = {"CH4(g)", "N2(g)"} if plan.feeds[0].analysis else set()
+    reacting = [record for record in plan.species if record.name not in inert]
+    found = independent_reactions(reacting, {"CH4(g)", "H2O(g)", "N2(g)"})
     return [
         judged_reaction(str(r), {n: float(v) for n, v in r.terms.items()}, load_library())
         for r in found
@@ -106,3 +109,36 @@ def reformer_samples(
     gases = wet[:, : len(plan.readings) - 2]
     u = np.hypot(READING * gases, FLOOR)
     return Samples(plan, T, P, np.hstack([gases, flows]), np.hstack([u, U_FLOW * flows]), wet)
+
+
+def shift_plan(*, steam_ratio: bool = True, normalised: bool = False) -> Plan:
+    """Inlet and outlet of a shift reactor analysed dry, with the steam of the inlet measured."""
+    outlet = analysis(normalised=normalised)
+    inlet = analysis(normalised=normalised)
+    if steam_ratio:
+        inlet = replace(
+            inlet, analytes=(*inlet.analytes, ("H2O(g)",)), names=(*inlet.names, "steam ratio")
+        )
+    raw = {"CO(g)": 12.0, "CO2(g)": 9.0, "H2(g)": 72.0, "CH4(g)": 6.0, "N2(g)": 1.0, "H2O(g)": 55.0}
+    stream = Stream("raw", 630.0, 26e5, raw, "kmol/h", True)
+    chemistry = Chemistry(
+        selection=Selection(consider=tuple(raw), inert=("CH4(g)", "N2(g)")),
+    )
+    return plan_of(chemistry, outlet, [Feed(stream, inlet)], load_library())
+
+
+def shift_samples(count: int, plan: Plan | None = None) -> Samples:
+    """At equilibrium exactly, from 620 to 720 K, of inlets that differ."""
+    plan = plan or shift_plan()
+    random = np.random.default_rng(30)
+    T, P = random.uniform(620.0, 720.0, count), np.full(count, 25e5)
+    names = [record.name for record in plan.model.feed_records]
+    middle = np.array([first(plan.feeds[0].stream.amounts[name]) for name in names])
+    feed = middle * random.uniform(0.9, 1.1, (count, len(names)))
+    amounts = at_temperature(plan.model, T, P, feed).amounts[:, list(plan.columns)]
+    wet = amounts / amounts[:, plan.dry].sum(axis=1, keepdims=True)
+    dry_feed = feed / (feed.sum(axis=1) - feed[:, names.index("H2O(g)")])[:, np.newaxis]
+    columns = [names.index(reading.record) for reading in plan.readings[5:]]
+    truth = np.hstack([wet[:, :5], dry_feed[:, columns]])
+    u = np.hypot(READING * truth, FLOOR)
+    return Samples(plan, T, P, truth, u, wet)

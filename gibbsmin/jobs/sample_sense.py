@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from functools import lru_cache
 
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.feed_parts import ANALYSIS_SPREAD, resolve
@@ -15,6 +16,7 @@ _LARGEST_SUM = 1.1
 """Readings that add up to more are a mistake of the person, not of the instrument."""
 
 
+@lru_cache(maxsize=4096)
 def records_of(analyte: str, library: Library) -> tuple[str, ...]:
     """The records that an analyte counts together."""
     if analyte == STEAM_RATIO:

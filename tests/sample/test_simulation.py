@@ -10,11 +10,21 @@ from functools import cache
 
 import numpy as np
 import pytest
-from sample_cases import U_PRESSURE, Samples, reformer_samples, reforming_and_shift
+from sample_cases import (
+    U_PRESSURE,
+    Samples,
+    analysis,
+    reformer_plan,
+    reformer_samples,
+    reforming_and_shift,
+    shift_plan,
+    shift_samples,
+)
 from scipy.stats import chi2, ncx2
 
 from gibbsmin.sample.batch import Batch, difference, run_batch, tail_probability
 from gibbsmin.sample.equilibrium_fit import Readings
+from gibbsmin.sample.plan import Plan
 from gibbsmin.sample.reconciliation import reconcile
 from gibbsmin.sample.suspects import suspects_of
 from gibbsmin.sample.thresholds import FAINT, Thresholds
@@ -126,3 +136,54 @@ def test_six_sigma_errors_are_found_where_they_show(column: int, name: str) -> N
     assert not {"CO", "CO2"} & set(named)  # the tests of both go together
     if name in ("H2", "N2"):
         assert named.count(name) / len(named) > 0.95
+
+
+def rejected(plan: Plan, readings: Readings) -> tuple[int, float]:
+    """Degrees of freedom, and the share of closures rejected at 5 %."""
+    closed = reconcile(plan.closure, readings.values, readings.uncertainties)
+    (freedom,) = set(closed.degrees_of_freedom.tolist())
+    p = tail_probability(closed.chi_square, closed.degrees_of_freedom)
+    return int(freedom), float((p < 0.05).mean())
+
+
+def test_closure_of_normalised_analyses() -> None:
+    """Scaled to 100 % by the analyser: a degree of freedom less, and the rate holds."""
+    samples = reformer_samples(COUNT)
+    readings = samples.noisy(10)
+    gases = readings.values[:, :5]
+    gases /= gases.sum(axis=1, keepdims=True)
+    normalised = reformer_plan(analysis(normalised=True))
+    freedom, share = rejected(normalised, readings)
+    assert freedom == 2
+    assert 0.04 <= share <= 0.06
+    # Kept, the sum of 100 % would pass for a measurement that fits too well to be one.
+    freedom, share = rejected(samples.plan, readings)
+    assert freedom == 3
+    assert not 0.04 <= share <= 0.06
+
+
+@pytest.mark.parametrize("normalised", [False, True])
+def test_closure_of_inlet_and_outlet_together(normalised: bool) -> None:
+    samples = shift_samples(COUNT, shift_plan(normalised=normalised))
+    readings = samples.noisy(11)
+    if normalised:
+        for part in (readings.values[:, :5], readings.values[:, 5:10]):
+            part /= part.sum(axis=1, keepdims=True)
+    freedom, share = rejected(samples.plan, readings)
+    assert freedom == (3 if normalised else 5)
+    assert 0.04 <= share <= 0.06
+
+
+def test_approach_of_a_shift_reactor_from_inlet_and_outlet() -> None:
+    samples = shift_samples(COUNT)
+    batch = run(samples, samples.noisy(12))
+    shift = next(r for r in batch.reactions if "CO2(g)" in r.reaction.coefficients)
+    assert not shift.faint.any()
+    assert (np.abs(shift.forward) == 1).all()
+    covered = (shift.lower <= 0.0) & (shift.upper >= 0.0)
+    assert 0.93 <= covered.mean() <= 0.97
+    temperature = (batch.lower <= samples.T) & (batch.upper >= samples.T)
+    assert 0.93 <= temperature.mean() <= 0.97
+    rise, degrees = difference(batch.measured_fit, batch.closed)
+    assert set(degrees.tolist()) == {1}
+    assert 0.04 <= (tail_probability(rise, degrees) < 0.05).mean() <= 0.06
