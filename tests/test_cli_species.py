@@ -67,8 +67,8 @@ Fe(cr), iron
   CAS                                      7439-89-6
   molar mass                               55.845 g/mol
   molar volume                             7.09 cm³/mol
-  enthalpy of formation at 298.15 K        0.000 kJ/mol ± 0 (standard uncertainty)
-  absolute entropy at 298.15 K and 1 bar   27.320 J/(mol K), uncertainty not known
+  enthalpy of formation at 298.15 K        0.000 kJ/mol, exact by definition
+  absolute entropy at 298.15 K and 1 bar   27.320 J/(mol K), no uncertainty given, counted as ± 1.5
   range                                    298.15 K to 1800 K
   largest fit error |ΔG/RT|                1.3e-05
 
@@ -231,3 +231,13 @@ def test_without_temperatures_those_within_the_range_are_shown() -> None:
 def test_refused(arguments: list[str], message: str) -> None:
     result = run(*arguments)
     assert (result.exit_code, result.stdout, result.stderr) == (2, "", f"{message}\n")
+
+
+def test_json_tells_the_uncertainty_that_is_counted_and_why() -> None:
+    (document,) = json.loads(run("Fe(cr)", "--json").stdout)["species"]
+    assert document["u_S298_J_per_mol_K"] is None
+    counted = document["uncertainty_counted"]
+    assert counted["enthalpy_kJ_per_mol"] == 0.0
+    assert counted["enthalpy_origin"] == "exact by definition of the reference state"
+    assert counted["entropy_J_per_mol_K"] == 1.5
+    assert counted["entropy_origin"].startswith("judgement: a value of one evaluation")

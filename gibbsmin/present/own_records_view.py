@@ -2,17 +2,20 @@
 
 from __future__ import annotations
 
-from typing import Any
+import re
+from typing import Any, Final
 
 from rich.console import Group, RenderableType
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.jobs.own_library import OwnRecords
-from gibbsmin.present.layout import sentences
+from gibbsmin.present.layout import MINUS, sentences
 from gibbsmin.present.species_view import species_document, species_view, usual_temperatures
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.record_checks import check_record
 from gibbsmin.thermo.species import Species
+
+_NEGATIVE: Final = re.compile(r"(?<!\S)-(?=\d)")
 
 
 def own_records_view(own: OwnRecords, temperatures: FloatArray, library: Library) -> RenderableType:
@@ -21,9 +24,14 @@ def own_records_view(own: OwnRecords, temperatures: FloatArray, library: Library
     parts: list[RenderableType] = []
     for record in own.records:
         parts.append(species_view(record, _shown(record, temperatures), extended))
-        parts += sentences("How it came about", own.findings[record.name])
-        parts += sentences("Checks", check_record(record, library))
+        parts += sentences("How it came about", map(_with_minus, own.findings[record.name]))
+        parts += sentences("Checks", map(_with_minus, check_record(record, library)))
     return Group(*parts)
+
+
+def _with_minus(sentence: str) -> str:
+    """The sentence with the minus sign of the figures above it."""
+    return _NEGATIVE.sub(MINUS, sentence)
 
 
 def own_records_document(

@@ -18,6 +18,12 @@ from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.reaction_path import range_warning
 from gibbsmin.thermo.species import Species
+from gibbsmin.thermo.uncertainty import (
+    BY_DEFINITION,
+    OWN_RECORD,
+    PUBLISHED,
+    record_uncertainties,
+)
 
 
 def species_list_view(records: Sequence[Species]) -> RenderableType:
@@ -80,18 +86,23 @@ def _facts(record: Species) -> Iterator[tuple[str, str]]:
     yield "molar mass", f"{short(1000 * record.molar_mass)} g/mol"
     if not math.isnan(record.molar_volume):
         yield "molar volume", f"{number(1e6 * record.molar_volume, 2)} cm³/mol"
-    H, u_H = record.dfH298 / 1000, record.u_dfH298 / 1000
-    yield "enthalpy of formation at 298.15 K", f"{number(H, 3)} kJ/mol{_uncertainty(u_H)}"
-    S = f"{number(record.S298, 3)} J/(mol K){_uncertainty(record.u_S298)}"
+    known = record_uncertainties([record])
+    u_H = _uncertainty(known.enthalpy[0] / 1000, known.enthalpy_origins[0])
+    u_S = _uncertainty(known.entropy[0], known.entropy_origins[0])
+    yield "enthalpy of formation at 298.15 K", f"{number(record.dfH298 / 1000, 3)} kJ/mol{u_H}"
+    S = f"{number(record.S298, 3)} J/(mol K){u_S}"
     yield "absolute entropy at 298.15 K and 1 bar", S
     yield "range", f"{short(record.T_low)} K to {short(record.T_high)} K"
     if not math.isnan(record.fit_error):
         yield "largest fit error |ΔG/RT|", f"{record.fit_error:.1e}"
 
 
-def _uncertainty(value: float) -> str:
-    known = not math.isnan(value)
-    return f" ± {value:.2g} (standard uncertainty)" if known else ", uncertainty not known"
+def _uncertainty(value: float, origin: str) -> str:
+    if origin == BY_DEFINITION:
+        return ", exact by definition"
+    if origin in (PUBLISHED, OWN_RECORD):
+        return f" ± {value:.2g} (standard uncertainty)"
+    return f", no uncertainty given, counted as ± {value:.2g}"
 
 
 def _properties(record: Species, temperatures: FloatArray) -> RenderableType:
@@ -164,6 +175,7 @@ def species_document(record: Species, temperatures: FloatArray, library: Library
     properties = PropertyTable.of([record])
     Cp, S = properties.heat_capacity(temperatures), properties.entropy(temperatures)
     H, G = properties.enthalpy(temperatures), properties.gibbs_energy(temperatures)
+    known = record_uncertainties([record])
     return {
         "name": record.name,
         "formula": record.formula,
@@ -181,6 +193,12 @@ def species_document(record: Species, temperatures: FloatArray, library: Library
         "u_dfH298_kJ_per_mol": _known(record.u_dfH298 / 1000),
         "S298_J_per_mol_K": _known(record.S298),
         "u_S298_J_per_mol_K": _known(record.u_S298),
+        "uncertainty_counted": {
+            "enthalpy_kJ_per_mol": float(known.enthalpy[0]) / 1000,
+            "enthalpy_origin": known.enthalpy_origins[0],
+            "entropy_J_per_mol_K": float(known.entropy[0]),
+            "entropy_origin": known.entropy_origins[0],
+        },
         "T_low_K": record.T_low,
         "T_high_K": record.T_high,
         "fit_error_G_RT": _known(record.fit_error),

@@ -17,11 +17,14 @@ from typing import Literal
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.thermo.species import OWN, Species
+from gibbsmin.thermo.species import OWN, Phase, Species
 
 PUBLISHED = "published"
 OWN_RECORD = "the user's record"
 BY_DEFINITION = "exact by definition of the reference state"
+
+EVALUATED = "ATcT"
+"""Source of the enthalpies of well-known gases."""
 
 Quantity = Literal["enthalpy", "entropy"]
 
@@ -57,8 +60,9 @@ class UncertaintyClass:
 def record_uncertainties(records: Sequence[Species]) -> RecordUncertainties:
     """The uncertainty that each record carries, else the default of its class.
 
-    The class is the source of the quantity with the phase ("ion" for a charged gas), failing that
-    the source alone, failing that any record.  An element in its reference state has an enthalpy
+    The class is the source of the quantity with the phase ("ion" for a charged gas, "evaluated gas"
+    where the enthalpy is that of the Active Thermochemical Tables), failing that the source alone,
+    failing that any record.  An element in its reference state has an enthalpy
     of zero by definition, which is exact.
 
     Examples
@@ -97,11 +101,18 @@ def _carried(source: str) -> str:
 
 
 def _by_class(quantity: Quantity, source: str, record: Species) -> tuple[float, str]:
-    phase = "ion" if record.charge else record.phase.value
+    phase = _phase(record)
     classes = uncertainty_classes()
     places = ((quantity, source, phase), (quantity, source, ""), (quantity, "", ""))
     found = next(classes[place] for place in places if place in classes)
     return found.value * (record.molar_mass if found.per_mass else 1.0), found.reason
+
+
+def _phase(record: Species) -> str:
+    if record.charge:
+        return "ion"
+    evaluated = record.phase is Phase.GAS and record.source_enthalpy == EVALUATED
+    return "evaluated gas" if evaluated else record.phase.value
 
 
 @cache

@@ -68,6 +68,12 @@ def test_default_is_that_of_the_class(changes: dict[str, object], expected: floa
     assert record_uncertainties([record]).enthalpy[0] == pytest.approx(expected)
 
 
+def test_entropy_of_an_evaluated_gas_is_known_better() -> None:
+    methane = replace(LIBRARY["CH4(g)"], u_S298=float("nan"))
+    other = replace(methane, source_enthalpy="JANAF")
+    assert record_uncertainties([methane, other]).entropy.tolist() == [0.15, 0.5]
+
+
 def test_classes_name_sources_of_the_library() -> None:
     keys = {source.key for source in LIBRARY.sources} | {OWN_HEATING_VALUE.key, ""}
     assert {source for _, source, _ in uncertainty_classes()} <= keys
