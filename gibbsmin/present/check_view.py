@@ -6,6 +6,7 @@ from collections import Counter
 from collections.abc import Iterator
 
 from rich.console import Group, RenderableType
+from rich.padding import Padding
 from rich.text import Text
 
 from gibbsmin.present.check_table import NOT_USED
@@ -52,7 +53,9 @@ def _sample(sample: SampleCheck) -> list[RenderableType]:
     parts += sentences("What is likely", judgement.likely)
     parts += sentences("What to look at next", judgement.look_at)
     parts += [heading("Measurements"), _measurements(sample)]
-    parts += [heading("Reactions"), _reactions(sample.reactions)]
+    parts.append(heading("Reactions"))
+    for reaction in sample.reactions:
+        parts += _reaction(reaction)
     parts += [heading("Gas, beside equilibrium at the measured conditions"), _composition(sample)]
     parts.append(pairs(_lines(sample)))
     if sample.solids:
@@ -86,37 +89,39 @@ def _read(measurement: Measurement, value: float) -> str:
     return fraction(value)
 
 
-def _reactions(reactions: tuple[ReactionFinding, ...]) -> RenderableType:
+def _reaction(reaction: ReactionFinding) -> Iterator[RenderableType]:
+    """A reaction and where it stands; its figures under it."""
+    yield Padding(Text(f"{reaction.text}: {reaction.side}"), (0, 0, 0, 2), expand=False)
+    ratio, affinity = reaction.log_ratio, reaction.affinity
     rows = []
-    for reaction in reactions:
-        told = not reaction.faint
-        rows.append(
+    if ratio.value == ratio.value:
+        rows = [
+            ("ln(Q/K)", f"{number(ratio.value, 3)} ± {number(ratio.uncertainty, 3)}"),
             (
-                reaction.text,
-                number(reaction.log_ratio.value, 3),
-                number(reaction.log_ratio.uncertainty, 3),
-                number(reaction.affinity.value / 1e3, 2),
-                number(reaction.equilibrium_temperature.value - 273.15, 1) if told else "–",
-                number(reaction.approach.value, 1) if told else "–",
-                number(reaction.approach.uncertainty, 1) if told else "–",
-                _interval(reaction.approach_limit),
-                number(reaction.data_uncertainty, 1) if told else "–",
-                reaction.side.value,
-            )
-        )
-    headers = (
-        "reaction",
-        "ln(Q/K)",
-        "± u",
-        "affinity, kJ/mol",
-        "T_eq, °C",
-        "T − T_eq, K",
-        "± u, K",
-        "95 %, K",
-        "u of the data, K",
-        "stands",
-    )
-    return table(headers, rows, words=("reaction", "stands"))
+                "affinity",
+                f"{number(affinity.value / 1e3, 2)} ± {number(affinity.uncertainty / 1e3, 2)} "
+                "kJ/mol",
+            ),
+        ]
+    limit = f"95 %: {_interval(reaction.approach_limit)} K"
+    if reaction.undefined:
+        rows.append(("T − T_eq", f"undefined, {reaction.undefined}"))
+    elif reaction.faint:
+        rows.append(("T − T_eq", f"{limit}, for {' and '.join(reaction.faint)} is faint"))
+    else:
+        T_eq, approach = reaction.equilibrium_temperature, reaction.approach
+        rows += [
+            ("T_eq", f"{temperature(T_eq.value)} ± {number(T_eq.uncertainty, 1)} K"),
+            (
+                "T − T_eq",
+                f"{number(approach.value, 1)} ± {number(approach.uncertainty, 1)} K, {limit}",
+            ),
+        ]
+        if reaction.own_constant:
+            rows.append(("K", "of the case, not of the library"))
+        else:
+            rows.append(("u of the data", f"{number(reaction.data_uncertainty, 1)} K"))
+    yield Padding(pairs(rows), (0, 0, 0, 2), expand=False)
 
 
 def _probability(value: float) -> str:

@@ -12,12 +12,14 @@ from gibbsmin.sample.findings import (
     Leakage,
     Measurement,
     ReactionFinding,
+    Side,
     Suspects,
 )
 from gibbsmin.sample.thresholds import Thresholds
 
 _MINUS = "\N{MINUS SIGN}"
 _CELSIUS_ZERO = 273.15
+_SMALLEST = 1e-6
 _MISREADING = 100.0
 """K by which a thermocouple may well be wrong, or off the place where the gas froze."""
 
@@ -45,7 +47,12 @@ class Evidence:
 
     @property
     def fits(self) -> bool:
-        """Whether equilibrium at the measured temperature fits."""
+        """Whether equilibrium at the measured temperature fits.
+
+        The fit knows the library's K alone; where the user gives one, the reactions decide.
+        """
+        if any(reaction.own_constant for reaction in self.reactions):
+            return all(reaction.side is Side.AT for reaction in self.reactions)
         return self.fit.at_measured.probability >= self.thresholds.equilibrium
 
     @property
@@ -80,7 +87,7 @@ def _closure(evidence: Evidence) -> Iterator[str]:
     yield (
         f"The element balance {closes} within the stated errors: chi-square "
         f"{closure.chi_square:.1f} with {freedom} {_plural('degree', freedom)} of freedom "
-        f"(p = {closure.probability:.2g})."
+        f"({probability(closure.probability)})."
     )
     unjudged = [m.name for m in evidence.measurements if not m.can_be_judged]
     if unjudged:
@@ -97,11 +104,12 @@ def _fit(evidence: Evidence) -> Iterator[str]:
         return
     at, anywhere, best = fit.at_measured, fit.anywhere, fit.temperature
     if at.degrees_of_freedom:
+        p = probability(at.probability)
         yield (
             f"Equilibrium at the measured temperature "
-            f"{'fits' if evidence.fits else 'does not fit'} the sample: chi-square difference "
+            f"{_fits(at, evidence)} the sample: chi-square difference "
             f"{at.chi_square:.1f} with {at.degrees_of_freedom} "
-            f"{_plural('degree', at.degrees_of_freedom)} of freedom (p = {at.probability:.2g})."
+            f"{_plural('degree', at.degrees_of_freedom)} of freedom ({p})."
         )
     else:
         yield "Equilibrium cannot be tested: it leaves as much open as the measurements fix."
@@ -109,11 +117,16 @@ def _fit(evidence: Evidence) -> Iterator[str]:
         ending = ""
         if anywhere.degrees_of_freedom:
             well = "it fits" if evidence.fits_elsewhere else "it does not fit there either"
-            ending = f"; {well} (p = {anywhere.probability:.2g})"
+            ending = f"; {well} ({probability(anywhere.probability)})"
         yield (
             f"Equilibrium fits best at {celsius(best.value)}, with a standard uncertainty of "
             f"{best.uncertainty:.1f} K{ending}."
         )
+
+
+def _fits(at: Closure, evidence: Evidence) -> str:
+    fits = at.probability >= evidence.thresholds.equilibrium
+    return "fits" if fits else "does not fit"
 
 
 def _reaction(reaction: ReactionFinding) -> str:
@@ -178,7 +191,14 @@ def signed(value: float, decimals: int = 1) -> str:
 
 def ppm(fraction: float) -> str:
     """A small fraction."""
-    return f"{1e6 * fraction:.2g} ppm" if fraction == fraction else "not known"
+    if fraction != fraction:
+        return "not known"
+    return f"{1e6 * fraction:.0f} ppm" if fraction >= 1e-4 else f"{1e6 * fraction:.2g} ppm"
+
+
+def probability(value: float) -> str:
+    """A tail probability, which means little below a millionth."""
+    return f"p = {value:.2g}" if value >= _SMALLEST else f"p < {_SMALLEST:.0e}".replace("e-0", "e-")
 
 
 def listed(names: Sequence[str], conjunction: str) -> str:

@@ -79,6 +79,8 @@ class Judged:
     data_uncertainty: FloatArray
     log_ratio: FloatArray
     u_log_ratio: FloatArray
+    affinity: FloatArray
+    u_affinity: FloatArray
     temperature: FloatArray
     u_temperature: FloatArray
     approach: FloatArray
@@ -143,6 +145,9 @@ def _judged(gas: Gas, reaction: JudgedReaction, nu: FloatArray, extent: FloatArr
         of_data = constant.u_log_K(T_eq) * GAS_CONSTANT * T_eq**2 / np.abs(enthalpy)
     of_temperature = constant.enthalpy(T) / (GAS_CONSTANT * T**2) * gas.u_temperature
     u_ratio = np.hypot(u_Q, of_temperature)
+    # A = −RT ln Q − ΔrG°, so that dA/dT = −R ln Q + ΔrS° = (A + ΔrH)/T.
+    affinity = -GAS_CONSTANT * T * (log_Q - log_K)
+    slope_of_affinity = (affinity + constant.enthalpy(T)) / T
     u_approach = np.hypot(gas.u_temperature, u_T_eq)
     faint = np.where(nu != 0.0, gas.faint, False)
     limits = _limits(gas, constant, nu, faint, (T - T_eq, u_approach), (log_Q - log_K, u_ratio))
@@ -155,6 +160,8 @@ def _judged(gas: Gas, reaction: JudgedReaction, nu: FloatArray, extent: FloatArr
         of_data,
         log_Q - log_K,
         u_ratio,
+        affinity,
+        np.hypot(GAS_CONSTANT * T * u_Q, slope_of_affinity * gas.u_temperature),
         T_eq,
         u_T_eq,
         T - T_eq,

@@ -6,7 +6,6 @@ import numpy as np
 from scipy.special import ndtri
 
 from gibbsmin.arrays import BoolArray
-from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.sample.batch import Batch
 from gibbsmin.sample.findings import Estimate, Interval, ReactionFinding, Side
 from gibbsmin.sample.judged import Judged
@@ -27,16 +26,14 @@ def reaction_findings(batch: Batch, thresholds: Thresholds) -> list[tuple[Reacti
 
 
 def _findings(batch: Batch, judged: Judged, thresholds: Thresholds) -> list[ReactionFinding]:
-    RT = GAS_CONSTANT * batch.readings.temperature
-    # u(T) enters through ln K too; −RT ln Q + ΔG° moves with T by ΔrS, which RT u(ln Q/K) bounds.
     arrays = (
         judged.log_Q,
         judged.u_log_Q,
         judged.log_K,
         judged.log_ratio,
         judged.u_log_ratio,
-        -RT * judged.log_ratio,
-        RT * judged.u_log_ratio,
+        judged.affinity,
+        judged.u_affinity,
         judged.temperature,
         judged.u_temperature,
         judged.approach,

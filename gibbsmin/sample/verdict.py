@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from gibbsmin.sample.evidence import Evidence, celsius, facts, listed, ppm, standing
+from gibbsmin.sample.evidence import Evidence, celsius, facts, listed, ppm, probability, standing
 from gibbsmin.sample.findings import (
     Judgement,
     ReactionFinding,
@@ -80,11 +80,13 @@ def _error(evidence: Evidence) -> str:
 
 
 def _at(evidence: Evidence) -> Judgement:
+    own = any(reaction.own_constant for reaction in evidence.reactions)
+    p = probability(evidence.fit.at_measured.probability)
+    ending = ", by the K of the case" if own else f" ({p})"
     return _judgement(
         evidence,
         Verdict.AT_EQUILIBRIUM,
-        f"At equilibrium within errors at {celsius(evidence.temperature.value)} "
-        f"(p = {evidence.fit.at_measured.probability:.2g}).",
+        f"At equilibrium within errors at {celsius(evidence.temperature.value)}{ending}.",
         (),
         (),
     )
@@ -179,11 +181,11 @@ def _froze(reaction: ReactionFinding) -> str:
     distance = reaction.approach.value
     if distance != distance:
         return f"{reaction.text} may have gone on past the thermocouple."
-    place = "in the sample line" if distance > 0.0 else "at a hotter spot upstream"
-    return (
-        f"{reaction.text} stands as at a {'cooler' if distance > 0.0 else 'hotter'} place: it may "
-        f"have run on {place}."
-    )
+    if distance > 0.0:
+        return (
+            f"{reaction.text} stands as at a cooler place: it may have run on in the sample line."
+        )
+    return f"{reaction.text} stands as at a hotter place: it may have frozen there."
 
 
 def _judgement(
@@ -195,9 +197,10 @@ def _judgement(
 ) -> Judgement:
     names = evidence.suspects.names
     if names and verdict is not Verdict.NOT_CREDIBLE:
+        p = probability(evidence.closure.probability)
         likely = (
             *likely,
-            f"The closure is poor (p = {evidence.closure.probability:.2g}); if a measurement is "
-            f"wrong, it is likely {listed(names, 'or')}.",
+            f"The closure is poor ({p}); if a measurement is wrong, it is likely "
+            f"{listed(names, 'or')}.",
         )
     return Judgement(verdict, headline, tuple(facts(evidence)), likely, look_at)

@@ -59,6 +59,7 @@ def test_quotient_temperature_and_approach(place: int) -> None:
     one, many = (batch.reactions[place] for batch in repeated())
     assert many.log_Q.std() == pytest.approx(one.u_log_Q[0], rel=AGREE)
     assert many.log_ratio.std() == pytest.approx(one.u_log_ratio[0], rel=AGREE)
+    assert many.affinity.std() == pytest.approx(one.u_affinity[0], rel=AGREE)
     assert many.temperature.std() == pytest.approx(one.u_temperature[0], rel=AGREE)
     assert many.approach.std() == pytest.approx(one.u_approach[0], rel=AGREE)
 
