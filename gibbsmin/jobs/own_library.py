@@ -59,7 +59,7 @@ def read_library_file(path: Path, library: Library) -> OwnRecords:
 
     file = str(path)
     if path.suffix.lower() == ".toml":
-        tables = read_tables(path)
+        tables = read_tables(path, "library file")
     else:
         tables = {"record": read_record_rows(path)}
     try:

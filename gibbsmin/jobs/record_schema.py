@@ -75,7 +75,7 @@ def _tables(name: str) -> BeforeValidator:
 
     def read(given: object) -> tuple[Any, ...]:
         if not isinstance(given, list | tuple) or not given:
-            found = "found nothing" if given is None else f"found {shown(given)}"
+            found = f"found {shown(given)}" if given else "found nothing"
             raise InputError(found, f"accepted are [[{name}]] tables")
         return tuple(given)
 

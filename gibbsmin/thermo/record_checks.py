@@ -63,8 +63,10 @@ def _against_library(record: Species, library: Library) -> Iterator[str]:
     if T.size:
         table = PropertyTable.of([record, ours])
         Cp, G = table.heat_capacity(T), table.gibbs_energy(T)
-        parts = [
-            f"{100 * (a / b - 1):+.2f} % and {(x - y) / (GAS_CONSTANT * t):+.4f} at {t:g} K"
-            for t, (a, b), (x, y) in zip(T.tolist(), Cp.tolist(), G.tolist(), strict=True)
-        ]
-        yield f"Its Cp and G/RT differ by {'; '.join(parts)}."
+        in_Cp = (f"{100 * (a / b - 1):+.2f} %" for a, b in Cp.tolist())
+        in_G = (
+            f"{(a - b) / (GAS_CONSTANT * t):+.4f}" for t, (a, b) in zip(T, G.tolist(), strict=True)
+        )
+        for what, differences in (("Cp", in_Cp), ("G/RT", in_G)):
+            each = (f"{d} at {t:g} K" for d, t in zip(differences, T.tolist(), strict=True))
+            yield f"Its {what} differs by {', '.join(each)}."

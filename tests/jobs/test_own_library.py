@@ -466,3 +466,27 @@ def test_a_mistake_is_one_sentence(tmp_path: Path, mistake: str) -> None:
     with pytest.raises(InputError) as error:
         read(tmp_path, text)
     assert str(error.value) == f"{tmp_path / 'mine.toml'}: {sentence}"
+
+
+def test_a_file_that_is_not_there_is_one_sentence(tmp_path: Path) -> None:
+    case = tmp_path / "case.toml"
+    case.write_text(ON_AN_AXIS)
+    with pytest.raises(InputError) as error:
+        gibbsmin.load_case(case)
+    assert str(error.value) == (
+        f"{tmp_path / 'mine.toml'}: found no such file; accepted is the path of a library file in "
+        "TOML."
+    )
+    with pytest.raises(InputError) as error:
+        read_library_file(tmp_path / "mine.json", load_library())
+    assert str(error.value) == (
+        f'{tmp_path / "mine.json"}: found the ending ".json"; accepted is .toml, .csv or .xlsx.'
+    )
+    (tmp_path / "empty.csv").write_text(
+        'name,source,"enthalpy, kJ/mol","entropy, J/(mol K)","first, K","last, K",A\n'
+    )
+    with pytest.raises(InputError) as error:
+        read_library_file(tmp_path / "empty.csv", load_library())
+    assert str(error.value) == (
+        f"{tmp_path / 'empty.csv'}: record: found nothing; accepted are [[record]] tables."
+    )
