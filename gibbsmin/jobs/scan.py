@@ -143,7 +143,7 @@ def scan_block(
     for axis, (_, shown) in zip(axes, values, strict=True):
         columns[column_of(axis)] = shown
     answers = columns_of_states(case, conditions, first, last, uncertainty=uncertainty)
-    return pd.DataFrame(columns | answers)
+    return pd.DataFrame(columns | answers, copy=False)
 
 
 def column_of(axis: Axis) -> str:

@@ -97,14 +97,17 @@ def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, 
 
 def _phases(step: Step) -> Any:
     """The solids and liquids that are there, such as "C(graphite) + H2O(l)"; "gas" for none."""
+    import pandas as pd
+
     model, amounts = step.states.model, step.states.equilibria.amounts
     condensed = np.flatnonzero(~model.gas)
     present = amounts[:, condensed] > 0.0
     # Rows are told apart by a number each: most tables hold a handful of kinds.
-    _, first, kind = np.unique(row_numbers(present), return_index=True, return_inverse=True)
+    kind, numbers = pd.factorize(row_numbers(present))
+    firsts = [int((kind == number).argmax()) for number in range(len(numbers))]
     names = [
         " + ".join(model.records[c].name for c in condensed[present[row]]) or "gas"
-        for row in first.tolist()
+        for row in firsts
     ]
     unsolved = np.isnan(amounts[:, 0])
     return named(np.where(unsolved, len(names), kind), [*names, ""])

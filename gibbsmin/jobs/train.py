@@ -49,12 +49,12 @@ def run_train(case: Case, library: Library) -> Iterator[Step]:
         the sentence names file and key.
     """
     by_name = {stream.name: stream for stream in case.feeds}
-    passing: list[Stream] = []
+    step: Step | None = None
     for stage in case.stages:
+        passing = [] if step is None else [_leaving(step)]
         streams = [*passing, *(by_name[name] for name in stage.feeds)]
         for step in _steps(stage, streams, case, library):
             yield step
-            passing = [_leaving(step)]
 
 
 def has_bypass(stage: StageCase) -> bool:

@@ -59,9 +59,8 @@ class Mixture:
         RT = (GAS_CONSTANT * T)[..., np.newaxis]
         energies = self.properties.gibbs_energy(T)
         energies /= RT
-        energies = energies + np.where(
-            self.gas, np.log(P / STANDARD_PRESSURE)[..., np.newaxis], 0.0
-        )
+        logarithm = np.log(P / STANDARD_PRESSURE)[..., np.newaxis]
+        energies = np.add(energies, logarithm, out=energies, where=self.gas)
         return energies + self.pressure_terms(P) / RT if self._has_volumes else energies
 
     def pressure_terms(self, pressure: npt.ArrayLike) -> FloatArray:

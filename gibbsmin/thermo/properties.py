@@ -16,6 +16,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 from typing import Final, Self
 
 import numpy as np
@@ -55,7 +56,11 @@ class PropertyTable:
     @classmethod
     def of(cls, records: Sequence[Species]) -> Self:
         """Lay out the records; those with fewer pieces repeat their last one, to no effect."""
-        records = tuple(records)
+        return cls._of(tuple(records))
+
+    @classmethod
+    @lru_cache(maxsize=64)
+    def _of(cls, records: tuple[Species, ...]) -> Self:
         count = max((len(record.pieces) for record in records), default=0) + 2
         rows = [_with_ends(record.pieces, count) for record in records]
         columns = np.array(
