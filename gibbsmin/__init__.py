@@ -19,6 +19,7 @@ if TYPE_CHECKING:
     from gibbsmin.jobs.sensitivity import Sensitivities
     from gibbsmin.jobs.target import Target, target
     from gibbsmin.jobs.uncertainty import uncertainty
+    from gibbsmin.present.scan_files import write_scan
     from gibbsmin.results import Outlet, StageOutlet
     from gibbsmin.sample.findings import Checks, SampleCheck
 
@@ -41,6 +42,7 @@ __all__ = [
     "scan_blocks",
     "target",
     "uncertainty",
+    "write_scan",
 ]
 
 _HOMES = {
@@ -62,6 +64,7 @@ _HOMES = {
     "scan_blocks": "gibbsmin.jobs.scan",
     "Sensitivities": "gibbsmin.jobs.sensitivity",
     "uncertainty": "gibbsmin.jobs.uncertainty",
+    "write_scan": "gibbsmin.present.scan_files",
 }
 
 

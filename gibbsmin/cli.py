@@ -24,6 +24,7 @@ if TYPE_CHECKING:
 
 NOT_CERTIFIED: Final = 1
 INPUT_ERROR: Final = 2
+BROKEN_OFF: Final = 130
 SOME_NOT_USED: Final = 1
 
 # Wide enough that a table sent to a file or another program is not broken.
@@ -155,6 +156,12 @@ def scan(
     from gibbsmin.present.scan_parts import fingerprint_of
     from gibbsmin.present.scan_run import run_scan
 
+    if table and plot:
+        raise InputError(
+            "found a plot of a table of conditions",
+            "accepted is a plot of a grid of one or two axes",
+            key="plot",
+        )
     path = Path(out)
     require_scan_ending(path)
     _require_plot_ending(plot)
@@ -169,10 +176,14 @@ def scan(
     else:
         conditions = conditions_of(loaded)
     fingerprint = fingerprint_of(*parts)
-    with connected(cluster) if cluster else nullcontext() as client:
-        tally = run_scan(
-            loaded, conditions, path, fingerprint, uncertainty=uncertainty, client=client
-        )
+    try:
+        with connected(cluster) if cluster else nullcontext() as client:
+            tally = run_scan(
+                loaded, conditions, path, fingerprint, uncertainty=uncertainty, client=client
+            )
+    except KeyboardInterrupt:
+        typer.echo("Broken off; the same command goes on where this stopped.", err=True)
+        raise typer.Exit(BROKEN_OFF) from None
     _print(tally.summary(path))
     for note in own_records_notes(loaded.own_records):
         _print(note)

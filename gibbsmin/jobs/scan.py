@@ -11,19 +11,19 @@ from typing import TYPE_CHECKING, Any
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import LABEL, Conditions, Grid, conditions_from, conditions_of
+from gibbsmin.jobs.scan_columns import UNITS
 from gibbsmin.jobs.scan_states import columns_of_states
 
 if TYPE_CHECKING:
     import pandas as pd
     import xarray as xr
 
-BLOCK = 25_000
-"""States solved together."""
+_BLOCK = 25_000
+_BLOCK_WITH_ERROR_BARS = 1_000
+"""States of a stage solved together."""
 
 _AHEAD = 2
 """Blocks in memory at a time."""
-
-_BLOCK_WITH_ERROR_BARS = 1_000
 
 
 @dataclass(frozen=True, eq=False)
@@ -50,13 +50,15 @@ class Scan:
         """
         import xarray as xr
 
-        columns = [column_of(axis) for axis in self.axes]
+        columns = {column_of(axis): (axis.name, axis.unit) for axis in self.axes}
         shape = [axis.shown.size for axis in self.axes] if self.is_grid else [len(self.table)]
         dims = [axis.name for axis in self.axes] if self.is_grid else ["state"]
         names: list[Any] = [c for c in self.table if not self.is_grid or c not in columns]
         data = {}
         for name in names:
-            label, _, unit = str(name).partition(", ")
+            label, _, unit = str(name).rpartition(", ")
+            if unit not in UNITS:
+                label, unit = columns.get(name, (name, ""))
             values = self.table[name].to_numpy().reshape(shape)
             data[label] = (dims, values, {"units": unit} if unit else {})
         coordinates = {}
@@ -103,13 +105,19 @@ def scan_blocks(
         for axes that name nothing, and for what the case itself gets wrong.
     """
     conditions = conditions or conditions_of(case)
-    size = block or (_BLOCK_WITH_ERROR_BARS if uncertainty else BLOCK)
+    size = block or block_size(case, uncertainty=uncertainty)
 
     def solve(first: int) -> pd.DataFrame:
         last = min(first + size, conditions.states)
         return scan_block(case, conditions, first, last, uncertainty=uncertainty)
 
     yield from in_order(solve, range(0, conditions.states, size))
+
+
+def block_size(case: Case, *, uncertainty: bool) -> int:
+    """States solved together: so many that numpy is quick, so few that memory stays small."""
+    size = _BLOCK_WITH_ERROR_BARS if uncertainty else _BLOCK
+    return max(1, size // len(case.stages))
 
 
 def in_order(solve: Callable[[int], pd.DataFrame], starts: Sequence[int]) -> Iterator[pd.DataFrame]:

@@ -15,6 +15,9 @@ from gibbsmin.minimise import Status
 from gibbsmin.reactor.conversion import conversions
 from gibbsmin.thermo.species import Phase
 
+UNITS = ("K", "bar", "kW", "kJ", "kW/K", "kJ/K", "mol", "mol/s")
+"""What may follow a comma at the end of a column's name."""
+
 _STATUSES = [status.name.lower() for status in Status]
 
 
@@ -72,7 +75,7 @@ def named(codes: Any, names: Sequence[str]) -> Any:
 def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, str, FloatArray]]:
     """Name, unit, SI per unit, the result's name among the sensitivities, and SI values."""
     found, energy, model = step.states.equilibria, step.states.energy, step.states.model
-    unit = "kW" if step.streams[0].is_flow else "kJ"
+    unit, moles = ("kW", "mol/s") if step.streams[0].is_flow else ("kJ", "mol")
     yield "temperature", "K", 1.0, "temperature", found.temperature
     yield "pressure", "bar", 1e5, "pressure", found.pressure
     yield "heat", unit, 1e3, "heat", energy.heat
@@ -88,7 +91,7 @@ def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, 
         if record.phase is Phase.GAS:
             yield f"y {record.name}", "", 1.0, f"fraction {record.name}", amounts / total
         else:
-            yield f"amount {record.name}", "mol", 1.0, f"amount {record.name}", amounts
+            yield f"amount {record.name}", moles, 1.0, f"amount {record.name}", amounts
     shares = conversions(step.states.inlet, model.records, found.amounts)
     not_fed = np.full(len(total), np.nan)
     for name in (record.name for record in layout.fed):

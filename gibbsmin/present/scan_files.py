@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from os import PathLike
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from gibbsmin.errors import OutputError
 from gibbsmin.jobs.conditions import LABEL
+from gibbsmin.jobs.scan import Scan
 from gibbsmin.present.files import (
     harmless,
     harmless_names,
@@ -38,8 +40,21 @@ def require_scan_ending(path: Path) -> str:
     return suffix
 
 
-def write_scan(blocks: Iterator[pd.DataFrame], path: Path) -> None:
-    """Write the blocks of a scan one after another; the file appears whole or not at all."""
+def write_scan(found: Scan, path: str | PathLike[str]) -> None:
+    """Write a scan's table to a .csv, .parquet or .xlsx file; it appears whole or not at all.
+
+    Text that a spreadsheet would run as a formula has an apostrophe before it.
+
+    Raises
+    ------
+    OutputError
+        for another ending, and for a file that cannot be written.
+    """
+    write_blocks(iter([found.table]), Path(path))
+
+
+def write_blocks(blocks: Iterator[pd.DataFrame], path: Path) -> None:
+    """Write the blocks of a scan one after another."""
     suffix = require_scan_ending(path)
     if suffix == ".xlsx":
         _write_workbook(blocks, path)
@@ -68,7 +83,7 @@ def _fill_csv(blocks: Iterator[pd.DataFrame], path: Path) -> None:
         # The cells are numbers and our own words, but for labels and the names above them.
         if LABEL in block:
             block = block.assign(**{LABEL: harmless(block[[LABEL]])[LABEL]})
-        block.columns = harmless_names(block.columns)
+        block = block.set_axis(harmless_names(block.columns), axis=1)
         block.to_csv(path, mode="a", header=index == 0, index=False)
 
 
@@ -79,9 +94,19 @@ def _fill_parquet(blocks: Iterator[pd.DataFrame], path: Path) -> None:
     writer: Any = None
     try:
         for block in blocks:
-            rows = pa.Table.from_pandas(block, preserve_index=False)
+            rows = _plain_texts(pa.Table.from_pandas(block, preserve_index=False))
             writer = writer or pq.ParquetWriter(path, rows.schema)
             writer.write_table(rows)
     finally:
         if writer is not None:
             writer.close()
+
+
+def _plain_texts(rows: Any) -> Any:
+    """The rows with repeated texts spelled out: the file's own encoding is of one kind in all."""
+    import pyarrow as pa
+
+    fields = [
+        pa.field(f.name, pa.string()) if pa.types.is_dictionary(f.type) else f for f in rows.schema
+    ]
+    return rows.cast(pa.schema(fields))

@@ -15,6 +15,8 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from gibbsmin.errors import OutputError
+from gibbsmin.jobs.scan import in_order
+from gibbsmin.jobs.scan_columns import named
 from gibbsmin.present.files import write_whole
 
 if TYPE_CHECKING:
@@ -60,12 +62,15 @@ def kept_blocks(
             file=str(folder),
         ) from None
     write_whole(stamp, lambda scratch: _write_text(scratch, fingerprint))
-    for index in range(count):
+
+    def block(index: int) -> pd.DataFrame:
         part = folder / f"block-{index:06d}.npz"
         if not part.exists():
             _keep(solve(index), part)
         # What was solved just now is read back too, so that every run gives the same bytes.
-        yield _kept(part)
+        return _kept(part)
+
+    yield from in_order(block, range(count))
 
 
 def forget_blocks(path: Path) -> None:
@@ -78,8 +83,14 @@ def _folder(path: Path) -> Path:
 
 
 def _keep(block: pd.DataFrame, part: Path) -> None:
-    arrays: dict[str, Any] = {f"{k}": _array(block.iloc[:, k]) for k in range(block.shape[1])}
-    arrays["names"] = np.array([str(name) for name in block.columns])
+    """Texts that repeat are kept as numbers, beside the list of those texts."""
+    arrays: dict[str, Any] = {"names": np.array([str(name) for name in block.columns])}
+    for k in range(block.shape[1]):
+        column = block.iloc[:, k]
+        if column.dtype == "category":
+            arrays[f"{k} texts"] = np.array(column.cat.categories, dtype=str)
+            column = column.cat.codes
+        arrays[f"{k}"] = _array(column)
 
     def write(scratch: Path) -> None:
         with scratch.open("wb") as file:
@@ -92,8 +103,12 @@ def _kept(part: Path) -> pd.DataFrame:
     import pandas as pd
 
     with np.load(part, allow_pickle=False) as file:
-        names = file["names"].tolist()
-        return pd.DataFrame({name: file[f"{k}"] for k, name in enumerate(names)})
+        columns: dict[str, Any] = {}
+        for k, name in enumerate(file["names"].tolist()):
+            columns[name] = file[f"{k}"]
+            if f"{k} texts" in file:
+                columns[name] = named(columns[name], file[f"{k} texts"].tolist())
+    return pd.DataFrame(columns, copy=False)
 
 
 def _array(column: pd.Series) -> np.ndarray:

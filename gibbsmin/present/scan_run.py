@@ -8,10 +8,10 @@ from typing import TYPE_CHECKING, Any
 
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import Conditions
-from gibbsmin.jobs.scan import BLOCK, scan_block
+from gibbsmin.jobs.scan import block_size, scan_block
 from gibbsmin.minimise import settle_form
 from gibbsmin.present.cluster import blocks_on
-from gibbsmin.present.scan_files import require_scan_ending, write_scan
+from gibbsmin.present.scan_files import require_scan_ending, write_blocks
 from gibbsmin.present.scan_parts import forget_blocks, kept_blocks
 from gibbsmin.present.scan_progress import Tally
 
@@ -25,7 +25,7 @@ def run_scan(
     path: Path,
     fingerprint: str,
     *,
-    block: int = BLOCK,
+    block: int | None = None,
     uncertainty: bool = False,
     client: Any = None,
 ) -> Tally:
@@ -39,6 +39,7 @@ def run_scan(
         for a file that cannot be written, and for kept blocks of another scan.
     """
     require_scan_ending(path)
+    block = block or block_size(case, uncertainty=uncertainty)
     count = -(-conditions.states // block)
     if count > 1:
         # What is kept and what is solved later must agree to the last bit.
@@ -54,6 +55,6 @@ def run_scan(
         solve = blocks_on(client, case, conditions, block, uncertainty=uncertainty)
     blocks = kept_blocks(path, fingerprint, count, solve)
     tally = Tally(blocks, conditions.states)
-    write_scan(iter(tally), path)
+    write_blocks(iter(tally), path)
     forget_blocks(path)
     return tally

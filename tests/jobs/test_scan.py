@@ -56,7 +56,7 @@ def test_rows_are_the_grid_and_equal_single_predictions() -> None:
         stage = gibbsmin.predict(gibbsmin.load_case(single)).final
         for record, y, n in zip(stage.records, stage.mole_fractions, stage.amounts, strict=True):
             gas = record.phase.value == "gas"
-            column = f"y {record.name}" if gas else f"amount {record.name}, mol"
+            column = f"y {record.name}" if gas else f"amount {record.name}, mol/s"
             assert table[column][row] == pytest.approx(y if gas else n, rel=1e-10, abs=1e-14)
         assert table["heat, kW"][row] == pytest.approx(stage.heat / 1e3, rel=1e-10)
         assert table["entropy generation, kW/K"][row] == pytest.approx(
@@ -69,8 +69,8 @@ def test_rows_are_the_grid_and_equal_single_predictions() -> None:
 
 def test_carbon_comes_with_little_steam_and_goes_with_much() -> None:
     table = scan(with_axes({**STEAM, "values": [0.5, 3.0]}))
-    assert table["amount C(graphite), mol"][0] > 0.0
-    assert table["amount C(graphite), mol"][1] == 0.0
+    assert table["amount C(graphite), mol/s"][0] > 0.0
+    assert table["amount C(graphite), mol/s"][1] == 0.0
 
 
 def test_blocks_are_the_whole_in_pieces() -> None:
@@ -137,7 +137,7 @@ def test_every_block_has_the_same_columns_whatever_forms_in_it() -> None:
     blocks = list(gibbsmin.scan_blocks(case, block=2))
     whole = gibbsmin.scan(case).table
     assert [list(block) for block in blocks] == [list(whole)] * 2
-    assert (whole["cooler: amount C(graphite), mol"] > 0.0).tolist() == [True, False, False, True]
+    assert (whole["cooler: amount C(graphite), mol/s"] > 0.0).tolist() == [True, False, False, True]
     assert whole["cooler: phases"].tolist() == ["C(graphite)", "gas", "gas", "C(graphite)"]
     for row, amount in enumerate([20, 300, 400, 30]):
         single = {**deepcopy(CASE), "stage": stages}

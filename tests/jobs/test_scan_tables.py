@@ -318,6 +318,40 @@ def test_a_grid_becomes_named_dimensions_with_units() -> None:
     assert float(picked) == found.table["reformer: y H2(g)"][3]
 
 
+def test_a_table_of_conditions_has_the_one_dimension_state() -> None:
+    conditions = pd.DataFrame(
+        {"label": ["low", "high"], "stage.reformer.temperature, degC": [780.0, 820.0]}
+    )
+    found = gibbsmin.scan(gibbsmin.load_case(CASE), conditions)
+    data = found.to_xarray()
+    assert dict(data.sizes) == {"state": 2}
+    assert data["stage.reformer.temperature"].attrs == {"units": "degC"}
+    assert data["shift, bypass joined: heat"].attrs == {"units": "kJ"}
+    assert data["shift, bypass joined: y H2(g)"].attrs == {}
+    assert data["label"].values.tolist() == ["low", "high"]
+
+
+def test_a_scan_is_written_from_python_with_harmless_cells(tmp_path: Path) -> None:
+    conditions = pd.DataFrame(
+        {"label": ["=1+1", "high"], "stage.reformer.temperature, degC": [780.0, 820.0]}
+    )
+    found = gibbsmin.scan(gibbsmin.load_case(CASE), conditions)
+    for ending, read in (
+        ("csv", pd.read_csv),
+        ("parquet", pd.read_parquet),
+        ("xlsx", pd.read_excel),
+    ):
+        path = tmp_path / f"out.{ending}"
+        gibbsmin.write_scan(found, path)
+        again = read(path)
+        assert list(again) == list(found.table)
+        np.testing.assert_allclose(
+            again["shift: y H2(g)"], found.table["shift: y H2(g)"], rtol=1e-14
+        )
+        label = "=1+1" if ending == "parquet" else "'=1+1"
+        assert again["label"].tolist() == [label, "high"]
+
+
 def test_error_bars_stand_beside_the_values_and_equal_those_of_single_states() -> None:
     tables = deepcopy(CASE) | {
         "axis": [{"vary": "stage.reformer.temperature", "values": ["750 degC", "850 degC"]}],

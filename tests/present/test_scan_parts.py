@@ -6,6 +6,8 @@ import json
 import multiprocessing
 import os
 import signal
+import subprocess
+import sys
 import time
 from copy import deepcopy
 from pathlib import Path
@@ -38,6 +40,25 @@ CASE: dict[str, Any] = {
         {"vary": "feed.gas.amounts.H2O", "first": 0.5, "last": 4.0, "count": 5},
     ],
 }
+TOML = """
+[feed.gas]
+temperature = "520 degC"
+pressure = "30 bar"
+unit = "mol"
+amounts = { CH4 = 1, H2O = 3 }
+[outlet]
+temperature = "850 degC"
+pressure = "25 bar"
+[species]
+consider = ["CH4", "H2O", "CO", "CO2", "H2"]
+"""
+AXIS = """
+[[axis]]
+vary = "outlet.temperature"
+first = "500 degC"
+last = "900 degC"
+count = 2_000_000
+"""
 BLOCK = 15
 KILLS = 20
 
@@ -106,9 +127,38 @@ def test_finished_blocks_are_not_solved_again(tmp_path: Path) -> None:
             pass
 
     blocks()
-    assert seen == list(range(len(stamps), 20))
+    assert sorted(seen) == [k for k in range(20) if f"block-{k:06d}.npz" not in stamps]
     assert {p.name: p.stat().st_mtime_ns for p in folder.glob("block-*.npz")}.items() >= (
         stamps.items()
+    )
+
+
+def test_a_scan_broken_off_from_the_keyboard_says_how_to_go_on(tmp_path: Path) -> None:
+    case = tmp_path / "case.toml"
+    case.write_text(TOML + AXIS)
+    arguments = ["scan", str(case), "--out", str(tmp_path / "scan.csv")]
+    process = subprocess.Popen(  # noqa: S603 our own command
+        [sys.executable, "-c", "from gibbsmin.cli import main; main()", *arguments],
+        stderr=subprocess.PIPE,
+        text=True,
+    )
+    parts = tmp_path / "scan.csv.parts"
+    while process.poll() is None and not list(parts.glob("block-*.npz")):
+        time.sleep(0.005)
+    process.send_signal(signal.SIGINT)
+    _, told = process.communicate(timeout=60)
+    assert told == "Broken off; the same command goes on where this stopped.\n"
+    assert process.returncode == 130
+    assert sorted(path.name for path in tmp_path.iterdir()) == ["case.toml", "scan.csv.parts"]
+
+
+def test_a_plot_of_a_table_is_refused_before_any_work(tmp_path: Path) -> None:
+    arguments = ["scan", "case.toml", "--table", "runs.csv", "--plot", "map.png"]
+    result = CliRunner().invoke(app, [*arguments, "--out", str(tmp_path / "out.csv")])
+    assert result.exit_code == 2
+    assert result.output == (
+        "plot: found a plot of a table of conditions; accepted is a plot of a grid of one or two "
+        "axes.\n"
     )
 
 
@@ -127,13 +177,7 @@ def test_blocks_of_another_case_are_refused(tmp_path: Path) -> None:
 
 def test_the_command_takes_a_table_and_error_bars(tmp_path: Path) -> None:
     case = tmp_path / "case.toml"
-    case.write_text(
-        '[feed.gas]\ntemperature = "520 degC"\npressure = "30 bar"\nunit = "mol"\n'
-        "amounts = { CH4 = 1, H2O = 3 }\n"
-        '[outlet]\ntemperature = "850 degC"\npressure = "25 bar"\n'
-        '[species]\nconsider = ["CH4", "H2O", "CO", "CO2", "H2"]\n'
-        '[uncertainty]\noutlet.temperature = "5 K"\n'
-    )
+    case.write_text(TOML + '[uncertainty]\noutlet.temperature = "5 K"\n')
     table = tmp_path / "runs.csv"
     table.write_text('label,"outlet.temperature, degC"\nmonday,800\n=tuesday,820\n')
     out = tmp_path / "out.csv"
@@ -149,11 +193,7 @@ def test_the_command_takes_a_table_and_error_bars(tmp_path: Path) -> None:
 
 def test_a_missing_table_is_one_sentence(tmp_path: Path) -> None:
     case = tmp_path / "case.toml"
-    case.write_text(
-        '[feed.gas]\ntemperature = "520 degC"\npressure = "30 bar"\nunit = "mol"\n'
-        "amounts = { CH4 = 1, H2O = 3 }\n"
-        '[outlet]\ntemperature = "850 degC"\npressure = "25 bar"\n'
-    )
+    case.write_text(TOML)
     missing = tmp_path / "none.csv"
     for path, sentence in (
         (missing, f"{missing}: found no such file; accepted is a table that exists."),

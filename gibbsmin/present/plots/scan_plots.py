@@ -72,7 +72,8 @@ def plot_composition(found: Scan, show: str = "wet") -> Figure:
     name_axes(panels[0], "" if condensed else column_of(axis), up)
     if condensed:
         _draw(panels[1], axis, condensed)
-        name_axes(panels[1], column_of(axis), "solids, liquids, mol")
+        unit = next(str(name) for name in found.table if str(name).startswith("amount "))
+        name_axes(panels[1], column_of(axis), f"solids, liquids, {unit.rpartition(', ')[2]}")
     return figure
 
 
@@ -213,7 +214,7 @@ def _condensed(found: Scan) -> list[tuple[str, FloatArray, FloatArray | None]]:
     for name in found.table:
         label = str(name)
         if label.startswith("amount ") and np.nanmax(found.table[name].to_numpy()) > 0.0:
-            text = label.removeprefix("amount ").removesuffix(", mol")
+            text = label.removeprefix("amount ").rpartition(", ")[0]
             lines.append((text, found.table[name].to_numpy(), _band(found, label)))
     return lines
 
