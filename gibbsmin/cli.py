@@ -269,6 +269,9 @@ def check(
         str,
         typer.Option(metavar="FILE", help="Write a .csv, .xlsx, .parquet or .json file as well."),
     ] = "",
+    report: Annotated[
+        str, typer.Option(metavar="FILE", help="Write a page to print or send, .html.")
+    ] = "",
 ) -> None:
     """Say whether plant samples are believable and how far they are from equilibrium.
 
@@ -280,14 +283,19 @@ def check(
     from gibbsmin.present.check_files import require_check_ending, write_checks
     from gibbsmin.present.check_view import check_view
     from gibbsmin.present.conditions_file import read_conditions
+    from gibbsmin.present.report import require_report_ending, write_report
 
     if out:
         require_check_ending(Path(out))
+    if report:
+        require_report_ending(Path(report))
     loaded = load_case(case)
     table = read_conditions(Path(samples)) if samples else None
     checks = check_samples(loaded, table, samples)
     if out:
         write_checks(checks, Path(out))
+    if report:
+        write_report(checks, Path(report))
     if as_json:
         _print_json(check_document(checks))
     else:

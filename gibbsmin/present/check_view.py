@@ -9,6 +9,7 @@ from rich.console import Group, RenderableType
 from rich.padding import Padding
 from rich.text import Text
 
+from gibbsmin.jobs.history import history_of, trend_sentences
 from gibbsmin.present.check_table import NOT_USED
 from gibbsmin.present.layout import heading, number, pairs, sentences, table
 from gibbsmin.present.quantities import fraction, pressure, significant, temperature
@@ -36,6 +37,7 @@ def check_view(checks: Checks) -> RenderableType:
         parts += _sample(checks.samples[0])
     else:
         parts += _history(checks)
+        parts += sentences("Over time", trend_sentences(checks, history_of(checks)))
     parts += sentences("Assumptions", checks.assumptions)
     parts += sentences("Cautions", CAUTIONS)
     return Group(*parts)
