@@ -116,7 +116,10 @@ def load_case(source: str | PathLike[str] | Mapping[str, Any]) -> Case:
 def _of_files(
     names: Sequence[str], case_file: str
 ) -> tuple[tuple[Species, ...], tuple[Source, ...]]:
-    """Records and sources of the case's library files, which stand beside it."""
+    """Records and sources of the case's library files, which stand beside it.
+
+    A later file overrules an earlier one and may rest on it.
+    """
     if not names:
         return (), ()
     from gibbsmin.jobs.own_library import read_library_file
@@ -124,7 +127,8 @@ def _of_files(
     records: dict[str, Species] = {}
     sources: list[Source] = []
     for name in names:
-        found = read_library_file(Path(case_file).parent / name, load_library())
+        known = library_with(tuple(records.values()), tuple(sources))
+        found = read_library_file(Path(case_file).parent / name, known)
         records |= {record.name: record for record in found.records}
         sources += found.sources
     return tuple(records.values()), tuple(sources)

@@ -47,7 +47,7 @@ class OwnRecords:
 
 
 def read_library_file(path: Path, library: Library) -> OwnRecords:
-    """The records of a ``.toml``, ``.csv`` or ``.xlsx`` file.
+    """The records of a ``.toml``, ``.csv`` or ``.xlsx`` file; each may rest on those before it.
 
     Raises
     ------
@@ -70,7 +70,7 @@ def read_library_file(path: Path, library: Library) -> OwnRecords:
         for index, row in enumerate(rows):
             with within(f"record.{index}"):
                 source = Source(f"{OWN}{path.name}, {row.name}", row.source, "the user's")
-                record, found = _record(row, source.key, library)
+                record, found = _record(row, source.key, library.overruled(records))
                 if record.name in findings:
                     raise InputError(
                         f'found "{record.name}" twice', "accepted is each record once", key="name"

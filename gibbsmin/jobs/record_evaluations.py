@@ -102,10 +102,12 @@ def with_constants(given: ConstantsTable, record: Species, library: Library) -> 
     ]
     enthalpy, u_enthalpy = laws.second_law_enthalpy, laws.u_second_law_enthalpy
     entropy, u_entropy = laws.second_law_entropy, laws.u_second_law_entropy
+    correlation = laws.second_law_correlation
     if np.isfinite(record.S298):
         said.append(_third_law(laws))
         enthalpy, u_enthalpy = laws.third_law_enthalpy, laws.u_third_law_enthalpy
         entropy, u_entropy = record.S298, record.u_S298
+        correlation = laws.third_law_correlation
     if np.isfinite(record.dfH298):
         away = (enthalpy - record.dfH298) / 1e3
         u = float(np.hypot(u_enthalpy, np.nan_to_num(record.u_dfH298))) / 1e3
@@ -114,6 +116,8 @@ def with_constants(given: ConstantsTable, record: Species, library: Library) -> 
             f"That is {away:+.3f} ± {u:.3f} kJ/mol from the enthalpy that the record states: "
             f"{verdict}."
         )
+    else:
+        said.append(correlated(record.name, correlation))
     return replace(
         record,
         dfH298=_or(record.dfH298, enthalpy),
@@ -121,6 +125,14 @@ def with_constants(given: ConstantsTable, record: Species, library: Library) -> 
         S298=entropy,
         u_S298=u_entropy,
     ), tuple(said)
+
+
+def correlated(name: str, coefficient: float) -> str:
+    """How to tell a case that a record's enthalpy and entropy do not err independently."""
+    return (
+        "Its enthalpy and entropy err together: error bars want a [[correlation]] with between = "
+        f'["{name}.enthalpy", "{name}.entropy"] and coefficient = {coefficient:.3f}.'
+    )
 
 
 def _third_law(laws: LawComparison) -> str:

@@ -12,6 +12,7 @@ from gibbsmin.arrays import FloatArray
 from gibbsmin.constants import REFERENCE_TEMPERATURE
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.feed_parts import within
+from gibbsmin.jobs.record_evaluations import correlated
 from gibbsmin.thermo.fit import Table, fit_heat_capacity, gibbs_errors
 from gibbsmin.thermo.formula import Formula
 from gibbsmin.thermo.group_estimates import estimate_by_groups
@@ -74,7 +75,7 @@ def thermal_of(row: RecordTable, composition: Formula, mass: float, library: Lib
         estimate = estimate_by_groups(row.groups, dict(composition.elements), library)
         thermal = Thermal(
             (estimate.piece,),
-            (_BY_GROUPS,),
+            (_BY_GROUPS, correlated(row.name, estimate.correlation)),
             estimate.entropy,
             estimate.u_entropy,
             estimate.enthalpy,

@@ -53,6 +53,8 @@ class GroupEstimate:
     ----------
     enthalpy, entropy : ΔfH298 in J/mol, S298 in J/mol/K
     u_enthalpy, u_entropy : standard uncertainties
+    correlation : of their errors, since the entropy follows from both energies, which err by
+        themselves
     piece : the heat capacity
     """
 
@@ -60,6 +62,7 @@ class GroupEstimate:
     u_enthalpy: float
     entropy: float
     u_entropy: float
+    correlation: float
     piece: Piece
 
 
@@ -100,6 +103,7 @@ def estimate_by_groups(
         u_enthalpy=ENTHALPY_ERROR,
         entropy=float((enthalpy - gibbs) / REFERENCE_TEMPERATURE + entropy_of_elements),
         u_entropy=float(u_entropy),
+        correlation=float(ENTHALPY_ERROR / (REFERENCE_TEMPERATURE * u_entropy)),
         piece=Piece(
             LOWEST_TEMPERATURE,
             HIGHEST_TEMPERATURE,

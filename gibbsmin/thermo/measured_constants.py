@@ -36,6 +36,7 @@ class LawComparison:
     second_law_enthalpy, second_law_entropy : ΔfH298 in J/mol and S298 in J/mol/K
     u_second_law_enthalpy, u_second_law_entropy : standard uncertainties
     third_law_enthalpy, u_third_law_enthalpy : with the entropy given; NaN without one
+    second_law_correlation, third_law_correlation : of the errors of enthalpy and entropy
     drift : of the third-law enthalpy, kJ/mol in 1000 K, with its standard uncertainty ``u_drift``
     """
 
@@ -45,6 +46,8 @@ class LawComparison:
     u_second_law_entropy: float
     third_law_enthalpy: float
     u_third_law_enthalpy: float
+    second_law_correlation: float
+    third_law_correlation: float
     drift: float
     u_drift: float
 
@@ -103,7 +106,7 @@ def compare_laws(
         )
     )
     third = np.full(T.shape, np.nan)
-    drift = (np.nan, np.nan, np.nan, np.nan)
+    drift = (np.nan, np.nan, np.nan, np.nan, np.nan)
     own_u_S = np.nan
     if np.isfinite(unknown.S298):
         third = reduced + T * unknown.S298
@@ -111,13 +114,18 @@ def compare_laws(
         own_u_S = float(record_uncertainties([unknown]).entropy[0])
     scatter = third.std(ddof=1) / np.sqrt(T.size)
     all_S = np.hypot(u_S, own_u_S)
+    u_second_H, u_second_S = float(np.hypot(line[1], u_H)), float(np.hypot(line[3], u_S))
+    u_third = float(np.linalg.norm([scatter, u_H, T.mean() * all_S]))
     return LawComparison(
         second_law_enthalpy=line[0],
-        u_second_law_enthalpy=float(np.hypot(line[1], u_H)),
+        u_second_law_enthalpy=u_second_H,
         second_law_entropy=line[2],
-        u_second_law_entropy=float(np.hypot(line[3], u_S)),
+        u_second_law_entropy=u_second_S,
         third_law_enthalpy=float(third.mean()),
-        u_third_law_enthalpy=float(np.linalg.norm([scatter, u_H, T.mean() * all_S])),
+        u_third_law_enthalpy=u_third,
+        # Zero uncertainties, of exact data, have no correlation.
+        second_law_correlation=line[4] / (u_second_H * u_second_S or 1.0),
+        third_law_correlation=float(T.mean()) * own_u_S / (u_third or 1.0),
         drift=drift[2],
         u_drift=float(np.hypot(drift[3], all_S)),
     )
@@ -129,11 +137,18 @@ def _of_heat_capacity(unknown: Species, T: FloatArray) -> FloatArray:
     return np.asarray(PropertyTable.of([bare]).gibbs_energy(T)[:, 0])
 
 
-def _straight_line(x: FloatArray, y: FloatArray) -> tuple[float, float, float, float]:
-    """Intercept and slope by least squares, each with its standard uncertainty."""
+def _straight_line(x: FloatArray, y: FloatArray) -> tuple[float, float, float, float, float]:
+    """Intercept and slope by least squares, each with its standard uncertainty; covariance."""
     matrix = np.column_stack([np.ones(x.size), x])
     solution, *_ = np.linalg.lstsq(matrix, y, rcond=None)
     residual = y - matrix @ solution
     variance = float(residual @ residual) / (x.size - 2)
-    spread = np.sqrt(variance * np.diag(np.linalg.inv(matrix.T @ matrix)))
-    return float(solution[0]), float(spread[0]), float(solution[1]), float(spread[1])
+    covariance = variance * np.linalg.inv(matrix.T @ matrix)
+    spread = np.sqrt(np.diag(covariance))
+    return (
+        float(solution[0]),
+        float(spread[0]),
+        float(solution[1]),
+        float(spread[1]),
+        float(covariance[0, 1]),
+    )

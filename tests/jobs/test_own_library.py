@@ -211,7 +211,12 @@ def test_groups_and_measured_constants(tmp_path: Path) -> None:
     )
     own = read(tmp_path, groups)
     assert own.records[0].u_dfH298 == 8400.0
-    assert own.findings[own.records[0].name][0].startswith("An estimate by groups")
+    estimated, together = own.findings[own.records[0].name]
+    assert estimated.startswith("An estimate by groups")
+    assert together == (
+        "Its enthalpy and entropy err together: error bars want a [[correlation]] with between = "
+        '["CH3CH2OCHO(g).enthalpy", "CH3CH2OCHO(g).entropy"] and coefficient = 0.707.'
+    )
     library = load_library()
     T = [700.0, 800.0, 900.0, 1000.0]
     records = [library[f"{name}(g)"] for name in ("CO", "H2O", "CO2", "H2")]
@@ -239,7 +244,7 @@ log10_K = {log10_K}
     own = read(tmp_path, constants)
     (record,) = own.records
     assert record.dfH298 == pytest.approx(library["CO2(g)"].dfH298, abs=60.0)
-    second, third = own.findings["CO2(g)"]
+    second, third, _ = own.findings["CO2(g)"]
     assert second.startswith("Second law: ΔfH = -393.")
     assert "the laws " in third
 
@@ -490,3 +495,33 @@ def test_a_file_that_is_not_there_is_one_sentence(tmp_path: Path) -> None:
     assert str(error.value) == (
         f"{tmp_path / 'empty.csv'}: record: found nothing; accepted are [[record]] tables."
     )
+
+
+def test_a_record_may_rest_on_one_before_it_or_in_an_earlier_file(tmp_path: Path) -> None:
+    constants = """
+[[record]]
+name = "XeO3(g)"
+source = "invented"
+entropy = "287 J/(mol K)"
+[[record.heat_capacity]]
+first = "298 K"
+last = "800 K"
+unit = "J/(mol K)"
+A = 70
+[record.constants]
+reaction = "XeO4 = XeO3 + 0.5 O2"
+temperature = ["300 K", "320 K", "340 K"]
+log10_K = [31.0, 29.3, 27.8]
+"""
+    own = read(tmp_path, SHOMATE + constants)
+    both = own.records[1].dfH298
+    with pytest.raises(InputError) as error:
+        read(tmp_path, constants)
+    assert "record.0.constants" in str(error.value)
+    (tmp_path / "first.toml").write_text(SHOMATE)
+    (tmp_path / "mine.toml").write_text(constants)
+    case = tmp_path / "case.toml"
+    case.write_text(ON_AN_AXIS.replace('["mine.toml"]', '["first.toml", "mine.toml"]'))
+    library = gibbsmin.load_case(case).library
+    assert library["XeO3(g)"].dfH298 == both
+    assert library["XeO4(g)"].source_entropy == "own: first.toml, XeO4(g)"

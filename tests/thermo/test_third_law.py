@@ -230,3 +230,24 @@ def test_uncertainties_of_measured_constants_hold_those_of_all_that_is_known() -
     shared = compare_laws(unknown, nu, T, log10_K, 0.1)
     expected = np.hypot(u_S, 0.1 * GAS_CONSTANT * np.log(10.0))
     assert shared.u_second_law_entropy == pytest.approx(expected, rel=1e-6)
+
+
+def test_errors_of_enthalpy_and_entropy_are_correlated_as_draws_show() -> None:
+    """2 H2 + O2 = 2 H2O, whose elements are known nearly exactly; 1,000 noisy measurements."""
+    library = load_library()
+    records = [library[f"{name}(g)"] for name in ("H2", "O2", "H2O")]
+    nu = dict(zip(records, (-2.0, -1.0, 2.0), strict=True))
+    T = np.linspace(1500.0, 2000.0, 6)
+    G = PropertyTable.of(records).gibbs_energy(T) @ list(nu.values())
+    log10_K = -G / (GAS_CONSTANT * T * np.log(10.0))
+    water = replace(records[2], u_S298=0.2)
+    noise = 0.02 * np.random.default_rng(8).standard_normal((1000, T.size))
+    found = [compare_laws(water, nu, T, log10_K + each) for each in noise]
+    H = np.array([laws.second_law_enthalpy for laws in found])
+    S = np.array([laws.second_law_entropy for laws in found])
+    reported = np.median([laws.second_law_correlation for laws in found])
+    assert np.corrcoef(H, S)[0, 1] == pytest.approx(0.995, abs=0.004)
+    assert reported == pytest.approx(np.corrcoef(H, S)[0, 1], abs=0.005)
+    exact = compare_laws(water, nu, T, log10_K)
+    # All of the third law's uncertainty but the elements' is T times that of the entropy.
+    assert exact.third_law_correlation == pytest.approx(1.0, abs=0.001)
