@@ -20,6 +20,7 @@ from gibbsmin.sample.thresholds import Thresholds
 _MINUS = "\N{MINUS SIGN}"
 _CELSIUS_ZERO = 273.15
 _SMALLEST = 1e-6
+_WITH_ARTICLE = ("flow of ", "steam ratio")
 _MISREADING = 100.0
 """K by which a thermocouple may well be wrong, or off the place where the gas froze."""
 
@@ -92,8 +93,8 @@ def _closure(evidence: Evidence) -> Iterator[str]:
     unjudged = [m.name for m in evidence.measurements if not m.can_be_judged]
     if unjudged:
         yield (
-            f"{listed(unjudged, 'and')} cannot be judged: nothing else in the sample tells about "
-            f"{'it' if len(unjudged) == 1 else 'them'}."
+            f"Nothing else in the sample tells about {listed(unjudged, 'and')}: "
+            f"{'this' if len(unjudged) == 1 else 'these'} cannot be judged."
         )
 
 
@@ -202,8 +203,8 @@ def probability(value: float) -> str:
 
 
 def listed(names: Sequence[str], conjunction: str) -> str:
-    """Names in a sentence."""
-    names = list(names)
+    """Names in a sentence, those of flows and ratios with their article."""
+    names = [f"the {name}" if name.startswith(_WITH_ARTICLE) else name for name in names]
     return f"{', '.join(names[:-1])} {conjunction} {names[-1]}" if len(names) > 1 else names[0]
 
 

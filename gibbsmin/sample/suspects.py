@@ -45,7 +45,7 @@ def suspects_of(
     names = _names(plan)
     found = [_NOBODY] * len(probabilities)
     for state, probability in enumerate(probabilities):
-        if not probability < thresholds.suspect:
+        if not probability < max(thresholds.suspect, thresholds.credible):
             continue
         own = squares[state]
         order = np.argsort(-own, kind="stable").tolist()

@@ -47,17 +47,18 @@ def _significance(reaction: ReactionFinding) -> float:
 def _not_credible(evidence: Evidence) -> Judgement:
     suspects = evidence.suspects
     likely: tuple[str, ...] = ()
+    suspected = listed(suspects.names, "or")
     if suspects.single:
+        way = "high" if suspects.size > 0.0 else "low"
         likely = (
-            f"If one measurement is wrong, it is likely {suspects.single}, which reads "
-            f"{'high' if suspects.size > 0.0 else 'low'} by about {_error(evidence)}.",
+            f"If one measurement is wrong, it is likely {suspected}, which reads {way} by about "
+            f"{_error(evidence)}.",
         )
     elif suspects.names:
         likely = (
-            f"If one measurement is wrong, it is likely one of {listed(suspects.names, 'or')}; "
+            f"If one measurement is wrong, it is likely one of {suspected}; "
             "the sample does not tell them apart.",
         )
-    suspected = suspects.single or listed(suspects.names, "or")
     return _judgement(
         evidence,
         Verdict.NOT_CREDIBLE,

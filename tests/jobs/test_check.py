@@ -181,8 +181,8 @@ def test_flows_are_said_not_to_be_judged() -> None:
     unjudged = [m.name for m in checked().measurements if not m.can_be_judged]
     assert unjudged == ["flow of gas", "flow of steam"]
     assert any(
-        fact == "flow of gas and flow of steam cannot be judged: nothing else in the sample tells "
-        "about them."
+        fact == "Nothing else in the sample tells about the flow of gas and the flow of steam: "
+        "these cannot be judged."
         for fact in checked().judgement.facts
     )
 
