@@ -6,6 +6,7 @@ from collections.abc import Iterator, Sequence
 
 from gibbsmin.jobs.sample import PlantSample
 from gibbsmin.jobs.sample_plan import Reactor
+from gibbsmin.jobs.sample_reading import STEAM_RATIO
 from gibbsmin.sample.findings import SampleCheck
 from gibbsmin.thermo.library import Library
 
@@ -34,6 +35,11 @@ def _assumptions(reactor: Reactor, samples: Sequence[PlantSample]) -> Iterator[s
             f"{name} {_percent(share)}" for name, share in reactor.flow_uncertainties.items()
         )
         yield f"Standard uncertainties of the feed flows: {flows}."
+    if any(STEAM_RATIO in {*sample.outlet, *sample.inlet} for sample in samples):
+        yield (
+            f"Steam ratios have a standard uncertainty of {_percent(own.steam_ratio)} of "
+            "themselves where none is stated."
+        )
     dried = ", ".join(rules.dried)
     if any(sample.dry for sample in samples):
         yield f"Drying removed {dried} and nothing else; its amount follows from the balance."
