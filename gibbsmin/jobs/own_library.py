@@ -12,7 +12,7 @@ import numpy as np
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case_text import read_tables
 from gibbsmin.jobs.feed_parts import within
-from gibbsmin.jobs.record_evaluations import with_calorimetry, with_constants
+from gibbsmin.jobs.record_evaluations import Evaluated, with_calorimetry, with_constants
 from gibbsmin.jobs.record_files import read_record_rows
 from gibbsmin.jobs.record_thermal import thermal_of
 from gibbsmin.thermo.elements import molar_mass
@@ -36,14 +36,14 @@ _GIVING = {
 class OwnRecords:
     """Records of a file, their sources, and what was worked out on the way.
 
-    Each record has a source of its own, whose key names the file and the record.  ``findings`` are
-    sentences by record name: fit errors, contributions to an entropy, how the
-    second and the third law agree.
+    Each record has a source of its own, whose key names the file and the record.  ``evaluated`` is
+    by record name: sentences on fit errors, contributions to an entropy, how the second and the
+    third law agree, and these evaluations themselves.
     """
 
     records: tuple[Species, ...]
     sources: tuple[Source, ...]
-    findings: Mapping[str, tuple[str, ...]]
+    evaluated: Mapping[str, Evaluated]
 
 
 def read_library_file(path: Path, library: Library) -> OwnRecords:
@@ -66,24 +66,26 @@ def read_library_file(path: Path, library: Library) -> OwnRecords:
         rows = validated(LibraryTable, tables).record
         records: list[Species] = []
         sources: list[Source] = []
-        findings: dict[str, tuple[str, ...]] = {}
+        evaluated: dict[str, Evaluated] = {}
         for index, row in enumerate(rows):
             with within(f"record.{index}"):
                 source = Source(f"{OWN}{path.name}, {row.name}", row.source, "the user's")
-                record, found = _record(row, source.key, library.overruled(records))
-                if record.name in findings:
+                found = _record(row, source.key, library.overruled(records))
+                if found.record.name in evaluated:
                     raise InputError(
-                        f'found "{record.name}" twice', "accepted is each record once", key="name"
+                        f'found "{found.record.name}" twice',
+                        "accepted is each record once",
+                        key="name",
                     )
-            records.append(record)
+            records.append(found.record)
             sources.append(source)
-            findings[record.name] = found
+            evaluated[found.record.name] = found
     except InputError as error:
         raise error.at(file=file) from None
-    return OwnRecords(tuple(records), tuple(sources), findings)
+    return OwnRecords(tuple(records), tuple(sources), evaluated)
 
 
-def _record(row: RecordTable, source: str, library: Library) -> tuple[Species, tuple[str, ...]]:
+def _record(row: RecordTable, source: str, library: Library) -> Evaluated:
     formula, state = split_name(row.name)
     with within("name"):
         composition = parse_formula(formula)
@@ -122,14 +124,13 @@ def _record(row: RecordTable, source: str, library: Library) -> tuple[Species, t
         fit_error=thermal.fit_error,
         remark="the user's own record",
     )
-    findings = thermal.findings
+    evaluated = Evaluated(record, thermal.findings)
     if row.calorimetry is not None:
         known = row.entropy is not None or row.spectrum is not None
-        record, said = with_calorimetry(row.calorimetry, record, known=known)
-        findings = (*findings, *said)
+        evaluated = with_calorimetry(row.calorimetry, evaluated, known=known)
     if row.constants is not None:
-        record, said = with_constants(row.constants, record, library)
-        findings = (*findings, *said)
+        evaluated = with_constants(row.constants, evaluated, library)
+    record = evaluated.record
     for key, value in (("enthalpy", record.dfH298), ("entropy", record.S298)):
         if np.isnan(value):
             raise InputError(
@@ -137,7 +138,7 @@ def _record(row: RecordTable, source: str, library: Library) -> tuple[Species, t
                 f'accepted is {key} = "…", or what gives it: {_GIVING[key]}',
                 key=key,
             )
-    return record, findings
+    return evaluated
 
 
 def _given(value: float | None, otherwise: float) -> float:

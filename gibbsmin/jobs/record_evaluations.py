@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import replace
-from typing import TYPE_CHECKING
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -15,24 +15,42 @@ from gibbsmin.thermo.measured_constants import LawComparison, compare_laws
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.reaction import Reaction
 from gibbsmin.thermo.species import Phase, Species
-from gibbsmin.thermo.third_law import Contribution, Transition, Vapour, third_law_entropy
+from gibbsmin.thermo.third_law import (
+    Contribution,
+    ThirdLawEntropy,
+    Transition,
+    Vapour,
+    third_law_entropy,
+)
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.record_schema import CalorimetryTable, ConstantsTable
-
-Evaluated = tuple[Species, tuple[str, ...]]
-"""A record with what was drawn, and sentences on how."""
 
 AGREE = 2.0
 """Standard uncertainties within which two values are said to agree."""
 
 
-def with_calorimetry(given: CalorimetryTable, record: Species, *, known: bool) -> Evaluated:
+@dataclass(frozen=True)
+class Evaluated:
+    """A record with what was drawn, sentences on how, and the evaluations themselves."""
+
+    record: Species
+    findings: tuple[str, ...] = ()
+    third_law: ThirdLawEntropy | None = None
+    laws: LawComparison | None = None
+
+    def further(self, record: Species, said: Sequence[str], **evaluations: Any) -> Evaluated:
+        """With one evaluation more."""
+        return replace(self, record=record, findings=(*self.findings, *said), **evaluations)
+
+
+def with_calorimetry(given: CalorimetryTable, before: Evaluated, *, known: bool) -> Evaluated:
     """The record with its third-law entropy; one that is ``known`` stays and is compared.
 
     A vapour's entropy, at its boiling, is brought to 298.15 K by the record's own heat capacity,
     which counts as exact.
     """
+    record = before.record
     end, vapour = REFERENCE_TEMPERATURE, None
     if given.vapour is not None:
         end = given.vapour.boiling
@@ -61,12 +79,13 @@ def with_calorimetry(given: CalorimetryTable, record: Species, *, known: bool) -
         step = -float(PropertyTable.of([bare]).entropy(end)[0])
         parts.append(Contribution(f"{end:g} K to 298.15 K, gas", step, 0.0))
     S298, u_S298 = sum(part.value for part in parts), law.uncertainty
+    law = ThirdLawEntropy(REFERENCE_TEMPERATURE, S298, u_S298, tuple(parts))
     said = [
         f"Third law: S(298.15 K) = {S298:.3f} ± {u_S298:.3f} J/(mol K), of",
         *(f"  {part.name}: {part.value:.3f} ± {part.uncertainty:.3f}" for part in parts),
     ]
     if not known:
-        return replace(record, S298=S298, u_S298=u_S298), tuple(said)
+        return before.further(replace(record, S298=S298, u_S298=u_S298), said, third_law=law)
     difference = S298 - record.S298
     u = float(np.hypot(u_S298, np.nan_to_num(record.u_S298)))
     verdict = "they agree"
@@ -80,11 +99,12 @@ def with_calorimetry(given: CalorimetryTable, record: Species, *, known: bool) -
         f"That is {difference:+.3f} ± {u:.3f} J/(mol K) from the entropy that the record takes, "
         f"{record.S298:.3f}: {verdict}."
     )
-    return record, tuple(said)
+    return before.further(record, said, third_law=law)
 
 
-def with_constants(given: ConstantsTable, record: Species, library: Library) -> Evaluated:
+def with_constants(given: ConstantsTable, before: Evaluated, library: Library) -> Evaluated:
     """The record with what measured constants say of it."""
+    record = before.record
     with within("constants"):
         bare = replace(record, dfH298=_or(record.dfH298, 0.0), S298=_or(record.S298, 0.0))
         reaction = Reaction.read(given.reaction, library.overruled([bare]))
@@ -118,13 +138,14 @@ def with_constants(given: ConstantsTable, record: Species, library: Library) -> 
         )
     else:
         said.append(correlated(record.name, correlation))
-    return replace(
+    evaluated = replace(
         record,
         dfH298=_or(record.dfH298, enthalpy),
         u_dfH298=_or(record.u_dfH298, u_enthalpy if np.isnan(record.dfH298) else np.nan),
         S298=entropy,
         u_S298=u_entropy,
-    ), tuple(said)
+    )
+    return before.further(evaluated, said, laws=laws)
 
 
 def correlated(name: str, coefficient: float) -> str:

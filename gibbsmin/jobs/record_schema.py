@@ -2,144 +2,40 @@
 
 from __future__ import annotations
 
-import math
-import re
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from typing import Annotated, Any, Self
 
 from pydantic import BeforeValidator, model_validator
 
-from gibbsmin.constants import AVOGADRO_CONSTANT, PLANCK_CONSTANT, SPEED_OF_LIGHT
 from gibbsmin.errors import InputError
-from gibbsmin.jobs.stage_schema import read_text, word
+from gibbsmin.jobs.record_values import (
+    Entropy,
+    MolarEnergy,
+    NotNegative,
+    NotNegativeEnergy,
+    NotNegativeEntropy,
+    Number,
+    Numbers,
+    Pressure,
+    Temperature,
+    Text,
+    listed,
+    positive,
+    read_capacity_unit,
+    read_groups,
+    read_level,
+    read_moment,
+    read_number,
+    read_whole,
+    tables_of,
+)
+from gibbsmin.jobs.stage_schema import word
 from gibbsmin.jobs.table_schema import MISSING, Table
 from gibbsmin.thermo.third_law import RELATIVE_UNCERTAINTY
-from gibbsmin.units import (
-    read_molar_energy,
-    read_molar_entropy,
-    read_pressure,
-    read_temperature,
-    shown,
-)
+from gibbsmin.units import read_temperature
 
 KINDS = ("heat_capacity", "table", "calorimetry", "spectrum", "groups")
 """What gives a record its heat capacity."""
-
-_HUGE = 1e100
-"""No number of a record is beyond."""
-
-_MOMENT = re.compile(
-    r"\s*(?P<number>(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?)\s*(?P<unit>kg m2|g cm2|u A2)\s*"
-)
-_MOMENT_UNITS = {"kg m2": 1.0, "g cm2": 1e-7, "u A2": 1e-23 / AVOGADRO_CONSTANT}
-"""kg m² of each; u Å² is the atomic mass constant, a gram per mole, times 1e-20 m²."""
-
-
-def _number(given: object) -> float:
-    if isinstance(given, bool) or not isinstance(given, int | float) or not abs(given) < _HUGE:
-        found = "found nothing" if given is None else f"found {shown(given)}"
-        raise InputError(found, "accepted is a number")
-    return float(given)
-
-
-def _positive(read: Callable[[object], float], *, zero: bool) -> BeforeValidator:
-    """A value above zero, or zero too."""
-
-    def checked(given: object) -> float:
-        value = read(given)
-        if value < 0.0 or (value == 0.0 and not zero):
-            accepted = "zero or more" if zero else "a value above zero"
-            raise InputError(f"found {shown(given)}", f"accepted is {accepted}")
-        return value
-
-    return BeforeValidator(checked)
-
-
-def _numbers(given: object) -> tuple[float, ...]:
-    if not isinstance(given, list | tuple) or not given:
-        raise InputError(f"found {shown(given)}", "accepted is a list of numbers")
-    return tuple(_number(value) for value in given)
-
-
-def _listed(read: Callable[[object], Any], example: str) -> BeforeValidator:
-    def each(given: object) -> tuple[Any, ...]:
-        if not isinstance(given, list | tuple) or not given:
-            raise InputError(f"found {shown(given)}", f"accepted is a list such as {example}")
-        return tuple(read(value) for value in given)
-
-    return BeforeValidator(each)
-
-
-def _tables(name: str) -> BeforeValidator:
-    """[[name]] tables."""
-
-    def read(given: object) -> tuple[Any, ...]:
-        if not isinstance(given, list | tuple) or not given:
-            found = f"found {shown(given)}" if given else "found nothing"
-            raise InputError(found, f"accepted are [[{name}]] tables")
-        return tuple(given)
-
-    return BeforeValidator(read)
-
-
-def _whole(given: object) -> int:
-    if isinstance(given, bool) or not isinstance(given, int) or given < 1:
-        found = "found nothing" if given is None else f"found {shown(given)}"
-        raise InputError(found, "accepted is a whole number from 1")
-    return given
-
-
-def _moment(given: object) -> float:
-    """The rotational constant in 1/cm of a moment of inertia, B = h/(8π² c I)."""
-    match = _MOMENT.fullmatch(given) if isinstance(given, str) else None
-    value = float(match["number"]) * _MOMENT_UNITS[match["unit"]] if match else 0.0
-    if not 0.0 < value < math.inf:
-        raise InputError(
-            f"found {shown(given)}, which is no moment of inertia",
-            'accepted is one such as "1.4e-46 kg m2", "1.4e-39 g cm2" or "84 u A2"',
-        )
-    return PLANCK_CONSTANT / (8.0 * math.pi**2 * SPEED_OF_LIGHT * value) / 100.0
-
-
-def _unit(given: object) -> float:
-    """J/(mol K) in one of the unit stated."""
-    accepted = 'accepted is one such as "J/(mol K)" or "cal/(mol K)"'
-    if given is None:
-        raise InputError("found no unit", accepted)
-    try:
-        return read_molar_entropy(f"1 {given}")
-    except InputError:
-        raise InputError(f"found {shown(given)}, which is no unit of it", accepted) from None
-
-
-def _pair(given: object) -> tuple[float, float]:
-    values = _numbers(given if isinstance(given, list | tuple) else [given, 1])
-    if len(values) != 2:
-        raise InputError(
-            f"found {len(values)} numbers", "accepted is a wavenumber, or it and its degeneracy"
-        )
-    if values[1] < 1.0 or not values[1].is_integer():
-        raise InputError(f"found the degeneracy {values[1]:g}", "accepted is a whole number from 1")
-    return values[0], values[1]
-
-
-def _groups(given: object) -> Mapping[str, Any] | None:
-    if given is None or (isinstance(given, Mapping) and given):
-        return given
-    raise InputError(f"found {shown(given)}", "accepted is a table such as { CH3 = 2, CH2 = 1 }")
-
-
-Temperature = Annotated[float, BeforeValidator(read_temperature)]
-Pressure = Annotated[float, BeforeValidator(read_pressure)]
-MolarEnergy = Annotated[float, BeforeValidator(read_molar_energy)]
-MolarEntropy = Annotated[float, BeforeValidator(read_molar_entropy)]
-Entropy = Annotated[float, _positive(read_molar_entropy, zero=False)]
-NotNegativeEnergy = Annotated[float, _positive(read_molar_energy, zero=True)]
-NotNegativeEntropy = Annotated[float, _positive(read_molar_entropy, zero=True)]
-Number = Annotated[float, BeforeValidator(_number)]
-NotNegative = Annotated[float, _positive(_number, zero=True)]
-Numbers = Annotated[tuple[float, ...], BeforeValidator(_numbers)]
-Text = Annotated[str, BeforeValidator(read_text)]
 
 
 class PieceTable(Table):
@@ -150,7 +46,7 @@ class PieceTable(Table):
 
     first: Temperature = MISSING
     last: Temperature = MISSING
-    unit: Annotated[float, BeforeValidator(_unit)] = MISSING
+    unit: Annotated[float, BeforeValidator(read_capacity_unit)] = MISSING
     t: Annotated[str, word("T/1000 K", "T/K")] = "T/1000 K"
     A: Number = MISSING
     B: Number = 0.0
@@ -173,8 +69,8 @@ class PieceTable(Table):
 class HeatCapacityTable(Table):
     """Heat capacities against temperature."""
 
-    unit: Annotated[float, BeforeValidator(_unit)] = MISSING
-    temperature: Annotated[tuple[float, ...], _listed(read_temperature, '["300 K", "400 K"]')] = (
+    unit: Annotated[float, BeforeValidator(read_capacity_unit)] = MISSING
+    temperature: Annotated[tuple[float, ...], listed(read_temperature, '["300 K", "400 K"]')] = (
         MISSING
     )
     heat_capacity: Numbers = MISSING
@@ -202,7 +98,7 @@ class CalorimetryTable(HeatCapacityTable):
     """Heat capacities from near 0 K, with what changes on the way."""
 
     transition: Annotated[
-        tuple[TransitionTable, ...], _tables("record.calorimetry.transition")
+        tuple[TransitionTable, ...], tables_of("record.calorimetry.transition")
     ] = ()
     residual_entropy: NotNegativeEntropy = 0.0
     relative_uncertainty: NotNegative = RELATIVE_UNCERTAINTY
@@ -213,20 +109,20 @@ class RotorTable(Table):
     """An internal rotation; barrier and constant in 1/cm."""
 
     barrier: NotNegative = MISSING
-    fold: Annotated[int, BeforeValidator(_whole)] = MISSING
-    constant: Annotated[float, _positive(_number, zero=False)] = MISSING
+    fold: Annotated[int, BeforeValidator(read_whole)] = MISSING
+    constant: Annotated[float, positive(read_number, zero=False)] = MISSING
 
 
 class SpectrumTable(Table):
     """A molecule's spectrum; wavenumbers and constants in 1/cm."""
 
-    symmetry_number: Annotated[int, BeforeValidator(_whole)] = MISSING
+    symmetry_number: Annotated[int, BeforeValidator(read_whole)] = MISSING
     rotational_constants: Numbers = ()
-    moments_of_inertia: Annotated[tuple[float, ...], _listed(_moment, '["1.4e-46 kg m2"]')] = ()
+    moments_of_inertia: Annotated[tuple[float, ...], listed(read_moment, '["1.4e-46 kg m2"]')] = ()
     vibrations: Annotated[
-        tuple[tuple[float, float], ...], _listed(_pair, "[[667.4, 2], 1333]")
+        tuple[tuple[float, float], ...], listed(read_level, "[[667.4, 2], 1333]")
     ] = ()
-    electronic: Annotated[tuple[tuple[float, float], ...], _listed(_pair, "[[0, 2]]")] = (
+    electronic: Annotated[tuple[tuple[float, float], ...], listed(read_level, "[[0, 2]]")] = (
         (0.0, 1.0),
     )
     anharmonicity: NotNegative = 0.0
@@ -235,7 +131,7 @@ class SpectrumTable(Table):
     distortion: NotNegative = 0.0
     stretching: NotNegative = 0.0
     internal_rotation: Annotated[
-        tuple[RotorTable, ...], _tables("record.spectrum.internal_rotation")
+        tuple[RotorTable, ...], tables_of("record.spectrum.internal_rotation")
     ] = ()
 
     @model_validator(mode="after")
@@ -256,7 +152,7 @@ class ConstantsTable(Table):
     """
 
     reaction: Text = MISSING
-    temperature: Annotated[tuple[float, ...], _listed(read_temperature, '["900 K", "1000 K"]')] = (
+    temperature: Annotated[tuple[float, ...], listed(read_temperature, '["900 K", "1000 K"]')] = (
         MISSING
     )
     log10_K: Numbers = MISSING
@@ -271,17 +167,17 @@ class RecordTable(Table):
     cas: Annotated[str, BeforeValidator(lambda given: given or "")] = ""
     source: Text = MISSING
     molar_mass: Annotated[
-        float | None, BeforeValidator(lambda given: None if given is None else _number(given))
+        float | None, BeforeValidator(lambda given: None if given is None else read_number(given))
     ] = None
     enthalpy: MolarEnergy | None = None
     enthalpy_uncertainty: NotNegativeEnergy | None = None
     entropy: Entropy | None = None
     entropy_uncertainty: NotNegativeEntropy | None = None
-    heat_capacity: Annotated[tuple[PieceTable, ...], _tables("record.heat_capacity")] = ()
+    heat_capacity: Annotated[tuple[PieceTable, ...], tables_of("record.heat_capacity")] = ()
     table: HeatCapacityTable | None = None
     calorimetry: CalorimetryTable | None = None
     spectrum: SpectrumTable | None = None
-    groups: Annotated[Mapping[str, Any] | None, BeforeValidator(_groups)] = None
+    groups: Annotated[Mapping[str, Any] | None, BeforeValidator(read_groups)] = None
     constants: ConstantsTable | None = None
 
     @model_validator(mode="after")
@@ -301,4 +197,4 @@ class RecordTable(Table):
 class LibraryTable(Table):
     """A whole library file."""
 
-    record: Annotated[tuple[RecordTable, ...], _tables("record")] = MISSING
+    record: Annotated[tuple[RecordTable, ...], tables_of("record")] = MISSING

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from pathlib import Path
 
 import numpy as np
@@ -77,8 +78,12 @@ def test_a_spectrum_gives_entropy_and_heat_capacity(tmp_path: Path) -> None:
     table = PropertyTable.of([record, ours])
     Cp = table.heat_capacity(T)
     assert Cp[:, 0] == pytest.approx(Cp[:, 1], rel=1e-3)
-    assert own.findings["N2(g)"][0].startswith(
-        "Functions from the spectrum (levels of a vibrating rotor), 50 to 6000 K, |ΔG/RT| ≤ "
+    assert (
+        own.evaluated["N2(g)"]
+        .findings[0]
+        .startswith(
+            "Functions from the spectrum (levels of a vibrating rotor), 50 to 6000 K, |ΔG/RT| ≤ "
+        )
     )
     checks = list(check_record(record, load_library()))
     assert checks[0] == "Against the library: ΔfH +0.000 kJ/mol, S +0.001 J/(mol K)."
@@ -99,7 +104,11 @@ def test_a_table_is_fitted_and_says_how_well(tmp_path: Path) -> None:
     (record,) = own.records
     assert PropertyTable.of([record]).heat_capacity(600.0)[0] == pytest.approx(191.0, rel=2e-3)
     assert record.fit_error < 1e-3
-    assert own.findings[record.name][0].startswith("Heat capacity fitted to 6 points, |ΔG/RT| ≤ ")
+    assert (
+        own.evaluated[record.name]
+        .findings[0]
+        .startswith("Heat capacity fitted to 6 points, |ΔG/RT| ≤ ")
+    )
 
 
 def test_calorimetry_gives_the_entropy_by_the_third_law(tmp_path: Path) -> None:
@@ -119,7 +128,7 @@ heat_capacity = {Cp}
     own = read(tmp_path, text)
     (record,) = own.records
     assert pytest.approx(33.15, abs=0.2) == record.S298
-    findings = own.findings[record.name]
+    findings = own.evaluated[record.name].findings
     assert any(line.startswith("Third law: S(298.15 K) = 33.") for line in findings)
     assert "  0 K to 10 K, T³ law: 0.018 ± 0.001" in findings
 
@@ -159,7 +168,7 @@ def test_a_vapours_calorimetry_is_held_against_its_spectrum(tmp_path: Path) -> N
     own = read(tmp_path, NITROGEN + vapour(RECALLED))
     (record,) = own.records
     assert pytest.approx(191.61, abs=0.01) == record.S298
-    findings = own.findings["N2(g)"]
+    findings = own.evaluated["N2(g)"].findings
     assert "  77.32 K to 298.15 K, gas: 39.284 ± 0.000" in findings
     assert findings[-1].startswith("That is +1.028 ± ")
     assert findings[-1].endswith(
@@ -167,7 +176,7 @@ def test_a_vapours_calorimetry_is_held_against_its_spectrum(tmp_path: Path) -> N
     )
     # Residual entropy that nitrogen does not have.
     disordered = vapour(RECALLED + '\nresidual_entropy = "5.76 J/(mol K)"')
-    findings = read(tmp_path, NITROGEN + disordered).findings["N2(g)"]
+    findings = read(tmp_path, NITROGEN + disordered).evaluated["N2(g)"].findings
     assert findings[-1].endswith("191.610: they DISAGREE.")
 
 
@@ -211,7 +220,7 @@ def test_groups_and_measured_constants(tmp_path: Path) -> None:
     )
     own = read(tmp_path, groups)
     assert own.records[0].u_dfH298 == 8400.0
-    estimated, together = own.findings[own.records[0].name]
+    estimated, together = own.evaluated[own.records[0].name].findings
     assert estimated.startswith("An estimate by groups")
     assert together == (
         "Its enthalpy and entropy err together: error bars want a [[correlation]] with between = "
@@ -244,7 +253,7 @@ log10_K = {log10_K}
     own = read(tmp_path, constants)
     (record,) = own.records
     assert record.dfH298 == pytest.approx(library["CO2(g)"].dfH298, abs=60.0)
-    second, third, _ = own.findings["CO2(g)"]
+    second, third, _ = own.evaluated["CO2(g)"].findings
     assert second.startswith("Second law: ΔfH = -393.")
     assert "the laws " in third
 
@@ -525,3 +534,22 @@ log10_K = [31.0, 29.3, 27.8]
     library = gibbsmin.load_case(case).library
     assert library["XeO3(g)"].dfH298 == both
     assert library["XeO4(g)"].source_entropy == "own: first.toml, XeO4(g)"
+
+
+def test_json_holds_each_contribution_and_both_laws() -> None:
+    example = Path(__file__).parents[2] / "examples/own_species/mine.toml"
+    result = CliRunner().invoke(app, ["species", "--file", str(example), "--json"])
+    documents = {record["name"]: record for record in json.loads(result.stdout)["species"]}
+    law = documents["Cu(cr)"]["third_law"]
+    assert law["entropy_J_per_mol_K"] == documents["Cu(cr)"]["S298_J_per_mol_K"]
+    parts = law["contributions"]
+    assert [part["name"] for part in parts] == [
+        "0 K to 10 K, T³ law",
+        "10 K to 298.15 K, heat capacity",
+    ]
+    assert sum(part["value_J_per_mol_K"] for part in parts) == law["entropy_J_per_mol_K"]
+    laws = documents["CH3OCH3(g)"]["measured_constants"]
+    assert laws["third_law_enthalpy_kJ_per_mol"] == documents["CH3OCH3(g)"]["dfH298_kJ_per_mol"]
+    assert laws["laws_agree"] is True
+    assert documents["N2(g)"]["third_law"] is None
+    assert documents["N2(g)"]["measured_constants"] is None
