@@ -19,6 +19,7 @@ from gibbsmin.sample.reactions import JudgedReaction
 from gibbsmin.sample.reconciliation import Reconciliation, reconcile
 from gibbsmin.sample.solids import solids_of
 from gibbsmin.sample.temperature_profile import temperature_limits
+from gibbsmin.sample.thresholds import CURVED
 from gibbsmin.thermo.library import Library
 
 
@@ -79,11 +80,9 @@ def run_batch(
     measured_fit = fit_equilibrium(plan, readings, z, T)
     free = replace(readings, u_temperature=np.full(len(T), np.inf))
     best_fit = fit_equilibrium(plan, free, measured_fit.inlet, measured_fit.rest)
-    faint = np.zeros(len(T), dtype=bool)
-    for found in judged:
-        faint |= found.faint.any(axis=1)
-    faint &= np.isfinite(best_fit.chi_square)
-    lower, upper = temperature_limits(plan, free, best_fit, np.flatnonzero(faint))
+    reacting = [any(name in reaction.coefficients for reaction in reactions) for name in names]
+    curved = gas.below(CURVED)[:, reacting].any(axis=1) & np.isfinite(best_fit.chi_square)
+    lower, upper = temperature_limits(plan, free, best_fit, np.flatnonzero(curved))
     return Batch(
         plan,
         readings,

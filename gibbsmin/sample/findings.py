@@ -188,7 +188,7 @@ class EquilibriumFit:
         uncertainty) and the closure alone
     anywhere : the same at the temperature of best fit; no degree of freedom with one reaction
     temperature : of best fit, K
-    temperature_limit : its 95 % interval, one-sided where a reacting species is faint
+    temperature_limit : its 95 % interval; one-sided where chi-square has no limit on one side
     certified : whether every equilibrium used carries its proof
     """
 

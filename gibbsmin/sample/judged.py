@@ -19,7 +19,7 @@ from gibbsmin.sample.reactions import (
     quotient_slopes,
 )
 from gibbsmin.sample.reconciliation import Reconciliation
-from gibbsmin.sample.thresholds import FAINT, Z_95
+from gibbsmin.sample.thresholds import CURVED, FAINT, Z_95
 
 _PRESENT = 1e-9
 _MOVED = 1e-6
@@ -55,12 +55,16 @@ class Gas:
     pressure: FloatArray
     u_pressure: FloatArray
 
+    def below(self, count: float) -> BoolArray:
+        """(B, n) whether a record is below so many of its standard uncertainties, or unknown."""
+        u = np.sqrt(np.diagonal(self.covariance, axis1=1, axis2=2))
+        below: BoolArray = (self.centre < count * u) | ~self.determined
+        return below
+
     @property
     def faint(self) -> BoolArray:
-        """(B, n) whether a record is below 5 of its standard uncertainties, or unknown."""
-        u = np.sqrt(np.diagonal(self.covariance, axis1=1, axis2=2))
-        faint: BoolArray = (self.centre < FAINT * u) | ~self.determined
-        return faint
+        """(B, n) whether a record is so small that the data give one-sided limits only."""
+        return self.below(FAINT)
 
 
 @dataclass(frozen=True, eq=False)
@@ -201,12 +205,20 @@ def _limits(
     """95 % limits of T − T_eq and of ln(Q/K).
 
     Where a record is faint those of T − T_eq are one-sided; those of ln(Q/K) are so only where the
-    record may be absent altogether.
+    record may be absent altogether.  Those of other small records follow chi-square on both sides.
     """
     lower, upper = approach[0] - Z_95 * approach[1], approach[0] + Z_95 * approach[1]
     low_ratio, high_ratio = ratio[0] - Z_95 * ratio[1], ratio[0] + Z_95 * ratio[1]
     for ends, sign in ((lower, -1), (upper, 1), (low_ratio, -1), (high_ratio, 1)):
         ends[faint.any(axis=1) | np.isnan(ends)] = sign * np.inf
+    curved = np.where(nu != 0.0, gas.below(CURVED), False)
+    states = np.flatnonzero(curved.any(axis=1) & ~faint.any(axis=1) & np.isfinite(low_ratio))
+    if states.size:
+        search = partial(_extreme, gas, nu, faint, states)
+        for sense, of_ratio, of_approach in ((-1.0, low_ratio, lower), (1.0, high_ratio, upper)):
+            way = np.full(states.size, sense)
+            of_ratio[states] = search(_ratio(constant, nu), way, TWO_SIDED)
+            of_approach[states] = search(_approach(constant, nu), way, TWO_SIDED)
     down: BoolArray = np.asarray((faint & (nu < 0.0)).any(axis=1))
     up: BoolArray = np.asarray((faint & (nu > 0.0)).any(axis=1))
     states = np.flatnonzero((down ^ up) & (gas.determined | (nu == 0.0)).all(axis=1))

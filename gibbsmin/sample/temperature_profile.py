@@ -20,26 +20,26 @@ _WIDEST_FACTOR = 4.0
 
 
 def temperature_limits(
-    plan: Plan, readings: Readings, fit: Fit, faint: IntArray
+    plan: Plan, readings: Readings, fit: Fit, curved: IntArray
 ) -> tuple[FloatArray, FloatArray]:
     """Lower and upper 95 % limit (B,) of the temperature of best fit, K.
 
-    They are the normal ones but for the samples ``faint``, whose chi-square is followed to where
+    They are the normal ones but for the samples ``curved``, whose chi-square is followed to where
     it has risen by that of a two-sided interval on both sides; or, where it does not rise so far
     on one side, by that of a one-sided one on the other.
     """
     lower = fit.temperature - Z_95 * fit.u_temperature
     upper = fit.temperature + Z_95 * fit.u_temperature
     lower[np.isnan(lower)], upper[np.isnan(upper)] = -np.inf, np.inf
-    if faint.size:
-        some, of_fit = readings.subset(faint), fit.subset(faint)
+    if curved.size:
+        some, of_fit = readings.subset(curved), fit.subset(curved)
         ends = [_end(plan, some, of_fit, sense, TWO_SIDED) for sense in (-1.0, 1.0)]
         for k, sense in ((0, -1.0), (1, 1.0)):
             alone = np.flatnonzero(np.isfinite(ends[k]) & ~np.isfinite(ends[1 - k]))
             if alone.size:
                 nearer = some.subset(alone), of_fit.subset(alone)
                 ends[k][alone] = _end(plan, *nearer, sense, ONE_SIDED)
-        lower[faint], upper[faint] = ends
+        lower[curved], upper[curved] = ends
     return lower, upper
 
 

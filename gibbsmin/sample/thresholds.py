@@ -10,6 +10,9 @@ from gibbsmin.errors import InputError
 FAINT = 5.0
 """A reacting species below this many standard uncertainties gives one-sided limits only."""
 
+CURVED = 20.0
+"""Below this many, ln y bends within the errors: limits follow chi-square, not the tangent."""
+
 Z_95 = 1.959963984540054
 """Two-sided 95 % of the normal distribution."""
 

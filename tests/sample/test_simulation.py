@@ -107,11 +107,14 @@ def test_one_sided_limits_cover_where_methane_is_faint() -> None:
     assert np.isfinite(reforming.upper[faint]).all()
     covered = (reforming.lower <= 0.0) & (reforming.upper >= 0.0)
     assert covered[truly_faint].mean() >= 0.93
+    # Above 5 u the limits are two-sided and follow chi-square where ln y bends.
+    assert 0.93 <= covered[~truly_faint].mean() <= 0.97
     # Nearest to the bound the limit is on the safe side.
     nothing_left = samples.truth[:, 3] < samples.u[:, 3]
     assert covered[nothing_left].mean() >= 0.97
     temperature = (batch.lower <= samples.T) & (batch.upper >= samples.T)
     assert 0.93 <= temperature[truly_faint].mean() <= 0.97
+    assert 0.93 <= temperature[~truly_faint].mean() <= 0.97
 
 
 @pytest.mark.parametrize(("column", "name"), list(enumerate(["H2", "CO", "CO2", "CH4", "N2"])))
