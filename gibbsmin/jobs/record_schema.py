@@ -111,6 +111,7 @@ class RotorTable(Table):
     barrier: NotNegative = MISSING
     fold: Annotated[int, BeforeValidator(read_whole)] = MISSING
     constant: Annotated[float, positive(read_number, zero=False)] = MISSING
+    symmetry_number: Annotated[int, BeforeValidator(read_whole)] = MISSING
 
 
 class SpectrumTable(Table):

@@ -175,7 +175,8 @@ def _of_spectrum(given: SpectrumTable, composition: Formula, mass: float) -> The
         coupling=given.coupling,
         distortion=given.distortion,
         internal_rotations=tuple(
-            InternalRotation(r.barrier, r.fold, r.constant) for r in given.internal_rotation
+            InternalRotation(r.barrier, r.fold, r.constant, r.symmetry_number)
+            for r in given.internal_rotation
         ),
     )
     alike = 2 if len(composition.elements) == 1 else 1

@@ -46,13 +46,15 @@ class InternalRotation:
     Attributes
     ----------
     barrier : V, cm⁻¹; 0 turns freely
-    fold : n, which is also its symmetry number
+    fold : n
     constant : ħ²/(2 I hc) of the reduced moment of inertia, cm⁻¹
+    symmetry_number : of the turning group: 3 of CH3, 1 of OH
     """
 
     barrier: float
     fold: int
     constant: float
+    symmetry_number: int
 
 
 @dataclass(frozen=True)
@@ -143,7 +145,9 @@ def gas_functions(spectrum: Spectrum, temperature: npt.ArrayLike) -> GasFunction
     else:
         parts.append(_rotation(spectrum, flat))
         parts += [_vibration(w, count, flat) for w, count in spectrum.vibrations]
-    parts += [_of_levels(*_rotor_levels(r), flat, r.fold) for r in spectrum.internal_rotations]
+    parts += [
+        _of_levels(*_rotor_levels(r), flat, r.symmetry_number) for r in spectrum.internal_rotations
+    ]
     Cp, S, H = (GAS_CONSTANT * sum(values) for values in zip(*parts, strict=True))
     return GasFunctions(
         np.asarray(Cp).reshape(T.shape),

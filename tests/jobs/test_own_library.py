@@ -194,6 +194,33 @@ def test_moments_of_inertia_stand_for_rotational_constants(tmp_path: Path) -> No
     assert pytest.approx(record.S298, abs=1e-3) == read(tmp_path, in_atoms).records[0].S298
 
 
+METHANOL = """
+[[record]]
+name = "CH3OH(g)"
+source = "T. Shimanouchi (1972) and a barrier of 373 1/cm, recalled"
+enthalpy = "-201 kJ/mol"
+[record.spectrum]
+symmetry_number = 1
+rotational_constants = [4.254, 0.8236, 0.7931]
+vibrations = [3681, 3000, 2844, 1477, 1455, 1345, 1060, 1033, 2960, 1477, 1165]
+[[record.spectrum.internal_rotation]]
+barrier = 373
+fold = 3
+constant = 27.6
+symmetry_number = 3
+"""
+
+
+def test_methanol_with_its_internal_rotation_has_its_published_entropy(tmp_path: Path) -> None:
+    # 239.9 J/(mol K) at 298.15 K and 1 bar, from spectra and calorimetry alike (recalled).
+    (record,) = read(tmp_path, METHANOL).records
+    assert pytest.approx(239.9, abs=0.5) == record.S298
+    assert pytest.approx(load_library()["CH3OH(g)"].S298, abs=0.5) == record.S298
+    # A group without symmetry has R ln 3 more.
+    (other,) = read(tmp_path, METHANOL[:-20] + "symmetry_number = 1\n").records
+    assert pytest.approx(8.314463 * np.log(3.0), abs=1e-3) == other.S298 - record.S298
+
+
 def test_a_piece_may_begin_with_a_transition(tmp_path: Path) -> None:
     piece = (
         '[[record.heat_capacity]]\nfirst = "800 K"\nlast = "900 K"\nunit = "J/(mol K)"\nA = 100\n'

@@ -66,7 +66,7 @@ def test_ethane_with_a_hindered_rotation_has_its_published_entropy() -> None:
         6,
         (2.671, 0.6630, 0.6630),
         tuple((v, 1) for v in single) + tuple((v, 2) for v in double),
-        internal_rotations=(InternalRotation(1024.0, 3, 10.70),),
+        internal_rotations=(InternalRotation(1024.0, 3, 10.70, 3),),
     )
     T = np.array([298.15, 500.0, 1000.0])
     found = gas_functions(ethane, T)

@@ -84,7 +84,7 @@ def test_functions_belong_together(T: float) -> None:
         6,
         (2.68, 0.66, 0.66),
         ((2900.0, 6), (1400.0, 5), (900.0, 3), (1190.0, 2), (820.0, 1)),
-        internal_rotations=(InternalRotation(1010.0, 3, 10.6),),
+        internal_rotations=(InternalRotation(1010.0, 3, 10.6, 3),),
     )
     h = 1e-4 * T
     stretching = replace(rotor, internal_rotations=(), stretching=2e-5)
@@ -105,12 +105,12 @@ def test_an_internal_rotation_runs_from_a_vibration_to_a_free_turn() -> None:
         turning = Spectrum(0.03, 1, (), (), internal_rotations=(rotor,))
         return float(gas_functions(turning, T).entropy - gas_functions(bare, T).entropy)
 
-    stiff = InternalRotation(barrier=40000.0, fold=1, constant=5.0)
+    stiff = InternalRotation(barrier=40000.0, fold=1, constant=5.0, symmetry_number=1)
     wavenumber = np.sqrt(40000.0 * 5.0)
     x = 1.438777 * wavenumber / 300.0
     harmonic = GAS_CONSTANT * (x / np.expm1(x) - np.log(-np.expm1(-x)))
     assert alone(stiff, 300.0) == pytest.approx(harmonic, rel=0.02)
-    free = InternalRotation(barrier=0.0, fold=3, constant=10.0)
+    free = InternalRotation(barrier=0.0, fold=3, constant=10.0, symmetry_number=3)
     classical = GAS_CONSTANT * (0.5 * np.log(np.pi * 300.0 / (1.438777 * 10.0)) + 0.5 - np.log(3.0))
     assert alone(free, 300.0) == pytest.approx(classical, abs=0.01)
 
@@ -153,7 +153,7 @@ def test_an_impossible_spectrum_is_refused(change: dict[str, object], sentence: 
 
 
 def test_a_slow_internal_rotation_is_refused() -> None:
-    slow = Spectrum(0.03, 1, (), (), internal_rotations=(InternalRotation(1000.0, 3, 0.005),))
+    slow = Spectrum(0.03, 1, (), (), internal_rotations=(InternalRotation(1000.0, 3, 0.005, 3),))
     with pytest.raises(InputError) as error:
         gas_functions(slow, 300.0)
     assert str(error.value) == (
