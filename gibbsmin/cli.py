@@ -21,6 +21,7 @@ if TYPE_CHECKING:
 
     from gibbsmin.arrays import FloatArray
     from gibbsmin.thermo.library import Library
+    from gibbsmin.thermo.species import Species
 
 NOT_CERTIFIED: Final = 1
 INPUT_ERROR: Final = 2
@@ -370,12 +371,16 @@ def reaction(
         str, typer.Argument(metavar="REACTION", help='Such as "CH4 + 2 H2O = CO2 + 4 H2".')
     ],
     temperature: Temperatures = None,
+    file: Annotated[
+        str, typer.Option("--file", metavar="FILE", help="A library file of your own to use.")
+    ] = "",
     as_json: AsJson = False,
 ) -> None:
     """Show ΔrH, ΔrS, ΔrG and log10 K of a reaction, and its path by way of 298.15 K.
 
     H2O(g) means that form at all temperatures, H2O whichever form is stable.
     """
+    from gibbsmin.jobs.remarks import own_records_notes
     from gibbsmin.present.reaction_view import reaction_document, reaction_view
     from gibbsmin.present.species_view import usual_temperatures
     from gibbsmin.thermo.library import load_library
@@ -386,11 +391,22 @@ def reaction(
     temperatures = (
         read_temperatures(temperature) if temperature else usual_temperatures(298.15, 1500.0)
     )
-    study = study_reaction(Reaction.read(text, load_library()), temperatures)
+    library = load_library()
+    own: tuple[Species, ...] = ()
+    if file:
+        from gibbsmin.jobs.own_library import read_library_file
+
+        own = read_library_file(Path(file), library).records
+    chosen = Reaction.read(text, library.overruled(own))
+    study = study_reaction(chosen, temperatures)
+    taking_part = [form for _, substance in chosen.terms for form in substance.forms]
+    notes = own_records_notes(record for record in own if record in taking_part)
     if as_json:
-        _print_json(reaction_document(study))
+        _print_json({**reaction_document(study), **({"notes": list(notes)} if notes else {})})
     else:
         _print(reaction_view(study))
+        for note in notes:
+            _print(note)
 
 
 def _show_own(path: Path, temperatures: FloatArray, as_json: bool) -> None:

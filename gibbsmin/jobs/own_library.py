@@ -101,12 +101,19 @@ def _record(row: RecordTable, source: str, library: Library) -> Evaluated:
             "accepted is the molar mass of the formula, or none",
             key="molar_mass",
         )
+    phase = _phase(state)
+    if row.density is not None and phase is Phase.GAS:
+        raise InputError(
+            "found a density of a gas, which follows from temperature and pressure",
+            'accepted is that of a solid or a liquid, such as "5.2 kg/L"',
+            key="density",
+        )
     thermal = thermal_of(row, composition, mass, library)
     record = Species(
         name=row.name,
         formula=formula,
         state=state,
-        phase=_phase(state),
+        phase=phase,
         common_name=row.common_name,
         cas=row.cas,
         elements=composition.elements,
@@ -116,7 +123,7 @@ def _record(row: RecordTable, source: str, library: Library) -> Evaluated:
         u_dfH298=_given(row.enthalpy_uncertainty, thermal.u_enthalpy),
         S298=_given(row.entropy, thermal.entropy),
         u_S298=_given(row.entropy_uncertainty, thermal.u_entropy),
-        molar_volume=float("nan"),
+        molar_volume=float("nan") if row.density is None else mass / row.density,
         pieces=thermal.pieces,
         source_enthalpy=source,
         source_entropy=source,

@@ -32,7 +32,7 @@ from gibbsmin.jobs.record_values import (
 from gibbsmin.jobs.stage_schema import word
 from gibbsmin.jobs.table_schema import MISSING, Table
 from gibbsmin.thermo.third_law import RELATIVE_UNCERTAINTY
-from gibbsmin.units import read_temperature
+from gibbsmin.units import read_density, read_temperature
 
 KINDS = ("heat_capacity", "table", "calorimetry", "spectrum", "groups")
 """What gives a record its heat capacity."""
@@ -170,6 +170,7 @@ class RecordTable(Table):
     molar_mass: Annotated[
         float | None, BeforeValidator(lambda given: None if given is None else read_number(given))
     ] = None
+    density: Annotated[float | None, BeforeValidator(read_density)] = None
     enthalpy: MolarEnergy | None = None
     enthalpy_uncertainty: NotNegativeEnergy | None = None
     entropy: Entropy | None = None

@@ -426,7 +426,7 @@ MISTAKES = {
     "a key is unknown": (
         SHOMATE.replace("entropy =", "entropi ="),
         'record.0.entropi: found an unknown key (nearest: "entropy"); accepted is name, '
-        "common_name, cas, source, molar_mass, enthalpy, enthalpy_uncertainty, entropy, "
+        "common_name, cas, source, molar_mass, density, enthalpy, enthalpy_uncertainty, entropy, "
         "entropy_uncertainty, heat_capacity, table, calorimetry, spectrum, groups or constants.",
     ),
     "an enthalpy is missing": (
@@ -448,6 +448,11 @@ MISTAKES = {
         NITROGEN.replace("symmetry_number = 2", "symmetry_number = 1"),
         "record.0.spectrum.symmetry_number: found the symmetry number 1 of N2; accepted is 2, "
         "since its two atoms are alike.",
+    ),
+    "a density of a gas": (
+        SHOMATE.replace("molar_mass = 195.29", 'density = "1 kg/L"'),
+        "record.0.density: found a density of a gas, which follows from temperature and pressure; "
+        'accepted is that of a solid or a liquid, such as "5.2 kg/L".',
     ),
     "no record": (
         "",
@@ -580,3 +585,21 @@ def test_json_holds_each_contribution_and_both_laws() -> None:
     assert laws["laws_agree"] is True
     assert documents["N2(g)"]["third_law"] is None
     assert documents["N2(g)"]["measured_constants"] is None
+
+
+def test_a_density_gives_the_molar_volume(tmp_path: Path) -> None:
+    text = TABLE.replace("entropy =", 'density = "2.47 kg/L"\nentropy =')
+    (record,) = read(tmp_path, text).records
+    assert record.molar_volume == pytest.approx(record.molar_mass / 2470.0)
+
+
+def test_a_reaction_may_use_them(tmp_path: Path) -> None:
+    path = tmp_path / "mine.toml"
+    path.write_text(SHOMATE + NITROGEN)
+    command = ["reaction", "XeO4 = Xe + 2 O2", "--file", str(path), "-t", "500 K"]
+    result = CliRunner().invoke(app, command)
+    assert result.exit_code == 0, result.output
+    assert "Records of the user's own (mine.toml): XeO4(g)." in result.output
+    document = json.loads(CliRunner().invoke(app, [*command, "--json"]).stdout)
+    assert document["notes"] == ["Records of the user's own (mine.toml): XeO4(g)."]
+    assert CliRunner().invoke(app, command[:2]).exit_code == 2
