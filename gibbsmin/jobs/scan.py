@@ -22,8 +22,8 @@ _BLOCK = 25_000
 _BLOCK_WITH_ERROR_BARS = 1_000
 """States of a stage solved together."""
 
-_AHEAD = 2
-"""Blocks in memory at a time."""
+AHEAD = 2
+"""Blocks in memory at a time where they are solved here."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -120,18 +120,19 @@ def block_size(case: Case, *, uncertainty: bool) -> int:
     return max(1, size // len(case.stages))
 
 
-def in_order(solve: Callable[[int], pd.DataFrame], starts: Sequence[int]) -> Iterator[pd.DataFrame]:
-    """The blocks in order, the next one under way while one is taken.
+def in_order(
+    solve: Callable[[int], pd.DataFrame], starts: Sequence[int], ahead: int = AHEAD
+) -> Iterator[pd.DataFrame]:
+    """The blocks in order, ``ahead`` of them under way or waiting at a time.
 
-    One block's tables are laid out while another's states are solved, so that no core waits; two
-    blocks at most are in memory.
+    One block's tables are laid out while another's states are solved, so that no core waits.
     """
     if len(starts) < 2:
         yield from map(solve, starts)
         return
-    with ThreadPoolExecutor(_AHEAD) as pool:
-        coming = deque(pool.submit(solve, start) for start in starts[:_AHEAD])
-        for start in [*starts[_AHEAD:], *[None] * _AHEAD]:
+    with ThreadPoolExecutor(ahead) as pool:
+        coming = deque(pool.submit(solve, start) for start in starts[:ahead])
+        for start in [*starts[ahead:], *[None] * min(ahead, len(starts))]:
             block = coming.popleft().result()
             if start is not None:
                 coming.append(pool.submit(solve, start))

@@ -7,11 +7,12 @@ block whose worker is lost is given to another.
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
+from concurrent.futures import CancelledError
 from contextlib import contextmanager
 from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
-from gibbsmin.errors import InputError
+from gibbsmin.errors import InputError, OutputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import Conditions
 from gibbsmin.jobs.scan import scan_block
@@ -67,28 +68,44 @@ def connected(address: str) -> Iterator[Any]:
             yield client
 
 
+def at_once(client: Any) -> int:
+    """Blocks to hand out at a time: so many that no worker waits, so few that memory holds them."""
+    threads: int = sum(client.nthreads().values())
+    return max(2, 2 * threads)
+
+
 def blocks_on(
     client: Any, case: Case, conditions: Conditions, block: int, *, uncertainty: bool
 ) -> Callable[[int], pd.DataFrame]:
-    """A function that gives the block of a number, solved by the cluster.
+    """A function that has the block of a number solved by the cluster, and waits for it.
 
-    All blocks are handed out at once; each call waits for its own.
+    Raises
+    ------
+    OutputError
+        from that function, where a block has lost too many workers.
     """
-    count = -(-conditions.states // block)
+    distributed: Any = import_module("distributed")
+    lost = (distributed.KilledWorker, CancelledError)
     shared = client.scatter((case, conditions), broadcast=True, hash=False)
-    coming = client.map(
-        _solve,
-        range(count),
-        shared=shared,
-        block=block,
-        uncertainty=uncertainty,
-        pure=False,
-        retries=2,
-    )
 
     def take(index: int) -> pd.DataFrame:
-        table: pd.DataFrame = coming[index].result()
-        coming[index].release()
+        coming = client.submit(
+            _solve,
+            index,
+            shared=shared,
+            block=block,
+            uncertainty=uncertainty,
+            pure=False,
+            retries=2,
+        )
+        try:
+            table: pd.DataFrame = coming.result()
+        except lost:
+            raise OutputError(
+                "found that workers were lost again and again",
+                "accepted is the same command once more, which goes on where this stopped",
+                key="cluster",
+            ) from None
         return table
 
     return take

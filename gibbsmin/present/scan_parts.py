@@ -15,7 +15,7 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from gibbsmin.errors import OutputError
-from gibbsmin.jobs.scan import in_order
+from gibbsmin.jobs.scan import AHEAD, in_order
 from gibbsmin.jobs.scan_columns import named
 from gibbsmin.present.files import write_whole
 
@@ -36,9 +36,13 @@ def fingerprint_of(*parts: str | bytes) -> str:
 
 
 def kept_blocks(
-    path: Path, fingerprint: str, count: int, solve: Callable[[int], pd.DataFrame]
+    path: Path,
+    fingerprint: str,
+    count: int,
+    solve: Callable[[int], pd.DataFrame],
+    ahead: int = AHEAD,
 ) -> Iterator[pd.DataFrame]:
-    """The blocks in order: those that are kept, the others solved and kept.
+    """The blocks in order: those that are kept, the others solved (``ahead`` at a time) and kept.
 
     Raises
     ------
@@ -70,7 +74,7 @@ def kept_blocks(
         # What was solved just now is read back too, so that every run gives the same bytes.
         return _kept(part)
 
-    yield from in_order(block, range(count))
+    yield from in_order(block, range(count), ahead)
 
 
 def forget_blocks(path: Path) -> None:

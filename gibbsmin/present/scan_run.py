@@ -8,9 +8,9 @@ from typing import TYPE_CHECKING, Any
 
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import Conditions
-from gibbsmin.jobs.scan import block_size, scan_block
+from gibbsmin.jobs.scan import AHEAD, block_size, scan_block
 from gibbsmin.minimise import settle_form
-from gibbsmin.present.cluster import blocks_on
+from gibbsmin.present.cluster import at_once, blocks_on
 from gibbsmin.present.scan_files import require_scan_ending, write_blocks
 from gibbsmin.present.scan_parts import forget_blocks, kept_blocks
 from gibbsmin.present.scan_progress import Tally
@@ -51,9 +51,11 @@ def run_scan(
         return scan_block(case, conditions, first, last, uncertainty=uncertainty)
 
     solve: Callable[[int], pd.DataFrame] = solved_here
+    ahead = AHEAD
     if client is not None:
         solve = blocks_on(client, case, conditions, block, uncertainty=uncertainty)
-    blocks = kept_blocks(path, fingerprint, count, solve)
+        ahead = at_once(client)
+    blocks = kept_blocks(path, fingerprint, count, solve, ahead)
     tally = Tally(blocks, conditions.states)
     write_blocks(iter(tally), path)
     forget_blocks(path)

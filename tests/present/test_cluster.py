@@ -5,7 +5,10 @@ from __future__ import annotations
 import json
 import os
 import signal
+import threading
+import time
 from collections.abc import Iterator
+from concurrent.futures import CancelledError
 from copy import deepcopy
 from pathlib import Path
 from typing import Any
@@ -15,7 +18,7 @@ from typer.testing import CliRunner
 
 import gibbsmin
 from gibbsmin.cli import app
-from gibbsmin.errors import InputError
+from gibbsmin.errors import InputError, OutputError
 from gibbsmin.jobs.conditions import conditions_of
 from gibbsmin.present.cluster import blocks_on, connected
 from gibbsmin.present.scan_parts import fingerprint_of
@@ -40,7 +43,8 @@ CASE: dict[str, Any] = {
         {"vary": "feed.gas.amounts.H2O", "first": 0.5, "last": 4.0, "count": 10},
     ],
 }
-BLOCK = 20
+BLOCK = 10
+BLOCKS = 40
 
 
 @pytest.fixture(scope="module")
@@ -63,17 +67,46 @@ def run(path: Path, client: Any = None) -> None:
 def test_a_killed_worker_costs_no_row(tmp_path: Path, client: Any) -> None:
     alone, together = tmp_path / "alone.csv", tmp_path / "together.csv"
     run(alone)
-    case = gibbsmin.load_case(deepcopy(CASE))
     workers = client.run(os.getpid)
     assert len(workers) == 2
-    conditions = conditions_of(case)
-    take = blocks_on(client, case, conditions, BLOCK, uncertainty=False)
-    first = take(0)
-    os.kill(next(iter(workers.values())), signal.SIGKILL)
-    tables = [first, *(take(index) for index in range(1, 20))]
-    assert sum(len(table) for table in tables) == conditions.states
+    left_at_the_kill = []
+
+    def kill_midway() -> None:
+        parts = tmp_path / "together.csv.parts"
+        while len(list(parts.glob("block-*.npz"))) < 3:
+            time.sleep(0.002)
+        os.kill(next(iter(workers.values())), signal.SIGKILL)
+        left_at_the_kill.append(BLOCKS - len(list(parts.glob("block-*.npz"))))
+
+    killer = threading.Thread(target=kill_midway)
+    killer.start()
     run(together, client)
+    killer.join()
+    assert left_at_the_kill[0] > 0, "the worker was lost while there was work left"
     assert together.read_bytes() == alone.read_bytes()
+
+
+def test_a_worker_lost_again_and_again_is_one_sentence() -> None:
+    case = gibbsmin.load_case(deepcopy(CASE))
+
+    class Lost:
+        def result(self) -> None:
+            raise CancelledError
+
+    class Client:
+        def scatter(self, data: Any, **_: Any) -> Any:
+            return data
+
+        def submit(self, *_: Any, **__: Any) -> Lost:
+            return Lost()
+
+    take = blocks_on(Client(), case, conditions_of(case), BLOCK, uncertainty=False)
+    with pytest.raises(OutputError) as error:
+        take(0)
+    assert str(error.value) == (
+        "cluster: found that workers were lost again and again; accepted is the same command once "
+        "more, which goes on where this stopped."
+    )
 
 
 def test_the_command_runs_on_workers_of_its_own(tmp_path: Path) -> None:
