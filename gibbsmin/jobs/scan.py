@@ -151,7 +151,9 @@ def scan_block(
     columns: dict[str, Any] = {} if labels is None else {LABEL: labels}
     for axis, (_, shown) in zip(axes, values, strict=True):
         columns[column_of(axis)] = shown
-    answers = columns_of_states(case, conditions, first, last, uncertainty=uncertainty)
+    answers = columns_of_states(
+        case, conditions, [inside for inside, _ in values], uncertainty=uncertainty
+    )
     return pd.DataFrame(columns | answers, copy=False)
 
 

@@ -81,7 +81,7 @@ def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, 
     yield "heat", unit, 1e3, "heat", energy.heat
     generated = energy.entropy_generation
     yield "entropy generation", f"{unit}/K", 1e3, "entropy generation", generated
-    total = found.amounts @ model.gas.astype(float)
+    total = np.einsum("bs,s->b", found.amounts, model.gas.astype(float))
     total = np.where(total > 0.0, total, np.nan)
     columns = {record.name: column for column, record in enumerate(model.records)}
     absent = 0.0 * found.amounts[:, 0]

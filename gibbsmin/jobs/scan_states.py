@@ -44,9 +44,11 @@ class _Part:
 
 
 def columns_of_states(
-    case: Case, conditions: Conditions, first: int, last: int, *, uncertainty: bool
+    case: Case, conditions: Conditions, values: Sequence[FloatArray], *, uncertainty: bool
 ) -> Columns:
-    """What the table tells of the states from first up to last, column by column.
+    """What the table tells of some of a scan's states, column by column.
+
+    ``values`` are those of each axis, in SI.
 
     Raises
     ------
@@ -58,7 +60,6 @@ def columns_of_states(
     def solve(values: Sequence[FloatArray]) -> tuple[list[Step], Columns]:
         return _solved(case, conditions.axes, values, uncertainty)
 
-    values = [inside for inside, _ in conditions.block(first, last)]
     parts: list[_Part] = []
     for rows in _of_one_equation(case, conditions.axes, values):
         try:
@@ -69,7 +70,7 @@ def columns_of_states(
     if len(parts) == 1 and parts[0].columns is not None:
         return parts[0].columns
     template = next((part.columns for part in parts if part.columns is not None), None)
-    return _together(parts, template or _require_some_state(solve, conditions), last - first)
+    return _together(parts, template or _require_some_state(solve, conditions), values[0].size)
 
 
 _Solve = Callable[[Sequence[FloatArray]], tuple[list[Step], Columns]]

@@ -11,6 +11,15 @@ from gibbsmin.reactor.inlet import Inlet
 from gibbsmin.thermo.species import Species
 
 
+def _amount_of(substance: Species, records: Sequence[Species], amounts: FloatArray) -> FloatArray:
+    """Of all forms of a substance, (B,); NaN where the amounts (B, S) are not known."""
+    total = 0.0 * amounts[:, 0]
+    for column, record in enumerate(records):
+        if record.formula == substance.formula:
+            total += amounts[:, column]
+    return total
+
+
 def conversions(
     inlet: Inlet, records: Sequence[Species], amounts: FloatArray
 ) -> dict[str, FloatArray]:
@@ -21,9 +30,8 @@ def conversions(
     """
     shares = {}
     for fed in inlet.records:
-        # Products count a record that is not known in all of them.
-        entering = inlet.amounts @ [float(each.formula == fed.formula) for each in inlet.records]
-        leaving = amounts @ [float(each.formula == fed.formula) for each in records]
+        entering = _amount_of(fed, inlet.records, inlet.amounts)
+        leaving = _amount_of(fed, records, amounts)
         with np.errstate(divide="ignore", invalid="ignore"):
             shares[fed.name] = np.where(entering > 0.0, 1.0 - leaving / entering, np.nan)
     return shares

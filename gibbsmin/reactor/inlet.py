@@ -8,7 +8,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray, shared
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
@@ -95,7 +95,7 @@ class _Content:
 def _content(stream: Stream, library: Library) -> _Content:
     records = [library[name] for name in stream.amounts]
     mixture = Mixture.of(PropertyTable.of(records))
-    T, P, *each = (_shared(value) for value in _values(stream))
+    T, P, *each = (shared(value) for value in _values(stream))
     amounts = np.stack(np.broadcast_arrays(*each), axis=-1) if each else np.zeros(0)
     return _Content(
         names=tuple(stream.amounts),
@@ -113,12 +113,6 @@ def _content(stream: Stream, library: Library) -> _Content:
 
 def _values(stream: Stream) -> list[Values]:
     return [stream.temperature, stream.pressure, *stream.amounts.values()]
-
-
-def _shared(value: Values) -> FloatArray:
-    """One value in place of an array that repeats it (strides of 0), to be looked up once."""
-    array = np.asarray(value, dtype=float)
-    return array[0] if array.ndim and not any(array.strides) else array
 
 
 def _least(values: Sequence[FloatArray]) -> FloatArray:

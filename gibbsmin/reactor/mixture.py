@@ -15,7 +15,7 @@ from typing import Self
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray, shared
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.real_gas import Equation, GasState, RealGas
@@ -55,13 +55,13 @@ class Mixture:
 
     def reduced_energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
         """g̃ = G/RT of every record, (..., S), for gases with + ln(P/P°) and as if ideal."""
-        T, P = np.asarray(temperature, dtype=float), np.asarray(pressure, dtype=float)
-        RT = (GAS_CONSTANT * T)[..., np.newaxis]
-        energies = self.properties.gibbs_energy(T)
-        energies /= RT
-        logarithm = np.log(P / STANDARD_PRESSURE)[..., np.newaxis]
-        energies = np.add(energies, logarithm, out=energies, where=self.gas)
-        return energies + self.pressure_terms(P) / RT if self._has_volumes else energies
+        T, P = np.asarray(temperature, dtype=float), shared(pressure)
+        energies = self.properties.reduced_gibbs_energy(T)
+        energies += np.where(self.gas, np.log(P / STANDARD_PRESSURE)[..., np.newaxis], 0.0)
+        for column in np.flatnonzero(self.volumes).tolist():
+            excess = self.volumes[column] * (P - STANDARD_PRESSURE)
+            energies[..., column] += excess / (GAS_CONSTANT * T)
+        return energies
 
     def pressure_terms(self, pressure: npt.ArrayLike) -> FloatArray:
         """V (P − P°) of solids and liquids in J/mol, (..., S); 0 for gases."""

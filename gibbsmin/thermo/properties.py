@@ -23,7 +23,7 @@ import numpy as np
 import numpy.typing as npt
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
-from gibbsmin.constants import REFERENCE_TEMPERATURE
+from gibbsmin.constants import GAS_CONSTANT, REFERENCE_TEMPERATURE
 from gibbsmin.errors import InputError
 from gibbsmin.thermo.species import Piece, Species
 
@@ -121,6 +121,17 @@ class PropertyTable:
             t = T / 1000
             enthalpy = _enthalpy_integral(t, A, B, C, D, E) + h
             return enthalpy - T * (_entropy_integral(t, A, B, C, D, E) + s)
+
+        return self._evaluate(kernel, T)
+
+    def reduced_gibbs_energy(self, T: npt.ArrayLike) -> FloatArray:
+        """G/RT."""
+
+        def kernel(T: FloatArray, piece: IntArray) -> FloatArray:
+            A, B, C, D, E, h, s = self._gather(piece)
+            t = T / 1000
+            enthalpy = _enthalpy_integral(t, A, B, C, D, E) + h
+            return (enthalpy / T - (_entropy_integral(t, A, B, C, D, E) + s)) / GAS_CONSTANT
 
         return self._evaluate(kernel, T)
 

@@ -10,6 +10,7 @@ from hypothesis.extra import numpy as hnp
 from numpy.testing import assert_allclose
 from thermo_builders import make_species, species_records
 
+from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.errors import InputError
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.species import Piece, Species
@@ -131,3 +132,11 @@ def test_the_table_cannot_be_changed() -> None:
     table = PropertyTable.of([make_species()])
     with pytest.raises(ValueError, match="read-only"):
         table.coefficients[0, 0] = 1.0
+
+
+@given(batches, temperatures)
+def test_reduced_energy_is_that_over_rt(records: list[Species], T: float) -> None:
+    table = PropertyTable.of(records)
+    expected = table.gibbs_energy(T) / (GAS_CONSTANT * T)
+    scale = np.abs(table.enthalpy(T) / (GAS_CONSTANT * T)) + np.abs(table.entropy(T)) + 1.0
+    assert (np.abs(table.reduced_gibbs_energy(T) - expected) <= 1e-13 * scale).all()
