@@ -141,6 +141,11 @@ def conditions_from(table: pd.DataFrame, case: Case, file: str = "") -> Rows:
 def _axis(column: str, cells: Sequence[object], case: Case) -> Axis:
     name, _, unit = column.partition(",")
     name, _, scale = name.strip().partition(_BY)
+    if not scale and "/" in name and "." not in name:
+        raise InputError(
+            "found a ratio without the stream that is scaled to meet it",
+            f'accepted is "{name} by {case.feeds[-1].name}"',
+        )
     if not scale:
         # A column that is something else altogether is told before what stands in it.
         place_of(name, case.feeds, case.stages, case.library)

@@ -51,7 +51,8 @@ def kept_blocks(
     """
     folder = _folder(path)
     stamp = folder / _FINGERPRINT
-    if stamp.exists() and stamp.read_text(encoding="utf-8") != fingerprint:
+    others = stamp.exists() and stamp.read_text(encoding="utf-8") != fingerprint
+    if others and _has_blocks(folder):
         raise OutputError(
             "found blocks of another case, other conditions or other options",
             f"accepted is another file to write, or {path.name} once this folder is removed",
@@ -74,12 +75,21 @@ def kept_blocks(
         # What was solved just now is read back too, so that every run gives the same bytes.
         return _kept(part)
 
-    yield from in_order(block, range(count), ahead)
+    try:
+        yield from in_order(block, range(count), ahead)
+    finally:
+        # A scan that is refused leaves nothing that would stand in the way of a mended one.
+        if not _has_blocks(folder):
+            forget_blocks(path)
 
 
 def forget_blocks(path: Path) -> None:
     """Remove the folder of a scan whose file is whole."""
     shutil.rmtree(_folder(path), ignore_errors=True)
+
+
+def _has_blocks(folder: Path) -> bool:
+    return any(folder.glob("block-*.npz"))
 
 
 def _folder(path: Path) -> Path:

@@ -63,5 +63,9 @@ class Tally:
         """What was written, in a sentence or two."""
         text = f"{self.states} states written to {path}"
         if self.uncertified:
-            text += f"; {self.uncertified} of them are not certified and carry their status"
+            one = self.uncertified == 1
+            carry = (
+                "is not certified and carries its" if one else "are not certified and carry their"
+            )
+            text += f"; {self.uncertified} of them {carry} reason"
         return Text(f"{text}.")

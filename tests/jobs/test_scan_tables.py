@@ -237,6 +237,11 @@ def test_a_table_of_conditions_is_a_row_a_state(tmp_path: Path) -> None:
             "is a number.",
         ),
         (
+            {"H2O/CH4": [3.0]},
+            'cond.csv: column "H2O/CH4": found a ratio without the stream that is scaled to meet '
+            'it; accepted is "H2O/CH4 by steam".',
+        ),
+        (
             {"label": ["a"]},
             "cond.csv: found no column but the labels; accepted is at least one "
             'number, such as "outlet.temperature, degC".',

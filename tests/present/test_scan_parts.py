@@ -52,6 +52,13 @@ pressure = "25 bar"
 [species]
 consider = ["CH4", "H2O", "CO", "CO2", "H2"]
 """
+STEAM = """
+[feed.steam]
+temperature = "520 degC"
+pressure = "30 bar"
+unit = "mol"
+amounts = { H2O = 1 }
+"""
 AXIS = """
 [[axis]]
 vary = "outlet.temperature"
@@ -167,11 +174,53 @@ def test_blocks_of_another_case_are_refused(tmp_path: Path) -> None:
     folder = tmp_path / "scan.csv.parts"
     folder.mkdir()
     (folder / "fingerprint.txt").write_text("another")
+    (folder / "block-000000.npz").write_bytes(b"")
     with pytest.raises(OutputError) as error:
         write(path)
     assert str(error.value) == (
         f"{folder}: found blocks of another case, other conditions or other options; accepted is "
         "another file to write, or scan.csv once this folder is removed."
+    )
+
+
+def test_a_scan_that_was_refused_does_not_stand_in_the_way_of_the_mended_one(
+    tmp_path: Path,
+) -> None:
+    case = tmp_path / "case.toml"
+    axis = '[[axis]]\nratio = "H2O/C"\nscale = "{}"\nvalues = [3, 4]\n'
+    out = tmp_path / "out.csv"
+    arguments = ["scan", str(case), "--out", str(out)]
+    case.write_text(TOML + STEAM + axis.format("steem"))
+    result = CliRunner().invoke(app, arguments)
+    assert (result.exit_code, result.output) == (
+        2,
+        f'{case}: axis.H2O/C: found "steem" to be scaled, which is no stream; accepted is one of '
+        "gas, steam.\n",
+    )
+    assert [path.name for path in tmp_path.iterdir()] == ["case.toml"]
+    case.write_text(TOML + STEAM + axis.format("steam"))
+    result = CliRunner().invoke(app, arguments)
+    assert (result.exit_code, result.output) == (0, f"2 states written to {out}.\n")
+
+
+def test_states_that_are_refused_are_counted(tmp_path: Path) -> None:
+    case, table, out = (tmp_path / name for name in ("case.toml", "runs.csv", "out.csv"))
+    case.write_text(TOML.replace('pressure = "25 bar"', 'pressure_drop = "1 bar"'))
+    rows = ["2", "31", "3"]
+    table.write_text("\n".join(['"outlet.pressure_drop, bar"', *rows]))
+    arguments = ["scan", str(case), "--table", str(table), "--out", str(out)]
+    result = CliRunner().invoke(app, arguments)
+    assert result.exit_code == 1
+    assert result.output == (
+        f"3 states written to {out}; 1 of them is not certified and carries its reason.\n"
+    )
+    assert (
+        out.read_text()
+        .splitlines()[2]
+        .endswith(
+            "outlet.pressure_drop: found a drop of 31 bar from 30 bar; accepted is a drop that leaves "
+            "a pressure above zero."
+        )
     )
 
 
