@@ -88,6 +88,40 @@ class ElementYield:
 
 
 @dataclass(frozen=True)
+class Comparison:
+    """One figure of a stage with an ideal and with its real gas; ``unit`` is SI, or empty."""
+
+    name: str
+    unit: str
+    ideal: float
+    real: float
+
+
+@dataclass(frozen=True)
+class RealGasOutlet:
+    """What the equation of state says of a stage's gas.
+
+    Attributes
+    ----------
+    equation : its name
+    fugacity_coefficients : (S,) φ of the candidates; NaN for solids and liquids
+    compressibility : Z = P V/(N R T)
+    settled : largest difference between ln φ used and ln φ of the composition found
+    stable : whether the gas is one stable phase
+    second_phase : mole fractions of the phase that would form beside it; empty where stable
+    comparison : what an ideal gas would have given
+    """
+
+    equation: str
+    fugacity_coefficients: FloatArray
+    compressibility: float
+    settled: float
+    stable: bool
+    second_phase: Mapping[str, float]
+    comparison: tuple[Comparison, ...]
+
+
+@dataclass(frozen=True)
 class StageOutlet:
     """One stage's outlet.
 
@@ -115,6 +149,7 @@ class StageOutlet:
     audit : records that are not in the outlet, the most weighty first
     warnings, notes, hazards : sentences on what limits the figures, on how they came about, and
         on what is toxic or flammable in the outlet
+    real_gas : what its equation of state says; None for an ideal gas
     """
 
     name: str
@@ -139,6 +174,7 @@ class StageOutlet:
     warnings: tuple[str, ...]
     notes: tuple[str, ...]
     hazards: tuple[str, ...]
+    real_gas: RealGasOutlet | None = None
 
     @property
     def certified(self) -> bool:

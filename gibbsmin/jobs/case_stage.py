@@ -17,6 +17,7 @@ from gibbsmin.reactor.services import Service, find_service
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.real_gas import equation_named
 
 if TYPE_CHECKING:
     from gibbsmin.jobs.case_schema import CaseTable
@@ -210,6 +211,7 @@ def _chemistry(key: str, stage: OutletTable, selection: Selection, library: Libr
         others=stage.others,
         offsets=_by_record(f"{key}.offset", stage.offset, library),
         activities=_by_record(f"{key}.activity", stage.activity, library),
+        equation=None if stage.gas == "ideal" else equation_named(stage.gas),
     )
 
 

@@ -72,6 +72,7 @@ def _of_the_gas(states: StageStates, unit: str) -> Iterable[Figure]:
         energy_slopes(model, T, slopes.enthalpies),
         slopes.energies_by_pressure,
         np.zeros((len(model.balance.rows), 0)),
+        slopes.fugacities_by_amounts,
     )
     answer = response(slopes, T, changes)
     yield Figure("molar mass of the gas", gas.molar_mass[0] * 1e3, "g/mol")
@@ -113,7 +114,7 @@ def _of_the_trade(
         potential = nitriding_potential(y["NH3(g)"] * P, H2 * P)
         yield Figure("nitriding potential", float(potential), "bar^-1/2")
         for activity in activities:
-            if activity.label == "p(N2)":
+            if activity.record == "N2(g)":
                 value = nitrogen_activity(activity.value * STANDARD_PRESSURE)
                 yield Figure("nitrogen activity against N2 at 1 bar", float(value), "")
     if y.get("H2O(g)", 0.0) > _TRACE:
@@ -123,7 +124,7 @@ def _of_the_trade(
     dew_point = float(acid_dew_point(y.get("H2O(g)", 0.0), acid, P))
     yield Figure("acid dew point (Verhoff and Banchero)", dew_point - 273.15, "°C")
     for activity in activities:
-        if activity.label == "p(O2)":
+        if activity.record == "O2(g)":
             voltage = zirconia_voltage(T, activity.value * STANDARD_PRESSURE, P)
             yield Figure("zirconia cell, air at the same pressure", float(voltage) * 1e3, "mV")
 

@@ -14,6 +14,7 @@ from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.reactor.trade_figures import air_ratio
 from gibbsmin.results import Figure
 from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import FEED_ONLY
 
 _LEAST_AIR = 0.01
@@ -57,15 +58,18 @@ def exergy_figures(
     surroundings = szargut_surroundings(surroundings_temperature)
     against = f"against {surroundings_temperature:g} K and 1 atm"
     T, P = float(found.temperature[0]), float(found.pressure[0])
-    leaving = stream_exergy(model.records, found.amounts[0], T, P, surroundings, library)
-    entering = [_stream_exergy(stream, surroundings, library) for stream in step.streams]
+    equation = step.stage.chemistry.equation
+    leaving = stream_exergy(model.records, found.amounts[0], T, P, surroundings, library, equation)
+    entering = [_stream_exergy(s, surroundings, library, equation) for s in step.streams]
     yield Figure(f"physical exergy {against}", leaving.physical / 1e3, unit)
     yield Figure(f"chemical exergy {against}", leaving.chemical / 1e3, unit)
     fed = sum(exergy.total for exergy in entering)
     yield Figure(f"exergy fed {against}", fed / 1e3, unit)
 
 
-def _stream_exergy(stream: Stream, surroundings: Surroundings, library: Library) -> Exergy:
+def _stream_exergy(
+    stream: Stream, surroundings: Surroundings, library: Library, equation: Equation | None
+) -> Exergy:
     amounts = np.array([first(amount) for amount in stream.amounts.values()])
     return stream_exergy(
         [library[name] for name in stream.amounts],
@@ -74,6 +78,7 @@ def _stream_exergy(stream: Stream, surroundings: Surroundings, library: Library)
         first(stream.pressure),
         surroundings,
         library,
+        equation,
     )
 
 

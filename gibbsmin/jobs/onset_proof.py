@@ -59,11 +59,15 @@ def completeness(
 
 
 def _is_straight(path: Path) -> bool:
-    """Whether the axis moves the supplies of a stage of fixed temperature and pressure alone."""
+    """Whether the axis moves the supplies of a stage of fixed temperature and pressure alone.
+
+    In a real gas it moves the energies as well, by way of the fugacity coefficients.
+    """
     specification = path.stage.specification
     of_feed = bool(path.axis.scale) or ".amounts." in path.axis.name
     return (
         of_feed
+        and path.stage.chemistry.equation is None
         and specification.temperature is not None
         and specification.pressure is not None
         and path.stage.key in ("outlet", "stage.0")

@@ -2,10 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+from contextlib import suppress
+from dataclasses import replace
+from itertools import repeat
+
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.stage import conversion, stage_outlet
-from gibbsmin.jobs.train import placed_in, run_train
+from gibbsmin.jobs.train import Step, placed_in, run_train
 from gibbsmin.reactor.inlet import inlet_of
 from gibbsmin.results import Outlet, StageOutlet
 
@@ -24,9 +29,9 @@ def predict(case: Case) -> Outlet:
     """
     library = case.library
     outlets: list[StageOutlet] = []
-    for step in run_train(case, library):
+    for step, ideal in zip(run_train(case, library), _ideal_steps(case), strict=False):
         try:
-            outlets.append(stage_outlet(step, library))
+            outlets.append(stage_outlet(step, library, ideal))
         except InputError as error:
             raise placed_in(step.stage, case, error) from None
         if not outlets[-1].certified:
@@ -40,3 +45,16 @@ def predict(case: Case) -> Outlet:
         conversion=conversion(inlet, last.records, last.amounts),
         stages=tuple(outlets),
     )
+
+
+def _ideal_steps(case: Case) -> Iterator[Step | None]:
+    """The same train with ideal gases, to compare real ones with; nothing where all are ideal."""
+    if any(stage.chemistry.equation is not None for stage in case.stages):
+        stages = tuple(
+            replace(stage, chemistry=replace(stage.chemistry, equation=None))
+            for stage in case.stages
+        )
+        # Where no ideal gas meets a specification there is nothing to compare with.
+        with suppress(InputError):
+            yield from run_train(replace(case, stages=stages), case.library)
+    yield from repeat(None)

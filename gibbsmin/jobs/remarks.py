@@ -23,6 +23,7 @@ def warnings(
     feeds: Sequence[Stream],
     state: SolvedState,
     entries: Sequence[AuditEntry],
+    gas_warnings: Iterable[str],
     entropy_remark: str,
     status: Status,
 ) -> tuple[str, ...]:
@@ -34,6 +35,7 @@ def warnings(
         *_range_warnings(model, feeds, state),
         *(warning for feed in feeds for warning in feed.warnings),
     ]
+    sentences += gas_warnings
     if entropy_remark:
         sentences.append(f"Entropy: {entropy_remark}.")
     return tuple(sentences)

@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
+from gibbsmin.jobs.real_gas import real_gas_columns
 from gibbsmin.jobs.scan_layout import StageLayout
 from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.jobs.train import Step
@@ -45,6 +46,7 @@ def columns_of(
                 size = uncertainties[:, bars.results.index(result)] / factor
             columns[f"u({name}), {unit}" if unit else f"u({name})"] = size
     columns["phases"] = _phases(step)
+    columns |= real_gas_columns(step.states)
     if bars is not None:
         columns["near an onset"] = bars.near_onset.any(axis=1)
     return {

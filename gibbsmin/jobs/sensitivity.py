@@ -116,7 +116,14 @@ def sensitivities(
             named = step.streams[len(passing) :]
             entering = [*passing, *(changes.streams[stream.name] for stream in named)]
         shared = [_scaled(e, share) for e, share in zip(entering, step.shares, strict=True)]
-        inlet = inlet_changes(step.streams, shared, changes.records, step.states.inlet, library)
+        inlet = inlet_changes(
+            step.streams,
+            shared,
+            changes.records,
+            step.states.inlet,
+            library,
+            step.stage.chemistry.equation,
+        )
         found = stage_changes(
             step.states,
             step.stage.specification,

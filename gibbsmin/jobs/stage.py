@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 
 import numpy as np
 
@@ -10,6 +10,12 @@ from gibbsmin.arrays import FloatArray
 from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.figures import figures_of
 from gibbsmin.jobs.happenings import extents_of, yields_of
+from gibbsmin.jobs.real_gas import (
+    ideal_gas_warning,
+    real_gas_notes,
+    real_gas_outlet,
+    real_gas_warnings,
+)
 from gibbsmin.jobs.remarks import outlet_hazards, warnings
 from gibbsmin.jobs.stage_remarks import method_notes, require_an_answer, service_notes
 from gibbsmin.jobs.train import Step
@@ -20,15 +26,17 @@ from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.conversion import conversions
 from gibbsmin.reactor.energy import EnergyBalance
 from gibbsmin.reactor.inlet import Inlet
-from gibbsmin.results import EntropyGeneration, StageOutlet, StateCertificate
+from gibbsmin.results import EntropyGeneration, RealGasOutlet, StageOutlet, StateCertificate
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
 _TRACE = 1e-6
 
 
-def stage_outlet(step: Step, library: Library) -> StageOutlet:
+def stage_outlet(step: Step, library: Library, ideal: Step | None = None) -> StageOutlet:
     """The first state of a solved stage, with all that follows from it.
+
+    ``ideal`` is the same stage with an ideal gas, to compare a real one with.
 
     Raises
     ------
@@ -56,6 +64,7 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
         for record, amount in zip(model.records, state.amounts.tolist(), strict=True)
         if record.name in stage.removed
     }
+    gas = real_gas_outlet(step, ideal) if certified else None
     return StageOutlet(
         name=stage.name,
         status=status,
@@ -76,14 +85,31 @@ def stage_outlet(step: Step, library: Library) -> StageOutlet:
         extents=extents_of(states, stage.extents) if certified else (),
         yields=yields_of(states) if certified else (),
         audit=entries,
-        warnings=warnings(model, step.streams, state, entries, entropy.remark, status),
+        warnings=warnings(
+            model,
+            step.streams,
+            state,
+            entries,
+            _gas_warnings(step, gas) if certified else (),
+            entropy.remark,
+            status,
+        ),
         notes=(
+            *(() if gas is None else real_gas_notes(step, gas)),
             *(remark for stream in step.streams for remark in stream.remarks),
             *service_notes(stage),
             *method_notes(model, state, found),
         ),
         hazards=outlet_hazards(model, state.amounts),
+        real_gas=gas,
     )
+
+
+def _gas_warnings(step: Step, gas: RealGasOutlet | None) -> Iterator[str]:
+    if gas is not None:
+        yield from real_gas_warnings(step, gas)
+    elif step.stage.chemistry.equation is None and (found := ideal_gas_warning(step.states)):
+        yield found
 
 
 def _entropy_generation(stage: StageCase, energy: EnergyBalance) -> EntropyGeneration:

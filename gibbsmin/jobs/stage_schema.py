@@ -19,6 +19,7 @@ from gibbsmin.jobs.table_schema import (
     site_pressure,
 )
 from gibbsmin.reactor.trade_figures import OXYGEN_IN_AIR
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.units import (
     Measure,
     read_heat,
@@ -30,6 +31,10 @@ from gibbsmin.units import (
     read_volume,
     shown,
 )
+
+IDEAL_GAS = "ideal"
+EQUATIONS = tuple(equation.value for equation in Equation)
+"""How a stage's gas may be taken."""
 
 _OF_ENERGY = ("temperature", "heat", "heat_loss", "entropy")
 _OF_ROOM = ("pressure", "pressure_drop", "volume")
@@ -193,6 +198,7 @@ class OutletTable(Table):
     remove: _Shares = NOTHING
     extents: Annotated[tuple[str, ...], BeforeValidator(_reactions)] = ()
     bypass: Annotated[float, BeforeValidator(read_share)] = 0.0
+    gas: Annotated[str, word(IDEAL_GAS, *EQUATIONS)] = IDEAL_GAS
 
     @model_validator(mode="after")
     def _two_conditions(self) -> Self:

@@ -82,7 +82,7 @@ def _steps(
         name=f"{stage.name}, bypass joined",
         key=stage.key,
         feeds=(),
-        chemistry=Chemistry(reactions="none"),
+        chemistry=Chemistry(reactions="none", equation=stage.chemistry.equation),
         specification=Specification(heat=0.0, pressure=reacted.states.equilibria.pressure),
         boundary_temperature=None,
         surroundings_temperature=stage.surroundings_temperature,

@@ -18,6 +18,7 @@ class Status(IntEnum):
     INVALID = 3, "An energy or a supply is not a finite number."
     UNMET = 4, "No temperature meets what is specified."
     AMBIGUOUS = 5, "More than one temperature meets what is specified."
+    UNSETTLED = 6, "The fugacity coefficients of the gas and its composition did not settle."
 
     sentence: str
 

@@ -116,10 +116,31 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
             }
             for found in stage.yields
         ],
+        "real_gas": _real_gas(stage),
         "warnings": list(stage.warnings),
         "notes": list(stage.notes),
         "hazards": list(stage.hazards),
         "audit": [_audit_entry(entry) for entry in stage.audit[:AUDIT_LENGTH]],
+    }
+
+
+def _real_gas(stage: StageOutlet) -> dict[str, Any] | None:
+    """What the equation of state says; nothing for an ideal gas.  Comparisons are in SI units."""
+    gas = stage.real_gas
+    if gas is None:
+        return None
+    coefficients = zip(stage.records, gas.fugacity_coefficients.tolist(), strict=True)
+    return {
+        "equation": gas.equation,
+        "compressibility": gas.compressibility,
+        "fugacity_coefficients": {r.name: c for r, c in coefficients if not math.isnan(c)},
+        "settled": gas.settled,
+        "stable": gas.stable,
+        "second_phase": dict(gas.second_phase),
+        "comparison": [
+            {"name": c.name, "unit": c.unit, "ideal": c.ideal, "real": c.real}
+            for c in gas.comparison
+        ],
     }
 
 

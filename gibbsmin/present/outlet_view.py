@@ -20,6 +20,7 @@ from gibbsmin.present.quantities import (
     significant,
     temperature,
 )
+from gibbsmin.present.real_gas_view import real_gas_view
 from gibbsmin.reactor.activities import ROUTES_AGREE, ROUTES_SHOWN
 from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
@@ -38,6 +39,8 @@ def outlet_view(outlet: Outlet) -> RenderableType:
         parts += [_conditions(stage), Text("")]
         if stage.status is Status.CERTIFIED:
             parts += [_composition(outlet, stage), pairs(_lines(outlet, stage))]
+        if stage.real_gas is not None:
+            parts += [heading("Real gas"), *real_gas_view(outlet, stage, stage.real_gas)]
         if stage.extents:
             parts += [
                 heading("Reactions, one set that tells all that happened"),
@@ -83,9 +86,14 @@ def _totals(outlet: Outlet) -> RenderableType:
 def _conditions(stage: StageOutlet) -> Text:
     certified = stage.status is Status.CERTIFIED
     return Text.assemble(
-        f"{stage.name}: {temperature(stage.temperature)}, {pressure(stage.pressure)}, ideal gas, ",
+        f"{stage.name}: {temperature(stage.temperature)}, {pressure(stage.pressure)}, ",
+        f"{_gas(stage)}, ",
         ("certified" if certified else "NOT CERTIFIED", "" if certified else "bold"),
     )
+
+
+def _gas(stage: StageOutlet) -> str:
+    return "ideal gas" if stage.real_gas is None else f"{stage.real_gas.equation} gas"
 
 
 def _composition(outlet: Outlet, stage: StageOutlet) -> RenderableType:

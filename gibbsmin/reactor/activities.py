@@ -27,7 +27,8 @@ ROUTES_SHOWN = 3
 class ElementActivity:
     """Activity of an element in the outlet against a reference record.
 
-    For a gas the value is its partial pressure in bar, p(O2); for a solid its activity, a(C).
+    For a gas the value is its partial pressure in bar, p(O2), in a real gas its fugacity, f(O2);
+    for a solid its activity, a(C).
     """
 
     element: str
@@ -59,6 +60,7 @@ def element_activities(
             )
         )
     gas_total = state.amounts[model.gas].sum()
+    logs = model.mixture.log_fugacity(state.temperature, state.pressure, state.amounts)
     for i, record in enumerate(records):
         # A reference gas that is held apart from the others, or in a gas of which a fraction is
         # held, still shows its own pressure.
@@ -66,10 +68,12 @@ def element_activities(
         if apart and record in model.records and record.phase is Phase.GAS and gas_total > 0.0:
             share = state.amounts[model.records.index(record)] / gas_total
             values[i] = share * state.pressure / STANDARD_PRESSURE
+            values[i] *= np.exp(logs[model.records.index(record)])
     found: list[ElementActivity] = []
     for symbol, record, value in zip(symbols, records, values.tolist(), strict=True):
         gas = record.phase is Phase.GAS
-        label = f"p({record.formula})" if gas else f"a({record.formula})"
+        kind = "a" if not gas else "p" if model.mixture.real is None else "f"
+        label = f"{kind}({record.formula})"
         unit = "bar" if gas else ""
         ways = () if gas else _disagreeing_routes(model, state, record)
         found += [

@@ -20,6 +20,7 @@ from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.routes import Route, routes_to
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.real_gas import RealGas
 from gibbsmin.thermo.species import Phase, Species
 
 AUDIT_LENGTH = 10
@@ -107,6 +108,7 @@ def routes_at(
     logs = np.zeros(state.amounts.shape)
     logs[present] = np.log(state.amounts[present] / gas_total)
     potentials = logs + model.mixture.reduced_energies(state.temperature, state.pressure)
+    potentials += model.mixture.log_fugacity(state.temperature, state.pressure, state.amounts)
     energies = _energies(records, state.temperature, pressure)
     return routes_to(records, energies, model.records, state.amounts, potentials, model.reacts)
 
@@ -140,6 +142,7 @@ def audit(
     else:
         routes = [()] * len(records)
         logs = log_activities(model, state, records, state.pressure)
+    logs = logs - _log_fugacities(model, state, records)
     with np.errstate(over="ignore"):
         values = np.exp(logs)
     entries = (
@@ -155,6 +158,23 @@ def audit(
         if not np.isnan(value)
     )
     return tuple(sorted(entries, key=lambda entry: (-entry.weight, entry.record.name)))
+
+
+def _log_fugacities(
+    model: StageModel, state: SolvedState, records: Sequence[Species]
+) -> FloatArray:
+    """ln φ of each record as a trace in the outlet's gas; 0 for solids, liquids and ideal gases."""
+    logs = np.zeros(len(records))
+    real = model.mixture.real
+    if real is None or not state.amounts[model.gas].any():
+        return logs
+    traces = [record for record in records if record.phase is Phase.GAS]
+    gases = [r for r in model.records if r.phase is Phase.GAS]
+    amounts = np.append(state.amounts[model.gas], np.zeros(len(traces)))
+    whole = RealGas.of(real.equation, [*gases, *traces])
+    found = whole.state(state.temperature, state.pressure, amounts).log_fugacity
+    logs[[record.phase is Phase.GAS for record in records]] = found[len(gases) :]
+    return logs
 
 
 def _is_judged(model: StageModel, record: Species) -> bool:

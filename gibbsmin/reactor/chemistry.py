@@ -18,6 +18,7 @@ from gibbsmin.reactor.holds import (
 )
 from gibbsmin.reactor.streams import Values, first
 from gibbsmin.thermo.library import Library
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import Species
 
 
@@ -46,6 +47,7 @@ class Chemistry:
     others : what the reactions do that no approach names
     offsets : energy added to a record, J/mol
     activities : fixed activity of a solid or liquid, as in an alloy
+    equation : equation of state of the gas; None is an ideal gas
     """
 
     selection: Selection = field(default_factory=Selection)
@@ -57,6 +59,7 @@ class Chemistry:
     others: Literal["equilibrium", "frozen"] = "equilibrium"
     offsets: Mapping[str, float] = field(default_factory=dict)
     activities: Mapping[str, float] = field(default_factory=dict)
+    equation: Equation | None = None
 
 
 def holds_of(

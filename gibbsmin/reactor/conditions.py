@@ -19,6 +19,11 @@ from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.minimise import Solution, minimise, minimise_heated
 from gibbsmin.reactor.answers import every_answer
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
+from gibbsmin.reactor.real_equilibria import (
+    Fugacity,
+    real_equilibria,
+    real_heated_equilibria,
+)
 from gibbsmin.reactor.roots import root_near
 
 _LOWEST_PRESSURE, _HIGHEST_PRESSURE = 1e-4, 1e10
@@ -26,8 +31,11 @@ _SIDE = 1e-10
 """Share of T by which the two sides of a jump are solved apart from it, where forms tie."""
 
 _MET = 1e-11
+_MET_BY_REAL_GAS = 1e-9
 _ROUNDING = 1e-14
-"""Shares of N R T and of the enthalpy itself by which an enthalpy may miss."""
+"""Shares of N R T and of the enthalpy itself by which an enthalpy may miss.
+
+Fugacity coefficients settle to 5e-11, and the departure of the enthalpy with them."""
 
 _JUMP = 1e-9
 """A residual of this share that is left at full resolution of T is a plateau."""
@@ -45,6 +53,7 @@ class Equilibria:
     upper_share : (B,) share of the upper side; NaN off a plateau
     answers : (2, B) K, the lowest and the highest where several temperatures meet what is
         specified, so that none is chosen; NaN elsewhere
+    fugacity : fugacity coefficients of a real gas; None for an ideal one
     """
 
     temperature: FloatArray
@@ -53,6 +62,7 @@ class Equilibria:
     solution: Solution
     upper_share: FloatArray
     answers: FloatArray
+    fugacity: Fugacity | None = None
 
     def with_states(self, index: IntArray, others: Equilibria) -> Equilibria:
         """These states with some replaced by others."""
@@ -69,21 +79,39 @@ class Equilibria:
             self.solution.with_states(index, others.solution),
             put(self.upper_share, others.upper_share),
             put(self.answers.T, others.answers.T).T,
+            self.fugacity and others.fugacity and self.fugacity.with_states(index, others.fugacity),
         )
 
 
 def at_temperature(
-    model: StageModel, temperature: FloatArray, pressure: FloatArray, feed: FloatArray
+    model: StageModel,
+    temperature: FloatArray,
+    pressure: FloatArray,
+    feed: FloatArray,
+    start: FloatArray | None = None,
 ) -> Equilibria:
-    """Equilibria of B states at given temperature and pressure."""
-    solution = minimise(model.programme(temperature, pressure, feed))
-    return _found(temperature, pressure, solution)
+    """Equilibria of B states at given temperature and pressure.
+
+    ``start`` is ln φ (B, S) of states near by, from which a real gas settles sooner.
+    """
+    gas = model.mixture.real
+    if gas is None:
+        return _found(temperature, pressure, minimise(model.programme(temperature, pressure, feed)))
+    solution, fugacity = real_equilibria(model, gas, temperature, pressure, feed, start)
+    return _found(temperature, pressure, solution, fugacity)
 
 
-def _found(temperature: FloatArray, pressure: FloatArray, solution: Solution) -> Equilibria:
+def _found(
+    temperature: FloatArray,
+    pressure: FloatArray,
+    solution: Solution,
+    fugacity: Fugacity | None = None,
+) -> Equilibria:
     """States off any plateau, with one answer each."""
     nothing = np.full((2, *temperature.shape), np.nan)
-    return Equilibria(temperature, pressure, solution.amounts, solution, nothing[0], nothing)
+    return Equilibria(
+        temperature, pressure, solution.amounts, solution, nothing[0], nothing, fugacity
+    )
 
 
 def at_enthalpy(
@@ -104,9 +132,14 @@ def at_enthalpy(
 
     if model.shift.keys:
         return _at_content(model, enthalpy, content, pressure, feed, start)
-    solution, T = minimise_heated(*model.heated_programme(enthalpy, pressure, feed, start))
-    found = _found(T, pressure, solution)
-    left = np.flatnonzero(~_holds(found, content(found), enthalpy))
+    gas, fugacity, met = model.mixture.real, None, _MET
+    if gas is None:
+        solution, T = minimise_heated(*model.heated_programme(enthalpy, pressure, feed, start))
+    else:
+        solution, T, fugacity = real_heated_equilibria(model, gas, enthalpy, pressure, feed, start)
+        met = _MET_BY_REAL_GAS
+    found = _found(T, pressure, solution, fugacity)
+    left = np.flatnonzero(~_holds(found, content(found), enthalpy, met))
     if left.size == 0:
         return found
     some = model.of_states(left)
@@ -114,10 +147,10 @@ def at_enthalpy(
     return found.with_states(left, bracketed)
 
 
-def _holds(found: Equilibria, content: FloatArray, wanted: FloatArray) -> BoolArray:
+def _holds(found: Equilibria, content: FloatArray, wanted: FloatArray, met: float) -> BoolArray:
     """Whether the enthalpy is what was wanted, to a share of N R T; NaN does not."""
     thermal = GAS_CONSTANT * found.temperature * found.amounts.sum(axis=1)
-    return np.asarray(np.abs(content - wanted) <= _MET * thermal + _ROUNDING * np.abs(wanted))
+    return np.asarray(np.abs(content - wanted) <= met * thermal + _ROUNDING * np.abs(wanted))
 
 
 def at_entropy(
@@ -143,8 +176,10 @@ def at_volume(
     N_gas(P)/P falls as P rises, so that there is at most one pressure.
     """
 
+    near = _Near(model, temperature.size)
+
     def solved(P: FloatArray, index: IntArray) -> Equilibria:
-        return at_temperature(model.of_states(index), temperature[index], P, feed[index])
+        return near.solved(temperature[index], P, feed[index], index)
 
     def residual(log_P: FloatArray, index: IntArray) -> FloatArray:
         P = np.exp(log_P)
@@ -171,6 +206,22 @@ def at_energy_and_volume(
     return _between(model, solved, content, energy, start)
 
 
+class _Near:
+    """Solves states again and again, real gases from the fugacity coefficients found before."""
+
+    def __init__(self, model: StageModel, states: int) -> None:
+        self._model = model
+        self._logarithms = np.zeros((states, len(model.records)))
+
+    def solved(self, T: FloatArray, P: FloatArray, feed: FloatArray, index: IntArray) -> Equilibria:
+        """States at T and P, whose places in the batch are ``index``."""
+        found = at_temperature(self._model.of_states(index), T, P, feed, self._logarithms[index])
+        if found.fugacity is not None:
+            good = found.solution.certified
+            self._logarithms[index[good]] = found.fugacity.logarithms[good]
+        return found
+
+
 def _at_content(
     model: StageModel,
     wanted: FloatArray,
@@ -179,8 +230,10 @@ def _at_content(
     feed: FloatArray,
     start: FloatArray,
 ) -> Equilibria:
+    near = _Near(model, wanted.size)
+
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
-        return at_temperature(model.of_states(index), T, pressure[index], feed[index])
+        return near.solved(T, pressure[index], feed[index], index)
 
     return _between(model, solved, lambda found, _: content(found), wanted, start)
 

@@ -76,6 +76,7 @@ def derivatives(
     slopes: FloatArray,
     pressure_slopes: FloatArray,
     directions: FloatArray,
+    fugacity_slopes: FloatArray | None = None,
 ) -> Derivatives:
     """Implicit derivatives of solved states.
 
@@ -89,17 +90,26 @@ def derivatives(
         ∂g̃/∂ln P, shape (B, S): 1 for an ideal gas.
     directions
         Changes of the supplies b, shape (m, K), such as the feed matrix of the balance.
+    fugacity_slopes
+        ∂ln φ/∂n of a real gas, shape (B, S, S).
     """
     energies = np.stack([slopes, pressure_slopes], axis=-1)
-    found = responses(programme, solution, energies, directions)
+    found = responses(programme, solution, energies, directions, fugacity_slopes)
     changes = found.amounts
     return Derivatives(changes[..., 0], changes[..., 1], changes[..., 2:], found.regular)
 
 
 def responses(
-    programme: Programme, solution: Solution, energies: FloatArray, directions: FloatArray
+    programme: Programme,
+    solution: Solution,
+    energies: FloatArray,
+    directions: FloatArray,
+    fugacity_slopes: FloatArray | None = None,
 ) -> Responses:
     """What solved states answer to changes of their energies, then of their supplies.
+
+    In a real gas the energies answer to the amounts in turn: dg̃ gains J dn, J = ∂ln φ/∂n, so that
+    with the answer G to each energy, (1 − G J) dn is the answer at fixed φ.
 
     Parameters
     ----------
@@ -109,7 +119,11 @@ def responses(
         Changes dg̃ at constant supplies, shape (B, S, K₁).
     directions
         Changes of the supplies b at constant g̃, shape (m, K₂) or (B, m, K₂); K = K₁ + K₂.
+    fugacity_slopes
+        J, shape (B, S, S); None for an ideal gas.
     """
+    if fugacity_slopes is not None:
+        return _real_responses(programme, solution, energies, directions, fugacity_slopes)
     amounts, gas = solution.amounts, programme.gas
     usable = solution.certified & (np.where(gas, amounts, 0.0).sum(axis=1) > 0.0)
     near = np.abs(solution.certificate.driving_forces) < _ONSET
@@ -130,6 +144,25 @@ def responses(
     changes[~regular] = np.nan
     forces[~regular] = np.nan
     return Responses(changes, forces, regular)
+
+
+def _real_responses(
+    programme: Programme,
+    solution: Solution,
+    energies: FloatArray,
+    directions: FloatArray,
+    fugacity_slopes: FloatArray,
+) -> Responses:
+    species = energies.shape[1]
+    each = np.broadcast_to(np.eye(species), (len(energies), species, species))
+    fixed = responses(programme, solution, np.concatenate([each, energies], axis=2), directions)
+    to_energies, rest = np.split(fixed.amounts, [species], axis=2)
+    forces_of_energies, forces = np.split(fixed.forces, [species], axis=2)
+    regular = fixed.regular[:, np.newaxis, np.newaxis]
+    J = np.where(regular, fugacity_slopes, 0.0)
+    looped = np.eye(species) - np.where(regular, to_energies, 0.0) @ J
+    amounts = np.linalg.solve(looped, rest)
+    return Responses(amounts, forces + forces_of_energies @ (J @ amounts), fixed.regular)
 
 
 def energy_slopes(

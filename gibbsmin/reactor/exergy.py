@@ -31,6 +31,7 @@ from gibbsmin.errors import InputError
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import Phase, Species
 
 EXERGY_SOURCE: Final = (
@@ -117,10 +118,11 @@ def stream_exergy(
     pressure: float,
     surroundings: Surroundings,
     library: Library,
+    equation: Equation | None = None,
 ) -> Exergy:
-    """Exergy of a mixture at T (K) and P (Pa); amounts (S,) in mol."""
+    """Exergy of a mixture at T (K) and P (Pa); amounts (S,) in mol; without an equation ideal."""
     T0, P0 = surroundings.temperature, surroundings.pressure
-    mixture = Mixture.of(PropertyTable.of(records))
+    mixture = Mixture.of(PropertyTable.of(records), equation)
 
     def availability(T: float, P: float) -> float:
         H = mixture.enthalpy(T, P, amounts)

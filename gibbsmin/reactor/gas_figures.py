@@ -96,9 +96,10 @@ class Response:
 def response(slopes: MixtureSlopes, temperature: FloatArray, changes: Derivatives) -> Response:
     """Heat capacities and isentropic exponents of B states.
 
-    Cp = Σ n cp + Σ H̄ ∂n/∂T,  Cv = Cp + (P V/T) α²/β,  exponent = −Cp/(Cv β), with α the expansion
-    and β the compression.  The figures at equilibrium are NaN where the state has no derivatives;
-    under an approach the exponent is that of unchanged approach.
+    Cp = Σ n cp + Σ H̄ ∂n/∂T,  exponent = −1/(β − α (∂S/∂ln P)/Cp), with α the expansion and β the
+    compression of the gas; for an ideal gas alone that is −Cp/(Cv β).  The figures at equilibrium
+    are NaN where the state has no derivatives; under an approach the exponent is that of
+    unchanged approach.
 
     Parameters
     ----------
@@ -116,18 +117,24 @@ def response(slopes: MixtureSlopes, temperature: FloatArray, changes: Derivative
     alpha = slopes.expansion + np.sum(slopes.rooms * changes.log_temperature, axis=-1) / room
     beta = slopes.compression + np.sum(slopes.rooms * changes.log_pressure, axis=-1) / room
     equilibrium = frozen + reaction
+    pressed = slopes.entropy_by_pressure + np.sum(slopes.entropies * changes.log_pressure, axis=-1)
     return Response(
         frozen=frozen,
         equilibrium=equilibrium,
         expansion=alpha,
         compression=beta,
-        frozen_exponent=_exponent(frozen, room / T, slopes.expansion, slopes.compression),
-        equilibrium_exponent=_exponent(equilibrium, room / T, alpha, beta),
+        frozen_exponent=_exponent(
+            frozen, slopes.entropy_by_pressure, slopes.expansion, slopes.compression
+        ),
+        equilibrium_exponent=_exponent(equilibrium, pressed, alpha, beta),
     )
 
 
-def _exponent(Cp: FloatArray, pV_T: FloatArray, alpha: FloatArray, beta: FloatArray) -> FloatArray:
-    return -Cp / (_at_volume(Cp, pV_T, alpha, beta) * beta)
+def _exponent(
+    Cp: FloatArray, entropy_by_pressure: FloatArray, alpha: FloatArray, beta: FloatArray
+) -> FloatArray:
+    """−1/(β + α d ln T/d ln P), the temperature following the pressure at constant entropy."""
+    return np.asarray(-1.0 / (beta - alpha * entropy_by_pressure / Cp))
 
 
 def _at_volume(Cp: FloatArray, pV_T: FloatArray, alpha: FloatArray, beta: FloatArray) -> FloatArray:

@@ -13,6 +13,7 @@ from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import Species
 
 
@@ -42,11 +43,13 @@ class Inlet:
     volume: FloatArray
 
 
-def inlet_of(streams: Sequence[Stream], library: Library) -> Inlet:
-    """Sum up streams, each at its own temperature and pressure."""
+def inlet_of(
+    streams: Sequence[Stream], library: Library, equation: Equation | None = None
+) -> Inlet:
+    """Sum up streams, each at its own temperature and pressure; without an equation ideal gas."""
     names = list(dict.fromkeys(name for stream in streams for name in stream.amounts))
     shape = np.broadcast_shapes((1,), *(np.shape(v) for s in streams for v in _values(s)))
-    parts = [_content(stream, library) for stream in streams]
+    parts = [_content(stream, library, equation) for stream in streams]
     amounts = np.zeros((*shape, len(names)))
     for part in parts:
         amounts[:, [names.index(name) for name in part.names]] += part.amounts
@@ -92,9 +95,9 @@ class _Content:
     """Moles of it."""
 
 
-def _content(stream: Stream, library: Library) -> _Content:
+def _content(stream: Stream, library: Library, equation: Equation | None) -> _Content:
     records = [library[name] for name in stream.amounts]
-    mixture = Mixture.of(PropertyTable.of(records))
+    mixture = Mixture.of(PropertyTable.of(records), equation)
     T, P, *each = (shared(value) for value in _values(stream))
     amounts = np.stack(np.broadcast_arrays(*each), axis=-1) if each else np.zeros(0)
     return _Content(

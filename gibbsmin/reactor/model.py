@@ -151,7 +151,7 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
     holds = holds_of(chemistry, records, feed, library)
     return StageModel(
         records=records,
-        mixture=Mixture.of(shift.properties),
+        mixture=Mixture.of(shift.properties, chemistry.equation),
         feed_records=tuple(feed),
         balance=balance.with_holds(records, feed, holds),
         shift=shift,

@@ -44,7 +44,7 @@ def solve_stage(
     InputError
         when the chemistry does not fit the feed, or a pressure drop leaves nothing.
     """
-    inlet = inlet_of(streams, library)
+    inlet = inlet_of(streams, library, chemistry.equation)
     model = stage_model(chemistry, inlet.records, library)
     if specification.heat_loss is not None:
         specification = replace(specification, heat=-_loss(specification.heat_loss, inlet, library))

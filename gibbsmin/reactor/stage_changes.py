@@ -158,7 +158,13 @@ def _answers(
     energies[..., K] = energy_slopes(model, T, slopes.enthalpies)
     energies[..., K + 1] = slopes.energies_by_pressure
     programme = model.programme(T, found.pressure, states.inlet.amounts)
-    answer = responses(programme, found.solution, energies, model.balance.feed_matrix)
+    answer = responses(
+        programme,
+        found.solution,
+        energies,
+        model.balance.feed_matrix,
+        slopes.fugacities_by_amounts,
+    )
     # A record that no change touches may bring a new element, which has no derivative.
     touched = np.any(inlet.amounts, axis=2, keepdims=True).swapaxes(1, 2)
     amounts, forces = (part[..., : K + 2].copy() for part in (answer.amounts, answer.forces))

@@ -19,6 +19,7 @@ from gibbsmin.reactor.mixture_slopes import mixture_slopes
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.properties import PropertyTable
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import Species
 
 
@@ -87,6 +88,7 @@ def inlet_changes(
     records: RecordChanges,
     inlet: Inlet,
     library: Library,
+    equation: Equation | None = None,
 ) -> InletChanges:
     """Sum up the streams' changes; the inlet is that of these streams.
 
@@ -102,7 +104,7 @@ def inlet_changes(
     places = {record.name: place for place, record in enumerate(inlet.records)}
     for stream, change in zip(streams, changes, strict=True):
         part = [library[name] for name in stream.amounts]
-        of_stream = _mixture_changes(stream, change, part, records, B)
+        of_stream = _mixture_changes(stream, change, part, records, equation, B)
         for place, amount in zip((places[r.name] for r in part), of_stream[0], strict=True):
             amounts[:, place] += amount
         enthalpy += of_stream[1]
@@ -118,10 +120,11 @@ def _mixture_changes(
     change: StreamChanges,
     part: Sequence[Species],
     records: RecordChanges,
+    equation: Equation | None,
     states: int,
 ) -> tuple[list[FloatArray], FloatArray, FloatArray, FloatArray]:
     """dn of each record, and dH, dS and dU of one stream."""
-    mixture = Mixture.of(PropertyTable.of(part))
+    mixture = Mixture.of(PropertyTable.of(part), equation)
     T = np.broadcast_to(np.asarray(stream.temperature, dtype=float), (states,))
     P = np.broadcast_to(np.asarray(stream.pressure, dtype=float), (states,))
     n = np.stack([np.broadcast_to(v, (states,)) for v in stream.amounts.values()], axis=1)

@@ -51,6 +51,36 @@ def interactions(equation: str) -> Mapping[frozenset[str], float]:
     )
 
 
+@dataclass(frozen=True, slots=True)
+class FugacityBias:
+    """Worst deviation of φ of a pure gas from its reference equation of state, in percent.
+
+    It is the worst of the states compared, between two temperatures (K) and up to a pressure (bar).
+    """
+
+    deviation: float
+    T_low: float
+    T_high: float
+    P_high: float
+
+
+@cache
+def fugacity_biases(equation: str) -> Mapping[str, FugacityBias]:
+    """Deviations by record name, of the table ``fugacity_bias.csv``."""
+    return MappingProxyType(
+        {
+            row["record"]: FugacityBias(
+                float(row["deviation_percent"]),
+                float(row["T_low_K"]),
+                float(row["T_high_K"]),
+                float(row["P_high_bar"]),
+            )
+            for row in _rows("fugacity_bias.csv")
+            if row["equation"] == equation
+        }
+    )
+
+
 def _rows(file: str) -> Iterator[dict[str, str]]:
     text = files("gibbsmin.data").joinpath(file).read_text(encoding="utf-8")
     yield from csv.DictReader(text.splitlines())

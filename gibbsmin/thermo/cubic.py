@@ -51,6 +51,11 @@ def compressibility(shape: Shape, A: FloatArray, B: FloatArray, liquid: bool = F
         step = (((Z + c2) * Z + c1) * Z + c0) / np.where(slope == 0.0, np.inf, slope)
         # A step that is not small is one at a double root, where it would lead away.
         Z = np.where(np.abs(step) < 1e-3 * (Z - B), Z - step, Z)
+    if liquid:
+        # A root below the co-volume is no volume; there is then one real one.
+        lacking = Z <= B
+        if np.any(lacking):
+            Z = np.where(lacking, compressibility(shape, A, B), Z)
     return Z
 
 

@@ -275,7 +275,7 @@ def test_composition_of_air_sums_to_one() -> None:
             "outlet.x: found an unknown key; accepted is temperature, heat, heat_loss, entropy, "
             "pressure, pressure_drop, volume, service, boundary_temperature, "
             "surroundings_temperature, reference_oxygen, reactions, condense, conversion, "
-            "held_fraction, approach, others, offset, activity, remove, extents or bypass.",
+            "held_fraction, approach, others, offset, activity, remove, extents, bypass or gas.",
         ),
         (
             "oulet",

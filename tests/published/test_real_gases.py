@@ -7,6 +7,7 @@ import pytest
 from published_values import CheckValue, check_values
 
 from gibbsmin.constants import GAS_CONSTANT
+from gibbsmin.thermo.critical import fugacity_biases
 from gibbsmin.thermo.library import load_library
 from gibbsmin.thermo.real_gas import Equation, RealGas
 
@@ -36,3 +37,21 @@ def test_eight_gases_are_covered() -> None:
     kinds = [check["record"] for check in VALUES if check["quantity"] == "fugacity coefficient"]
     assert len(set(kinds)) == 8
     assert len(kinds) >= 30
+
+
+def test_the_bias_that_results_tell_is_the_worst_of_these() -> None:
+    for equation in Equation:
+        told = fugacity_biases(equation.value)
+        worst: dict[str, float] = {}
+        for check in VALUES:
+            if check["quantity"] != "fugacity coefficient":
+                continue
+            deviation = 100.0 * (found(equation, check) / check.value - 1.0)
+            bias = told[check["record"]]
+            assert bias.T_low <= float(check["temperature_K"]) <= bias.T_high
+            assert float(check["pressure_bar"]) <= bias.P_high
+            if abs(deviation) > abs(worst.get(check["record"], 0.0)):
+                worst[check["record"]] = deviation
+        assert {name: bias.deviation for name, bias in told.items()} == {
+            name: pytest.approx(deviation, abs=0.051) for name, deviation in worst.items()
+        }

@@ -18,6 +18,7 @@ from gibbsmin.reactor.stage_changes import SpecificationChanges, StageChanges, s
 from gibbsmin.reactor.stream_changes import RecordChanges, StreamChanges, inlet_changes
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library, load_library
+from gibbsmin.thermo.real_gas import Equation
 
 FloatArray = npt.NDArray[np.float64]
 
@@ -86,12 +87,18 @@ class Changes:
         return Data(Library(records), streams, replace(data.specification, **given))
 
 
-def make_data(case: str, specification: Specification, random: np.random.Generator) -> Data:
+def make_data(
+    case: str,
+    specification: Specification,
+    random: np.random.Generator,
+    compression: float = 1.0,
+) -> Data:
     library = load_library()
     records = tuple(library.resolve(name) for name in CASES[case].split())
     hot = random.uniform(900.0, 1500.0, STATES)
     first, second = records[:2], records[2:4]
     high, low = 10 ** random.uniform(5.5, 6.5, STATES), 10 ** random.uniform(4.5, 5.0, STATES)
+    high, low = compression * high, compression * low
 
     def amounts(part: tuple[object, ...]) -> dict[str, FloatArray]:
         return {record.name: random.uniform(0.2, 3.0, STATES) for record in part}
@@ -154,7 +161,12 @@ def changes_of(
 ) -> tuple[StageStates, StageChanges]:
     states = solved(data, chemistry)
     inlet = inlet_changes(
-        data.streams, changes.streams, changes.records, states.inlet, data.library
+        data.streams,
+        changes.streams,
+        changes.records,
+        states.inlet,
+        data.library,
+        chemistry.equation,
     )
     found = stage_changes(
         states, data.specification, None, changes.asked, inlet, changes.records, data.library
@@ -207,6 +219,17 @@ def test_changes_meet_central_differences(case: str, name: str) -> None:
     changes = make_changes(data, random)
     compared = assert_first_order(Chemistry(), data, changes)
     assert compared >= K * STATES // 2
+
+
+# A closed vessel of given heat takes two unknowns inside each other: too slow to repeat here.
+@pytest.mark.parametrize("name", [name for name in SPECIFICATIONS if name != "heat and volume"])
+@pytest.mark.parametrize("case", ["reforming", "ammonia"])
+def test_changes_of_real_gases_meet_central_differences(case: str, name: str) -> None:
+    random = np.random.default_rng([*case.encode(), *name.encode()])
+    data = make_data(case, SPECIFICATIONS[name], random, compression=50.0)
+    changes = make_changes(data, random)
+    chemistry = Chemistry(equation=Equation.PENG_ROBINSON)
+    assert assert_first_order(chemistry, data, changes) >= K * STATES // 2
 
 
 def test_an_approach_takes_the_records_numbers_at_both_temperatures() -> None:

@@ -1,0 +1,96 @@
+"""Fixed points of a batch of states, by substitution with Anderson's acceleration.
+
+Each state has a vector x that is to equal what its answer makes of it, x = G(x).  The residuals
+F = G(x) − x of the last few rounds are combined to the least one, weighted by what matters in the
+state, and the next x is that combination of the G (D. G. Anderson, J. ACM 12 (1965) 547).  A
+state whose residual grows forgets its history and goes on in shorter steps.  States that have
+settled drop out.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+
+from gibbsmin.arrays import FloatArray, IntArray
+
+SETTLED = 5e-11
+"""Largest residual of a settled state."""
+
+_ROUNDS = 80
+_DEPTH = 3
+_GROWTH = 1.5
+_RIDGE = 1e-13
+
+Answer = Callable[[FloatArray, IntArray], tuple[FloatArray, FloatArray]]
+"""Of x (k, K) and the indices (k,) of the states: G (k, K) and the weights (k, K)."""
+
+
+@dataclass(frozen=True)
+class Settled:
+    """Where B states came to rest: x (B, K) and the largest residual (B,), NaN for no answer."""
+
+    x: FloatArray
+    error: FloatArray
+
+
+def settle(answer: Answer, start: FloatArray) -> Settled:
+    """Solve x = G(x) from ``start`` (B, K); what did not settle is told by its error.
+
+    The last call for a state was with the x that is returned for it.
+    """
+    x_of_all = start.copy()
+    error_of_all = np.full(len(start), np.nan)
+    index = np.arange(len(start))
+    x = start
+    damping = np.ones(len(start))
+    best = np.full(len(start), np.inf)
+    history: list[tuple[FloatArray, FloatArray]] = []
+    last: tuple[FloatArray, FloatArray] | None = None
+    for _ in range(_ROUNDS):
+        result, weights = answer(x, index)
+        residual = result - x
+        error = np.abs(residual).max(axis=1, initial=0.0)
+        x_of_all[index], error_of_all[index] = x, error
+        keep = error > SETTLED
+        if not keep.any():
+            break
+        index, x, residual, weights, error = (
+            part[keep] for part in (index, x, residual, weights, error)
+        )
+        damping, best = damping[keep], best[keep]
+        history = [(dx[keep], dF[keep]) for dx, dF in history]
+        if last is not None:
+            history = [*history, (x - last[0][keep], residual - last[1][keep])][-_DEPTH:]
+        last = x, residual
+        grown = error > _GROWTH * best
+        damping = np.where(grown, damping / 2.0, damping)
+        for dx, dF in history:
+            dx[grown] = dF[grown] = 0.0
+        best = np.minimum(best, error)
+        x = x + _step(residual, weights, history, damping)
+    return Settled(x_of_all, error_of_all)
+
+
+def _step(
+    residual: FloatArray,
+    weights: FloatArray,
+    history: list[tuple[FloatArray, FloatArray]],
+    damping: FloatArray,
+) -> FloatArray:
+    """The damped residual, less what the history of changes explains of it."""
+    if not history:
+        return residual * damping[:, np.newaxis]
+    changes = np.stack([dx for dx, _ in history], axis=1)
+    answers = np.stack([dF for _, dF in history], axis=1)
+    weighted = answers * weights[:, np.newaxis]
+    normal = weighted @ answers.swapaxes(1, 2)
+    size = np.trace(normal, axis1=1, axis2=2)
+    places = np.arange(len(history))
+    normal[:, places, places] += np.where(size > 0.0, _RIDGE * size, 1.0)[:, np.newaxis]
+    shares = np.linalg.solve(normal, weighted @ residual[..., np.newaxis])
+    left = residual[:, np.newaxis] - shares.swapaxes(1, 2) @ answers
+    moved = shares.swapaxes(1, 2) @ changes
+    return np.asarray((left * damping[:, np.newaxis, np.newaxis] - moved)[:, 0])
