@@ -52,6 +52,13 @@ class Attraction:
 
     def at(self, temperature: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
         """α, θα and θ²α with θ = d/d ln T, each T.shape + (S,)."""
+        # A grid repeats its temperatures: each is evaluated once.
+        distinct, places = np.unique(temperature, return_inverse=True)
+        places = places.reshape(temperature.shape)
+        alpha, first, second = self._at_distinct(distinct)
+        return alpha[places], first[places], second[places]
+
+    def _at_distinct(self, temperature: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
         t = temperature[..., np.newaxis] / self.critical_temperatures
         hot = (t > 1.0)[..., np.newaxis]
         w, p, L, q = (np.where(hot, a, b) for a, b in zip(self.above, self.below, strict=True))
