@@ -82,7 +82,7 @@ def test_a_textbook_conversion_follows_from_its_constant_and_our_coefficients(
 
 @pytest.mark.parametrize("equation", Equation)
 def test_the_quotient_of_coefficients_of_methanol_synthesis(equation: Equation) -> None:
-    """0.58/(1.13 × 1.10²) = 0.424 at 600 K and 300 atm (Glasstone, Ex. 13.9), charts of two digits."""
+    """0.58/(1.13 × 1.10²) = 0.424 at 600 K and 300 atm (Glasstone, Ex. 13.9, from charts)."""
     library = load_library()
     names = ("CO(g)", "H2(g)", "CH3OH(g)")
     pure = [
