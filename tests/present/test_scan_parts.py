@@ -214,13 +214,10 @@ def test_states_that_are_refused_are_counted(tmp_path: Path) -> None:
     assert result.output == (
         f"3 states written to {out}; 1 of them is not certified and carries its reason.\n"
     )
-    assert (
-        out.read_text()
-        .splitlines()[2]
-        .endswith(
-            "outlet.pressure_drop: found a drop of 31 bar from 30 bar; accepted is a drop that leaves "
-            "a pressure above zero."
-        )
+    third = out.read_text().splitlines()[2]
+    assert third.endswith(
+        "outlet.pressure_drop: found a drop of 31 bar from 30 bar; accepted is a drop that leaves "
+        "a pressure above zero."
     )
 
 
