@@ -20,7 +20,10 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, IntArray
+
+_ALL_PAIRS = 700
+"""Samples up to which every pair counts in the slope."""
 
 FEWEST = 10
 """Samples below which neither test is made."""
@@ -65,23 +68,38 @@ def trend_of(name: str, values: npt.ArrayLike) -> Trend | None:
     if known.size < FEWEST:
         return None
     x = series[known]
-    signs = np.sign(x[np.newaxis] - x[:, np.newaxis])
-    p_drift = _mann_kendall(x, float(np.triu(signs).sum()))
-    # U_t = Σ_{i≤t<j} sgn(x_j − x_i) by adding up what each sample brings when it joins the first.
-    U = np.array([signs[: t + 1, t + 1 :].sum() for t in range(x.size - 1)])
-    t = int(np.argmax(np.abs(U)))
     n = x.size
+    rises = sum(float(np.sign(x[i + 1 :] - x[i]).sum()) for i in range(n - 1))
+    p_drift = _mann_kendall(x, rises)
+    # Σ_j sgn(x_j − x_i) = n + 1 − 2 R_i with midranks R; pairs among the first t cancel.
+    U = np.cumsum(n + 1.0 - 2.0 * _midranks(x))[:-1]
+    t = int(np.argmax(np.abs(U)))
     p_change = min(1.0, 2.0 * float(np.exp(-6.0 * U[t] ** 2 / (n**3 + n**2))))
-    i, j = np.triu_indices(n, 1)
     return Trend(
         name=name,
         samples=n,
         drift_probability=p_drift,
-        slope=float(np.median((x[j] - x[i]) / (known[j] - known[i]))),
+        slope=_median_slope(x, known),
         change_probability=p_change,
         change=int(known[t + 1]),
         step=float(np.median(x[t + 1 :]) - np.median(x[: t + 1])),
     )
+
+
+def _midranks(x: FloatArray) -> FloatArray:
+    from scipy.stats import rankdata
+
+    return np.asarray(rankdata(x), dtype=float)
+
+
+def _median_slope(x: FloatArray, places: IntArray) -> float:
+    """Median slope of all pairs; of a long series of those whose lag is a multiple of a stride."""
+    stride = -(-x.size // _ALL_PAIRS)
+    slopes = [
+        (x[lag:] - x[:-lag]) / (places[lag:] - places[:-lag])
+        for lag in range(stride, x.size, stride)
+    ]
+    return float(np.median(np.concatenate(slopes)))
 
 
 def _mann_kendall(x: FloatArray, S: float) -> float:

@@ -56,3 +56,24 @@ def test_few_or_equal_samples_tell_nothing() -> None:
     assert found is not None
     assert found.drift_probability == 1.0
     assert found.change_probability == 1.0
+
+
+def test_change_point_by_ranks_is_that_of_the_definition() -> None:
+    random = np.random.default_rng(6)
+    for values in (random.standard_normal(31), random.integers(0, 4, 30).astype(float)):
+        signs = np.sign(values[np.newaxis] - values[:, np.newaxis])
+        U = [signs[: t + 1, t + 1 :].sum() for t in range(values.size - 1)]
+        found = trend_of("", values)
+        assert found is not None
+        assert abs(U[found.change - 1]) == np.abs(U).max()
+        n = values.size
+        expected = min(1.0, 2.0 * np.exp(-6.0 * np.max(np.abs(U)) ** 2 / (n**3 + n**2)))
+        assert found.change_probability == pytest.approx(expected, rel=1e-12)
+
+
+def test_a_long_series_tells_its_slope() -> None:
+    random = np.random.default_rng(7)
+    found = trend_of("", 1e-3 * np.arange(4000) + random.standard_normal(4000))
+    assert found is not None
+    assert found.slope == pytest.approx(1e-3, rel=0.05)
+    assert found.drifts(1e-6)
