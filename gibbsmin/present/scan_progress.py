@@ -63,9 +63,6 @@ class Tally:
         """What was written, in a sentence or two."""
         text = f"{self.states} states written to {path}"
         if self.uncertified:
-            one = self.uncertified == 1
-            carry = (
-                "is not certified and carries its" if one else "are not certified and carry their"
-            )
-            text += f"; {self.uncertified} of them {carry} reason"
+            verbs = ("is", "carries its") if self.uncertified == 1 else ("are", "carry their")
+            text += f"; {self.uncertified} of them {verbs[0]} not certified and {verbs[1]} reason"
         return Text(f"{text}.")
