@@ -83,5 +83,9 @@ def test_example_of_an_onset(path: Path) -> None:
     crossings = json.loads(json.dumps(onset_document(found)))["crossings"]
     assert found.certified.all()
     assert len(crossings) == len(expected["crossings"])
+    # So close to zero the figures of both sides depend on the path to the answer.
+    small = dict.fromkeys(("gap", "driving_force_below", "driving_force_above"), 0.0)
     for a, b in zip(crossings, expected["crossings"], strict=True):
-        assert_same({**a, "gap": 0.0}, {**b, "gap": 0.0}, "crossing")
+        assert_same(a | small, b | small, "crossing")
+        assert (a["driving_force_above"] > 0.0) == b["forms_as_it_rises"]
+        assert a["driving_force_below"] * a["driving_force_above"] < 0.0

@@ -16,13 +16,13 @@ from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.crossings import find_crossings
+from gibbsmin.jobs.crossings import beside, find_crossings
 from gibbsmin.jobs.onset_proof import Completeness, completeness
 from gibbsmin.jobs.search import KEPT_OUT, Path, driving_force, path_of, stage_named
 from gibbsmin.thermo.species import Phase
 
 _SIDE = 1e-6
-"""Share of the axis by which both sides of a crossing are solved apart from it."""
+"""Share of the axis by which both sides of a crossing are solved apart from it, at most."""
 
 
 @dataclass(frozen=True)
@@ -38,10 +38,13 @@ class Onset:
     forms : (Z,) whether the phase forms as the axis's number rises; it vanishes otherwise
     temperature, pressure : (Z,) of the stage, K and Pa
     certified : (Z,) whether absence on one side and presence on the other are proved
+    driving_force : (2, Z) of the phase, kept out, on the lower and the upper side, in RT
     gap : (Z,) the larger duality gap of both sides
     there : (m,) whether the phase is there at the axis's lowest value
     unsolved : (m,) grid points without an answer
     completeness : what is known of further crossings, in each row
+    lost_row, lost : (L,) and (2, L), rows and positions in the user's unit between which it forms
+        or vanishes, but there is no certified answer to close in on
     """
 
     phase: str
@@ -55,10 +58,13 @@ class Onset:
     temperature: FloatArray
     pressure: FloatArray
     certified: BoolArray
+    driving_force: FloatArray
     gap: FloatArray
     there: BoolArray
     unsolved: IntArray
     completeness: tuple[Completeness, ...]
+    lost_row: IntArray
+    lost: FloatArray
 
 
 def onset(case: Case) -> Onset:
@@ -89,14 +95,15 @@ def onset(case: Case) -> Onset:
 
     grid = path.grid
     found = find_crossings(force, grid, path.rows)
-    apart = _SIDE * (grid[-1] - grid[0])
-    sides = [_amount(path, case, phase, found.position + d, found.row) for d in (-apart, apart)]
+    places = beside(grid, found.position, _SIDE)
+    sides = [_amount(path, case, phase, place, found.row) for place in places]
     absent, present = (
         [np.where(found.rising == lower_first, low, high) for low, high in zip(*sides, strict=True)]
         for lower_first in (True, False)
     )
-    conditions = np.zeros((2, 0))
+    conditions, forces = np.zeros((2, 0)), np.zeros((2, 0))
     if found.row.size:
+        forces = np.stack([force(place, found.row) for place in places])
         at = path.step(kept_out, found.position, found.row).states.equilibria
         conditions = np.stack([at.temperature, at.pressure])
     rows = np.arange(path.rows)
@@ -114,10 +121,13 @@ def onset(case: Case) -> Onset:
         temperature=conditions[0],
         pressure=conditions[1],
         certified=(absent[0] == 0.0) & (present[0] > 0.0),
+        driving_force=forces,
         gap=np.fmax(absent[1], present[1]),
         there=there,
         unsolved=found.unsolved.sum(axis=1),
         completeness=completeness(kept_out, path, phase, found),
+        lost_row=found.lost_row,
+        lost=path.shown(found.lost),
     )
 
 

@@ -17,6 +17,7 @@ from gibbsmin.arrays import FloatArray
 from gibbsmin.jobs.axes import applied
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
+from gibbsmin.jobs.crossings import beside
 from gibbsmin.jobs.onset import Onset, without_phase
 from gibbsmin.jobs.search import driving_force, path_of, stage_named
 from gibbsmin.jobs.train import run_train
@@ -49,12 +50,12 @@ def onset_uncertainty(case: Case, found: Onset) -> FloatArray:
         if step.stage.key == stage.key and not step.joins
     )
     of_force = chosen.uncertainty(f"driving force {found.phase}")
-    step_size = _STEP * float(np.ptp(path.axis.values))
+    below, above = beside(path.grid, found.position, _STEP)
     low, high = (
-        driving_force(path.step(kept_out, found.position + d, found.row), found.phase)
-        for d in (-step_size, step_size)
+        driving_force(path.step(kept_out, place, found.row), found.phase)
+        for place in (below, above)
     )
-    slope = (high - low) / (2.0 * step_size)
+    slope = (high - low) / (above - below)
     with np.errstate(divide="ignore", invalid="ignore"):
         in_SI = np.where(slope == 0.0, np.nan, of_force / np.abs(slope))
     (a, b), (x, y) = path.axis.values[[0, -1]], path.axis.shown[[0, -1]]

@@ -1,5 +1,6 @@
 """Minimum of the Gibbs energy over batches of states: arrays only, no chemistry."""
 
+from gibbsmin.minimise.between import Interval, largest_between
 from gibbsmin.minimise.certificate import Certificate
 from gibbsmin.minimise.compiled import Warmth
 from gibbsmin.minimise.dispatch import minimise, minimise_heated
@@ -12,12 +13,14 @@ from gibbsmin.minimise.streams import minimise_blocks
 
 __all__ = [
     "Certificate",
+    "Interval",
     "Method",
     "Programme",
     "Settings",
     "Solution",
     "Status",
     "Warmth",
+    "largest_between",
     "minimise",
     "minimise_blocks",
     "minimise_heated",

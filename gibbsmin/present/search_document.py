@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.onset import Onset
 from gibbsmin.jobs.target import Target
@@ -38,15 +38,18 @@ def _onset_document(found: Onset) -> dict[str, Any]:
                 "temperature_K": temperature,
                 "pressure_bar": pressure / 1e5,
                 "certified": certified,
+                "driving_force_below": below if math.isfinite(below) else None,
+                "driving_force_above": above if math.isfinite(above) else None,
                 "gap": gap if math.isfinite(gap) else None,
             }
-            for shown, row, forms, temperature, pressure, certified, gap in zip(
+            for shown, row, forms, temperature, pressure, certified, below, above, gap in zip(
                 found.shown.tolist(),
                 found.row.tolist(),
                 found.forms.tolist(),
                 found.temperature.tolist(),
                 found.pressure.tolist(),
                 found.certified.tolist(),
+                *found.driving_force.tolist(),
                 found.gap.tolist(),
                 strict=True,
             )
@@ -56,6 +59,7 @@ def _onset_document(found: Onset) -> dict[str, Any]:
             {"proved": each.proved, "intervals": each.intervals, "text": each.text}
             for each in found.completeness
         ],
+        "lost_between": _lost(found.second, found.lost_row, found.lost),
         "points_without_answer": found.unsolved.tolist(),
         "cautions": list(CAUTIONS),
     }
@@ -120,6 +124,14 @@ def _axis(axis: Axis) -> dict[str, Any]:
 
 def _column(axis: dict[str, Any]) -> str:
     return f"{axis['name']}, {axis['unit']}" if axis["unit"] else str(axis["name"])
+
+
+def _lost(second: Axis | None, row: IntArray, lost: FloatArray) -> list[dict[str, Any]]:
+    """Where the axis steps over a crossing or an answer that cannot be closed in on."""
+    return [
+        {"lowest": low, "highest": high, "second_value": _second(second, k)}
+        for k, (low, high) in zip(row.tolist(), lost.T.tolist(), strict=True)
+    ]
 
 
 def _second(second: Axis | None, row: int) -> float | None:

@@ -102,6 +102,12 @@ def _onset_sentences(found: Onset) -> Iterator[str]:
         rows = [r for r, each in enumerate(found.completeness) if each.text == text]
         prefix = "" if len(rows) == found.there.size else _row_name(found.second, *rows)
         yield f"{prefix}{text}"
+    for row, (low, high) in zip(found.lost_row.tolist(), found.lost.T.tolist(), strict=True):
+        yield (
+            f"{_row_name(found.second, row)}{found.phase} forms or vanishes between {low:.9g} and "
+            f"{high:.9g} {found.axis.unit}".rstrip()
+            + ", where no state could be certified."
+        )
     if found.unsolved.any():
         yield f"{int(found.unsolved.sum())} points of the grid have no certified answer."
 

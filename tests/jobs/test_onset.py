@@ -108,6 +108,19 @@ def test_a_coarse_grid_finds_what_the_driving_force_turns_between() -> None:
     coarse = onset(case(IN_T | {"count": 5}, steam=steam))
     assert fine.shown.size == 2
     assert coarse.shown == pytest.approx(fine.shown, abs=1e-3)
+    ends_alone = onset(case(IN_T | {"count": 2}, steam=steam))
+    assert ends_alone.shown == pytest.approx(fine.shown, abs=1e-3)
+    assert ends_alone.certified.all()
+
+
+def test_a_window_in_the_outermost_interval_is_found() -> None:
+    """The driving force falls from grid point to grid point, and yet carbon forms before the
+    second."""
+    axis = IN_T | {"first": "790 K", "last": "1400 K", "count": 3}
+    found = onset(case(axis, steam=1.4186))
+    assert found.forms.tolist() == [True, False]
+    assert found.certified.all()
+    assert found.driving_force[0, 0] < 0.0 < found.driving_force[1, 0]
 
 
 def test_a_feed_ratio_is_proved_complete_and_agrees_with_the_constants() -> None:
@@ -119,7 +132,8 @@ def test_a_feed_ratio_is_proved_complete_and_agrees_with_the_constants() -> None
     assert found.completeness[0].proved
     assert found.completeness[0].intervals > 10
     assert found.completeness[0].text == (
-        "Proved: no other crossing between the ends of the axis, but for 0.1 % of it about each."
+        "Proved: no other crossing between the ends of the axis, but for a millionth of it "
+        "about each."
     )
 
 
@@ -146,6 +160,34 @@ def test_along_pressure_carbon_comes_and_goes() -> None:
     assert found.certified.all()
     for pressure in found.position:
         assert carbon_activity(900.0, 1.4, pressure) == pytest.approx(0.0, abs=1e-8)
+
+
+def test_both_sides_are_certified_over_many_decades_of_an_axis() -> None:
+    """A side a millionth of the whole axis away would lie below vacuum."""
+    axis = {"vary": "outlet.pressure", "first": "1e-4 bar", "last": "1000 bar", "count": 15}
+    outlet = {"temperature": "700 K", "pressure": "1 bar"}
+    found = onset(case(axis | {"spacing": "logarithmic"}, steam=1.2, outlet=outlet))
+    assert found.forms.tolist() == [True, False]
+    assert found.position[0] < 30.0
+    assert found.certified.all()
+    for pressure in found.position:
+        assert carbon_activity(700.0, 1.2, pressure) == pytest.approx(0.0, abs=1e-8)
+
+
+def test_every_row_of_a_boundary_is_proved() -> None:
+    """Short intervals close to a crossing are the hard ones."""
+    second = {"vary": "outlet.temperature", "first": "800 K", "last": "1200 K", "count": 9}
+    curve = onset(case(RATIO, second))
+    assert curve.row.tolist() == list(range(9))
+    assert all(each.proved for each in curve.completeness)
+
+
+def test_what_cannot_be_proved_is_said() -> None:
+    """Without steam there is no oxygen at the axis's end, and no potential of it to go by."""
+    (statement,) = onset(case(RATIO | {"first": 0.0})).completeness
+    assert not statement.proved
+    assert statement.text.startswith("Not proved between 0 and ")
+    assert statement.text.endswith("; complete to the grid used: 21 values.")
 
 
 def test_water_drops_out_at_its_saturation() -> None:
@@ -211,6 +253,17 @@ def test_crossings_of_a_known_function_are_all_found() -> None:
         exact.append(sorted(z for z in zeros if 0.5 < z < 9.0))
     for row in range(3):
         assert found.position[found.row == row] == pytest.approx(exact[row], abs=1e-12)
+
+
+def test_a_change_of_sign_that_cannot_be_closed_in_on_is_told() -> None:
+    def function(x: Any, row: Any) -> Any:
+        return np.where(np.abs(x - 3.0) < 0.1 * row, np.nan, x - 3.0)
+
+    found = find_crossings(function, np.linspace(0.0, 7.0, 8)[[0, 2, 4, 7]], 2)
+    assert found.row.tolist() == [0]
+    assert found.lost_row.tolist() == [1]
+    assert found.lost[:, 0] == pytest.approx([2.9, 3.1], abs=1e-9)
+    assert not found.unsolved.any()
 
 
 @pytest.mark.parametrize(
