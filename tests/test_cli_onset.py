@@ -104,6 +104,20 @@ def test_a_target_out_of_reach_tells_the_range(tmp_path: Path) -> None:
     assert "  no answer: on the axis the result runs from " in output
 
 
+def test_a_value_that_is_jumped_over_is_said_so_and_not_called_an_answer(tmp_path: Path) -> None:
+    path = tmp_path / "case.toml"
+    steam = CASE.replace('["CH4", "H2O", "CO", "CO2", "H2", "C(graphite)"]', '["H2O", "H2O(l)"]')
+    steam = steam.replace("CH4 = 1", "H2O = 1").replace('"300 degC"', '"50 degC"')
+    path.write_text(steam + '\n[target]\nresult = "heat"\nvalue = "-60 kJ"\n')
+    output = " ".join(run(path, "onset").split())
+    assert "the result passes the value without meeting it: it jumps there" in output
+    assert "no answer" not in output
+    document = json.loads(run(path, "onset", "--json"))
+    assert document["answers"] == []
+    (lost,) = document["lost_between"]
+    assert 90.0 < lost["lowest"] <= lost["highest"] < 110.0
+
+
 def test_a_phase_that_never_forms_is_said_to_be_absent(tmp_path: Path) -> None:
     path = tmp_path / "case.toml"
     path.write_text(ONSET.replace("H2O = 1.1", "H2O = 9"))

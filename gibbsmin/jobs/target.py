@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -12,27 +11,14 @@ from gibbsmin.errors import InputError
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.crossings import find_crossings
-from gibbsmin.jobs.feed_parts import resolve
 from gibbsmin.jobs.search import Path, path_of, stage_named
-from gibbsmin.jobs.train import Step
-from gibbsmin.reactor.conversion import conversions
-from gibbsmin.results import WATER
-from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.species import Phase
-from gibbsmin.units import read_amount, read_heat, read_pressure, read_share, read_temperature
+from gibbsmin.jobs.target_results import Result, result_of
 
-Result = Callable[[Step], FloatArray]
-Reader = Callable[[object], float]
+_MET = 1e-8
+"""Share of the wanted value within which it is met; elsewhere the result jumps over it."""
 
-_OF_STAGE: Mapping[str, tuple[Reader, Result]] = {
-    "temperature": (read_temperature, lambda step: step.states.equilibria.temperature),
-    "pressure": (read_pressure, lambda step: step.states.equilibria.pressure),
-    "heat": (lambda given: read_heat(given).value, lambda step: step.states.energy.heat),
-    "shaft work": (
-        lambda given: read_heat(given).value,
-        lambda step: step.states.energy.shaft_work,
-    ),
-}
+_OF_RANGE = 1e-12
+"""The same as a share of the result's range, for a wanted value of zero."""
 
 
 @dataclass(frozen=True)
@@ -51,6 +37,8 @@ class Target:
     certified : (Z,) whether that state is proved
     lowest, highest : (m,) the result's range on the grid, which tells how far off a target is
     unsolved : (m,) grid points without an answer
+    lost_row, lost : (L,) and (2, L), rows and positions in the user's unit between which the result
+        passes the value without meeting it: it jumps there, or no state is certified
     """
 
     result: str
@@ -67,6 +55,8 @@ class Target:
     lowest: FloatArray
     highest: FloatArray
     unsolved: IntArray
+    lost_row: IntArray
+    lost: FloatArray
 
 
 def target(case: Case) -> Target:
@@ -91,7 +81,7 @@ def target(case: Case) -> Target:
     stage = stage_named(case, case.target.stage, "target.stage")
     path = path_of(case, stage, case.library)
     try:
-        read, result = result_of(case.target.result, path.library)
+        read, result = result_of(case.target.result, case)
     except InputError as error:
         raise error.at(key="target.result", file=case.file) from None
     try:
@@ -109,47 +99,29 @@ def target(case: Case) -> Target:
     except InputError as error:
         raise error.at(file=case.file) from None
     by_row = grid.reshape(path.rows, -1)
+    lowest, highest = _extreme(by_row, np.fmin), _extreme(by_row, np.fmax)
+    room = np.fmax(_MET * abs(wanted), _OF_RANGE * (highest - lowest)[found.row])
+    with np.errstate(invalid="ignore"):
+        met = np.abs(reached - wanted) <= room
+    jumps = np.stack([found.position[~met]] * 2)
     return Target(
         result=case.target.result,
         stage=stage.name,
         wanted=wanted,
         axis=path.axis,
         second=path.second,
-        row=found.row,
-        position=found.position,
-        shown=path.shown(found.position),
-        rising=found.rising,
-        reached=reached,
-        certified=certified,
-        lowest=_extreme(by_row, np.fmin),
-        highest=_extreme(by_row, np.fmax),
+        row=found.row[met],
+        position=found.position[met],
+        shown=path.shown(found.position[met]),
+        rising=found.rising[met],
+        reached=reached[met],
+        certified=certified[met],
+        lowest=lowest,
+        highest=highest,
         unsolved=found.unsolved.sum(axis=1),
+        lost_row=np.concatenate([found.lost_row, found.row[~met]]),
+        lost=path.shown(np.concatenate([found.lost, jumps], axis=1)),
     )
-
-
-def result_of(text: str, library: Library) -> tuple[Reader, Result]:
-    """How a result's value is read, and how it is taken from a solved stage.
-
-    Results are ``temperature``, ``pressure``, ``heat``, ``shaft work`` and, with a species,
-    ``fraction``, ``dry fraction``, ``amount``, ``conversion`` and ``activity``.
-
-    Raises
-    ------
-    InputError
-        for another text; a record that is no candidate is told when the result is taken.
-    """
-    if text in _OF_STAGE:
-        return _OF_STAGE[text]
-    kind, _, species = text.rpartition(" ")
-    if kind not in _OF_SPECIES:
-        raise InputError(
-            f'found "{text}", which is no result',
-            f"accepted is {', '.join(_OF_STAGE)}, or one of {', '.join(_OF_SPECIES)} with a "
-            'species, such as "dry fraction CH4"',
-        )
-    name = resolve(species, library).name
-    read, of = _OF_SPECIES[kind]
-    return read, lambda step: of(step, name)
 
 
 def _extreme(values: FloatArray, of: np.ufunc) -> FloatArray:
@@ -165,69 +137,3 @@ def _values(
     step = path.step(case, position, row)
     certified = step.states.equilibria.solution.certified
     return np.where(certified, result(step), np.nan), certified
-
-
-def _column(step: Step, name: str) -> int:
-    names = [record.name for record in step.states.model.records]
-    if name not in names:
-        raise InputError(
-            f'found "{name}", which is no candidate of {step.stage.name}',
-            f"accepted is one of {', '.join(names)}",
-            key="target.result",
-        )
-    return names.index(name)
-
-
-def _amount(step: Step, name: str) -> FloatArray:
-    return step.states.equilibria.amounts[:, _column(step, name)]
-
-
-def _fraction(step: Step, name: str, without: str = "") -> FloatArray:
-    records = step.states.model.records
-    counted = np.array([r.phase is Phase.GAS and r.name != without for r in records])
-    if not counted[_column(step, name)]:
-        raise InputError(
-            f'found "{name}", which is no part of that gas',
-            f"accepted is a gas, such as {records[int(np.argmax(counted))].name}",
-            key="target.result",
-        )
-    with np.errstate(invalid="ignore", divide="ignore"):
-        total = step.states.equilibria.amounts[:, counted].sum(axis=1)
-        return np.asarray(_amount(step, name) / total)
-
-
-def _conversion(step: Step, name: str) -> FloatArray:
-    shares = conversions(
-        step.states.inlet, step.states.model.records, step.states.equilibria.amounts
-    )
-    if name not in shares:
-        raise InputError(
-            f'found "{name}", which does not enter {step.stage.name}',
-            f"accepted is one of {', '.join(shares)}",
-            key="target.result",
-        )
-    return shares[name]
-
-
-def _activity(step: Step, name: str) -> FloatArray:
-    forces = step.states.equilibria.solution.certificate.driving_forces
-    return np.asarray(np.exp(forces[:, _column(step, name)]))
-
-
-def _moles(given: object) -> float:
-    return read_amount(given).value
-
-
-def _plain(given: object) -> float:
-    if isinstance(given, bool) or not isinstance(given, int | float) or given <= 0.0:
-        raise InputError(f'found "{given}"', "accepted is a number above zero, such as 0.5")
-    return float(given)
-
-
-_OF_SPECIES: Mapping[str, tuple[Reader, Callable[[Step, str], FloatArray]]] = {
-    "fraction": (read_share, _fraction),
-    "dry fraction": (read_share, lambda step, name: _fraction(step, name, WATER)),
-    "conversion": (read_share, _conversion),
-    "amount": (_moles, _amount),
-    "activity": (_plain, _activity),
-}

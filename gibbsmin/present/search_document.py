@@ -94,6 +94,7 @@ def target_document(found: Target) -> dict[str, Any]:
             [low if math.isfinite(low) else None, high if math.isfinite(high) else None]
             for low, high in zip(found.lowest.tolist(), found.highest.tolist(), strict=True)
         ],
+        "lost_between": _lost(found.second, found.lost_row, found.lost),
         "points_without_answer": found.unsolved.tolist(),
         "cautions": list(CAUTIONS),
     }

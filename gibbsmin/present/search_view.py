@@ -115,13 +115,21 @@ def _onset_sentences(found: Onset) -> Iterator[str]:
 def _target_sentences(found: Target) -> Iterator[str]:
     answered = set(found.row.tolist())
     for row in range(found.lowest.size):
-        if row not in answered and np.isfinite(found.lowest[row]):
+        lost = row in found.lost_row
+        if row not in answered and not lost and np.isfinite(found.lowest[row]):
             yield (
                 f"{_row_name(found.second, row)}no answer: on the axis the result runs from "
                 f"{significant(float(found.lowest[row]))} to "
                 f"{significant(float(found.highest[row]))} in SI units, and "
                 f"{significant(found.wanted)} is wanted."
             )
+    for row, (low, high) in zip(found.lost_row.tolist(), found.lost.T.tolist(), strict=True):
+        yield (
+            f"{_row_name(found.second, row)}between {low:.9g} and {high:.9g} {found.axis.unit}"
+        ).rstrip() + (
+            " the result passes the value without meeting it: it jumps there, or no state could "
+            "be certified."
+        )
     yield f"Complete to the grid used: {found.axis.values.size} values of {found.axis.name}."
     if found.unsolved.any():
         yield f"{int(found.unsolved.sum())} points of the grid have no certified answer."

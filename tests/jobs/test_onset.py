@@ -182,6 +182,13 @@ def test_every_row_of_a_boundary_is_proved() -> None:
     assert all(each.proved for each in curve.completeness)
 
 
+def test_nothing_is_proved_of_a_real_gas_whose_energies_move_with_the_feed() -> None:
+    outlet = CASE["outlet"] | {"gas": "Peng-Robinson"}
+    (statement,) = onset(case(RATIO, outlet=outlet)).completeness
+    assert not statement.proved
+    assert statement.text == "Complete to the grid used: 21 values of H2O/CH4."
+
+
 def test_what_cannot_be_proved_is_said() -> None:
     """Without steam there is no oxygen at the axis's end, and no potential of it to go by."""
     (statement,) = onset(case(RATIO | {"first": 0.0})).completeness

@@ -47,6 +47,7 @@ def find(result: str, value: Any, axis: dict[str, Any] = IN_T, **top: Any) -> Ta
         ("conversion CH4", "60 %", 0.6),
         ("heat", "150 kJ", 150e3),
         ("amount CO", "0.3 mol", 0.3),
+        ("amount CO", "8.403 g", 8.403 / 28.010),  # molar mass of CO: IUPAC atomic weights
         ("activity C(graphite)", 0.2, 0.2),
     ],
 )
@@ -54,6 +55,7 @@ def test_an_answer_meets_its_target_in_a_prediction(result: str, value: Any, wan
     found = find(result, value)
     assert found.shown.size >= 1
     assert found.certified.all()
+    assert not found.lost_row.size
     for shown in found.shown.tolist():
         outlet = {"temperature": f"{shown!r} degC", "pressure": "20 bar"}
         final = gibbsmin.predict(gibbsmin.load_case(deepcopy(CASE) | {"outlet": outlet})).final
@@ -95,6 +97,41 @@ def test_an_adiabatic_temperature_is_met_by_preheat() -> None:
     assert found.reached == pytest.approx([693.15], rel=1e-10)
 
 
+def test_a_gauge_pressure_stands_on_the_site_s() -> None:
+    axis = {"vary": "outlet.pressure", "first": "10 barg", "last": "30 barg", "count": 5}
+    found = find("pressure", "20 barg", axis, site_pressure="0.8 bar")
+    assert found.wanted == pytest.approx(20.8e5, rel=1e-12)
+    assert found.shown == pytest.approx([20.0], rel=1e-10)
+
+
+def test_a_value_that_the_result_jumps_over_is_told() -> None:
+    """Steam gives off 40 kJ/mol where it condenses: no temperature gives half of it."""
+    water = {"temperature": "25 degC", "pressure": "1 bar", "unit": "mol", "amounts": {"H2O": 1.0}}
+    found = find(
+        "heat",
+        "-20 kJ",
+        IN_T | {"first": "50 degC", "last": "150 degC"},
+        feed={"water": water},
+        species={"consider": ["H2O", "H2O(l)"]},
+        outlet={"temperature": "80 degC", "pressure": "1 bar"},
+    )
+    assert found.shown.size == 0
+    assert found.lost_row.tolist() == [0]
+    boiling = gibbsmin.onset(
+        gibbsmin.load_case(
+            {
+                "feed": {"water": water},
+                "species": {"consider": ["H2O", "H2O(l)"]},
+                "outlet": {"temperature": "80 degC", "pressure": "1 bar"},
+                "axis": [IN_T | {"first": "50 degC", "last": "150 degC"}],
+                "onset": {"phase": "H2O(l)"},
+            }
+        )
+    )
+    assert found.lost[:, 0] == pytest.approx(boiling.shown.tolist() * 2, abs=1e-6)
+    assert found.lowest[0] < found.wanted < found.highest[0]
+
+
 def test_a_second_axis_gives_a_curve_of_answers() -> None:
     second = {"vary": "outlet.pressure", "values": ["10 bar", "20 bar", "30 bar"]}
     tables = deepcopy(CASE) | {
@@ -128,6 +165,23 @@ def test_a_second_axis_gives_a_curve_of_answers() -> None:
             "5 bar",
             'target.value: found "5 bar", which is a pressure; accepted is a heat such as '
             '"1.5 MW", "2 Gcal/h" or "30 kJ".',
+        ),
+        (
+            "heat",
+            "150 kW",
+            'target.value: found a heat in "kW", while the feeds are in "mol"; accepted is a '
+            "quantity, as the feeds are.",
+        ),
+        (
+            "amount CO",
+            "3 kg/h",
+            'target.value: found an amount in "kg/h", while the feeds are in "mol"; accepted is a '
+            "quantity, as the feeds are.",
+        ),
+        (
+            "activity C(graphite)",
+            "0.2",
+            'target.value: found "0.2"; accepted is a number above zero, such as 0.5.',
         ),
         (
             "fraction NH3",
