@@ -82,6 +82,7 @@ def test_example_of_an_onset(path: Path) -> None:
     expected = json.loads(path.read_text(encoding="utf-8"))
     crossings = json.loads(json.dumps(onset_document(found)))["crossings"]
     assert found.certified.all()
+    assert all(each.proved for each in found.completeness)
     assert len(crossings) == len(expected["crossings"])
     # So close to zero the figures of both sides depend on the path to the answer.
     small = dict.fromkeys(("gap", "driving_force_below", "driving_force_above"), 0.0)

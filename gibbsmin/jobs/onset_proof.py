@@ -18,8 +18,9 @@ from gibbsmin.jobs.crossings import Crossings
 from gibbsmin.jobs.search import Path, driving_force
 from gibbsmin.minimise import Interval, largest_between
 
-_ABOUT = 1e-6
-"""Share of the axis about a crossing that is not examined for further ones."""
+_ABOUT = 1e-5
+"""Share of the axis about a crossing that is not examined for further ones: nearer to it the digits
+of the multipliers are too few."""
 
 _LEVELS = 16
 """How often an interval is halved at most."""
@@ -37,7 +38,7 @@ class Completeness:
 
     Attributes
     ----------
-    proved : whether there are no others, but for a millionth of the axis about each
+    proved : whether there are no others, but for 0.001 % of the axis about each
     intervals : how many intervals that took
     text : a sentence for people
     """
@@ -71,7 +72,7 @@ def completeness(
 def _statement(path: Path, examined: int, left_open: FloatArray) -> Completeness:
     if not left_open.size:
         text = (
-            "Proved: no other crossing between the ends of the axis, but for a millionth of it "
+            "Proved: no other crossing between the ends of the axis, but for 0.001 % of it "
             "about each."
         )
         return Completeness(True, examined, text)

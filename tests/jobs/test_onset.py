@@ -132,8 +132,7 @@ def test_a_feed_ratio_is_proved_complete_and_agrees_with_the_constants() -> None
     assert found.completeness[0].proved
     assert found.completeness[0].intervals > 10
     assert found.completeness[0].text == (
-        "Proved: no other crossing between the ends of the axis, but for a millionth of it "
-        "about each."
+        "Proved: no other crossing between the ends of the axis, but for 0.001 % of it about each."
     )
 
 
