@@ -8,6 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import minimise
 from gibbsmin.reactor.mixture import Mixture
@@ -166,6 +167,20 @@ def _told(bias: FugacityBias) -> str:
     if bias.T_low == bias.T_high:
         return f"{bias.deviation:+.1f} % ({bias.T_low:g} K and {bias.P_high:g} bar)"
     return f"{bias.deviation:+.1f} % ({bias.T_low:g}–{bias.T_high:g} K, to {bias.P_high:g} bar)"
+
+
+def changed_gas_warning(before: StageCase, stage: StageCase) -> str:
+    """What is lost between stages that take their gases differently; empty where they do not."""
+    first, second = (
+        "ideal" if equation is None else equation.value
+        for equation in (before.chemistry.equation, stage.chemistry.equation)
+    )
+    if first == second:
+        return ""
+    return (
+        f'The stage before takes its gas as "{first}", this one as "{second}": the departure of '
+        "the enthalpy and entropy of what passes on is counted in one and not in the other."
+    )
 
 
 def ideal_gas_warning(states: StageStates) -> str:

@@ -11,6 +11,7 @@ from gibbsmin.jobs.case_stage import StageCase
 from gibbsmin.jobs.figures import figures_of
 from gibbsmin.jobs.happenings import extents_of, yields_of
 from gibbsmin.jobs.real_gas import (
+    changed_gas_warning,
     ideal_gas_warning,
     real_gas_notes,
     real_gas_outlet,
@@ -33,10 +34,13 @@ from gibbsmin.thermo.species import Species
 _TRACE = 1e-6
 
 
-def stage_outlet(step: Step, library: Library, ideal: Step | None = None) -> StageOutlet:
+def stage_outlet(
+    step: Step, library: Library, ideal: Step | None = None, before: StageCase | None = None
+) -> StageOutlet:
     """The first state of a solved stage, with all that follows from it.
 
-    ``ideal`` is the same stage with an ideal gas, to compare a real one with.
+    ``ideal`` is the same stage with an ideal gas, to compare a real one with; ``before`` the stage
+    whose outlet enters.
 
     Raises
     ------
@@ -90,7 +94,7 @@ def stage_outlet(step: Step, library: Library, ideal: Step | None = None) -> Sta
             step.streams,
             state,
             entries,
-            _gas_warnings(step, gas) if certified else (),
+            _gas_warnings(step, gas, before) if certified else (),
             entropy.remark,
             status,
         ),
@@ -105,7 +109,9 @@ def stage_outlet(step: Step, library: Library, ideal: Step | None = None) -> Sta
     )
 
 
-def _gas_warnings(step: Step, gas: RealGasOutlet | None) -> Iterator[str]:
+def _gas_warnings(step: Step, gas: RealGasOutlet | None, before: StageCase | None) -> Iterator[str]:
+    if before is not None and (found := changed_gas_warning(before, step.stage)):
+        yield found
     if gas is not None:
         yield from real_gas_warnings(step, gas)
     elif step.stage.chemistry.equation is None and (found := ideal_gas_warning(step.states)):

@@ -202,6 +202,8 @@ def _determined(model: StageModel, state: SolvedState, columns: FloatArray) -> B
     Records outside the model take no part in its holds, so their columns are zero there.
     """
     present = model.balance.matrix[:, state.amounts > 0.0]
+    if not present.shape[1]:
+        return np.zeros(columns.shape[1], dtype=bool)
     basis, sizes, _ = np.linalg.svd(present, full_matrices=False)
     basis = basis[:, sizes > _RANK_TOLERANCE * sizes[0]]
     outside = columns - basis @ (basis.T @ columns)

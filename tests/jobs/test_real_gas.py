@@ -11,6 +11,7 @@ import pytest
 import gibbsmin
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import load_case
+from gibbsmin.jobs.onset import onset
 from gibbsmin.present.outlet_document import outlet_document
 from gibbsmin.results import StageOutlet
 from gibbsmin.thermo.real_gas import Equation
@@ -172,6 +173,69 @@ def test_a_train_with_a_bypass_joins_real_gases() -> None:
     assert outlet.entropy_generation > 0.0
     names = [entry.name for entry in outlet.stages[0].real_gas.comparison]  # type: ignore[union-attr]
     assert names[0] == "temperature"
+
+
+def test_stages_that_take_their_gases_differently_are_told() -> None:
+    case = deepcopy(SYNTHESIS)
+    outlet = case.pop("outlet")
+    case["stage"] = [
+        {"name": "bed", **outlet},
+        {"name": "cooler", "temperature": "300 degC", "pressure": "190 bar", "reactions": "none"},
+    ]
+    bed, cooler = gibbsmin.predict(load_case(case)).stages
+    words = "The stage before takes"
+    assert not warnings_with(bed, words)
+    assert warnings_with(cooler, words) == [
+        'The stage before takes its gas as "Soave-Redlich-Kwong", this one as "ideal": the '
+        "departure of the enthalpy and entropy of what passes on is counted in one and not in "
+        "the other."
+    ]
+
+
+def test_what_does_not_settle_has_no_figures(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr("gibbsmin.reactor.settle._ROUNDS", 2)
+    tables = deepcopy(SYNTHESIS)
+    tables["axis"] = [{"vary": "outlet.pressure", "values": ["1e-7 bar", "200 bar"]}]
+    table = gibbsmin.scan(load_case(tables)).table
+    assert table["status"].tolist() == ["certified", "unsettled"]
+    assert np.isnan(table["y NH3(g)"]).tolist() == [False, True]
+    stage = outlet_of()
+    assert not stage.certified
+    assert stage.real_gas is None
+    assert stage.warnings == (
+        "Not certified, so no figure is given: The fugacity coefficients of the gas and its "
+        "composition did not settle.",
+    )
+    assert np.isnan(stage.amounts).all()
+
+
+def test_an_onset_is_found_in_a_real_gas() -> None:
+    tables: dict[str, Any] = {
+        "feed": {
+            "gas": {
+                "temperature": "500 degC",
+                "pressure": "60 bar",
+                "unit": "mol",
+                "amounts": {"CH4": 1, "H2O": 1},
+            }
+        },
+        "species": {"consider": ["CH4", "H2O", "CO", "CO2", "H2", "C(graphite)"]},
+        "outlet": {"temperature": "800 degC", "pressure": "60 bar", "gas": "Peng-Robinson"},
+        "onset": {"phase": "C(graphite)"},
+        "axis": [
+            {"vary": "feed.gas.amounts.H2O", "first": "0.2 mol", "last": "2 mol", "count": 20}
+        ],
+    }
+    found = onset(load_case(tables))
+    assert found.certified.all()
+    assert found.shown.size >= 1
+    for row, position in enumerate(found.shown.tolist()):
+        present = []
+        for side in (-1e-4, 1e-4):
+            tables["feed"]["gas"]["amounts"]["H2O"] = position + side
+            stage = gibbsmin.predict(load_case(tables)).final
+            present.append(bool(stage.amounts[-1] > 0.0))
+        assert present == [not found.forms[row], bool(found.forms[row])]
 
 
 def test_a_scan_gives_the_same_as_each_state() -> None:
