@@ -3,7 +3,7 @@
 from gibbsmin.minimise.between import Interval, largest_between
 from gibbsmin.minimise.certificate import Certificate
 from gibbsmin.minimise.compiled import Warmth
-from gibbsmin.minimise.dispatch import minimise, minimise_heated
+from gibbsmin.minimise.dispatch import minimise, minimise_heated, unanswered
 from gibbsmin.minimise.kernel.form import settle_form
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
@@ -25,4 +25,5 @@ __all__ = [
     "minimise_blocks",
     "minimise_heated",
     "settle_form",
+    "unanswered",
 ]

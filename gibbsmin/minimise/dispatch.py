@@ -27,7 +27,7 @@ def minimise(programme: Programme, settings: Settings = _DEFAULT) -> Solution:
 
     A state that fails is flagged in ``status`` and carries NaN; the others are untouched.
     """
-    solution = _unanswered(programme)
+    solution = unanswered(programme)
     _flag_invalid(programme, solution)
     if settings.compiled:
         answer_batch(programme, settings, solution)
@@ -50,7 +50,7 @@ def minimise_heated(
     that takes up heat at constant temperature, is left uncertified with NaN, for a search by
     :func:`minimise` at given temperatures.
     """
-    solution = _unanswered(programme)
+    solution = unanswered(programme)
     _flag_invalid(programme, solution)
     temperatures = answer_heated_batch(programme, warmth, settings, solution)
     return solution, np.where(solution.certified, temperatures, np.nan)
@@ -122,7 +122,7 @@ def _accept(
     return True
 
 
-def _unanswered(programme: Programme) -> Solution:
+def unanswered(programme: Programme) -> Solution:
     """A solution in which no state is answered yet."""
     states, (rows, species) = programme.states, programme.matrix.shape
     return Solution(

@@ -9,14 +9,21 @@ near the last temperature T₀ the energies gain ln φᵢ + H̄ᵢ/R (1/T − 1/
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 
 from gibbsmin.arrays import FloatArray, IntArray
-from gibbsmin.minimise import Programme, Solution, Status, minimise, minimise_heated
+from gibbsmin.minimise import (
+    Programme,
+    Solution,
+    Status,
+    minimise,
+    minimise_heated,
+    unanswered,
+)
 from gibbsmin.reactor.model import StageModel
-from gibbsmin.reactor.settle import SETTLED, settle
+from gibbsmin.reactor.settle import SETTLED, settle, settle_along
 from gibbsmin.thermo.real_gas import RealGas
 
 
@@ -51,25 +58,25 @@ def real_equilibria(
     """B states at T (K) and P (Pa); ln φ (B, S) of states near by may be given to start from."""
     programme = model.programme(temperature, pressure, feed)
     columns = np.flatnonzero(model.gas)
-    roots = gas.roots(temperature)
-    found = _Found()
+    pulls = gas.pulls(temperature)
+    found = unanswered(programme)
 
     def answer(logs: FloatArray, index: IntArray) -> tuple[FloatArray, FloatArray]:
         energies = programme.energies[index]
         energies[:, columns] += logs
         part = minimise(_part(programme, index, energies))
-        found.put(index, part)
+        _put(found, index, part)
         n = part.amounts[:, columns]
-        state = gas.state(temperature[index], pressure[index], n, roots[index])
+        state = gas.state(temperature[index], pressure[index], n, pulls.of_states(index))
         return _known(state.log_fugacity, n), state.y
 
-    first = np.zeros((len(feed), columns.size))
-    if start is not None:
-        first = np.nan_to_num(start[:, columns])
-    settled = settle(answer, first)
+    if start is None:
+        settled = settle_along(answer, np.zeros((len(feed), columns.size)))
+    else:
+        settled = settle(answer, np.nan_to_num(start[:, columns]))
     logarithms = np.zeros(programme.energies.shape)
     logarithms[:, columns] = settled.x
-    return _judged(found.solution, settled.error), Fugacity(logarithms, settled.error)
+    return _judged(found, settled.error), Fugacity(logarithms, settled.error)
 
 
 def real_heated_equilibria(
@@ -83,7 +90,7 @@ def real_heated_equilibria(
     """B states of given enthalpy (B,) J, sought from ``start`` (B,) K, and their temperatures."""
     programme, warmth = model.heated_programme(enthalpy, pressure, feed, start)
     columns = np.flatnonzero(model.gas)
-    found = _Found()
+    found = unanswered(programme)
     temperature = start.copy()
     logarithms = np.zeros(programme.energies.shape)
 
@@ -100,7 +107,7 @@ def real_heated_equilibria(
             start=temperature[index],
         )
         part, T = minimise_heated(_part(programme, index, energies), heated)
-        found.put(index, part)
+        _put(found, index, part)
         temperature[index] = np.where(part.certified, T, temperature[index])
         n = part.amounts[:, columns]
         state = gas.state(T, pressure[index], n)
@@ -110,8 +117,8 @@ def real_heated_equilibria(
         scale = (T / start[index])[:, np.newaxis]
         return np.hstack([logs + slopes, -slopes * scale]), np.hstack([state.y, state.y])
 
-    settled = settle(answer, np.zeros((len(feed), 2 * columns.size)))
-    solution = _judged(found.solution, settled.error)
+    settled = settle_along(answer, np.zeros((len(feed), 2 * columns.size)))
+    solution = _judged(found, settled.error)
     T = np.where(solution.certified, temperature, np.nan)
     return solution, T, Fugacity(logarithms, settled.error)
 
@@ -141,13 +148,10 @@ def _judged(solution: Solution, error: FloatArray) -> Solution:
     )
 
 
-class _Found:
-    """The latest answer of every state."""
-
-    solution: Solution
-
-    def put(self, index: IntArray, part: Solution) -> None:
-        if not hasattr(self, "solution"):
-            self.solution = part
-        else:
-            self.solution = self.solution.with_states(index, part)
+def _put(whole: Solution, index: IntArray, part: Solution) -> None:
+    """Write the answers of some states over those that stand there."""
+    for ours, theirs in ((whole, part), (whole.certificate, part.certificate)):
+        for field in fields(ours):
+            array = getattr(ours, field.name)
+            if isinstance(array, np.ndarray):
+                array[index] = getattr(theirs, field.name)

@@ -23,37 +23,58 @@ _ROUNDS = 80
 _DEPTH = 3
 _GROWTH = 1.5
 _RIDGE = 1e-13
+_STRIDE = 8
+_FEWEST = 64
 
 Answer = Callable[[FloatArray, IntArray], tuple[FloatArray, FloatArray]]
 """Of x (k, K) and the indices (k,) of the states: G (k, K) and the weights (k, K)."""
 
+History = list[tuple[FloatArray, FloatArray]]
+"""Changes of x and of F between rounds, each (k, K); 0 where a state has none."""
+
 
 @dataclass(frozen=True)
 class Settled:
-    """Where B states came to rest: x (B, K) and the largest residual (B,), NaN for no answer."""
+    """Where B states came to rest.
+
+    Attributes
+    ----------
+    x : (B, K)
+    error : (B,) the largest residual; NaN for no answer
+    history : the first changes on the way, from which a neighbour may learn
+    """
 
     x: FloatArray
     error: FloatArray
+    history: History
 
 
-def settle(answer: Answer, start: FloatArray) -> Settled:
+def settle(answer: Answer, start: FloatArray, history: History | None = None) -> Settled:
     """Solve x = G(x) from ``start`` (B, K); what did not settle is told by its error.
 
     The last call for a state was with the x that is returned for it.
     """
     x_of_all = start.copy()
     error_of_all = np.full(len(start), np.nan)
+    firsts: History = []
+    history = history or []
     index = np.arange(len(start))
     x = start
     damping = np.ones(len(start))
     best = np.full(len(start), np.inf)
-    history: list[tuple[FloatArray, FloatArray]] = []
     last: tuple[FloatArray, FloatArray] | None = None
     for _ in range(_ROUNDS):
         result, weights = answer(x, index)
         residual = result - x
         error = np.abs(residual).max(axis=1, initial=0.0)
         x_of_all[index], error_of_all[index] = x, error
+        if last is not None:
+            change = (x - last[0], residual - last[1])
+            history = [*history, change][-_DEPTH:]
+            if len(firsts) < _DEPTH:
+                firsts.append((np.zeros(start.shape), np.zeros(start.shape)))
+                for whole, part in zip(firsts[-1], change, strict=True):
+                    whole[index] = part
         keep = error > SETTLED
         if not keep.any():
             break
@@ -62,8 +83,6 @@ def settle(answer: Answer, start: FloatArray) -> Settled:
         )
         damping, best = damping[keep], best[keep]
         history = [(dx[keep], dF[keep]) for dx, dF in history]
-        if last is not None:
-            history = [*history, (x - last[0][keep], residual - last[1][keep])][-_DEPTH:]
         last = x, residual
         grown = error > _GROWTH * best
         damping = np.where(grown, damping / 2.0, damping)
@@ -71,13 +90,38 @@ def settle(answer: Answer, start: FloatArray) -> Settled:
             dx[grown] = dF[grown] = 0.0
         best = np.minimum(best, error)
         x = x + _step(residual, weights, history, damping)
-    return Settled(x_of_all, error_of_all)
+    return Settled(x_of_all, error_of_all, firsts)
+
+
+def settle_along(answer: Answer, start: FloatArray) -> Settled:
+    """The same for states of which neighbours are alike, as on a grid.
+
+    Every eighth state is settled first; all start from what lies between these, and with what the
+    nearest of them learned on its way.
+    """
+    states = len(start)
+    if states < _FEWEST:
+        return settle(answer, start)
+    coarse = np.arange(0, states, _STRIDE)
+    first = settle(lambda x, index: answer(x, coarse[index]), start[coarse])
+    known = np.where((first.error <= SETTLED)[:, np.newaxis], first.x, start[coarse])
+    below, steps = np.divmod(np.arange(states), _STRIDE)
+    above = np.minimum(below + 1, coarse.size - 1)
+    between = known[below] + (steps / _STRIDE)[:, np.newaxis] * (known[above] - known[below])
+    learned = [(np.nan_to_num(dx)[below], np.nan_to_num(dF)[below]) for dx, dF in first.history]
+    found = settle(answer, between, learned)
+    left = np.flatnonzero(found.error > SETTLED)
+    if left.size:
+        # Neighbours may be no guide, as where a phase comes and goes between them.
+        again = settle(lambda x, index: answer(x, left[index]), start[left])
+        found.x[left], found.error[left] = again.x, again.error
+    return found
 
 
 def _step(
     residual: FloatArray,
     weights: FloatArray,
-    history: list[tuple[FloatArray, FloatArray]],
+    history: History,
     damping: FloatArray,
 ) -> FloatArray:
     """The damped residual, less what the history of changes explains of it."""

@@ -33,8 +33,6 @@ _TWU_PENG_ROBINSON: Final = (
 )
 """L, M and N of acentric factor 0 and 1, below and above Tc."""
 
-_WIDTH: Final = 3
-
 
 @dataclass(frozen=True, eq=False)
 class Attraction:
@@ -42,45 +40,43 @@ class Attraction:
 
     Attributes
     ----------
-    critical_temperatures : (S,) Tc, K
-    below, above : (4, S, 3) w, p, L and q of each gas's terms below and above Tc
+    critical_temperatures : Tc of each gas, K
+    terms : terms of each gas below and above Tc; a gas without terms attracts nothing
     """
 
-    critical_temperatures: FloatArray
-    below: FloatArray
-    above: FloatArray
+    critical_temperatures: tuple[float, ...]
+    terms: tuple[tuple[Terms, Terms], ...]
 
     def at(self, temperature: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
         """α, θα and θ²α with θ = d/d ln T, each T.shape + (S,)."""
         # A grid repeats its temperatures: each is evaluated once.
         distinct, places = np.unique(temperature, return_inverse=True)
-        places = places.reshape(temperature.shape)
-        alpha, first, second = self._at_distinct(distinct)
-        return alpha[places], first[places], second[places]
+        found = np.zeros((3, len(self.terms), distinct.size))
+        log_T = np.log(distinct)
+        for gas, (Tc, (below, above)) in enumerate(
+            zip(self.critical_temperatures, self.terms, strict=True)
+        ):
+            log_t = log_T - np.log(Tc)
+            hot = log_t > 0.0
+            if hot.any():
+                found[:, gas] = _sum(above, log_t)
+            if not hot.all():
+                found[:, gas] = np.where(hot, found[:, gas], _sum(below, log_t))
+        alpha, first, second = found[..., places.reshape(temperature.shape)]
+        return np.moveaxis(alpha, 0, -1), np.moveaxis(first, 0, -1), np.moveaxis(second, 0, -1)
 
-    def _at_distinct(self, temperature: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
-        t = temperature[..., np.newaxis] / self.critical_temperatures
-        hot = (t > 1.0)[..., np.newaxis]
-        w, p, L, q = (np.where(hot, a, b) for a, b in zip(self.above, self.below, strict=True))
-        log_t = np.log(t)[..., np.newaxis]
-        power = L * np.exp(q * log_t)
-        value = w * np.exp(p * log_t + L - power)
+
+def _sum(terms: Terms, log_t: FloatArray) -> FloatArray:
+    """α, θα and θ²α, (3,) + t.shape."""
+    total = np.zeros((3, *log_t.shape))
+    for w, p, L, q in terms:
+        power = L * np.exp(q * log_t) if L else 0.0
+        value = w * np.exp(p * log_t + (L - power))
         slope = p - q * power
-        parts = (value, value * slope, value * (slope * slope - q * q * power))
-        alpha, first, second = (part.sum(axis=-1) for part in parts)
-        return alpha, first, second
-
-
-def attraction(critical_temperatures: FloatArray, terms: list[tuple[Terms, Terms]]) -> Attraction:
-    """Lay out the gases' terms below and above Tc."""
-    nothing: Term = (0.0, 0.0, 0.0, 0.0)
-    below, above = (
-        np.array(
-            [(*gas[side], *[nothing] * (_WIDTH - len(gas[side]))) for gas in terms], dtype=float
-        ).reshape(len(terms), _WIDTH, 4)
-        for side in (0, 1)
-    )
-    return Attraction(critical_temperatures, np.moveaxis(below, 2, 0), np.moveaxis(above, 2, 0))
+        total[0] += value
+        total[1] += value * slope
+        total[2] += value * (slope * slope - q * q * power)
+    return total
 
 
 def twu_redlich_kwong(acentric_factor: float) -> tuple[Terms, Terms]:

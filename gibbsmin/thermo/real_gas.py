@@ -16,13 +16,12 @@ from typing import Final, Self
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import BoolArray, FloatArray
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.errors import InputError
 from gibbsmin.thermo.attraction import (
     Attraction,
     Terms,
-    attraction,
     graboski_daubert,
     peng_robinson,
     twu_peng_robinson,
@@ -143,35 +142,37 @@ class RealGas:
             acentric_factors=omega,
             sizes=np.where(known, sizes, 0.0),
             volumes=np.where(known, volumes, _POINT),
-            attraction=attraction(np.where(known, Tc, 1.0), alphas),
+            attraction=Attraction(tuple(np.where(known, Tc, 1.0).tolist()), tuple(alphas)),
             coupling=_coupling(equation, names),
         )
 
-    def roots(self, temperature: npt.ArrayLike) -> FloatArray:
-        """√a of each gas at T (K), T.shape + (S,), in √(Pa m⁶)/mol."""
-        alpha, _, _ = self.attraction.at(np.asarray(temperature, dtype=float))
-        return np.asarray(self.sizes * np.sqrt(alpha))
+    def pulls(self, temperature: npt.ArrayLike) -> Pulls:
+        """√a of each gas at T (K) and how it changes."""
+        alpha, first, second = self.attraction.at(np.asarray(temperature, dtype=float))
+        safe = np.where(self.known, 2.0 * alpha, 1.0)
+        g = first / safe
+        return Pulls(np.asarray(self.sizes * np.sqrt(alpha)), g, second / safe - g * g)
 
     def state(
         self,
         temperature: npt.ArrayLike,
         pressure: npt.ArrayLike,
         amounts: npt.ArrayLike,
-        roots: FloatArray | None = None,
+        pulls: Pulls | None = None,
         liquid: bool = False,
     ) -> GasState:
         """The mixture at T (K), P (Pa) of shape (...), amounts (..., S) in any unit.
 
         Its volume is that of a gas, or of a liquid where the equation has both.  Without any gas
-        all is NaN.  ``roots`` of the temperatures may be given where they are at hand.
+        all is NaN.  ``pulls`` of the temperatures may be given where they are at hand.
         """
         T, P = np.asarray(temperature, dtype=float), np.asarray(pressure, dtype=float)
         T, P = np.broadcast_arrays(T, P)
         n = np.asarray(amounts, dtype=float)
         total = n.sum(axis=-1, keepdims=True)
         y = n / np.where(total > 0.0, total, np.nan)
-        root = self.roots(T) if roots is None else roots
-        weighted = y * root
+        pulls = self.pulls(T) if pulls is None else pulls
+        weighted = y * pulls.root
         pulled = weighted @ self.coupling
         D = _dot(weighted, pulled)
         B = y @ self.volumes
@@ -185,7 +186,7 @@ class RealGas:
             y=y,
             Z=Z,
             V=V,
-            root=root,
+            pulls=pulls,
             weighted=weighted,
             pulled=pulled,
             D=D,
@@ -195,11 +196,30 @@ class RealGas:
 
 
 @dataclass(frozen=True, eq=False)
+class Pulls:
+    """√a of S gases at temperatures (...), and with θ = d/d ln T how it changes.
+
+    Attributes
+    ----------
+    root : (..., S) √a, √(Pa m⁶)/mol
+    slope, bend : (..., S) θ√a/√a and θ²√a/√a
+    """
+
+    root: FloatArray
+    slope: FloatArray
+    bend: FloatArray
+
+    def of_states(self, index: IntArray) -> Pulls:
+        """Those of some of the states."""
+        return Pulls(self.root[index], self.slope[index], self.bend[index])
+
+
+@dataclass(frozen=True, eq=False)
 class GasState:
     """A real-gas mixture at T, P and composition; (...) is the shape of the states.
 
     ``Z`` is the compressibility and ``V`` the molar volume in m³/mol.  The other attributes are
-    what its properties are made of: ``root`` is √aᵢ, ``weighted`` y √a, ``pulled``
+    what its properties are made of: ``weighted`` is y √a, ``pulled``
     Σⱼ yⱼ √aⱼ (1 − kᵢⱼ), ``D`` and ``B`` those of :mod:`gibbsmin.thermo.cubic`.
     """
 
@@ -209,7 +229,7 @@ class GasState:
     y: FloatArray
     Z: FloatArray
     V: FloatArray
-    root: FloatArray
+    pulls: Pulls
     weighted: FloatArray
     pulled: FloatArray
     D: FloatArray
@@ -223,7 +243,7 @@ class GasState:
         own = -2.0 * F.f / T
         shared = -F.g - np.log(self.Z)
         sized = -F.g_B - self.D * F.f_B / T
-        pull = self.root * self.pulled
+        pull = self.pulls.root * self.pulled
         return _column(own) * pull + _column(shared) + _column(sized) * b
 
     @property
@@ -265,9 +285,9 @@ class GasState:
     def log_fugacity_by_temperature(self) -> FloatArray:
         """∂ ln φᵢ/∂ ln T at constant P and composition, (..., S): −H̄ᵢ departure/(R T)."""
         F, b, T = self.potential, self.gas.volumes, self.T
-        pull = self.root * self.pulled
-        g, _ = self._slopes
-        heated = g * pull + self.root * ((self.weighted * g) @ self.gas.coupling)
+        pull = self.pulls.root * self.pulled
+        g = self.pulls.slope
+        heated = g * pull + self.pulls.root * ((self.weighted * g) @ self.gas.coupling)
         sized = b * _column((self._D1 - self.D) / T * F.f_B)
         F_nT = -2.0 * _column(F.f / T) * (heated - pull) - sized
         volume = self.partial_compressibility * _column(T * self._P_T / self.P)
@@ -277,8 +297,13 @@ class GasState:
     def log_fugacity_by_amounts(self) -> FloatArray:
         """N ∂ ln φᵢ/∂nⱼ at constant T and P, (..., S, S), symmetric."""
         F, b, T = self.potential, self.gas.volumes, self.T
-        pull = 2.0 * self.root * self.pulled
-        pairs = 2.0 * self.root[..., np.newaxis] * self.gas.coupling * self.root[..., np.newaxis, :]
+        pull = 2.0 * self.pulls.root * self.pulled
+        pairs = (
+            2.0
+            * self.pulls.root[..., np.newaxis]
+            * self.gas.coupling
+            * self.pulls.root[..., np.newaxis, :]
+        )
         each = _column(-F.g_B) * b
         sums = each[..., np.newaxis] + each[..., np.newaxis, :]
         mixed = pull[..., np.newaxis] * b + b[:, np.newaxis] * pull[..., np.newaxis, :]
@@ -293,23 +318,15 @@ class GasState:
         return F_nn + 1.0 + slopes * _square(1.0 / (GAS_CONSTANT * T * self._P_V))
 
     @cached_property
-    def _slopes(self) -> tuple[FloatArray, FloatArray]:
-        """θ√a/√a and θ²√a/√a of each gas, with θ = d/d ln T."""
-        alpha, first, second = self.gas.attraction.at(self.T)
-        safe = np.where(self.gas.known, 2.0 * alpha, 1.0)
-        g = first / safe
-        return g, second / safe - g * g
-
-    @cached_property
     def _D1(self) -> FloatArray:
         """θD."""
-        g, _ = self._slopes
+        g = self.pulls.slope
         return 2.0 * _dot(self.weighted * g, self.pulled)
 
     @cached_property
     def _D2(self) -> FloatArray:
         """θ²D."""
-        g, bend = self._slopes
+        g, bend = self.pulls.slope, self.pulls.bend
         turned = self.weighted * g
         both = _dot(self.weighted * bend, self.pulled) + _dot(turned, turned @ self.gas.coupling)
         return 2.0 * both
@@ -329,7 +346,7 @@ class GasState:
     def _P_n(self) -> FloatArray:
         """∂P/∂nᵢ at constant T and V, one mole in all."""
         F, b, RT = self.potential, self.gas.volumes, GAS_CONSTANT * self.T
-        pull = 2.0 * self.root * self.pulled
+        pull = 2.0 * self.pulls.root * self.pulled
         F_nV = (
             _column(-F.g_V)
             - _column(F.g_BV) * b

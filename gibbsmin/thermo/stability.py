@@ -95,13 +95,14 @@ def _trial(
     liquid: bool,
 ) -> FloatArray:
     """Fractions of a phase below the tangent plane of part of the states; NaN where none."""
-    T, P, y, V, roots = (array[part] for array in (state.T, state.P, state.y, state.V, state.root))
+    T, P, y, V = (array[part] for array in (state.T, state.P, state.y, state.V))
+    pulls = state.pulls.of_states(part)
     result = np.full(y.shape, np.nan)
     index = np.arange(len(y))
     W = np.maximum(start, 1e-300)
     W = W / W.sum(axis=1, keepdims=True)
     for _ in range(_ROUNDS):
-        trial = gas.state(T[index], P[index], W, roots[index], liquid=liquid)
+        trial = gas.state(T[index], P[index], W, pulls.of_states(index), liquid=liquid)
         logs = trial.log_fugacity
         target = plane[index] - logs
         below = 1.0 + np.sum(W * (np.log(W) - target - 1.0), axis=1)

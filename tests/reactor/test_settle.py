@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from gibbsmin.arrays import FloatArray, IntArray
-from gibbsmin.reactor.settle import SETTLED, settle
+from gibbsmin.reactor.settle import SETTLED, Answer, settle, settle_along
 
 
 def test_a_linear_map_settles_in_a_few_rounds() -> None:
@@ -51,3 +51,33 @@ def test_what_has_no_answer_or_does_not_settle_says_so_and_leaves_the_others() -
     assert found.error[2] > SETTLED
     assert last[0] == found.x[0, 0]
     assert last[2] == found.x[2, 0]
+
+
+def test_states_along_a_line_learn_from_their_neighbours() -> None:
+    position = np.linspace(0.0, 1.0, 400)[:, np.newaxis]
+    calls = {"alone": 0, "along": 0}
+
+    def answer_for(kind: str) -> Answer:
+        def answer(x: FloatArray, index: IntArray) -> tuple[FloatArray, FloatArray]:
+            calls[kind] += len(index)
+            return np.cos(x * (1.0 + 0.5 * position[index])) / 2.0, np.ones_like(x)
+
+        return answer
+
+    alone = settle(answer_for("alone"), np.zeros((400, 1)))
+    along = settle_along(answer_for("along"), np.zeros((400, 1)))
+    assert (along.error <= SETTLED).all()
+    assert along.x == pytest.approx(alone.x, abs=1e-9)
+    assert calls["along"] < 0.8 * calls["alone"]
+
+
+def test_a_state_that_fails_spoils_no_neighbour() -> None:
+    def answer(x: FloatArray, index: IntArray) -> tuple[FloatArray, FloatArray]:
+        result = np.cos(x) / 2.0
+        result[(index == 8) | (index == 13)] = np.nan
+        return result, np.ones_like(x)
+
+    found = settle_along(answer, np.zeros((100, 1)))
+    bad = np.isin(np.arange(100), (8, 13))
+    assert np.isnan(found.error).tolist() == bad.tolist()
+    assert (found.error[~bad] <= SETTLED).all()

@@ -111,7 +111,7 @@ def test_second_virial_limit_is_exact(equation: Equation) -> None:
     gas = gas_of(equation)
     T = 500.0
     y = np.arange(1.0, 9.0) / 36.0
-    a = gas.roots(T)[:, None] * gas.roots(T) * gas.coupling
+    a = gas.pulls(T).root[:, None] * gas.pulls(T).root * gas.coupling
     b = (gas.volumes[:, None] + gas.volumes) / 2.0
     pairs = b - a / (R * T)
     B = y @ pairs @ y
