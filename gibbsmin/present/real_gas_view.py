@@ -51,7 +51,8 @@ def _row(
     name, ideal, real = _shown(outlet, stage, entry)
     change = ""
     if entry.ideal and entry.name != "temperature":
-        change = f"{100.0 * (entry.real / entry.ideal - 1.0):+.2f} %"
+        # Adding 0 takes the sign off a change that rounds to none.
+        change = f"{round(100.0 * (entry.real / entry.ideal - 1.0), 2) + 0.0:+.2f} %"
     coefficient = significant(coefficients[name], 5) if name in coefficients else ""
     return name, ideal, real, change, coefficient
 
