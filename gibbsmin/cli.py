@@ -64,6 +64,9 @@ Temperatures = Annotated[
 Plot = Annotated[
     str, typer.Option("--plot", metavar="FILE", help="Draw a .png or .svg file as well.")
 ]
+Stage = Annotated[
+    str, typer.Option("--stage", metavar="NAME", help="Whose outlet to plot; else the last stage.")
+]
 AsJson = Annotated[bool, typer.Option("--json", help="Print JSON for programs to read.")]
 
 
@@ -83,6 +86,10 @@ def predict(
         bool, typer.Option("--uncertainty", help="Give error bars and what makes them.")
     ] = False,
     plot: Plot = "",
+    show: Annotated[
+        str, typer.Option(metavar="WORD", help='What to plot: "beds", "cooling" or "lost work".')
+    ] = "",
+    stage: Stage = "",
 ) -> None:
     """Give the outlet of a case at equilibrium, with its certificate and audit.
 
@@ -99,16 +106,15 @@ def predict(
     if out:
         require_ending(Path(out))
     _require_plot_ending(plot)
+    if plot:
+        from gibbsmin.present.plots.train_plots import require_kind
+
+        require_kind(show)
     loaded = load_case(case)
     outlet = predict_case(loaded)
     bars = error_bars_of(loaded) if uncertainty else ()
     if out:
         write_outlet(outlet, Path(out), bars)
-    if plot:
-        from gibbsmin.present.plots.style import write_plot
-        from gibbsmin.present.plots.train_plots import plot_train
-
-        write_plot(plot_train(loaded), Path(plot))
     if as_json:
         _print_json(outlet_document(outlet, bars))
     else:
@@ -116,7 +122,14 @@ def predict(
         if bars:
             _print(uncertainty_view(outlet, bars))
     if not outlet.certified:
+        if plot:
+            typer.echo("No plot was drawn: the outlet is not certified.", err=True)
         raise typer.Exit(NOT_CERTIFIED)
+    if plot:
+        from gibbsmin.present.plots.style import write_plot
+        from gibbsmin.present.plots.train_plots import plot_train
+
+        write_plot(plot_train(loaded, show, stage), Path(plot))
 
 
 @app.command(short_help="Give the outlet over the grid of a case's axes.")
@@ -140,6 +153,8 @@ def scan(
     show: Annotated[
         str, typer.Option(metavar="COLUMN", help='What to plot: "wet", "dry" or a column.')
     ] = "",
+    stage: Stage = "",
+    log: Annotated[bool, typer.Option("--log", help="Plot on a logarithmic ordinate.")] = False,
 ) -> None:
     """Give the outlet over the grid of a case's axes: one row a state, each with its status.
 
@@ -176,6 +191,10 @@ def scan(
         parts.append(Path(table).read_bytes())
     else:
         conditions = conditions_of(loaded)
+    if plot:
+        from gibbsmin.present.plots.scan_plots import require_plottable
+
+        require_plottable(loaded, conditions, show, stage=stage, logarithmic=log)
     fingerprint = fingerprint_of(*parts)
     try:
         with connected(cluster) if cluster else nullcontext() as client:
@@ -189,10 +208,13 @@ def scan(
     for note in own_records_notes(loaded.own_records):
         _print(note)
     if plot:
-        from gibbsmin.present.plots.scan_plots import plot_case
+        from gibbsmin.jobs.scan import Scan
+        from gibbsmin.present.plots.scan_plots import boundary_of, plot_scan
         from gibbsmin.present.plots.style import write_plot
 
-        write_plot(plot_case(loaded, show, uncertainty=uncertainty), Path(plot))
+        found = Scan(loaded.title, conditions.axes, is_grid=True, table=read_conditions(path))
+        figure = plot_scan(found, show, boundary_of(loaded), stage=stage, logarithmic=log)
+        write_plot(figure, Path(plot))
     if tally.uncertified:
         raise typer.Exit(NOT_CERTIFIED)
 
@@ -233,6 +255,12 @@ def onset(
         answers = target_of(loaded)
         document, view = target_document(answers), target_view(answers, loaded.title)
         certified = bool(answers.certified.all())
+        if plot:
+            from gibbsmin.present.plots.map_plots import plot_target
+            from gibbsmin.present.plots.style import write_plot
+
+            figure = plot_target(answers, loaded.target.value, loaded.title)
+            write_plot(figure, Path(plot))
     else:
         crossings = onset_of(loaded)
         sizes = onset_uncertainty(loaded, crossings) if uncertainty else None
@@ -240,10 +268,10 @@ def onset(
         view = onset_view(crossings, loaded.title, sizes)
         certified = bool(crossings.certified.all())
         if plot:
-            from gibbsmin.present.plots.scan_plots import plot_boundary
+            from gibbsmin.present.plots.scan_plots import plot_onset
             from gibbsmin.present.plots.style import write_plot
 
-            write_plot(plot_boundary(crossings, loaded.title), Path(plot))
+            write_plot(plot_onset(loaded, crossings), Path(plot))
     notes = own_records_notes(loaded.own_records)
     if notes:
         document["notes"] = list(notes)

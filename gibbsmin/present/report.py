@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import io
 from collections import Counter
 from dataclasses import dataclass
 from pathlib import Path
@@ -98,14 +97,13 @@ def _history(checks: Checks) -> tuple[list[str], list[list[str]]]:
 
 def _plots(checks: Checks, series: tuple[Series, ...]) -> list[_Plot]:
     from gibbsmin.present.plots.history_plots import plot_series
+    from gibbsmin.present.plots.style import svg_of
 
     labels = [sample.label for sample in checks.samples]
     plots = []
     for each in series:
         figure = plot_series(each, labels, checks.title)
-        text = io.StringIO()
-        figure.savefig(text, format="svg", metadata={"Date": None})
-        svg = text.getvalue()
+        svg = svg_of(figure)
         bars = ", bars at 95 %" if np.isfinite(each.uncertainties).any() else ""
         plots.append(_Plot(svg[svg.index("<svg") :], f"{each.name}{bars}"))
     return plots

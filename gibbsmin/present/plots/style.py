@@ -1,15 +1,17 @@
-"""What all plots share: size, colours that grey keeps apart, labels at the lines' ends, files."""
+"""What all plots share: size, colours that grey keeps apart, titles and axes, files."""
 
 from __future__ import annotations
 
+import io
+import textwrap
 from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
-from gibbsmin.present.files import output_suffix, write_whole
+from gibbsmin.jobs.axis import Axis
+from gibbsmin.present.files import output_suffix, write_text, write_whole
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
@@ -24,95 +26,97 @@ dark and light, so that neighbours differ in grey too."""
 DASHES: tuple[Any, ...] = ("-", (0, (6, 2)), (0, (2, 1.5)), (0, (7, 2, 1.5, 2)))
 """Line styles that tell lines apart where colour does not."""
 
+TEXT = 9.0
+"""Size of text in points, on a page of about 175 mm by 110 mm."""
+
+CAUTION = "Equilibrium is a limit, not a rate."
+
 _SIZE = (6.9, 4.3)
-_TEXT = 9.0
-_LINE_SPACING = 1.25
+_DOTS_PER_INCH = 150
+_TITLE_WIDTH = 76
+_TITLE_LINES = 2
+_LOGARITHMIC_FROM = 5.0
+_PLAIN_FROM, _PLAIN_TO = 1e-6, 1e6
 
 
 def new_figure(title: str, panels: Sequence[float] = (1.0,)) -> tuple[Figure, list[Axes]]:
     """A figure with panels above one another, of these relative heights, sharing their abscissa."""
-    from matplotlib import rcParams
     from matplotlib.backends.backend_agg import FigureCanvasAgg
     from matplotlib.figure import Figure
 
-    rcParams["svg.hashsalt"] = "gibbsmin"
-    figure = Figure(figsize=_SIZE, layout="constrained", dpi=150)
+    figure = Figure(figsize=_SIZE, layout="constrained", dpi=_DOTS_PER_INCH)
     FigureCanvasAgg(figure)
     grid = figure.subplots(len(panels), 1, sharex=True, squeeze=False, height_ratios=list(panels))
     axes: list[Axes] = list(grid[:, 0])
     for each in axes:
         each.spines[["top", "right"]].set_visible(False)
-        each.tick_params(labelsize=_TEXT)
+        each.tick_params(labelsize=TEXT)
         each.grid(visible=True, color="0.9", linewidth=0.6)
         each.set_axisbelow(True)
-    axes[0].set_title(plain(title), fontsize=_TEXT + 1.5, loc="left")
+    axes[0].set_title(plain(shortened(title)), fontsize=TEXT + 1.5, loc="left")
     return figure, axes
+
+
+def shortened(title: str) -> str:
+    """A title in two lines at most, which fit the figure's width."""
+    return "\n".join(textwrap.wrap(title, _TITLE_WIDTH, max_lines=_TITLE_LINES, placeholder=" …"))
+
+
+def foot(figure: Figure, sentences: Sequence[str] = ()) -> None:
+    """Small sentences at the foot of the page, the caution last."""
+    figure.supxlabel(
+        plain("   ".join([*sentences, CAUTION])), fontsize=7.0, color="0.35", x=0.995, ha="right"
+    )
 
 
 def name_axes(axes: Axes, across: str, up: str) -> None:
     """Names of both axes, with their units."""
-    axes.set_xlabel(plain(across), fontsize=_TEXT)
-    axes.set_ylabel(plain(up), fontsize=_TEXT)
+    axes.set_xlabel(plain(across), fontsize=TEXT)
+    axes.set_ylabel(plain(up), fontsize=TEXT)
+
+
+def scale_axis(axes: Axes, axis: Axis, *, upright: bool = False) -> None:
+    """Limits, scale and ticks of the abscissa (or the ordinate) for an axis of a scan."""
+    low, high = float(axis.shown.min()), float(axis.shown.max())
+    if is_logarithmic(axis):
+        (axes.set_yscale if upright else axes.set_xscale)("log")
+        plain_decades(axes.yaxis if upright else axes.xaxis, low, high)
+    if high > low:
+        (axes.set_ylim if upright else axes.set_xlim)(low, high)
+
+
+def is_logarithmic(axis: Axis) -> bool:
+    """Whether an axis's values rise by a factor rather than by a step."""
+    values = np.sort(axis.shown)
+    if values.size < 3 or values[0] <= 0.0 or values[-1] < _LOGARITHMIC_FROM * values[0]:
+        return False
+    steps, factors = np.diff(values), np.diff(np.log(values))
+    return bool(np.ptp(factors) / factors.mean() < np.ptp(steps) / steps.mean())
+
+
+def plain_decades(axis: Any, low: float, high: float) -> None:
+    """Ticks of a logarithmic axis as numbers to read aloud: 1, 2, 5, 10, or decades alone."""
+    from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
+
+    few = high < 500.0 * low
+    axis.set_major_locator(LogLocator(subs=(1.0, 2.0, 5.0) if few else (1.0,), numticks=30))
+    axis.set_major_formatter(FuncFormatter(lambda value, _: _read_aloud(value)))
+    axis.set_minor_formatter(NullFormatter())
+
+
+def _read_aloud(value: float) -> str:
+    if not _PLAIN_FROM <= abs(value) < _PLAIN_TO:
+        return f"{value:g}"
+    return np.format_float_positional(value, precision=8, trim="-")
 
 
 def line_style(index: int) -> dict[str, Any]:
-    """Colour and dashes of the line of that number."""
+    """Colour and dashes of the line of that number; the first 32 are all different."""
     return {
         "color": COLOURS[index % len(COLOURS)],
-        "linestyle": DASHES[index % len(DASHES)],
+        "linestyle": DASHES[(index + index // len(COLOURS)) % len(DASHES)],
         "linewidth": 1.7,
     }
-
-
-def label_ends(axes: Axes, ends: Sequence[tuple[float, float, str, str]]) -> None:
-    """Names beside the right ends (x, y, text, colour) of lines, moved apart where they meet."""
-    if not ends:
-        return
-    figure: Any = axes.figure
-    figure.canvas.draw()
-    height = axes.get_window_extent().height
-    least = _TEXT * _LINE_SPACING * figure.dpi / 72.0 / height
-    order = sorted(range(len(ends)), key=lambda k: _share_of_height(axes, ends[k][1]))
-    wanted = np.array([_share_of_height(axes, ends[k][1]) for k in order])
-    for place, k in zip(_apart(wanted, least), order, strict=True):
-        _, y, text, colour = ends[k]
-        axes.annotate(
-            plain(text),
-            xy=(1.0, _share_of_height(axes, y)),
-            xycoords="axes fraction",
-            xytext=(1.03, place),
-            textcoords="axes fraction",
-            fontsize=_TEXT,
-            color=colour,
-            va="center",
-            annotation_clip=False,
-            arrowprops={"arrowstyle": "-", "color": colour, "linewidth": 0.6, "shrinkB": 0.0},
-        )
-
-
-def _share_of_height(axes: Axes, y: float) -> float:
-    """Where a value stands on the ordinate, 0 at its foot and 1 at its head."""
-    point = axes.transData.transform((axes.get_xlim()[1], y))
-    return float(axes.transAxes.inverted().transform(point)[1])
-
-
-def _apart(wanted: FloatArray, least: float) -> FloatArray:
-    """Places in rising order, at least that far apart and as near to the wanted ones as may be.
-
-    Neighbours that meet are pooled, each pool centred on the mean of what its members want
-    (isotonic regression by pooling; R. E. Barlow et al., 1972).
-    """
-    shifted = wanted - least * np.arange(wanted.size)
-    pools: list[list[float]] = []
-    for value in shifted.tolist():
-        pools.append([value, 1.0])
-        while len(pools) > 1 and pools[-2][0] >= pools[-1][0]:
-            mean, count = pools.pop()
-            before, others = pools.pop()
-            whole = count + others
-            pools.append([(mean * count + before * others) / whole, whole])
-    levels = np.concatenate([np.full(int(count), mean) for mean, count in pools])
-    return np.asarray(levels + least * np.arange(wanted.size))
 
 
 def plain(text: str) -> str:
@@ -133,7 +137,18 @@ def write_plot(figure: Figure, path: Path) -> None:
     OutputError
         for another ending or a file that cannot be written.
     """
-    suffix = require_plot_ending(path)
-    metadata = {"Date": None} if suffix == ".svg" else {"Software": "gibbsmin"}
-    kind = suffix.removeprefix(".")
-    write_whole(path, lambda scratch: figure.savefig(scratch, format=kind, metadata=metadata))
+    if require_plot_ending(path) == ".svg":
+        write_text(path, svg_of(figure))
+    else:
+        metadata = {"Software": "gibbsmin"}
+        write_whole(path, lambda scratch: figure.savefig(scratch, format="png", metadata=metadata))
+
+
+def svg_of(figure: Figure) -> str:
+    """The figure as the text of an SVG document, the same each time."""
+    from matplotlib import rc_context
+
+    text = io.StringIO()
+    with rc_context({"svg.hashsalt": "gibbsmin"}):
+        figure.savefig(text, format="svg", metadata={"Date": None})
+    return text.getvalue()
