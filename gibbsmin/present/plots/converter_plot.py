@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from itertools import pairwise
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -28,6 +29,13 @@ _POINTS = 241
 _POINTS_IN_BED = 41
 _SAME_LINE = 1.0
 """Per cent of conversion within which the equilibria of two beds share a line."""
+
+_HEADROOM = 113.0
+"""Per cent at the head of the plot, so that labels of the last beds find room above 100 %."""
+
+_SAME_PLACE = 0.01
+_AROUND = 150.0
+"""K about the mean of what is mixed before a bed, within which its own temperature is."""
 
 _SPOTS = 41
 _FAR = (12.0, 20.0, 30.0, 42.0)
@@ -96,7 +104,7 @@ def plot_beds(case: Case) -> Figure:
     foot(figure)
     lowest = min(0.0, *(float(path.conversion.min()) for path in paths))
     axes.set_xlim(T[0] - _ZERO_CELSIUS, T[-1] - _ZERO_CELSIUS)
-    axes.set_ylim(lowest - 3.0, 103.0)
+    axes.set_ylim(lowest - 3.0, _HEADROOM)
     settle(figure)
     _draw(axes, paths, T - _ZERO_CELSIUS, lines)
     return figure
@@ -120,6 +128,13 @@ def _draw(axes: Axes, paths: Sequence[_Path], T: FloatArray, lines: dict[str, Fl
     for conversion in lines.values():
         axes.plot(T, conversion, color=COLOURS[0], linewidth=1.8)
         ways.append(way_of(axes, T, conversion))
+    for before, path in pairwise(paths):
+        x = np.array([before.T[-1], path.T[0]]) - _ZERO_CELSIUS
+        y = np.array([before.conversion[-1], path.conversion[0]])
+        if abs(x[1] - x[0]) > _SAME_PLACE or abs(y[1] - y[0]) > _SAME_PLACE:
+            # A stream joins right before a bed.
+            axes.plot(x, y, color=COLOURS[2], linestyle=_DASHED, linewidth=1.2)
+            ways.append(way_of(axes, x, y))
     placer = Placer(axes, ways)
     for path in paths:
         if path.is_bed:
@@ -179,7 +194,7 @@ def _paths(steps: Sequence[Step], key: str) -> list[_Path]:
     """
     formula = key.rpartition("(")[0]
     fed_by: dict[str, float] = {}
-    paths = []
+    paths: list[_Path] = []
     for step in steps:
         fed = 0.0
         for stream, share in zip(step.streams, step.shares, strict=True):
@@ -191,7 +206,16 @@ def _paths(steps: Sequence[Step], key: str) -> list[_Path]:
             before = fed_by.get(stream.name)
             fed += brought if before is None else before * float(np.ravel(share)[0])
         fed_by[step.stage.name] = fed
-        paths.append(_path(step, key, fed))
+        path = _path(step, key, fed)
+        if paths and not path.is_bed:
+            # Whatever joins or is mixed on the way, it starts where the step before ended.
+            start = paths[-1]
+            path = replace(
+                path,
+                T=np.array([start.T[-1], path.T[-1]]),
+                conversion=np.array([start.conversion[-1], path.conversion[-1]]),
+            )
+        paths.append(path)
     return paths
 
 
@@ -209,11 +233,15 @@ def _path(step: Step, key: str, fed: float) -> _Path:
     columns = {record.name: column for column, record in enumerate(model.records)}
     if not _is_bed(step.stage) or any(r.name not in columns for r in inlet.records):
         return _Path(step, fed, np.array([T_in, T_out]), np.array(ends))
-    T = np.linspace(T_in, T_out, _POINTS_IN_BED)
     entering = np.zeros((1, len(model.records)))
     for record, amount in zip(inlet.records, inlet.amounts[0], strict=True):
         entering[0, columns[record.name]] = amount
     P = found.pressure[0]
+    if len(step.streams) > 1:
+        near = T_in + np.linspace(-_AROUND, _AROUND, _POINTS)
+        H = model.mixture.enthalpy(near, P, np.repeat(entering, near.size, axis=0))
+        T_in = float(np.interp(inlet.enthalpy[0], H, near))
+    T = np.linspace(T_in, T_out, _POINTS_IN_BED)
     H_in, H_out = (
         model.mixture.enthalpy(T, P, np.repeat(n, T.size, axis=0))
         for n in (entering, found.amounts[:1])

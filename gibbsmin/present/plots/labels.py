@@ -21,6 +21,7 @@ _BETWEEN_POINTS = 4.0
 """Dots between the points that stand for a line where labels must not cover it."""
 
 _ROOM = 2.0
+_POINTS_OF_LEAD = 20
 _LED_FROM = 15.0
 """Points from its place at which a label is led to it by a thin line."""
 
@@ -45,6 +46,11 @@ class Spot:
     right: float = 0.0
     above: float = 0.0
     turned: bool = False
+
+    @property
+    def is_far(self) -> bool:
+        """Whether a thin line leads from the text to the point."""
+        return max(abs(self.right), abs(self.above)) > _LED_FROM
 
     @property
     def alignment(self) -> tuple[str, str]:
@@ -147,7 +153,7 @@ class Placer:
         best, fewest = None, np.inf
         for spot in spots:
             label = self._write(text, spot, colour)
-            conflicts = self._conflicts(_box(label))
+            conflicts = self._conflicts(_box(label), self._lead(spot, _box(label)))
             label.remove()
             if conflicts < fewest:
                 best, fewest = spot, conflicts
@@ -156,6 +162,7 @@ class Placer:
         if best is not None and (needed or fewest == 0):
             label = self._write(text, best, colour)
             self._taken.append(_box(label))
+            self._points = np.concatenate([self._points, self._lead(best, _box(label))])
 
     def _write(self, text: str, spot: Spot, colour: str) -> Any:
         across, up = spot.alignment
@@ -172,12 +179,20 @@ class Placer:
             zorder=5,
             bbox={"facecolor": "white", "edgecolor": "none", "alpha": 0.8, "pad": 0.8},
             arrowprops={"arrowstyle": "-", "color": colour, "linewidth": 0.6}
-            if max(abs(spot.right), abs(spot.above)) > _LED_FROM
+            if spot.is_far
             else None,
         )
 
-    def _conflicts(self, box: Bbox) -> float:
-        """Labels and points of lines under a box; leaving the axes weighs most."""
+    def _lead(self, spot: Spot, box: Bbox) -> FloatArray:
+        """The thin line that leads from a far label to its place, as points on the page."""
+        if not spot.is_far:
+            return np.zeros((0, 2))
+        middle = [0.5 * (box.x0 + box.x1), 0.5 * (box.y0 + box.y1)]
+        place = self._axes.transData.transform((spot.x, spot.y))
+        return np.asarray(np.linspace(place, middle, _POINTS_OF_LEAD))
+
+    def _conflicts(self, box: Bbox, lead: FloatArray) -> float:
+        """Labels and points of lines under a box or its lead; leaving the axes weighs most."""
         frame = self._axes.get_window_extent()
         outside = box.x0 < frame.x0 or box.x1 > frame.x1 or box.y0 < frame.y0 or box.y1 > frame.y1
         padded = box.padded(_ROOM)
@@ -185,7 +200,13 @@ class Placer:
             (self._points > [padded.x0, padded.y0]) & (self._points < [padded.x1, padded.y1]),
             axis=1,
         )
-        labels = len([other for other in self._taken if padded.overlaps(other)])
+        labels = len(
+            [
+                other
+                for other in self._taken
+                if padded.overlaps(other) or any(other.contains(x, y) for x, y in lead)
+            ]
+        )
         return 1000.0 * float(outside) + 100.0 * labels + float(covered.sum())
 
 

@@ -219,7 +219,7 @@ def _draw_lines(
     bounds = [min(float(known.min()), levels[0]), *levels, max(float(known.max()), levels[-1])]
     shades = [str(shade) for shade in np.linspace(0.98, 0.72, len(bounds) - 1)]
     axes.contourf(x, y, values, levels=bounds, colors=shades)
-    drawn = axes.contour(x, y, values, levels=levels, colors=_LINE, linewidths=0.9)
+    drawn = axes.contour(x, y, values, levels=levels, colors=_LINE, linewidths=0.9, linestyles="-")
     return [[np.asarray(part) for part in parts] for parts in drawn.allsegs]
 
 

@@ -111,6 +111,21 @@ def test_a_cold_stream_between_beds_joins_what_it_brings() -> None:
     mixed = 100 * (1 - (of(outlets[0], "SO2(g)") + 0.5 * fed) / (1.5 * fed))
     assert two.get_ydata()[0] == pytest.approx(mixed)
     assert two.get_ydata()[-1] == pytest.approx(100 * (1 - of(outlets[2], "SO2(g)") / (1.5 * fed)))
+    (step,) = drawn(figure, BETWEEN)
+    assert (step.get_xdata()[0], step.get_ydata()[0]) == (
+        one.get_xdata()[-1],
+        one.get_ydata()[-1],
+    )
+    assert step.get_xdata()[-1] == pytest.approx(two.get_xdata()[0])
+    # The same with the cold gas led right into the second bed.
+    quench["stage"] = [first | {"feeds": ["gas"]}, second | {"feeds": ["cold"]}]
+    direct = plot_beds(gibbsmin.load_case(quench))
+    assert_readable(direct)
+    _, straight = drawn(direct, BED)
+    assert straight.get_xdata()[0] == pytest.approx(two.get_xdata()[0], abs=1e-3)
+    assert straight.get_ydata()[0] == pytest.approx(mixed)
+    (step,) = drawn(direct, BETWEEN)
+    assert step.get_ydata().tolist() == [one.get_ydata()[-1], straight.get_ydata()[0]]
 
 
 def test_absorption_between_beds_gives_a_second_equilibrium_line() -> None:
