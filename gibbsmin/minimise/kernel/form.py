@@ -38,6 +38,22 @@ _MODULES = (
     "warm",
     "states",
 )
+_INNERMOST = {
+    "evaluate_gas",
+    "exponentials",
+    "fill_residuals",
+    "fill_jacobian",
+    "solve_in_place",
+    "update_phases",
+    "evaluate_condensed",
+    "most_supersaturated",
+    "evaluate_energies",
+    "reduce_enthalpies",
+    "heat_residual",
+    "border",
+}
+"""Called in every iteration: compiled into their callers, which saves handing over the arrays."""
+
 _SECONDS_PER_ENTRY = 4.5e-5  # measured: one state costs this times rows × (species + rows)
 _LOADING = 1.0  # seconds
 _COMPILING = 20.0  # seconds
@@ -110,7 +126,8 @@ def _compile() -> SolveStates:
         sources.update(Path(str(module.__file__)).read_bytes())
         for function in vars(module).values():
             if isinstance(function, FunctionType) and function.__module__ == module.__name__:
-                register_jitable(**_OPTIONS)(function)
+                inlined = function.__name__ in _INNERMOST
+                register_jitable(forceinline=inlined, **_OPTIONS)(function)
     entry = _entry(int.from_bytes(sources.digest()[:7]))
     compiled: SolveStates = njit(cache=True, nogil=True, **_OPTIONS)(entry)
     return compiled
