@@ -1,0 +1,68 @@
+"""gibbsmin predict."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from gibbsmin.cli.app import AsJson, Plot, Stage, app, require_plot_ending_of
+from gibbsmin.cli.output import NOT_CERTIFIED, print_json, print_view
+
+
+@app.command(short_help="Give the outlet of a case at equilibrium.")
+def predict(
+    case: Annotated[str, typer.Argument(metavar="CASE", help="A case file in TOML.")],
+    as_json: AsJson = False,
+    out: Annotated[
+        str, typer.Option(metavar="FILE", help="Write to a .csv, .xlsx or .json file as well.")
+    ] = "",
+    uncertainty: Annotated[
+        bool, typer.Option("--uncertainty", help="Give error bars and what makes them.")
+    ] = False,
+    plot: Plot = "",
+    show: Annotated[
+        str, typer.Option(metavar="WORD", help='What to plot: "beds", "cooling" or "lost work".')
+    ] = "",
+    stage: Stage = "",
+) -> None:
+    """Give the outlet of a case at equilibrium, with its certificate and audit.
+
+    Exit code 1 means that the state could not be certified.
+    """
+    from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.predict import predict as predict_case
+    from gibbsmin.jobs.uncertainty import uncertainty as error_bars_of
+    from gibbsmin.present.outlet_document import outlet_document
+    from gibbsmin.present.outlet_files import require_ending, write_outlet
+    from gibbsmin.present.outlet_view import outlet_view
+    from gibbsmin.present.uncertainty_view import uncertainty_view
+
+    if out:
+        require_ending(Path(out))
+    require_plot_ending_of(plot)
+    if plot:
+        from gibbsmin.present.plots.train_plots import require_kind
+
+        require_kind(show)
+    loaded = load_case(case)
+    outlet = predict_case(loaded)
+    bars = error_bars_of(loaded) if uncertainty else ()
+    if out:
+        write_outlet(outlet, Path(out), bars)
+    if as_json:
+        print_json(outlet_document(outlet, bars))
+    else:
+        print_view(outlet_view(outlet))
+        if bars:
+            print_view(uncertainty_view(outlet, bars))
+    if not outlet.certified:
+        if plot:
+            typer.echo("No plot was drawn: the outlet is not certified.", err=True)
+        raise typer.Exit(NOT_CERTIFIED)
+    if plot:
+        from gibbsmin.present.plots.style import write_plot
+        from gibbsmin.present.plots.train_plots import plot_train
+
+        write_plot(plot_train(loaded, show, stage), Path(plot))
