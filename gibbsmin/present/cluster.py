@@ -86,29 +86,41 @@ def blocks_on(
     """
     distributed: Any = import_module("distributed")
     lost = (distributed.KilledWorker, CancelledError)
-    shared = client.scatter((case, conditions), broadcast=True, hash=False)
+    shared = _handed_out(client, case, conditions)
 
     def take(index: int) -> pd.DataFrame:
-        coming = client.submit(
-            _solve,
-            index,
-            shared=shared,
-            block=block,
-            uncertainty=uncertainty,
-            pure=False,
-            retries=2,
+        nonlocal shared
+        for _ in range(_LOSSES):
+            handed_out = shared
+            coming = client.submit(
+                _solve,
+                index,
+                shared=handed_out,
+                block=block,
+                uncertainty=uncertainty,
+                pure=False,
+                retries=2,
+            )
+            try:
+                table: pd.DataFrame = coming.result()
+            except lost:
+                # The worker may have held the only copy of the case, which nothing restores.
+                if shared is handed_out:
+                    shared = _handed_out(client, case, conditions)
+                continue
+            return table
+        raise OutputError(
+            "found that workers were lost again and again",
+            "accepted is the same command once more, which goes on where this stopped",
+            key="cluster",
         )
-        try:
-            table: pd.DataFrame = coming.result()
-        except lost:
-            raise OutputError(
-                "found that workers were lost again and again",
-                "accepted is the same command once more, which goes on where this stopped",
-                key="cluster",
-            ) from None
-        return table
 
     return take
+
+
+def _handed_out(client: Any, case: Case, conditions: Conditions) -> Any:
+    """What all blocks need, copied to every worker."""
+    return client.scatter((case, conditions), broadcast=True, hash=False)
 
 
 def _solve(

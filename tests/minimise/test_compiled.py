@@ -16,7 +16,7 @@ from minimise.problems import PROBLEMS
 from gibbsmin.minimise import Method, Programme, Settings, Solution, Status, minimise, settle_form
 from gibbsmin.minimise.certificate import certify
 from gibbsmin.minimise.compiled import answer_batch
-from gibbsmin.minimise.dispatch import _unanswered
+from gibbsmin.minimise.dispatch import unanswered
 from gibbsmin.minimise.kernel.form import forms, interpreted
 from gibbsmin.minimise.kernel.storage import network_of
 
@@ -28,7 +28,7 @@ def compiled(programme: Programme, settings: Settings | None = None) -> Solution
     """Answer by the kernel alone, in its compiled form."""
     network = network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
     assert forms.choose(network, COMPILED_NOW) is not interpreted
-    solution = _unanswered(programme)
+    solution = unanswered(programme)
     answer_batch(programme, settings or Settings(), solution)
     return solution
 
@@ -49,7 +49,7 @@ def test_interpreted_form_gives_the_compiled_answer(
     programme = torture(name, 40 if name == "big" else 150)
     expected = compiled(programme)
     monkeypatch.setattr(forms, "choose", lambda *_: interpreted)
-    found = _unanswered(programme)
+    found = unanswered(programme)
     answer_batch(programme, Settings(), found)
     np.testing.assert_array_equal(found.status, expected.status)
     total = expected.amounts.sum(axis=1, keepdims=True)

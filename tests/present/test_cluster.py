@@ -109,6 +109,33 @@ def test_a_worker_lost_again_and_again_is_one_sentence() -> None:
     )
 
 
+def test_a_case_lost_with_its_only_worker_is_handed_out_again() -> None:
+    case = gibbsmin.load_case(deepcopy(CASE))
+    handed_out = []
+
+    class Block:
+        def __init__(self, number: int) -> None:
+            self.number = number
+
+        def result(self) -> int:
+            if self.number == 1:
+                raise CancelledError
+            return self.number
+
+    class Client:
+        def scatter(self, data: Any, **_: Any) -> int:
+            handed_out.append(data)
+            return len(handed_out)
+
+        def submit(self, *_: Any, shared: int, **__: Any) -> Block:
+            return Block(shared)
+
+    conditions = conditions_of(case)
+    take = blocks_on(Client(), case, conditions, BLOCK, uncertainty=False)
+    assert [take(0), take(1)] == [2, 2]
+    assert handed_out == [(case, conditions)] * 2
+
+
 def test_the_command_runs_on_workers_of_its_own(tmp_path: Path) -> None:
     case = tmp_path / "case.toml"
     case.write_text(
