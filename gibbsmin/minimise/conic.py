@@ -14,8 +14,9 @@ import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray
 
-_TOLERANCES = (1e-11, 1e-8)
-"""Tried in turn: a start that is loose is better than none."""
+_ATTEMPTS = ((1e-11, 0.99), (1e-8, 0.9))
+"""Tolerance, and share of the way to the cones' border that a step may go, tried in turn: a start
+that is loose is better than none, and shorter steps arrive where long ones lose their digits."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -40,15 +41,18 @@ class ConicProgramme:
         self._costs = cp.Parameter(matrix.shape[1])
         self._supplies = cp.Parameter(matrix.shape[0])
         self._balance = self._matrix @ self._amounts == self._supplies
+        constraints = [self._balance]
         objective = self._costs @ self._amounts
         if gas.any():
             gases = np.flatnonzero(gas)
             moles = cp.multiply(1.0 / self._size, self._amounts)  # type: ignore[attr-defined]  # likewise
             fractions = moles[gases]
-            total = cp.sum(fractions)  # type: ignore[attr-defined]  # likewise
+            # A variable of its own: a sum in every cone would make the solver's matrix dense.
+            total = cp.Variable()
+            constraints.append(total == cp.sum(fractions))  # type: ignore[attr-defined]  # likewise
             entropy = cp.rel_entr(fractions, total)  # type: ignore[attr-defined]  # likewise
             objective += cp.sum(entropy)  # type: ignore[attr-defined]  # likewise
-        self._problem = cp.Problem(cp.Minimize(objective), [self._balance])
+        self._problem = cp.Problem(cp.Minimize(objective), constraints)
 
     def solve(self, supplies: FloatArray, energies: FloatArray) -> Start | None:
         """Approximate optimum of one state; None where the solver gives up.
@@ -61,14 +65,14 @@ class ConicProgramme:
         shift = np.linalg.lstsq(self._matrix.T, costs, rcond=None)[0]
         self._supplies.value = supplies / scale
         self._costs.value = costs - shift @ self._matrix
-        if not any(self._solved(tolerance) for tolerance in _TOLERANCES):
+        if not any(self._solved(*attempt) for attempt in _ATTEMPTS):
             return None
         return Start(
             amounts=np.maximum(self._amounts.value / self._size, 0.0) * scale,
             multipliers=shift - self._balance.dual_value,
         )
 
-    def _solved(self, tolerance: float) -> bool:
+    def _solved(self, tolerance: float, longest_step: float) -> bool:
         import cvxpy as cp
 
         try:
@@ -80,6 +84,7 @@ class ConicProgramme:
                     tol_gap_abs=tolerance,
                     tol_gap_rel=tolerance,
                     tol_feas=tolerance,
+                    max_step_fraction=longest_step,
                 )
         except cp.error.SolverError:
             return False

@@ -59,18 +59,34 @@ def find_face(matrix: FloatArray, supplies: FloatArray) -> Face | None:
     species may grow.  Each species in doubt is maximised over that cone (a linear programme
     without supplies, so that nothing in it is small): it grows for ever along some ray, and all
     species of the ray may be positive, or it stays at zero.  Rows of either sign and combinations
-    of rows need no special case.
+    of rows need no special case; an element that is not there is taken out first, exactly, lest
+    round-off of the vertex leave a trace of it.
     """
-    tableau = feasible_vertex(matrix, supplies)
+    possible = np.flatnonzero(_possible(matrix, supplies))
+    tableau = feasible_vertex(matrix[:, possible], supplies)
     if tableau is None:
         return None
-    species = _growing_species(tableau)
+    species = np.zeros(matrix.shape[1], dtype=np.bool_)
+    species[possible] = _growing_species(tableau)
     kept = matrix[:, species]
     empty = ~np.any(kept != 0, axis=1)
     # Of dependent rows the smallest say most: a sum of large ones loses their digits.
     order = np.argsort(np.abs(supplies), kind="stable")
     rows = np.sort(independent_columns(kept.T, order[~empty[order]]))
     return Face(species=species, rows=rows, empty=empty)
+
+
+def _possible(matrix: FloatArray, supplies: FloatArray) -> BoolArray:
+    """Species without a row of no supply whose entries are all of one sign."""
+    possible = np.ones(matrix.shape[1], dtype=np.bool_)
+    absent = matrix[supplies == 0]
+    while True:
+        left = np.where(possible, absent, 0.0)
+        one_signed = (left >= 0).all(axis=1) | (left <= 0).all(axis=1)
+        taken = (left[one_signed] != 0).any(axis=0)
+        if not taken.any():
+            return possible
+        possible &= ~taken
 
 
 def _growing_species(tableau: Tableau) -> BoolArray:

@@ -98,10 +98,10 @@ def _without_artificials(tableau: Tableau, species: int) -> Tableau:
     kept = []
     for row in range(tableau.basis.size):
         if tableau.basis[row] >= species:
-            column = int(np.argmax(np.abs(tableau.entries[row, :species])))
-            if abs(tableau.entries[row, column]) < _INDEPENDENT:
+            sizes = np.abs(tableau.entries[row, :species])
+            if sizes.max(initial=0.0) < _INDEPENDENT:
                 continue
-            tableau.pivot(row, column)
+            tableau.pivot(row, int(np.argmax(sizes)))
         kept.append(row)
     return Tableau(
         entries=tableau.entries[kept, :species],
