@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
@@ -71,7 +72,16 @@ def named(codes: Any, names: Sequence[str]) -> Any:
     """Names by their numbers, without a text in memory for each state."""
     import pandas as pd
 
-    return pd.Categorical.from_codes(codes, categories=pd.Index(list(names)))
+    categories = _categories(tuple(names))
+    return pd.Categorical.from_codes(codes, dtype=categories, validate=False)
+
+
+@lru_cache(maxsize=64)
+def _categories(names: tuple[str, ...]) -> Any:
+    """The kind of a column of these texts: laying one out takes longer than filling it."""
+    import pandas as pd
+
+    return pd.CategoricalDtype(pd.Index(list(names)))
 
 
 def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, str, FloatArray]]:
@@ -83,7 +93,7 @@ def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, 
     yield "heat", unit, 1e3, "heat", energy.heat
     generated = energy.entropy_generation
     yield "entropy generation", f"{unit}/K", 1e3, "entropy generation", generated
-    total = np.einsum("bs,s->b", found.amounts, model.gas.astype(float))
+    total = found.amounts @ model.gas.astype(float)
     total = np.where(total > 0.0, total, np.nan)
     columns = {record.name: column for column, record in enumerate(model.records)}
     absent = 0.0 * found.amounts[:, 0]

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 
@@ -17,7 +18,7 @@ from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
 from gibbsmin.minimise.status import Method, Status
 
-_BLOCK = 4096
+_BLOCK = 16384
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -92,7 +93,8 @@ def answer_heated_batch(
         solution.method,
     )
     workers = min(settings.threads or os.cpu_count() or 1, programme.states)
-    block = min(_BLOCK, -(-programme.states // workers))
+    rounds = -(-programme.states // (_BLOCK * workers))
+    block = -(-programme.states // (rounds * workers))  # so that all workers end together
 
     pieces = np.ascontiguousarray(warmth.pieces[:, network.order]).reshape(7, -1)
     breaks = np.ascontiguousarray(warmth.breaks[:, network.order])
@@ -116,14 +118,28 @@ def answer_heated_batch(
             Answers._make(array[part] for array in answers),
         )
 
-    firsts = range(0, programme.states, block)
-    if len(firsts) == 1:
-        run(0)
-    else:
-        with ThreadPoolExecutor(workers) as pool:
-            list(pool.map(run, firsts))
+    _share_out(run, range(0, programme.states, block), workers)
     _settle(programme, solution, figures)
     return temperatures
+
+
+def _share_out(run: Callable[[int], None], blocks: range, workers: int) -> None:
+    """Run the blocks on so many threads, of which this one is the first."""
+    waiting = iter(blocks)  # taking the next one is a single step of the interpreter
+
+    def work() -> None:
+        for first in waiting:
+            run(first)
+
+    helpers = min(workers, len(blocks)) - 1
+    if helpers == 0:
+        work()
+        return
+    with ThreadPoolExecutor(helpers) as pool:
+        helping = [pool.submit(work) for _ in range(helpers)]
+        work()
+        for helper in helping:
+            helper.result()
 
 
 def _settle(programme: Programme, solution: Solution, figures: np.ndarray) -> None:
@@ -142,9 +158,9 @@ def _settle(programme: Programme, solution: Solution, figures: np.ndarray) -> No
 
 def _unbound(programme: Programme, solution: Solution) -> None:
     """NaN for the multiplier of each row that holds no species of the face."""
-    off = np.flatnonzero(np.isneginf(solution.certificate.driving_forces).any(axis=1))
-    if off.size == 0:
+    if not np.isneginf(np.fmin.reduce(solution.certificate.driving_forces, axis=None)):
         return
+    off = np.flatnonzero(np.isneginf(solution.certificate.driving_forces).any(axis=1))
     used = (programme.matrix != 0).astype(float)
     face = np.isfinite(solution.certificate.driving_forces[off]).astype(float)
     solution.multipliers[off] = np.where(face @ used.T > 0, solution.multipliers[off], np.nan)

@@ -58,6 +58,8 @@ def minimise_heated(
 
 def _flag_invalid(programme: Programme, solution: Solution) -> None:
     """Mark states whose values are not all finite."""
+    if np.isfinite(programme.supplies).all() and np.isfinite(programme.energies).all():
+        return
     finite = np.isfinite(programme.supplies).all(axis=1)
     finite &= np.isfinite(programme.energies).all(axis=1)
     solution.status[~finite] = Status.INVALID

@@ -13,11 +13,8 @@ from gibbsmin.thermo.species import Species
 
 def _amount_of(substance: Species, records: Sequence[Species], amounts: FloatArray) -> FloatArray:
     """Of all forms of a substance, (B,); NaN where the amounts (B, S) are not known."""
-    total = 0.0 * amounts[:, 0]
-    for column, record in enumerate(records):
-        if record.formula == substance.formula:
-            total += amounts[:, column]
-    return total
+    forms = np.array([float(record.formula == substance.formula) for record in records])
+    return np.asarray(amounts @ forms)
 
 
 def conversions(

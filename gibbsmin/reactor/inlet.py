@@ -52,7 +52,8 @@ def inlet_of(
     parts = [_content(stream, library, equation) for stream in streams]
     amounts = np.zeros((*shape, len(names)))
     for part in parts:
-        amounts[:, [names.index(name) for name in part.names]] += part.amounts
+        for column, name in enumerate(part.names):
+            amounts[:, names.index(name)] += part.amounts[..., column]
 
     def total(values: Iterable[FloatArray]) -> FloatArray:
         return sum(values, np.zeros(shape))
@@ -100,14 +101,15 @@ def _content(stream: Stream, library: Library, equation: Equation | None) -> _Co
     mixture = Mixture.of(PropertyTable.of(records), equation)
     T, P, *each = (shared(value) for value in _values(stream))
     amounts = np.stack(np.broadcast_arrays(*each), axis=-1) if each else np.zeros(0)
+    enthalpy = mixture.enthalpy(T, P, amounts)
     return _Content(
         names=tuple(stream.amounts),
         temperature=T,
         pressure=P,
         amounts=amounts,
-        enthalpy=mixture.enthalpy(T, P, amounts),
+        enthalpy=enthalpy,
         entropy=mixture.entropy(T, P, amounts),
-        internal_energy=mixture.internal_energy(T, P, amounts),
+        internal_energy=enthalpy - mixture.pressure_work(T, P, amounts),
         volume=mixture.gas_volume(T, P, amounts),
         moles=amounts.sum(axis=-1),
         gas=amounts[..., mixture.gas].sum(axis=-1),

@@ -15,11 +15,13 @@ from typing import Self
 import numpy as np
 import numpy.typing as npt
 
-from gibbsmin.arrays import BoolArray, FloatArray, shared
+from gibbsmin.arrays import BoolArray, FloatArray, IntArray, shared
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
 from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.real_gas import Equation, GasState, RealGas
 from gibbsmin.thermo.species import Phase
+
+_SMALLEST = np.finfo(np.float64).smallest_subnormal
 
 
 @dataclass(frozen=True, eq=False)
@@ -92,7 +94,7 @@ class Mixture:
         """H in J, from the elements at 298.15 K."""
         H = _dot(amounts, self.properties.enthalpy(temperature))
         if self._has_volumes:
-            H = H + _dot(amounts, self.pressure_terms(pressure))
+            H = H + self._of_volumes(pressure, amounts)
         state = self.gas_state(temperature, pressure, amounts)
         return H if state is None else H + self._of_gas(state.enthalpy_departure, amounts)
 
@@ -101,7 +103,7 @@ class Mixture:
     ) -> FloatArray:
         """S = Σ nᵢ Sᵢ(T) − R Σgas nᵢ ln(yᵢ P/P°) + departure in J/K, absolute."""
         pure = _dot(amounts, self.properties.entropy(temperature))
-        gases = amounts[..., self.gas]
+        gases = amounts[..., self._gases]
         total = np.einsum("...s->...", gases)
         logarithm = np.log(np.asarray(pressure, dtype=float) / STANDARD_PRESSURE)
         mixing = _dot(gases, _log(gases)) - total * (_log(total) - logarithm)
@@ -122,22 +124,40 @@ class Mixture:
     ) -> FloatArray:
         """Z N R T/P of the gas, m³."""
         T, P = np.asarray(temperature, dtype=float), np.asarray(pressure, dtype=float)
-        ideal = amounts[..., self.gas].sum(axis=-1) * GAS_CONSTANT * T / P
+        ideal = np.einsum("...s->...", amounts[..., self._gases]) * (GAS_CONSTANT * T / P)
         state = self.gas_state(temperature, pressure, amounts)
         return ideal if state is None else np.asarray(ideal * np.nan_to_num(state.Z, nan=1.0))
+
+    def pressure_work(
+        self, temperature: npt.ArrayLike, pressure: npt.ArrayLike, amounts: FloatArray
+    ) -> FloatArray:
+        """H − U in J: P V of the gas; solids and liquids take up no room and have U = H°."""
+        P = np.asarray(pressure, dtype=float)
+        work = P * self.gas_volume(temperature, P, amounts)
+        return work + self._of_volumes(P, amounts) if self._has_volumes else work
 
     def internal_energy(
         self, temperature: npt.ArrayLike, pressure: npt.ArrayLike, amounts: FloatArray
     ) -> FloatArray:
-        """U = H − P V of the gas in J; solids and liquids take up no room and have U = H°."""
-        P = np.asarray(pressure, dtype=float)
-        U = self.enthalpy(temperature, P, amounts)
-        U = U - P * self.gas_volume(temperature, P, amounts)
-        return U - _dot(amounts, self.pressure_terms(P)) if self._has_volumes else U
+        """U in J: see :meth:`pressure_work`."""
+        H = self.enthalpy(temperature, pressure, amounts)
+        return np.asarray(H - self.pressure_work(temperature, pressure, amounts))
 
     @cached_property
     def _has_volumes(self) -> bool:
         return bool(self.volumes.any())
+
+    @cached_property
+    def _gases(self) -> slice | IntArray:
+        """The gases' columns, without a copy of them where they come first."""
+        columns = np.flatnonzero(self.gas)
+        first = np.array_equal(columns, np.arange(columns.size))
+        return slice(columns.size) if first else columns
+
+    def _of_volumes(self, pressure: npt.ArrayLike, amounts: FloatArray) -> FloatArray:
+        """Σ nᵢ Vᵢ (P − P°) of solids and liquids, J."""
+        excess = np.asarray(pressure, dtype=float) - STANDARD_PRESSURE
+        return np.asarray(excess * (amounts @ self.volumes))
 
     def _of_gas(self, per_mole: FloatArray, amounts: FloatArray) -> FloatArray:
         """A departure of the whole gas; 0 where there is no gas."""
@@ -151,5 +171,5 @@ def _dot(a: FloatArray, b: FloatArray) -> FloatArray:
 
 
 def _log(x: FloatArray) -> FloatArray:
-    """ln x, 0 at 0: there x ln x is 0."""
-    return np.log(x, out=np.zeros_like(x), where=x > 0.0)
+    """ln x, finite at 0: there x ln x is 0."""
+    return np.log(np.maximum(x, _SMALLEST))

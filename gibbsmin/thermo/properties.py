@@ -160,7 +160,7 @@ class PropertyTable:
             for start in self.breaks:
                 piece += block >= start
             result[begin : begin + step] = kernel(block, piece)
-        return result[places].reshape((*T.shape, S))
+        return result.take(places, axis=0).reshape((*T.shape, S))
 
 
 def _distinct(T: FloatArray) -> tuple[FloatArray, IntArray]:
