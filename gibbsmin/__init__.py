@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from gibbsmin.jobs.case import Case, load_case
     from gibbsmin.jobs.check import check
+    from gibbsmin.jobs.monte_carlo import MonteCarlo, monte_carlo
     from gibbsmin.jobs.onset import Onset, onset
     from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
     from gibbsmin.jobs.predict import predict
@@ -26,6 +27,7 @@ if TYPE_CHECKING:
 __all__ = [
     "Case",
     "Checks",
+    "MonteCarlo",
     "Onset",
     "Outlet",
     "SampleCheck",
@@ -35,6 +37,7 @@ __all__ = [
     "Target",
     "check",
     "load_case",
+    "monte_carlo",
     "onset",
     "onset_uncertainty",
     "predict",
@@ -50,6 +53,8 @@ _HOMES = {
     "Checks": "gibbsmin.sample.findings",
     "SampleCheck": "gibbsmin.sample.findings",
     "check": "gibbsmin.jobs.check",
+    "MonteCarlo": "gibbsmin.jobs.monte_carlo",
+    "monte_carlo": "gibbsmin.jobs.monte_carlo",
     "Outlet": "gibbsmin.results",
     "StageOutlet": "gibbsmin.results",
     "load_case": "gibbsmin.jobs.case",

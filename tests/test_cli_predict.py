@@ -191,3 +191,37 @@ def test_output_that_cannot_be_written(case: Path, tmp_path: Path) -> None:
         f"{out}: found that it cannot be written (no such file or directory); accepted is a file "
         "in a folder that exists and may be written.\n",
     )
+
+
+def test_random_draws_stand_beside_first_order_error_bars(case: Path, tmp_path: Path) -> None:
+    case.write_text(CASE + '[uncertainty]\noutlet.temperature = "5 K"\n', encoding="utf-8")
+    out = tmp_path / "outlet.xlsx"
+    arguments = ["predict", case, "--monte-carlo", "400", "--seed", "7"]
+    code, text, err = run(*arguments, "--out", out)
+    assert (code, err) == (0, "")
+    spread = text[text.index("Spread over random draws: outlet") :]
+    header = ["result", "value", "first order", "Monte Carlo", "2.5 %", "median", "97.5 %"]
+    assert all(name in spread.splitlines()[1] for name in header)
+    assert "C(graphite) is there in none of the draws." in spread
+    assert (
+        "400 draws from seed 7: every number that is not exact is drawn from a normal distribution "
+        "of its standard uncertainty, with its stated correlations." in spread
+    )
+    code, text, err = run(*arguments, "--json")
+    assert (code, err) == (0, "")
+    found = json.loads(text)["stages"][0]["monte_carlo"]
+    assert (found["draws"], found["seed"], found["solved"]) == (400, 7, 400)
+    assert found["phase_probability"] == {"C(graphite)": 0.0}
+    (temperature,) = (row for row in found["results"] if row["result"] == "temperature")
+    assert temperature["standard_deviation"] == pytest.approx(5.0, rel=0.15)
+    assert temperature["quantiles"]["0.5"] == pytest.approx(1123.15, abs=1.2)
+    sheet = openpyxl.load_workbook(out)["monte carlo"]
+    rows = {row[1]: row for row in sheet.iter_rows(values_only=True)}
+    assert rows["temperature"][3] == pytest.approx(temperature["standard_deviation"])
+    assert rows["probability of C(graphite)"][2] == 0.0
+
+
+def test_too_few_draws_are_one_sentence(case: Path) -> None:
+    code, out, err = run("predict", case, "--monte-carlo", "12")
+    assert (code, out) == (2, "")
+    assert err == "monte-carlo: found 12 draws; accepted is a number from 100 to 200000.\n"

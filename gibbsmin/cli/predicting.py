@@ -21,6 +21,15 @@ def predict(
     uncertainty: Annotated[
         bool, typer.Option("--uncertainty", help="Give error bars and what makes them.")
     ] = False,
+    draws: Annotated[
+        int,
+        typer.Option(
+            "--monte-carlo", metavar="N", help="Draw the unsure numbers N times, and solve each."
+        ),
+    ] = 0,
+    seed: Annotated[
+        int, typer.Option(metavar="K", min=0, help="Where the random draws start.")
+    ] = 1,
     plot: Plot = "",
     show: Annotated[
         str, typer.Option(metavar="WORD", help='What to plot: "beds", "cooling" or "lost work".')
@@ -32,8 +41,10 @@ def predict(
     Exit code 1 means that the state could not be certified.
     """
     from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.monte_carlo import monte_carlo
     from gibbsmin.jobs.predict import predict as predict_case
     from gibbsmin.jobs.uncertainty import uncertainty as error_bars_of
+    from gibbsmin.present.monte_carlo_view import monte_carlo_view
     from gibbsmin.present.outlet_document import outlet_document
     from gibbsmin.present.outlet_files import require_ending, write_outlet
     from gibbsmin.present.outlet_view import outlet_view
@@ -48,15 +59,18 @@ def predict(
         require_kind(show)
     loaded = load_case(case)
     outlet = predict_case(loaded)
-    bars = error_bars_of(loaded) if uncertainty else ()
+    bars = error_bars_of(loaded) if uncertainty or draws else ()
+    spread = monte_carlo(loaded, draws, seed) if draws else None
     if out:
-        write_outlet(outlet, Path(out), bars)
+        write_outlet(outlet, Path(out), bars, spread)
     if as_json:
-        print_json(outlet_document(outlet, bars))
+        print_json(outlet_document(outlet, bars, spread))
     else:
         print_view(outlet_view(outlet))
-        if bars:
+        if uncertainty:
             print_view(uncertainty_view(outlet, bars))
+        if spread is not None:
+            print_view(monte_carlo_view(outlet, bars, spread))
     if not outlet.certified:
         if plot:
             typer.echo("No plot was drawn: the outlet is not certified.", err=True)

@@ -12,9 +12,9 @@ from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.jobs.real_gas import real_gas_columns
 from gibbsmin.jobs.scan_layout import StageLayout
 from gibbsmin.jobs.sensitivity import Sensitivities
+from gibbsmin.jobs.step_results import results_of
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Status
-from gibbsmin.reactor.conversion import conversions
 from gibbsmin.thermo.species import Phase
 
 UNITS = ("K", "bar", "kW", "kJ", "kW/K", "kJ/K", "mol", "mol/s")
@@ -86,28 +86,26 @@ def _categories(names: tuple[str, ...]) -> Any:
 
 def _values(step: Step, layout: StageLayout) -> Iterator[tuple[str, str, float, str, FloatArray]]:
     """Name, unit, SI per unit, the result's name among the sensitivities, and SI values."""
-    found, energy, model = step.states.equilibria, step.states.energy, step.states.model
+    results = results_of(step, dry=False)
     unit, moles = ("kW", "mol/s") if step.streams[0].is_flow else ("kJ", "mol")
-    yield "temperature", "K", 1.0, "temperature", found.temperature
-    yield "pressure", "bar", 1e5, "pressure", found.pressure
-    yield "heat", unit, 1e3, "heat", energy.heat
-    generated = energy.entropy_generation
-    yield "entropy generation", f"{unit}/K", 1e3, "entropy generation", generated
-    total = found.amounts @ model.gas.astype(float)
-    total = np.where(total > 0.0, total, np.nan)
-    columns = {record.name: column for column, record in enumerate(model.records)}
-    absent = 0.0 * found.amounts[:, 0]
+    for name, of_unit, factor in (
+        ("temperature", "K", 1.0),
+        ("pressure", "bar", 1e5),
+        ("heat", unit, 1e3),
+        ("entropy generation", f"{unit}/K", 1e3),
+    ):
+        yield name, of_unit, factor, name, results[name]
+    absent = 0.0 * step.states.equilibria.amounts[:, 0]
+    not_fed = np.full(absent.size, np.nan)
     for record in layout.records:
-        column = columns.get(record.name)
-        amounts = absent if column is None else found.amounts[:, column]
         if record.phase is Phase.GAS:
-            yield f"y {record.name}", "", 1.0, f"fraction {record.name}", amounts / total
+            result = f"fraction {record.name}"
+            yield f"y {record.name}", "", 1.0, result, results.get(result, absent)
         else:
-            yield f"amount {record.name}", moles, 1.0, f"amount {record.name}", amounts
-    shares = conversions(step.states.inlet, model.records, found.amounts)
-    not_fed = np.full(len(total), np.nan)
-    for name in (record.name for record in layout.fed):
-        yield f"conversion {name}", "", 1.0, f"conversion {name}", shares.get(name, not_fed)
+            result = f"amount {record.name}"
+            yield result, moles, 1.0, result, results.get(result, absent)
+    for result in (f"conversion {record.name}" for record in layout.fed):
+        yield result, "", 1.0, result, results.get(result, not_fed)
 
 
 def _phases(step: Step) -> Any:

@@ -49,18 +49,25 @@ def error_bars(
 
     A scan tells uncertainties alone, so that it leaves exact inputs and dry fractions away.
     """
-    inputs = _stated(
+    inputs = uncertain_inputs(case, steps) if of_scan else _inputs(case, steps)
+    return sensitivities(
+        steps, input_changes(case, inputs), correlation_of(case, inputs), library, dry=not of_scan
+    )
+
+
+def uncertain_inputs(case: Case, steps: Sequence[Step]) -> list[Input]:
+    """The numbers that a solved train rests on and that are not exact."""
+    return [each for each in _inputs(case, steps) if np.any(each.uncertainty)]
+
+
+def _inputs(case: Case, steps: Sequence[Step]) -> list[Input]:
+    return _stated(
         case,
         [
             *stream_inputs(case.feeds),
             *stage_inputs(case.stages),
             *record_inputs(_records(steps)),
         ],
-    )
-    if of_scan:
-        inputs = [each for each in inputs if np.any(each.uncertainty)]
-    return sensitivities(
-        steps, input_changes(case, inputs), _correlation(case, inputs), library, dry=not of_scan
     )
 
 
@@ -110,7 +117,7 @@ def _value(case: Case, name: str) -> FloatArray:
     return np.asarray(getattr(stage.specification, field), dtype=float)
 
 
-def _correlation(case: Case, inputs: Sequence[Input]) -> FloatArray:
+def correlation_of(case: Case, inputs: Sequence[Input]) -> FloatArray:
     """The inputs' correlation matrix.
 
     Raises

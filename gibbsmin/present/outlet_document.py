@@ -9,7 +9,9 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.arrays import FloatArray
+from gibbsmin.jobs.monte_carlo import MonteCarlo
 from gibbsmin.jobs.sensitivity import Sensitivities
+from gibbsmin.present.monte_carlo_view import spread_document
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
 from gibbsmin.present.uncertainty_document import add_error_bars
 from gibbsmin.reactor.audit import AUDIT_LENGTH, AuditEntry
@@ -17,16 +19,24 @@ from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
 from gibbsmin.units import to_unit
 
 
-def outlet_document(outlet: Outlet, error_bars: Sequence[Sensitivities] = ()) -> dict[str, Any]:
+def outlet_document(
+    outlet: Outlet,
+    error_bars: Sequence[Sensitivities] = (),
+    spread: MonteCarlo | None = None,
+) -> dict[str, Any]:
     """The whole outlet; one entry of ``stages`` each stage, in order.
 
     Amounts are in ``unit``; heat is positive into the stage, in kW or kJ; chemical potentials
-    of the elements are in RT.  Error bars, where they are given, stand beside the values.
+    of the elements are in RT.  Error bars, where they are given, stand beside the values, and the
+    spread over random draws at the end of each stage.
     """
     stages = [_stage(outlet, stage) for stage in outlet.stages]
     if error_bars:
         for entry, stage, found in zip(stages, outlet.stages, error_bars, strict=True):
             add_error_bars(entry, outlet, stage, found)
+    if spread is not None:
+        for entry, of_stage in zip(stages, spread.stages, strict=True):
+            entry["monte_carlo"] = spread_document(of_stage, spread.draws, spread.seed)
     document = {
         "title": outlet.title,
         "status": "certified" if outlet.certified else "not certified",

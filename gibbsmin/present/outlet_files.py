@@ -9,8 +9,10 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from gibbsmin.jobs.monte_carlo import MonteCarlo
 from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.present.files import output_suffix, write_csv, write_tables, write_text
+from gibbsmin.present.monte_carlo_view import spread_table
 from gibbsmin.present.outlet_document import outlet_document
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
 from gibbsmin.results import CAUTIONS, Outlet, StageOutlet
@@ -27,8 +29,15 @@ def require_ending(path: Path) -> str:
     return output_suffix(path, ENDINGS)
 
 
-def write_outlet(outlet: Outlet, path: Path, error_bars: Sequence[Sensitivities] = ()) -> None:
+def write_outlet(
+    outlet: Outlet,
+    path: Path,
+    error_bars: Sequence[Sensitivities] = (),
+    spread: MonteCarlo | None = None,
+) -> None:
     """Write an outlet in the form that the file's ending names, with its error bars if given.
+
+    A .csv file holds the composition alone, and so no spread over random draws.
 
     Raises
     ------
@@ -37,7 +46,7 @@ def write_outlet(outlet: Outlet, path: Path, error_bars: Sequence[Sensitivities]
     """
     suffix = require_ending(path)
     if suffix == ".json":
-        document = outlet_document(outlet, error_bars)
+        document = outlet_document(outlet, error_bars, spread)
         write_text(path, json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False) + "\n")
     elif suffix == ".csv":
         write_csv(path, composition_table(outlet, error_bars))
@@ -52,6 +61,7 @@ def write_outlet(outlet: Outlet, path: Path, error_bars: Sequence[Sensitivities]
                 "audit": _audit(outlet),
                 "remarks": _remarks(outlet),
                 **({"uncertainty": _uncertainty(error_bars)} if error_bars else {}),
+                **({} if spread is None else {"monte carlo": spread_table(spread)}),
             },
         )
 

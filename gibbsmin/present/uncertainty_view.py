@@ -16,6 +16,7 @@ from gibbsmin.results import Outlet, StageOutlet
 _SHOWN_FROM = 1e-6
 _MOST = 0.9
 _MAIN_SPECIES = 4
+_ROUNDING = 1e-12
 _COUNTS = 0.01
 """Share of a main result's variance from which a record's number is listed."""
 
@@ -54,7 +55,7 @@ def near_onsets(found: Sensitivities) -> list[str]:
     return [
         f"{name} is {'there' if amount > 0.0 else 'absent'}, but within two standard "
         f"uncertainties of {'vanishing' if amount > 0.0 else 'forming'}: the error bars do not "
-        "hold beyond its onset."
+        "hold beyond its onset; --monte-carlo 20000 gives the spread there and how likely it is."
         for name, amount, near in zip(
             found.phases,
             found.phase_amounts[0].tolist(),
@@ -68,12 +69,12 @@ def near_onsets(found: Sensitivities) -> list[str]:
 def _bars(outlet: Outlet, stage: StageOutlet, found: Sensitivities) -> RenderableType:
     sizes = dict(zip(found.results, found.uncertainties[0].tolist(), strict=True))
     rows = []
-    for result, value, scale, unit in _values(outlet, stage):
+    for result, value, scale, unit in shown_values(outlet, stage):
         size = sizes[result]
         if not size > 0.0:
             continue
         shown = fraction(value) if unit == "fraction" else f"{significant(value)} {unit}".rstrip()
-        bar = _fraction_bar(value, size) if unit == "fraction" else significant(size / scale, 2)
+        bar = fraction_bar(value, size) if unit == "fraction" else significant(size / scale, 2)
         rows.append((result, shown, f"± {bar}", _makers(found, result)))
     return table(
         ("result", "value", "uncertainty", "most of it from"),
@@ -82,7 +83,7 @@ def _bars(outlet: Outlet, stage: StageOutlet, found: Sensitivities) -> Renderabl
     )
 
 
-def _values(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, float, float, str]]:
+def shown_values(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, float, float, str]]:
     """Result, value in its unit, SI per unit, and the unit."""
     energy = heat_unit(outlet.is_flow)
     yield "temperature", stage.temperature, 1.0, "K"
@@ -104,7 +105,7 @@ def _values(outlet: Outlet, stage: StageOutlet) -> Iterator[tuple[str, float, fl
             yield f"conversion {name}", value, 1.0, "fraction"
 
 
-def _fraction_bar(value: float, size: float) -> str:
+def fraction_bar(value: float, size: float) -> str:
     """An uncertainty in the unit in which the fraction is shown."""
     if abs(value) >= 1e-4:
         return f"{significant(100 * size, 2)} %"
@@ -132,7 +133,7 @@ def _steps(outlet: Outlet, stage: StageOutlet, found: Sensitivities) -> Renderab
         for c in np.argsort(-fractions).tolist()[:_MAIN_SPECIES]
         if fractions[c] > 0.0
     ]
-    by_unit = {r: (scale, unit) for r, _, scale, unit in _values(outlet, stage)}
+    by_unit = {r: (scale, unit) for r, _, scale, unit in shown_values(outlet, stage)}
     results = [
         name
         for name in ("temperature", "heat", *main)
@@ -143,10 +144,12 @@ def _steps(outlet: Outlet, stage: StageOutlet, found: Sensitivities) -> Renderab
     share = found.contributions[0, places]
     with np.errstate(invalid="ignore", divide="ignore"):
         share = np.nan_to_num(share / share.sum(axis=1, keepdims=True)).max(axis=0, initial=0.0)
+    largest = np.abs(found.matrix[0, places]).max(axis=1, initial=0.0)
     rows = []
     for k, each in enumerate(found.inputs):
         of_case = each.name.startswith(("feed.", "outlet.", "stage."))
         changes = found.matrix[0, places, k]
+        changes = np.where(np.abs(changes) > _ROUNDING * largest, changes, 0.0)
         if not changes.any() or not (of_case or share[k] > _COUNTS):
             continue
         cells = []

@@ -87,22 +87,23 @@ class Shift:
 
     def of_states(self, index: IntArray) -> Shift:
         """The shift of some of the states."""
-        if self.differences.ndim == 1:
-            return self
-        return replace(self, differences=self.differences[:, index])
+        alike = self.differences.ndim == 1
+        differences = self.differences if alike else self.differences[:, index]
+        return replace(self, properties=self.properties.of_states(index), differences=differences)
 
     def senses(self, temperature: npt.ArrayLike) -> FloatArray:
         """Sign of ΔrH of each named reaction, (R,) + T.shape; 0 where its approach has no meaning.
 
         That is where T_s is not above absolute zero or ΔrH changes sign between T and T_s.  All
-        temperatures are for the same differences.
+        temperatures are for the same differences, and for the records' own numbers.
         """
         T = np.asarray(temperature, dtype=float)
+        table = self.properties.deviating(None)
         senses = []
         for nu, difference in zip(self.stoichiometry, self.differences.tolist(), strict=True):
-            sense = np.sign(self.properties.enthalpy(T) @ nu)
+            sense = np.sign(table.enthalpy(T) @ nu)
             shifted = T - sense * difference
-            there = np.sign(self.properties.enthalpy(np.maximum(shifted, 1.0)) @ nu)
+            there = np.sign(table.enthalpy(np.maximum(shifted, 1.0)) @ nu)
             senses.append(np.where((shifted > 0.0) & (there == sense), sense, 0.0))
         return np.array(senses)
 
@@ -141,12 +142,12 @@ class Shift:
 
 
 def shift_of(
-    records: Sequence[Species],
+    properties: PropertyTable,
     approaches: Sequence[Approach],
     offsets: Mapping[str, float],
     activities: Mapping[str, float],
 ) -> Shift:
-    """Lay out approaches, offsets (J/mol) and activities over the candidates.
+    """Lay out approaches, offsets (J/mol) and activities over the candidates, a table's records.
 
     Raises
     ------
@@ -154,6 +155,7 @@ def shift_of(
         for a reaction with a record that is no candidate, a key that is not in its reaction or
         is not unique, or dependent reactions.
     """
+    records = properties.records
     names = [record.name for record in records]
     stoichiometry = np.zeros((len(approaches), len(names)))
     keys = []
@@ -181,7 +183,7 @@ def shift_of(
             key="approach",
         )
     return Shift(
-        properties=PropertyTable.of(records),
+        properties=properties,
         stoichiometry=stoichiometry,
         differences=np.array(np.broadcast_arrays(*(each.difference for each in approaches))),
         keys=tuple(keys),

@@ -18,6 +18,7 @@ from gibbsmin.arrays import BoolArray, FloatArray, IntArray
 from gibbsmin.constants import GAS_CONSTANT
 from gibbsmin.minimise import Solution, minimise, minimise_heated
 from gibbsmin.reactor.answers import every_answer
+from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
 from gibbsmin.reactor.real_equilibria import (
     Fugacity,
@@ -127,8 +128,8 @@ def at_enthalpy(
     as plateaus, and those under an approach are bracketed.
     """
 
-    def content(found: Equilibria) -> FloatArray:
-        return model.mixture.enthalpy(found.temperature, found.pressure, found.amounts)
+    def content(mixture: Mixture, found: Equilibria) -> FloatArray:
+        return mixture.enthalpy(found.temperature, found.pressure, found.amounts)
 
     if model.shift.keys:
         return _at_content(model, enthalpy, content, pressure, feed, start)
@@ -139,7 +140,7 @@ def at_enthalpy(
         solution, T, fugacity = real_heated_equilibria(model, gas, enthalpy, pressure, feed, start)
         met = _MET_BY_REAL_GAS
     found = _found(T, pressure, solution, fugacity)
-    left = np.flatnonzero(~_holds(found, content(found), enthalpy, met))
+    left = np.flatnonzero(~_holds(found, content(model.mixture, found), enthalpy, met))
     if left.size == 0:
         return found
     some = model.of_states(left)
@@ -162,8 +163,8 @@ def at_entropy(
 ) -> Equilibria:
     """Equilibria whose entropy (B,) in J/K is given, such as those of a reversible expansion."""
 
-    def content(found: Equilibria) -> FloatArray:
-        return model.mixture.entropy(found.temperature, found.pressure, found.amounts)
+    def content(mixture: Mixture, found: Equilibria) -> FloatArray:
+        return mixture.entropy(found.temperature, found.pressure, found.amounts)
 
     return _at_content(model, entropy, content, pressure, feed, start)
 
@@ -200,8 +201,9 @@ def at_energy_and_volume(
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
         return at_volume(model.of_states(index), T, volume[index], feed[index])
 
-    def content(found: Equilibria, _: IntArray) -> FloatArray:
-        return model.mixture.internal_energy(found.temperature, found.pressure, found.amounts)
+    def content(found: Equilibria, index: IntArray) -> FloatArray:
+        mixture = model.mixture.of_states(index)
+        return mixture.internal_energy(found.temperature, found.pressure, found.amounts)
 
     return _between(model, solved, content, energy, start)
 
@@ -225,7 +227,7 @@ class _Near:
 def _at_content(
     model: StageModel,
     wanted: FloatArray,
-    content: Callable[[Equilibria], FloatArray],
+    content: Callable[[Mixture, Equilibria], FloatArray],
     pressure: FloatArray,
     feed: FloatArray,
     start: FloatArray,
@@ -235,7 +237,10 @@ def _at_content(
     def solved(T: FloatArray, index: IntArray) -> Equilibria:
         return near.solved(T, pressure[index], feed[index], index)
 
-    return _between(model, solved, lambda found, _: content(found), wanted, start)
+    def of_some(found: Equilibria, index: IntArray) -> FloatArray:
+        return content(model.mixture.of_states(index), found)
+
+    return _between(model, solved, of_some, wanted, start)
 
 
 def _between(

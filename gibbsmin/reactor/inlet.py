@@ -12,7 +12,6 @@ from gibbsmin.arrays import BoolArray, FloatArray, shared
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.streams import Stream, Values
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import Species
 
@@ -48,8 +47,10 @@ def inlet_of(
 ) -> Inlet:
     """Sum up streams, each at its own temperature and pressure; without an equation ideal gas."""
     names = list(dict.fromkeys(name for stream in streams for name in stream.amounts))
-    shape = np.broadcast_shapes((1,), *(np.shape(v) for s in streams for v in _values(s)))
     parts = [_content(stream, library, equation) for stream in streams]
+    given = [np.shape(v) for s in streams for v in _values(s)]
+    # Where the records themselves differ from state to state, so do enthalpies.
+    shape = np.broadcast_shapes((1,), *given, *(part.enthalpy.shape for part in parts))
     amounts = np.zeros((*shape, len(names)))
     for part in parts:
         for column, name in enumerate(part.names):
@@ -98,7 +99,7 @@ class _Content:
 
 def _content(stream: Stream, library: Library, equation: Equation | None) -> _Content:
     records = [library[name] for name in stream.amounts]
-    mixture = Mixture.of(PropertyTable.of(records), equation)
+    mixture = Mixture.of(library.properties(records), equation)
     T, P, *each = (shared(value) for value in _values(stream))
     amounts = np.stack(np.broadcast_arrays(*each), axis=-1) if each else np.zeros(0)
     enthalpy = mixture.enthalpy(T, P, amounts)

@@ -8,7 +8,7 @@ constant molar volume V where one is known (else 0):
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Self
 
@@ -54,6 +54,12 @@ class Mixture:
             gases = [r for r in records if r.phase is Phase.GAS]
             real = RealGas.of(equation, gases) if gases else None
         return cls(properties, gas, np.where(gas | np.isnan(volumes), 0.0, volumes), real)
+
+    def of_states(self, index: IntArray) -> Self:
+        """The mixture of some of the states, where the records' numbers differ between them."""
+        if self.properties.deviations is None:
+            return self
+        return replace(self, properties=self.properties.of_states(index))
 
     def reduced_energies(self, temperature: npt.ArrayLike, pressure: npt.ArrayLike) -> FloatArray:
         """g̃ = G/RT of every record, (..., S), for gases with + ln(P/P°) and as if ideal."""

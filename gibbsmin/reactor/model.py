@@ -53,9 +53,12 @@ class StageModel:
     reacts: bool
 
     def of_states(self, index: IntArray) -> StageModel:
-        """The model of some of the states, where they differ in holds or approaches."""
+        """The model of some of the states, where they differ in holds, approaches or numbers."""
         return replace(
-            self, balance=self.balance.of_states(index), shift=self.shift.of_states(index)
+            self,
+            mixture=self.mixture.of_states(index),
+            balance=self.balance.of_states(index),
+            shift=self.shift.of_states(index),
         )
 
     @property
@@ -115,12 +118,17 @@ class StageModel:
             direction=self.balance.direction,
             atoms=self.balance.atoms,
         )
+        offsets = self.shift.offsets + self.mixture.pressure_terms(pressure)
+        off = self.properties.deviations
+        if off is not None:
+            offsets = offsets + off.enthalpy
+            programme.energies[:] -= off.entropy / GAS_CONSTANT
         breaks = self.properties.breaks
         pieces = self.properties.coefficients.reshape(7, len(self.records), len(breaks) + 1)
         warmth = Warmth(
             pieces=pieces / GAS_CONSTANT,
             breaks=breaks,
-            offsets=(self.shift.offsets + self.mixture.pressure_terms(pressure)) / GAS_CONSTANT,
+            offsets=offsets / GAS_CONSTANT,
             contents=contents / GAS_CONSTANT,
             start=start,
             limits=(LOWEST_TEMPERATURE, HIGHEST_TEMPERATURE),
@@ -141,7 +149,9 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
     records = candidates_of(chemistry, feed, library)
     if chemistry.reactions != "none":
         require_every_element_held(records, feed, library)
-    shift = shift_of(records, chemistry.approaches, chemistry.offsets, chemistry.activities)
+    shift = shift_of(
+        library.properties(records), chemistry.approaches, chemistry.offsets, chemistry.activities
+    )
     if chemistry.reactions == "none":
         balance = substance_balance(records, feed)
     elif chemistry.others == "frozen":

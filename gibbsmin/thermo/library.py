@@ -3,17 +3,21 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Collection, Iterable, Mapping
-from dataclasses import dataclass
+from collections.abc import Collection, Iterable, Mapping, Sequence
+from dataclasses import dataclass, field, replace
 from functools import cache, cached_property
 from importlib.resources import files
 from importlib.resources.abc import Traversable
 from typing import Final, Self
 
+import numpy as np
+
+from gibbsmin.arrays import FloatArray
 from gibbsmin.errors import InputError, UnknownSpeciesError
 from gibbsmin.thermo.elements import SYMBOLS, atomic_weights
 from gibbsmin.thermo.formula import plain_text
 from gibbsmin.thermo.index import Index, current, split_name
+from gibbsmin.thermo.properties import Deviations, PropertyTable
 from gibbsmin.thermo.species import Phase, Species
 from gibbsmin.thermo.tables import Source, read_sources, read_species
 
@@ -32,6 +36,8 @@ class Library:
 
     records: tuple[Species, ...]
     sources: tuple[Source, ...] = ()
+    deviations: Mapping[str, tuple[FloatArray, FloatArray]] = field(default_factory=dict)
+    """By record name, how far its H and S stand off in each of B states, each (B,)."""
 
     def __post_init__(self) -> None:
         if len(self._index.by_name) < len(self.records):
@@ -46,14 +52,14 @@ class Library:
 
     def extended(self, records: Iterable[Species], sources: Iterable[Source] = ()) -> Self:
         """This library with further records and their sources."""
-        return type(self)((*self.records, *records), (*self.sources, *sources))
+        return replace(self, records=(*self.records, *records), sources=(*self.sources, *sources))
 
     def overruled(self, records: Iterable[Species], sources: Iterable[Source] = ()) -> Self:
         """This library with records that take the place of those of the same name."""
         records = tuple(records)
         names = {record.name for record in records}
         kept = tuple(record for record in self.records if record.name not in names)
-        return type(self)((*kept, *records), (*self.sources, *sources))
+        return replace(self, records=(*kept, *records), sources=(*self.sources, *sources))
 
     @cached_property
     def _index(self) -> Index:
@@ -83,6 +89,24 @@ class Library:
         if record is None:
             raise self.unknown(name)
         return record
+
+    def deviating(self, deviations: Mapping[str, tuple[FloatArray, FloatArray]]) -> Self:
+        """This library with other numbers of some records in each state of a batch."""
+        return replace(self, deviations=deviations)
+
+    def properties(self, records: Sequence[Species]) -> PropertyTable:
+        """Standard properties of some of its records."""
+        table = PropertyTable.of(records)
+        if not self.deviations:
+            return table
+        states = next(iter(self.deviations.values()))[0].size
+        nothing = (np.zeros(states), np.zeros(states))
+        parts = [self.deviations.get(record.name, nothing) for record in records]
+        H, S = (
+            np.stack(kind, axis=1) if kind else np.zeros((states, 0))
+            for kind in ([part[k] for part in parts] for k in range(2))
+        )
+        return table.deviating(Deviations(H, S))
 
     def forms(self, formula: str) -> tuple[Species, ...]:
         """All records of a formula, superseded ones too; empty where there is none.

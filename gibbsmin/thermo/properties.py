@@ -15,7 +15,7 @@ thus counted from the elements in their reference states at 298.15 K.
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from typing import Final, Self
 
@@ -35,6 +35,19 @@ _MANY: Final = 5000
 
 
 @dataclass(frozen=True, eq=False)
+class Deviations:
+    """By how much the records' H and S stand off their values, in each of B states.
+
+    Attributes
+    ----------
+    enthalpy, entropy : (B, S) in J/mol and J/mol/K, at every temperature the same
+    """
+
+    enthalpy: FloatArray
+    entropy: FloatArray
+
+
+@dataclass(frozen=True, eq=False)
 class PropertyTable:
     """The records' heat capacities, joined up and laid out as arrays.
 
@@ -42,7 +55,8 @@ class PropertyTable:
     ``np.shape(T) + (S,)``, S the number of records, in J/mol or J/mol/K at P° = 1 bar.  Beyond a
     record's range its heat capacity is continued as the constant at the nearer end.  At a break
     the upper piece holds.  NaN gives NaN; a temperature that is not above 0 K raises
-    :class:`InputError`.
+    :class:`InputError`.  With ``deviations`` of B states T is a scalar or of shape (B,), and the
+    shape of H, S and G is (B, S).
     """
 
     records: tuple[Species, ...]
@@ -52,6 +66,7 @@ class PropertyTable:
     """(K − 1, S): the temperatures at which each record's pieces begin, but the first."""
     coefficients: FloatArray
     """(7, S·K): A, B, C, D, E, h, s of piece k of record j at position j·K + k."""
+    deviations: Deviations | None = None
 
     @classmethod
     def of(cls, records: Sequence[Species]) -> Self:
@@ -85,6 +100,17 @@ class PropertyTable:
             array.flags.writeable = False
         return table
 
+    def deviating(self, deviations: Deviations | None) -> Self:
+        """The same records with other numbers in each state of a batch."""
+        return replace(self, deviations=deviations)
+
+    def of_states(self, index: IntArray) -> Self:
+        """The table of some of the states, where they differ."""
+        if self.deviations is None:
+            return self
+        off = self.deviations
+        return self.deviating(Deviations(off.enthalpy[index], off.entropy[index]))
+
     def heat_capacity(self, T: npt.ArrayLike) -> FloatArray:
         """Cp in J/mol/K."""
 
@@ -102,7 +128,8 @@ class PropertyTable:
             A, B, C, D, E, h, _ = self._gather(piece)
             return _enthalpy_integral(T / 1000, A, B, C, D, E) + h
 
-        return self._evaluate(kernel, T)
+        H = self._evaluate(kernel, T)
+        return H if self.deviations is None else H + self.deviations.enthalpy
 
     def entropy(self, T: npt.ArrayLike) -> FloatArray:
         """S in J/mol/K, absolute."""
@@ -111,7 +138,8 @@ class PropertyTable:
             A, B, C, D, E, _, s = self._gather(piece)
             return _entropy_integral(T / 1000, A, B, C, D, E) + s
 
-        return self._evaluate(kernel, T)
+        S = self._evaluate(kernel, T)
+        return S if self.deviations is None else S + self.deviations.entropy
 
     def gibbs_energy(self, T: npt.ArrayLike) -> FloatArray:
         """G = H − T S in J/mol."""
@@ -122,7 +150,11 @@ class PropertyTable:
             enthalpy = _enthalpy_integral(t, A, B, C, D, E) + h
             return enthalpy - T * (_entropy_integral(t, A, B, C, D, E) + s)
 
-        return self._evaluate(kernel, T)
+        G = self._evaluate(kernel, T)
+        if self.deviations is None:
+            return G
+        column = np.asarray(T, dtype=float)[..., np.newaxis]
+        return np.asarray(G + self.deviations.enthalpy - column * self.deviations.entropy)
 
     def reduced_gibbs_energy(self, T: npt.ArrayLike) -> FloatArray:
         """G/RT."""
@@ -133,7 +165,12 @@ class PropertyTable:
             enthalpy = _enthalpy_integral(t, A, B, C, D, E) + h
             return (enthalpy / T - (_entropy_integral(t, A, B, C, D, E) + s)) / GAS_CONSTANT
 
-        return self._evaluate(kernel, T)
+        g = self._evaluate(kernel, T)
+        if self.deviations is None:
+            return g
+        column = np.asarray(T, dtype=float)[..., np.newaxis]
+        off = self.deviations.enthalpy / column - self.deviations.entropy
+        return np.asarray(g + off / GAS_CONSTANT)
 
     def within_range(self, T: npt.ArrayLike) -> BoolArray:
         """True where the record's heat capacity is not continued beyond its range."""

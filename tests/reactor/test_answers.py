@@ -15,6 +15,7 @@ from gibbsmin.reactor.approach import Approach, shift_of
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.results import StageOutlet
 from gibbsmin.thermo.library import load_library
+from gibbsmin.thermo.properties import PropertyTable
 from gibbsmin.thermo.reaction import Reaction
 
 LIBRARY = load_library()
@@ -56,7 +57,7 @@ def turning_point() -> float:
 def test_stretches_leave_out_where_the_approach_has_no_meaning() -> None:
     """From T − 300 K to T + 300 K around the change of sign, and up to 0 K."""
     records = [LIBRARY[name] for name in NAMES]
-    shift = shift_of(records, [Approach(TEXT, NU, 300.0, "COS(g)")], {}, {})
+    shift = shift_of(PropertyTable.of(records), [Approach(TEXT, NU, 300.0, "COS(g)")], {}, {})
     cold, hot = stretches(shift, 100.0, 3000.0)
     turn = turning_point()
     assert cold[0] == 100.0
