@@ -58,7 +58,7 @@ def place_of(
             places = [*_STREAM_NUMBERS, "amounts.SPECIES"]
             raise _nothing(name, [f"feed.{stream.name}.{place}" for place in places])
     for stage in stages:
-        field = _after(stage.place, name)
+        field = _after(stage.key, name)
         if not field:
             continue
         given = _numbers_of(stage)
@@ -66,9 +66,9 @@ def place_of(
         if which and kind != "approach" and any(g.startswith(f"{kind}.") for g in given):
             which = resolve(which, library).name
         if f"{kind}.{which}".rstrip(".") not in given:
-            raise _nothing(name, [f"{stage.place}.{place}" for place in given])
+            raise _nothing(name, [f"{stage.key}.{place}" for place in given])
         return Place(stage, kind, which)
-    holders = [*(stage.place for stage in stages), *(f"feed.{stream.name}" for stream in streams)]
+    holders = [*(stage.key for stage in stages), *(f"feed.{stream.name}" for stream in streams)]
     raise InputError(
         f'found "{name}", which names no number of the case',
         f"accepted is a number of {', '.join(holders)}, such as {holders[0]}.temperature",

@@ -13,7 +13,7 @@ from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.axis_place import Place, place_of
 from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.feed_parts import moles_of, placed
+from gibbsmin.jobs.feed_parts import item_key, moles_of, placed
 from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.thermo.library import Library
 from gibbsmin.units import (
@@ -58,10 +58,10 @@ def read_axes(tables: Sequence[AxisTable], holders: Holders) -> tuple[Axis, ...]
     """
     axes = []
     for index, table in enumerate(tables):
-        name = table.vary or table.ratio or ""
-        with placed(f"axis.{index}.vary"):
+        key, name = item_key("axis", index), table.vary or table.ratio or ""
+        with placed(f"{key}.vary"):
             read = _reader(name, table.ratio is not None, holders)
-        with placed(f"axis.{index}.values"):
+        with placed(f"{key}.values"):
             axes.append(_axis(name, table, read))
     return tuple(axes)
 

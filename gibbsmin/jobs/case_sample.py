@@ -11,7 +11,7 @@ import numpy as np
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case_reactions import coefficients_of
 from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.feed_parts import placed, resolve
+from gibbsmin.jobs.feed_parts import item_key, placed, resolve
 from gibbsmin.jobs.sample import AskedReaction, GasRules, PlantSample, SampleRules
 from gibbsmin.jobs.sample_flow import flow_ratio
 from gibbsmin.jobs.sample_reading import (
@@ -75,7 +75,7 @@ def read_rules(
         dried=_records("sample.removed_by_drying", table.removed_by_drying, library),
         uncertainty=read_uncertainty_rules(table.uncertainty),
         reactions=tuple(
-            _reaction(f"sample.reaction.{index}", reaction, library)
+            _reaction(item_key("sample.reaction", index), reaction, library)
             for index, reaction in enumerate(table.reaction)
         ),
         thresholds=Thresholds(given.credible, given.suspect, given.equilibrium, given.resolution),

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, TypeVar
 from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.case_reactions import coefficients_of
 from gibbsmin.jobs.case_selection import proposed, read_selection
-from gibbsmin.jobs.feed_parts import placed, resolve
+from gibbsmin.jobs.feed_parts import item_key, placed, resolve
 from gibbsmin.reactor.approach import Approach
 from gibbsmin.reactor.candidates import Selection
 from gibbsmin.reactor.chemistry import Chemistry, HeldFraction
@@ -36,7 +36,8 @@ class StageCase:
     name
         As reports call it.
     key
-        Where it stands in the case file.
+        Where it stands in the case file, and how axes and uncertainties name it: ``outlet``, or
+        ``stage.`` and its name.
     feeds
         Names of the streams that enter here, beside the outlet of the stage before.
     chemistry
@@ -75,11 +76,6 @@ class StageCase:
     reference_oxygen: float | None = None
     extents: tuple[Mapping[str, float], ...] = ()
 
-    @property
-    def place(self) -> str:
-        """How axes and uncertainties name it: ``outlet``, or ``stage.`` and its name."""
-        return "outlet" if self.key == "outlet" else f"stage.{self.name}"
-
 
 def read_stages(
     table: CaseTable, streams: Sequence[Stream], library: Library
@@ -98,9 +94,15 @@ def read_stages(
         return (
             _stage("outlet", "outlet", tuple(names), table.outlet, None, table, streams, library),
         )
-    stages = []
+    stages: list[StageCase] = []
     for index, stage in enumerate(table.stage):
-        key = f"stage.{index}"
+        key = item_key("stage", index, stage.name)
+        if key in [each.key for each in stages]:
+            raise InputError(
+                f'found two stages named "{stage.name}"',
+                "accepted is a name of its own for each stage",
+                key="stage",
+            )
         for name in stage.feeds or ():
             if name not in names or named.count(name) > 1:
                 raise InputError(
@@ -205,7 +207,7 @@ def _chemistry(key: str, stage: OutletTable, selection: Selection, library: Libr
             HeldFraction(name, share, basis) for name, (share, basis) in fractions.items()
         ),
         approaches=tuple(
-            _approach(f"{key}.approach.{index}", approach, library)
+            _approach(item_key(f"{key}.approach", index), approach, library)
             for index, approach in enumerate(stage.approach)
         ),
         others=stage.others,

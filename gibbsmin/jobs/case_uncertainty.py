@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 from gibbsmin.errors import InputError, UnitError
 from gibbsmin.jobs.case_stage import StageCase
-from gibbsmin.jobs.feed_parts import moles_of, placed, resolve
+from gibbsmin.jobs.feed_parts import item_key, moles_of, placed, resolve
 from gibbsmin.jobs.stated import Correlation, StatedUncertainty
 from gibbsmin.reactor.streams import Stream
 from gibbsmin.thermo.library import Library
@@ -62,7 +62,7 @@ def read_correlations(
     """Correlations between numbers of the case and of records."""
     found = []
     for index, table in enumerate(tables):
-        with placed(f"correlation.{index}.between"):
+        with placed(f"{item_key('correlation', index)}.between"):
             first, second = (input_name(key, streams, stages, library) for key in table.between)
             found.append(Correlation(first, second, table.coefficient))
     return tuple(found)
@@ -91,9 +91,9 @@ def input_name(
                 return f"{start}.amounts.{record.name}"
     for stage in stages:
         given = getattr(stage.specification, field, None)
-        if place == stage.place and isinstance(given, float):
+        if place == stage.key and isinstance(given, float):
             return key
-    places = [*(f"feed.{s.name}" for s in streams), *(stage.place for stage in stages)]
+    places = [*(f"feed.{s.name}" for s in streams), *(stage.key for stage in stages)]
     raise InputError(
         f'found "{key}", which names no number that the case gives',
         f"accepted is a number of {', '.join(places)}, or of a record, such as "

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.case_stage import StageCase
+from gibbsmin.jobs.feed_parts import item_key
 from gibbsmin.jobs.sample import PlantSample, SampleRules
 from gibbsmin.jobs.sample_plan import (
     Reactor,
@@ -169,7 +170,7 @@ def _reactions(reactor: Reactor, plan: Plan, library: Library) -> list[JudgedRea
                 raise InputError(
                     f'found "{name}", which the sample does not tell',
                     f"accepted are {', '.join(sorted(there))}, or a solid or liquid",
-                    key=f"sample.reaction.{index}.reaction",
+                    key=f"{item_key('sample.reaction', index)}.reaction",
                 )
     if asked:
         return [judged_reaction(r.text, r.coefficients, library, r.constant) for r in asked]

@@ -95,7 +95,7 @@ def stream_inputs(streams: Iterable[Stream]) -> list[Input]:
 def stage_inputs(stages: Iterable[StageCase]) -> list[Input]:
     """The numbers of each stage's specification."""
     return [
-        _exact(f"{stage.place}.{field}", *_STAGE_STEPS[field])
+        _exact(f"{stage.key}.{field}", *_STAGE_STEPS[field])
         for stage in stages
         for field in _STAGE_STEPS
         if getattr(stage.specification, field) is not None
@@ -135,7 +135,7 @@ def input_changes(case: Case, inputs: Sequence[Input]) -> InputChanges:
 
     def of_stage(stage: StageCase) -> SpecificationChanges:
         names = [field.name for field in fields(SpecificationChanges)]
-        return SpecificationChanges(**{n: column(f"{stage.place}.{n}") for n in names})
+        return SpecificationChanges(**{n: column(f"{stage.key}.{n}") for n in names})
 
     return InputChanges(
         tuple(inputs),

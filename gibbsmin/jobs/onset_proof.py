@@ -53,7 +53,7 @@ def completeness(
 ) -> tuple[Completeness, ...]:
     """The statement for each row, from a case with the phase kept out."""
     size = path.grid.size
-    if not _is_straight(path):
+    if not _is_straight(kept_out, path):
         text = f"Complete to the grid used: {size} values of {path.axis.name}."
         return tuple(Completeness(False, 0, text) for _ in range(path.rows))
     row, ends = _intervals(path, found)
@@ -84,7 +84,7 @@ def _statement(path: Path, examined: int, left_open: FloatArray) -> Completeness
     return Completeness(False, examined, text)
 
 
-def _is_straight(path: Path) -> bool:
+def _is_straight(case: Case, path: Path) -> bool:
     """Whether the axis moves the supplies of a stage of fixed temperature and pressure alone.
 
     In a real gas it moves the energies as well, by way of the fugacity coefficients.
@@ -99,7 +99,7 @@ def _is_straight(path: Path) -> bool:
         and path.stage.chemistry.equation is None
         and specification.temperature is not None
         and specification.pressure is not None
-        and path.stage.key in ("outlet", "stage.0")
+        and path.stage.key == case.stages[0].key
     )
 
 

@@ -11,7 +11,7 @@ import numpy as np
 
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.case_text import read_tables
-from gibbsmin.jobs.feed_parts import within
+from gibbsmin.jobs.feed_parts import item_key, within
 from gibbsmin.jobs.record_evaluations import Evaluated, with_calorimetry, with_constants
 from gibbsmin.jobs.record_files import read_record_rows
 from gibbsmin.jobs.record_thermal import thermal_of
@@ -68,7 +68,7 @@ def read_library_file(path: Path, library: Library) -> OwnRecords:
         sources: list[Source] = []
         evaluated: dict[str, Evaluated] = {}
         for index, row in enumerate(rows):
-            with within(f"record.{index}"):
+            with within(item_key("record", index, row.name)):
                 source = Source(f"{OWN}{path.name}, {row.name}", row.source, "the user's")
                 found = _record(row, source.key, library.overruled(records))
                 if found.record.name in evaluated:

@@ -74,7 +74,7 @@ def path_of(case: Case, stage: StageCase, library: Library) -> Path:
         raise InputError(
             "found a single value to search along",
             "accepted is an axis with first, last and count",
-            key="axis.0",
+            key="axis.1",
             file=case.file,
         )
     return Path(case.axes[0], case.axes[1] if len(case.axes) == 2 else None, stage, library)

@@ -113,7 +113,7 @@ def _value(case: Case, name: str) -> FloatArray:
         if name.startswith(f"{place}.amounts."):
             return np.asarray(stream.amounts[name.removeprefix(f"{place}.amounts.")], dtype=float)
     key, _, field = name.rpartition(".")
-    stage = next(stage for stage in case.stages if stage.place == key)
+    stage = next(stage for stage in case.stages if stage.key == key)
     return np.asarray(getattr(stage.specification, field), dtype=float)
 
 

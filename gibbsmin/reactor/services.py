@@ -10,7 +10,6 @@ from __future__ import annotations
 import csv
 from collections.abc import Mapping
 from dataclasses import dataclass
-from difflib import get_close_matches
 from functools import cache
 from importlib.resources import files
 from types import MappingProxyType
@@ -59,16 +58,15 @@ def find_service(name: str) -> Service:
     Raises
     ------
     InputError
-        If there is none; the message lists the nearest, or all.
+        If there is none; the message lists all.
     """
     known = {key.casefold(): key for key in services()}
     wanted = " ".join(name.casefold().split())
     if wanted in known:
         return services()[known[wanted]]
-    near = [known[key] for key in get_close_matches(wanted, known, n=2)]
     raise InputError(
         f'found the service "{name}"',
-        f"accepted is one of {', '.join(near or services())}",
+        f"accepted is one of {', '.join(services())}",
         key="service",
     )
 

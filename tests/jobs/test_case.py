@@ -403,6 +403,13 @@ def test_composition_of_air_sums_to_one() -> None:
             'species.consider: found "C", which could be single atoms in the gas or a condensed '
             "form; accepted is one of C(g), C(graphite).",
         ),
+        (
+            "species/consider",
+            ["CO", "SiO2"],
+            'species.consider: found "SiO2", which could be the gas or a condensed form; accepted '
+            "is one of SiO2(g), SiO2(high-cristobalite), SiO2(l), SiO2(low-cristobalite), "
+            "SiO2(quartz).",
+        ),
     ],
 )
 def test_each_fault_reads_as_one_sentence(key: str, value: object, sentence: str) -> None:

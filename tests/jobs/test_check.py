@@ -537,12 +537,12 @@ def test_a_column_that_means_nothing_is_refused(column: str, sentence: str) -> N
         (
             {"reaction": [{"reaction": "CH4 = C(graphite) + 2 H2",
                            "equilibrium_constant": {"800 degC": 3.0}}]},
-            "sample.reaction.0.equilibrium_constant: found one temperature; accepted are at least "
+            "sample.reaction.1.equilibrium_constant: found one temperature; accepted are at least "
             "two, so that K(T) follows.",
         ),
         (
             {"reaction": [{"reaction": "N2 + 3 H2 = 2 NH3"}]},
-            'sample.reaction.0.reaction: found "NH3(g)", which the sample does not tell; accepted '
+            'sample.reaction.1.reaction: found "NH3(g)", which the sample does not tell; accepted '
             "are CH4(g), CO(g), CO2(g), H2(g), H2O(g), N2(g), or a solid or liquid.",
         ),
         (

@@ -296,12 +296,12 @@ def test_a_change_of_sign_that_cannot_be_closed_in_on_is_told() -> None:
         ),
         (
             {"axis": [{"vary": "outlet.temperature", "values": ["900 K"]}]},
-            "axis.0: found a single value to search along; accepted is an axis with first, last "
+            "axis.1: found a single value to search along; accepted is an axis with first, last "
             "and count.",
         ),
         (
             {"axis": [{"vary": "outlet.colour", "first": 1, "last": 2, "count": 3}]},
-            'axis.0.vary: found "outlet.colour", which names no number of the case; accepted is '
+            'axis.1.vary: found "outlet.colour", which names no number of the case; accepted is '
             "one of outlet.temperature, outlet.pressure, outlet.boundary_temperature, "
             "outlet.bypass.",
         ),

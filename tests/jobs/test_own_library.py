@@ -395,63 +395,69 @@ def test_the_command_shows_and_checks_them(tmp_path: Path) -> None:
 MISTAKES = {
     "a unit is missing": (
         SHOMATE.replace('unit = "cal/(mol K)"\n', ""),
-        "record.0.heat_capacity.0.unit: found no unit; accepted is one such as "
+        "record.XeO4(g).heat_capacity.1.unit: found no unit; accepted is one such as "
         '"J/(mol K)" or "cal/(mol K)".',
     ),
     "a table does not rise": (
         TABLE.replace('"500 K"', '"390 K"'),
-        "record.0.table.temperature: found temperatures that do not rise at 390 K; accepted are "
+        "record.LiB3O5(cr).table.temperature: found temperatures that do not rise at 390 K; "
+        "accepted are "
         "temperatures in rising order.",
     ),
     "a heat capacity is negative": (
         TABLE.replace("177.0", "-177.0"),
-        "record.0.table.heat_capacity: found a heat capacity of -177 J/(mol K); accepted are heat "
+        "record.LiB3O5(cr).table.heat_capacity: found a heat capacity of -177 J/(mol K); "
+        "accepted are heat "
         "capacities above zero.",
     ),
     "a polynomial turns negative": (
         SHOMATE.replace("C = -8.0", "C = -80.0"),
-        "record.0.heat_capacity: found a heat capacity of -88.7 J/(mol K) near 800 K; accepted "
+        "record.XeO4(g).heat_capacity: found a heat capacity of -88.7 J/(mol K) near 800 K; "
+        "accepted "
         "is one above zero.",
     ),
     "a symmetry number is impossible": (
         NITROGEN.replace("symmetry_number = 2", "symmetry_number = 7"),
-        "record.0.spectrum.symmetry_number: found the symmetry number 7; accepted is one of 1, 2, "
+        "record.N2(g).spectrum.symmetry_number: found the symmetry number 7; accepted is one of "
+        "1, 2, "
         "3, 4, 5, 6, 8, 10, 12, 24, 60.",
     ),
     "a molar mass disagrees": (
         SHOMATE.replace("195.29", "200.0"),
-        "record.0.molar_mass: found 200 g/mol, while XeO4 has 195.29 g/mol; accepted is the molar "
+        "record.XeO4(g).molar_mass: found 200 g/mol, while XeO4 has 195.29 g/mol; accepted is "
+        "the molar "
         "mass of the formula, or none.",
     ),
     "a key is unknown": (
         SHOMATE.replace("entropy =", "entropi ="),
-        'record.0.entropi: found an unknown key (nearest: "entropy"); accepted is name, '
+        'record.XeO4(g).entropi: found an unknown key (nearest: "entropy"); accepted is name, '
         "common_name, cas, source, molar_mass, density, enthalpy, enthalpy_uncertainty, entropy, "
         "entropy_uncertainty, heat_capacity, table, calorimetry, spectrum, groups or constants.",
     ),
     "an enthalpy is missing": (
         NITROGEN.replace('enthalpy = "0 kJ/mol"\n', ""),
-        'record.0.enthalpy: found no enthalpy; accepted is enthalpy = "…", or what gives it: '
+        'record.N2(g).enthalpy: found no enthalpy; accepted is enthalpy = "…", or what gives it: '
         "constants or groups.",
     ),
     "two heat capacities": (
         NITROGEN + "[record.groups]\nCH3 = 1\n",
-        "record.0.heat_capacity: found spectrum and groups; accepted is one of heat_capacity, "
+        "record.N2(g).heat_capacity: found spectrum and groups; accepted is one of heat_capacity, "
         "table, calorimetry, spectrum, groups.",
     ),
     "no state": (
         SHOMATE.replace("XeO4(g)", "XeO4"),
-        'record.0.name: found "XeO4" without a state; accepted is a formula and its state, such '
+        'record.XeO4.name: found "XeO4" without a state; accepted is a formula and its state, such '
         'as "CO2(g)" or "NaCl(cr)".',
     ),
     "a symmetry number does not fit": (
         NITROGEN.replace("symmetry_number = 2", "symmetry_number = 1"),
-        "record.0.spectrum.symmetry_number: found the symmetry number 1 of N2; accepted is 2, "
+        "record.N2(g).spectrum.symmetry_number: found the symmetry number 1 of N2; accepted is 2, "
         "since its two atoms are alike.",
     ),
     "a density of a gas": (
         SHOMATE.replace("molar_mass = 195.29", 'density = "1 kg/L"'),
-        "record.0.density: found a density of a gas, which follows from temperature and pressure; "
+        "record.XeO4(g).density: found a density of a gas, which follows from temperature and "
+        "pressure; "
         'accepted is that of a solid or a liquid, such as "5.2 kg/L".',
     ),
     "no record": (
@@ -460,48 +466,52 @@ MISTAKES = {
     ),
     "a negative entropy": (
         TABLE.replace('"120 J', '"-120 J'),
-        'record.0.entropy: found "-120 J/(mol K)"; accepted is a value above zero.',
+        'record.LiB3O5(cr).entropy: found "-120 J/(mol K)"; accepted is a value above zero.',
     ),
     "a negative uncertainty": (
         SHOMATE.replace('"2 kJ/mol"', '"-2 kJ/mol"'),
-        'record.0.enthalpy_uncertainty: found "-2 kJ/mol"; accepted is zero or more.',
+        'record.XeO4(g).enthalpy_uncertainty: found "-2 kJ/mol"; accepted is zero or more.',
     ),
     "a number that is none": (
         SHOMATE.replace("A = 14.0", "A = nan"),
-        "record.0.heat_capacity.0.A: found nan; accepted is a number.",
+        "record.XeO4(g).heat_capacity.1.A: found nan; accepted is a number.",
     ),
     "a unit that is none": (
         SHOMATE.replace('unit = "cal/(mol K)"', 'unit = "cal/mol"'),
-        'record.0.heat_capacity.0.unit: found "cal/mol", which is no unit of it; accepted is one '
+        'record.XeO4(g).heat_capacity.1.unit: found "cal/mol", which is no unit of it; accepted '
+        "is one "
         'such as "J/(mol K)" or "cal/(mol K)".',
     ),
     "half a degeneracy": (
         NITROGEN.replace("[2358.57]", "[[2358.57, 1.5]]"),
-        "record.0.spectrum.vibrations: found the degeneracy 1.5; accepted is a whole number "
+        "record.N2(g).spectrum.vibrations: found the degeneracy 1.5; accepted is a whole number "
         "from 1.",
     ),
     "no moment of inertia": (
         NITROGEN.replace("rotational_constants = [1.99824]", "moments_of_inertia = [1.4]"),
-        "record.0.spectrum.moments_of_inertia: found 1.4, which is no moment of inertia; accepted "
+        "record.N2(g).spectrum.moments_of_inertia: found 1.4, which is no moment of inertia; "
+        "accepted "
         'is one such as "1.4e-46 kg m2", "1.4e-39 g cm2" or "84 u A2".',
     ),
     "rotation twice": (
         NITROGEN.replace("anharmonicity", 'moments_of_inertia = ["1 u A2"]\nanharmonicity'),
-        "record.0.spectrum.moments_of_inertia: found rotational constants and moments of inertia; "
+        "record.N2(g).spectrum.moments_of_inertia: found rotational constants and moments of "
+        "inertia; "
         "accepted is one of the two.",
     ),
     "a symmetry number that is no number": (
         NITROGEN.replace("symmetry_number = 2", 'symmetry_number = "two"'),
-        'record.0.spectrum.symmetry_number: found "two"; accepted is a whole number from 1.',
+        'record.N2(g).spectrum.symmetry_number: found "two"; accepted is a whole number from 1.',
     ),
     "vibrations that do not fit": (
         NITROGEN.replace("[2358.57]", "[2358.57, 100.0]").replace("anharmonicity = 14.324\n", ""),
-        "record.0.spectrum.vibrations: found 2 vibrations and internal rotations of N2; accepted "
+        "record.N2(g).spectrum.vibrations: found 2 vibrations and internal rotations of N2; "
+        "accepted "
         "are 1, each counted by its degeneracy.",
     ),
     "a record twice": (
         NITROGEN + NITROGEN,
-        'record.1.name: found "N2(g)" twice; accepted is each record once.',
+        'record.N2(g).name: found "N2(g)" twice; accepted is each record once.',
     ),
 }
 
@@ -558,7 +568,7 @@ log10_K = [31.0, 29.3, 27.8]
     both = own.records[1].dfH298
     with pytest.raises(InputError) as error:
         read(tmp_path, constants)
-    assert "record.0.constants" in str(error.value)
+    assert "record.XeO3(g).constants" in str(error.value)
     (tmp_path / "first.toml").write_text(SHOMATE)
     (tmp_path / "mine.toml").write_text(constants)
     case = tmp_path / "case.toml"

@@ -210,39 +210,39 @@ values = ["300 K", "320 K", "340 K"]
     [
         (
             {**TEMPERATURES, "vary": "outlet.temprature"},
-            'axis.0.vary: found "outlet.temprature", which names no number of the case; accepted '
+            'axis.1.vary: found "outlet.temprature", which names no number of the case; accepted '
             "is one of outlet.temperature, outlet.pressure, outlet.boundary_temperature, "
             "outlet.bypass.",
         ),
         (
             {**TEMPERATURES, "vary": "stage.bed.temperature"},
-            'axis.0.vary: found "stage.bed.temperature", which names no number of the case; '
+            'axis.1.vary: found "stage.bed.temperature", which names no number of the case; '
             "accepted is a number of outlet, feed.gas, feed.steam, such as outlet.temperature.",
         ),
         (
             {**TEMPERATURES, "first": "600 bar"},
-            'axis.0.values: found "600 bar", which is a pressure; accepted is a temperature such '
+            'axis.1.values: found "600 bar", which is a pressure; accepted is a temperature such '
             'as "850 degC" or "1123 K".',
         ),
         (
             {**TEMPERATURES, "last": "1200 K"},
-            'axis.0.values: found values in "degC" and in another unit; accepted is one unit in '
+            'axis.1.values: found values in "degC" and in another unit; accepted is one unit in '
             "an axis.",
         ),
         (
             {**TEMPERATURES, "vary": "feed.gas.colour"},
-            'axis.0.vary: found "feed.gas.colour", which names no number of the case; accepted is '
+            'axis.1.vary: found "feed.gas.colour", which names no number of the case; accepted is '
             "one of feed.gas.temperature, feed.gas.pressure, feed.gas.total, "
             "feed.gas.amounts.SPECIES.",
         ),
         (
             {"vary": "outlet.heat", "values": ["5 MW"]},
-            'axis.0.vary: found "outlet.heat", which names no number of the case; accepted is one '
+            'axis.1.vary: found "outlet.heat", which names no number of the case; accepted is one '
             "of outlet.temperature, outlet.pressure, outlet.boundary_temperature, outlet.bypass.",
         ),
         (
             {"vary": "feed.gas.total", "values": ["5 mol"]},
-            'axis.0.values: found an amount in "mol", while the feeds are in "kmol/h"; accepted '
+            'axis.1.values: found an amount in "mol", while the feeds are in "kmol/h"; accepted '
             "is a flow, as the feeds are.",
         ),
         (
@@ -262,12 +262,12 @@ values = ["300 K", "320 K", "340 K"]
         ),
         (
             {"vary": "outlet.temperature", "first": "600 degC"},
-            "axis.0.values: found first; accepted is values, or first, last and count.",
+            "axis.1.values: found first; accepted is values, or first, last and count.",
         ),
-        ({"values": [1]}, "axis.0.vary: found neither; accepted is vary or ratio."),
+        ({"values": [1]}, "axis.1.vary: found neither; accepted is vary or ratio."),
         (
             {**TEMPERATURES, "count": 1},
-            "axis.0.count: found 1; accepted is a whole number from 2.",
+            "axis.1.count: found 1; accepted is a whole number from 2.",
         ),
     ],
 )

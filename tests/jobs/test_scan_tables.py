@@ -275,7 +275,7 @@ def test_a_column_that_names_no_stage_or_stream_is_refused() -> None:
         (
             "stage.shift.conversion.CO",
             "1 %",
-            'axis.0.vary: found "stage.shift.conversion.CO", which names no number of the case; '
+            'axis.1.vary: found "stage.shift.conversion.CO", which names no number of the case; '
             "accepted is one of stage.shift.heat, stage.shift.pressure_drop, "
             "stage.shift.boundary_temperature, stage.shift.bypass, "
             "stage.shift.conversion.CH4(g), stage.shift.remove.CO2(g).",
@@ -283,7 +283,7 @@ def test_a_column_that_names_no_stage_or_stream_is_refused() -> None:
         (
             "stage.reformer.approach.2",
             "1 K",
-            'axis.0.vary: found "stage.reformer.approach.2", which names no number of the case; '
+            'axis.1.vary: found "stage.reformer.approach.2", which names no number of the case; '
             "accepted is one of stage.reformer.temperature, stage.reformer.pressure, "
             "stage.reformer.boundary_temperature, stage.reformer.bypass, "
             "stage.reformer.approach.1.",
@@ -291,7 +291,7 @@ def test_a_column_that_names_no_stage_or_stream_is_refused() -> None:
         (
             "stage.reformer.held_fraction.CH4",
             "1 %",
-            'axis.0.vary: found "stage.reformer.held_fraction.CH4", which names no number of the '
+            'axis.1.vary: found "stage.reformer.held_fraction.CH4", which names no number of the '
             "case; accepted is one of stage.reformer.temperature, stage.reformer.pressure, "
             "stage.reformer.boundary_temperature, stage.reformer.bypass, "
             "stage.reformer.approach.1.",

@@ -282,65 +282,72 @@ def test_a_bypass_joins_the_outlet() -> None:
     [
         (
             {"heat": "0 kJ"},
-            "stage.0.heat: found heat beside temperature; accepted is one of temperature, heat, "
+            "stage.stage 1.heat: found heat beside temperature; accepted is one of temperature, "
+            "heat, "
             "heat_loss and entropy.",
         ),
         (
             {"pressure": None},
-            "stage.0.pressure: found nothing; accepted is one of pressure, pressure_drop and "
+            "stage.stage 1.pressure: found nothing; accepted is one of pressure, pressure_drop and "
             "volume.",
         ),
         (
             {"temperature": None, "heat": "-9000 kJ"},
-            "stage.0.heat: found a heat of -9000 kJ, which no temperature between 100 K and "
+            "stage.stage 1.heat: found a heat of -9000 kJ, which no temperature between 100 K and "
             "6000 K meets; accepted is another heat, or a temperature in its place.",
         ),
         (
             {"temperature": None, "heat": "0 kJ", "species": {"consider": ["CO", "H2", "N2"]}},
-            "stage.0.species.consider: found candidates that cannot hold the feed's elements in "
+            "stage.stage 1.species.consider: found candidates that cannot hold the feed's "
+            "elements in "
             "their proportions; accepted is a list that can, for instance one with CH4(g), "
             "N2(g), H2O(g).",
         ),
         (
             {"temperature": None, "heat": "5 kW"},
-            'stage.0.heat: found a heat in "kW", while the feeds are in "mol"; accepted is a '
+            'stage.stage 1.heat: found a heat in "kW", while the feeds are in "mol"; accepted is a '
             "quantity, such as kJ.",
         ),
         (
             {"approach": [{"reaction": "CH4 + H2O = CO + 3 H2", "approach": "9 K"}] * 2},
-            "stage.0.approach: found reactions that depend on each other: "
+            "stage.stage 1.approach: found reactions that depend on each other: "
             '"CH4 + H2O = CO + 3 H2", "CH4 + H2O = CO + 3 H2"; accepted are independent '
             "reactions.",
         ),
         (
             {"approach": [{"reaction": "CO + H2O = CO2 + H2", "approach": "9 K"}]},
-            'stage.0.approach: found no key for "CO + H2O = CO2 + H2", in which H2O(g) and '
+            'stage.stage 1.approach: found no key for "CO + H2O = CO2 + H2", in which H2O(g) and '
             "CO2(g) are equally large; accepted is a key, the record that the approach holds "
             "back.",
         ),
         (
             {"held_fraction": {"CH4": "2 % of carbon"}},
-            'stage.0.held_fraction.CH4(g): found "carbon", which CH4(g) does not hold; accepted '
+            'stage.stage 1.held_fraction.CH4(g): found "carbon", which CH4(g) does not hold; '
+            "accepted "
             "is one of its elements: C, H.",
         ),
         (
             {"conversion": {"CO": 0.5}},
-            'stage.0.conversion: found "CO(g)", which does not enter the stage; accepted is a '
+            'stage.stage 1.conversion: found "CO(g)", which does not enter the stage; accepted '
+            "is a "
             "record that does: CH4(g), H2O(g), N2(g).",
         ),
         (
             {"conversion": {"CH4": "180 %"}},
-            'stage.0.conversion.CH4: found "180 %", which is not between 0 and 1; accepted is a '
+            'stage.stage 1.conversion.CH4: found "180 %", which is not between 0 and 1; accepted '
+            "is a "
             'share from 0 to 1, such as 0.8 or "80 %".',
         ),
         (
             {"feeds": ["oil"]},
-            'stage.0.feeds: found "oil", which is no stream; accepted is each stream once: gas, '
+            'stage.stage 1.feeds: found "oil", which is no stream; accepted is each stream once: '
+            "gas, "
             "steam.",
         ),
         (
             {"pressure": None, "pressure_drop": "40 bar"},
-            "stage.0.pressure_drop: found a drop of 40 bar from 29 bar; accepted is a drop that "
+            "stage.stage 1.pressure_drop: found a drop of 40 bar from 29 bar; accepted is a drop "
+            "that "
             "leaves a pressure above zero.",
         ),
     ],
@@ -362,7 +369,7 @@ def test_a_closed_vessel_takes_no_flows() -> None:
     with pytest.raises(InputError) as caught:
         predict(tables)
     assert str(caught.value) == (
-        "stage.0.volume: found the volume of a closed vessel, while the feeds flow, in "
+        "stage.stage 1.volume: found the volume of a closed vessel, while the feeds flow, in "
         '"mol/s"; accepted is a pressure, or feeds that are quantities.'
     )
 
@@ -474,11 +481,27 @@ def test_a_service_proposes_what_the_case_leaves_open() -> None:
     ]  # fmt: skip
 
 
+def test_two_stages_of_one_name_are_refused() -> None:
+    tables = case(
+        {"gas": stream({"CH4": 1.0, "H2O": 3.0})},
+        {"name": "bed", "temperature": "900 K", "pressure": "1 bar"},
+        {"name": "bed", "temperature": "800 K", "pressure": "1 bar"},
+    )
+    with pytest.raises(InputError) as caught:
+        gibbsmin.load_case(tables)
+    assert str(caught.value) == (
+        'stage: found two stages named "bed"; accepted is a name of its own for each stage.'
+    )
+
+
 def test_a_service_that_does_not_exist() -> None:
     with pytest.raises(InputError) as caught:
         only(reformer(service="steam reformin"))
     assert str(caught.value) == (
-        'stage.0.service: found the service "steam reformin"; accepted is one of steam reforming.'
+        'stage.stage 1.service: found the service "steam reformin"; accepted is one of steam '
+        "reforming, shift, low-temperature shift, methanation, ammonia, methanol, SO2 oxidation, "
+        "sulphur recovery, sulphur recovery converter, combustion, gasification, oxide reduction, "
+        "carburising."
     )
 
 
@@ -502,7 +525,8 @@ def test_a_feed_without_a_heating_value_cannot_lose_a_share_of_it() -> None:
     with pytest.raises(InputError) as caught:
         only(tables)
     assert str(caught.value) == (
-        'stage.0.heat_loss: found "Fe2O3(cr)" in the feed, which has no heating value to lose a '
+        'stage.stage 1.heat_loss: found "Fe2O3(cr)" in the feed, which has no heating value to '
+        "lose a "
         "share of; accepted is a heat in its place."
     )
 

@@ -306,16 +306,16 @@ def correlation(first: Any, second: Any, coefficient: Any = 0.5) -> list[dict[st
     [
         (
             correlation("CO(g).enthalpy", "CO(g).enthalpy"),
-            "correlation.0.between: found a list; accepted are two different numbers, such as "
+            "correlation.1.between: found a list; accepted are two different numbers, such as "
             '["CO(g).enthalpy", "CO2(g).enthalpy"]',
         ),
         (
             correlation("CO(g).enthalpy", "CO2(g).enthalpy", 1.5),
-            "correlation.0.coefficient: found 1.5; accepted is a number from -1 to 1",
+            "correlation.1.coefficient: found 1.5; accepted is a number from -1 to 1",
         ),
         (
             correlation("CO(g).enthalpy", "stage.reformer.volume"),
-            'correlation.0.between: found "stage.reformer.volume", which names no number that '
+            'correlation.1.between: found "stage.reformer.volume", which names no number that '
             f"the case gives; {ACCEPTED}",
         ),
     ],
