@@ -90,7 +90,8 @@ class Samples:
         return replace(readings, values=values)
 
     def _readings(self, values: FloatArray, T: FloatArray) -> Readings:
-        return Readings(values, self.u, T, np.full(T.shape, U_TEMPERATURE), self.P)
+        ideal = np.zeros((len(T), len(self.plan.model.records)))
+        return Readings(values, self.u, T, np.full(T.shape, U_TEMPERATURE), self.P, ideal)
 
 
 def reformer_samples(

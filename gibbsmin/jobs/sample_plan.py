@@ -114,7 +114,8 @@ def batch_readings(
         [(s.temperature, s.u_temperature, s.pressure, s.u_pressure) for s in samples]
     ).T
     T, u_T, P, u_P = conditions
-    return Readings(values, uncertainties, T, u_T, P), below, u_P
+    ideal = np.zeros((len(samples), len(plan.model.records)))
+    return Readings(values, uncertainties, T, u_T, P, ideal), below, u_P
 
 
 def _reading(reactor: Reactor, reading: Reading, sample: PlantSample) -> GasReading | None:

@@ -70,8 +70,18 @@ def _assumptions(reactor: Reactor, samples: Sequence[PlantSample]) -> Iterator[s
                 f"K of {reaction.text} is the case's own, for this reaction alone; the fit of "
                 "equilibrium to the whole sample uses the library's."
             )
-    yield "The gas is ideal."
+    yield _of_gas(reactor)
     yield NOT_COUNTED
+
+
+def _of_gas(reactor: Reactor) -> str:
+    equation = reactor.stage.chemistry.equation
+    if equation is None:
+        return "The gas is ideal."
+    return (
+        f"The gas is that of {equation.value}; its fugacity coefficients are those of the gas as "
+        "measured, also where other temperatures are tried."
+    )
 
 
 def notes_of(sample: PlantSample) -> tuple[str, ...]:

@@ -74,7 +74,9 @@ def run_batch(
     equilibria = at_temperature(plan.model, T, P, feed)
     names = [record.name for record in plan.species]
     conditions = (T, readings.u_temperature, P, u_pressure)
-    gas = gas_of(names, closed, _of_gas(plan, np.nan_to_num(feed)), conditions)
+    readings = replace(readings, log_fugacity=_log_fugacity(plan, y, T, P))
+    of_gas = readings.log_fugacity[:, list(plan.columns)]
+    gas = gas_of(names, closed, _of_gas(plan, np.nan_to_num(feed)), of_gas, conditions)
     judged = judge(gas, reactions)
 
     measured_fit = fit_equilibrium(plan, readings, z, T)
@@ -95,9 +97,18 @@ def run_batch(
         best_fit,
         lower,
         upper,
-        energetics(plan, y, z, equilibria),
-        solids_of(plan.species, y, gas.faint, T, P, library),
+        energetics(plan, y, z, of_gas, equilibria),
+        solids_of(plan.species, y, of_gas, gas.faint, T, P, library),
     )
+
+
+def _log_fugacity(
+    plan: Plan, gas: FloatArray, temperature: FloatArray, pressure: FloatArray
+) -> FloatArray:
+    """ln φ (B, S) of the candidates in the gas as it was measured."""
+    amounts = np.zeros((len(gas), len(plan.model.records)))
+    amounts[:, list(plan.columns)] = np.maximum(gas, 0.0)
+    return plan.model.mixture.log_fugacity(temperature, pressure, amounts)
 
 
 def tail_probability(chi_square: FloatArray, degrees_of_freedom: IntArray) -> FloatArray:

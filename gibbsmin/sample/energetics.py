@@ -25,7 +25,7 @@ class EnergeticsBatch:
 
 
 def energetics(
-    plan: Plan, gas: FloatArray, inlet: FloatArray, found: Equilibria
+    plan: Plan, gas: FloatArray, inlet: FloatArray, log_fugacity: FloatArray, found: Equilibria
 ) -> EnergeticsBatch:
     """Excess Gibbs energy and entropies of samples beside their equilibria.
 
@@ -33,6 +33,8 @@ def energetics(
     ----------
     gas, inlet
         Reconciled y (B, n_y) and z (B, n_z), which have the same elements.
+    log_fugacity
+        ln φ (B, n_y) of the gas as measured.
     found
         Equilibrium of what z brings at the samples' T and P.
     """
@@ -42,20 +44,23 @@ def energetics(
     as_run = _generated(plan, amounts, found, entropy_in, enthalpy_in)
     limit = _generated(plan, found.amounts, found, entropy_in, enthalpy_in)
     return EnergeticsBatch(
-        _excess(plan, gas, found),
+        _excess(plan, gas, log_fugacity, found),
         np.where(compressor, np.nan, as_run),
         np.where(compressor, np.nan, limit),
     )
 
 
-def _excess(plan: Plan, gas: FloatArray, found: Equilibria) -> FloatArray:
-    """(G − G_eq)/RT = Σ n (g̃ + ln y − a·λ), term by term, since λ·b is the least G/RT.
+def _excess(plan: Plan, gas: FloatArray, log_fugacity: FloatArray, found: Equilibria) -> FloatArray:
+    """(G − G_eq)/RT = Σ n (g̃ + ln(y φ) − a·λ), term by term, since λ·b is the least G/RT.
 
     By subtraction of the two energies rounding would leave more than a small excess.
     """
     forces = found.solution.certificate.driving_forces[:, list(plan.columns)]
     there = gas > 0.0
     logs = np.log(np.where(there, gas, 1.0)) - np.log(gas.sum(axis=1, keepdims=True))
+    if found.fugacity is not None:
+        # The driving forces are those with φ of the equilibrium.
+        logs += log_fugacity - found.fugacity.logarithms[:, list(plan.columns)]
     with np.errstate(invalid="ignore"):
         excess = np.where(there, gas * (logs - np.where(there, forces, 0.0)), 0.0).sum(axis=1)
     return np.where(found.solution.certified, np.maximum(excess, 0.0), np.nan)
@@ -65,7 +70,9 @@ def _entering(
     plan: Plan, inlet: FloatArray, pressure: FloatArray
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
     """Entropy and enthalpy of the streams, each at its own conditions; a compressor's need."""
-    mixture = Mixture.of(PropertyTable.of(plan.model.feed_records))
+    real = plan.model.mixture.real
+    table = PropertyTable.of(plan.model.feed_records)
+    mixture = Mixture.of(table, None if real is None else real.equation)
     entropy, enthalpy = np.zeros(len(inlet)), np.zeros(len(inlet))
     compressor = np.zeros(len(inlet), dtype=bool)
     for feed, brought in zip(plan.feeds, plan.inlets, strict=True):

@@ -4,7 +4,7 @@ The outlet is n(z, T), the certified minimum of the Gibbs energy of what z bring
 balance is met; its derivatives are the implicit ones of the optimum.  The steps are those of Gauss
 and Newton in the logarithms of z and T, halved where chi-square would rise.  A measured temperature
 is one more measurement, (T − T_meas)/u; without it the fit finds the temperature that suits the
-gas best.
+gas best.  Fugacity coefficients of a real gas stay those of the gas as measured.
 """
 
 from __future__ import annotations
@@ -42,6 +42,7 @@ class Readings:
     values, uncertainties : s and u of gases and flows, (B, M); NaN where not measured
     temperature, pressure : (B,) K and Pa
     u_temperature : (B,) K; infinite where the temperature is left to the fit, 0 where it is held
+    log_fugacity : (B, S) ln φ of the candidates; 0 for an ideal gas, solids and liquids
     """
 
     values: FloatArray
@@ -49,6 +50,7 @@ class Readings:
     temperature: FloatArray
     u_temperature: FloatArray
     pressure: FloatArray
+    log_fugacity: FloatArray
 
     @property
     def measured(self) -> BoolArray:
@@ -141,6 +143,7 @@ def _trial(plan: Plan, readings: Readings, inlet: FloatArray, temperature: Float
     model, T = plan.model, temperature
     feed = inlet @ plan.inlets.sum(axis=0).T
     programme = model.programme(T, readings.pressure, feed)
+    programme.energies[:] += readings.log_fugacity
     solution = minimise(programme)
     supplied = model.balance.feed_matrix @ plan.inlets.sum(axis=0)
     gas = mixture_slopes(model.mixture, T, readings.pressure, solution.amounts)

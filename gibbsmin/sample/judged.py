@@ -40,6 +40,7 @@ class Gas:
     determined : (B, n)
     excess : (B,) rise of chi-square by the bounds
     feed : (B, n) what entered of the same records
+    log_fugacity : (B, n) ln φ at the conditions; 0 in an ideal gas
     temperature, u_temperature, pressure, u_pressure : (B,) K and Pa
     """
 
@@ -50,6 +51,7 @@ class Gas:
     determined: BoolArray
     excess: FloatArray
     feed: FloatArray
+    log_fugacity: FloatArray
     temperature: FloatArray
     u_temperature: FloatArray
     pressure: FloatArray
@@ -103,6 +105,7 @@ def gas_of(
     names: Sequence[str],
     closed: Reconciliation,
     feed: FloatArray,
+    log_fugacity: FloatArray,
     conditions: tuple[FloatArray, FloatArray, FloatArray, FloatArray],
 ) -> Gas:
     """The outlet's part of a reconciliation; conditions are T, u(T), P and u(P), each (B,)."""
@@ -115,6 +118,7 @@ def gas_of(
         closed.determined[:, :n],
         closed.chi_square - closed.free_chi_square,
         feed,
+        log_fugacity,
         *conditions,
     )
 
@@ -132,7 +136,8 @@ def judge(gas: Gas, reactions: Sequence[JudgedReaction]) -> list[Judged]:
 
 def _judged(gas: Gas, reaction: JudgedReaction, nu: FloatArray, extent: FloatArray) -> Judged:
     constant, T = reaction.constant, gas.temperature
-    log_Q = log_quotient(nu, gas.amounts, gas.pressure)
+    fugacity = gas.log_fugacity @ nu
+    log_Q = log_quotient(nu, gas.amounts, gas.pressure) + fugacity
     log_K = constant.log_K(T)
     slopes = quotient_slopes(nu, gas.amounts)
     of_gas = np.einsum("bi,bij,bj->b", slopes, gas.covariance, slopes)
@@ -183,6 +188,7 @@ def _forward(gas: Gas, nu: FloatArray, log_K: FloatArray, extent: FloatArray) ->
     reactants = (present | (nu >= 0.0)).all(axis=1)
     products = (present | (nu <= 0.0)).all(axis=1)
     log_Q = log_quotient(nu, np.where(present, gas.feed, 0.0), gas.pressure)
+    log_Q += gas.log_fugacity @ nu
     with np.errstate(invalid="ignore"):
         from_either = np.sign(log_K - log_Q)
     by_extent = np.where(np.abs(extent) > _MOVED, np.sign(extent), 0.0)
@@ -211,14 +217,15 @@ def _limits(
     low_ratio, high_ratio = ratio[0] - Z_95 * ratio[1], ratio[0] + Z_95 * ratio[1]
     for ends, sign in ((lower, -1), (upper, 1), (low_ratio, -1), (high_ratio, 1)):
         ends[faint.any(axis=1) | np.isnan(ends)] = sign * np.inf
+    fugacity = gas.log_fugacity @ nu
     curved = np.where(nu != 0.0, gas.below(CURVED), False)
     states = np.flatnonzero(curved.any(axis=1) & ~faint.any(axis=1) & np.isfinite(low_ratio))
     if states.size:
         search = partial(_extreme, gas, nu, faint, states)
         for sense, of_ratio, of_approach in ((-1.0, low_ratio, lower), (1.0, high_ratio, upper)):
             way = np.full(states.size, sense)
-            of_ratio[states] = search(_ratio(constant, nu), way, TWO_SIDED)
-            of_approach[states] = search(_approach(constant, nu), way, TWO_SIDED)
+            of_ratio[states] = search(_ratio(constant, nu, fugacity[states]), way, TWO_SIDED)
+            of_approach[states] = search(_approach(constant, nu, fugacity[states]), way, TWO_SIDED)
     down: BoolArray = np.asarray((faint & (nu < 0.0)).any(axis=1))
     up: BoolArray = np.asarray((faint & (nu > 0.0)).any(axis=1))
     states = np.flatnonzero((down ^ up) & (gas.determined | (nu == 0.0)).all(axis=1))
@@ -227,14 +234,14 @@ def _limits(
     # A faint reactant may be more, not less, than it seems: ln Q has a lower limit, and so on.
     away = np.where(down[states], -1.0, 1.0)
     search = partial(_extreme, gas, nu, faint, states)
-    near = search(_ratio(constant, nu), -away, TWO_SIDED)
+    near = search(_ratio(constant, nu, fugacity[states]), -away, TWO_SIDED)
     both = np.isfinite(near)
-    far = search(_ratio(constant, nu), away, np.where(both, TWO_SIDED, ONE_SIDED))
+    far = search(_ratio(constant, nu, fugacity[states]), away, np.where(both, TWO_SIDED, ONE_SIDED))
     low_ratio[states] = np.where(away < 0.0, far, near)
     high_ratio[states] = np.where(away < 0.0, near, far)
     # T − T_eq falls as ln Q rises where the reaction takes up heat.
     away = -away * np.sign(constant.enthalpy(gas.temperature[states]))
-    far = search(_approach(constant, nu), away, ONE_SIDED)
+    far = search(_approach(constant, nu, fugacity[states]), away, ONE_SIDED)
     lower[states] = np.where(away < 0.0, far, -np.inf)
     upper[states] = np.where(away > 0.0, far, np.inf)
     return lower, upper, low_ratio, high_ratio
@@ -267,10 +274,10 @@ def _extreme(
     return extreme(function, centre, covariance, rise, sense, start, lowest)
 
 
-def _ratio(constant: Constant, nu: FloatArray) -> Function:
+def _ratio(constant: Constant, nu: FloatArray, fugacity: FloatArray) -> Function:
     def function(x: FloatArray) -> tuple[FloatArray, FloatArray]:
         y, T = x[:, :-2], x[:, -1]
-        value = log_quotient(nu, y, np.exp(x[:, -2])) - constant.log_K(T)
+        value = log_quotient(nu, y, np.exp(x[:, -2])) + fugacity - constant.log_K(T)
         of_T = -constant.enthalpy(T) / (GAS_CONSTANT * T**2)
         of_pressure = np.full(len(x), nu.sum())
         return value, np.column_stack([quotient_slopes(nu, y), of_pressure, of_T])
@@ -278,10 +285,11 @@ def _ratio(constant: Constant, nu: FloatArray) -> Function:
     return function
 
 
-def _approach(constant: Constant, nu: FloatArray) -> Function:
+def _approach(constant: Constant, nu: FloatArray, fugacity: FloatArray) -> Function:
     def function(x: FloatArray) -> tuple[FloatArray, FloatArray]:
         y, T = x[:, :-2], x[:, -1]
-        T_eq, _ = equilibrium_temperature(constant, log_quotient(nu, y, np.exp(x[:, -2])), T)
+        log_Q = log_quotient(nu, y, np.exp(x[:, -2])) + fugacity
+        T_eq, _ = equilibrium_temperature(constant, log_Q, T)
         with np.errstate(divide="ignore"):
             slope = -GAS_CONSTANT * T_eq**2 / constant.enthalpy(np.nan_to_num(T_eq, nan=1000.0))
         of_y = quotient_slopes(nu, y) * slope[:, np.newaxis]

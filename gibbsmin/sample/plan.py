@@ -181,6 +181,7 @@ def _free(chemistry: Chemistry, records: Sequence[str]) -> Chemistry:
         selection=replace(selection, leave_out=left_out),
         offsets=chemistry.offsets,
         activities=chemistry.activities,
+        equation=chemistry.equation,
     )
 
 

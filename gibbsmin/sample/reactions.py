@@ -1,8 +1,9 @@
 """Reactions of a sample against equilibrium: Q, K, affinity, equilibrium temperature, approach.
 
-For each reaction ln Q = Σ ν ln(y P/P°) over its gases, ln K = −ΔrG°/RT; the affinity is
+For each reaction ln Q = Σ ν ln(y φ P/P°) over its gases, ln K = −ΔrG°/RT; the affinity is
 −RT ln(Q/K); the equilibrium temperature is the one at which K = Q, its uncertainty
-u(ln Q) R T_eq²/|ΔrH|, after van 't Hoff.
+u(ln Q) R T_eq²/|ΔrH|, after van 't Hoff.  φ is 1 in an ideal gas; in a real one it is that of the
+gas as measured, here and at all temperatures that are looked at.
 """
 
 from __future__ import annotations
@@ -126,7 +127,10 @@ def judged_reaction(
 
 
 def log_quotient(nu: FloatArray, y: FloatArray, pressure: FloatArray) -> FloatArray:
-    """ln Q (B,) of amounts y (B, n); ±∞ where a product or reactant is zero, NaN where both are."""
+    """ln Q (B,) of an ideal gas y (B, n).
+
+    It is ±∞ where a product or a reactant is zero, NaN where both are.
+    """
     with np.errstate(divide="ignore", invalid="ignore"):
         logs = np.where(nu == 0.0, 0.0, nu * np.log(np.where(nu == 0.0, 1.0, y)))
         total = np.log(y.sum(axis=-1))

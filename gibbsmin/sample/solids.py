@@ -34,6 +34,7 @@ _LARGEST_LOG = 700.0
 def solids_of(
     species: Sequence[Species],
     amounts: FloatArray,
+    log_fugacity: FloatArray,
     faint: BoolArray,
     temperature: FloatArray,
     pressure: FloatArray,
@@ -47,6 +48,8 @@ def solids_of(
         The gas records of the samples.
     amounts
         Of them, (B, n).
+    log_fugacity
+        ln φ of them, (B, n); 0 in an ideal gas.
     faint
         Which of them are below their uncertainty, (B, n); no route starts from them.
     """
@@ -61,7 +64,7 @@ def solids_of(
     with np.errstate(divide="ignore"):
         logs = np.log(seen / amounts.sum(axis=1, keepdims=True))
     of_gas, of_targets = (Mixture.of(PropertyTable.of(part)) for part in (species, targets))
-    potentials = logs + of_gas.reduced_energies(temperature, pressure)
+    potentials = logs + log_fugacity + of_gas.reduced_energies(temperature, pressure)
     energies = of_targets.reduced_energies(temperature, pressure)
     ways = routes_to(targets, energies[0], species, seen.max(axis=0), np.zeros(len(species)))
     names = [record.name for record in species]
