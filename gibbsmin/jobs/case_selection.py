@@ -31,10 +31,11 @@ def read_selection(key: str, table: SpeciesTable, library: Library) -> Selection
 
 def proposed(service: Service, given: Collection[str], selection: Selection) -> Selection:
     """A selection with a service's proposals in the keys that the case leaves open."""
+    selection = replace(selection, too_slow=service.too_slow, selective=bool(service.inert))
     if "consider" not in given:
         left = (*selection.leave_out, *selection.inert)
         considered = tuple(name for name in service.consider if name not in left)
-        selection = replace(selection, consider=considered)
+        selection = replace(selection, consider=considered, gangue_passes=True)
     if "inert" not in given:
         selection = replace(selection, inert_where_fed=service.inert)
     return selection

@@ -175,7 +175,7 @@ def _reactions(reactor: Reactor, plan: Plan, library: Library) -> list[JudgedRea
     if asked:
         return [judged_reaction(r.text, r.coefficients, library, r.constant) for r in asked]
     fed = {record.name for record in plan.model.feed_records}
-    inert = reactor.stage.chemistry.selection.inert_among(fed)
+    inert = reactor.stage.chemistry.selection.inert_among(plan.model.feed_records, library)
     records = [record for record in plan.species if record.name not in inert]
     found = independent_reactions(records, fed)
     return [

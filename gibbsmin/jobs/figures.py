@@ -31,6 +31,9 @@ from gibbsmin.thermo.library import Library
 _TRACE = 1e-6
 """Mole fractions below this are not set against each other."""
 
+_MOST_STEAM = 100.0
+"""Steam to carbon above this tells of a trace of carbon."""
+
 _SYNTHESIS_GAS = 0.01
 """Hydrogen and carbon monoxide both from this fraction make a synthesis gas."""
 
@@ -104,8 +107,9 @@ def _of_the_trade(
     y = gas_fractions(states)
     fed = {r.name for r, amount in zip(inlet.records, inlet.amounts[0], strict=True) if amount > 0}
     if states.model.reacts and ("H2O(g)" in fed or "H2O(l)" in fed):
-        ratio = steam_to_carbon(inlet.records, inlet.amounts[0])
-        yield Figure("steam to carbon, fed", float(ratio), "mol/mol")
+        ratio = float(steam_to_carbon(inlet.records, inlet.amounts[0]))
+        if ratio < _MOST_STEAM:
+            yield Figure("steam to carbon, fed", ratio, "mol/mol")
     H2, CO, CO2 = (y.get(name, 0.0) for name in ("H2(g)", "CO(g)", "CO2(g)"))
     if min(H2, CO) > _SYNTHESIS_GAS:
         yield Figure("H2/CO", float(quotient(H2, CO)), "mol/mol")

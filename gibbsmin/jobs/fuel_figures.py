@@ -17,8 +17,8 @@ from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import FEED_ONLY
 
-_LEAST_AIR = 0.01
-"""Air ratio from which a fuel is burnt, and not by traces of oxygen."""
+_LEAST_AIR, _MOST_AIR = 0.01, 100.0
+"""Air ratios between which a fuel is burnt; outside of them one of the two is a trace."""
 
 _LEAN = 0.05
 """Hydrogen and carbon monoxide both from this fraction are what a gasifier is run for."""
@@ -32,7 +32,7 @@ def fuel_figures(states: StageStates, unit: str, library: Library) -> Iterable[F
     inlet, model = states.inlet, states.model
     fed = without_ash(inlet.records, inlet.amounts[0])
     ratio = float(air_ratio(inlet.records, fed))
-    if model.reacts and ratio > _LEAST_AIR:
+    if model.reacts and _LEAST_AIR < ratio < _MOST_AIR:
         yield Figure("air ratio, fed", ratio, "")
     gas = np.where(model.gas, states.equilibria.amounts[0], 0.0)
     made = heating_value(model.records, without_ash(model.records, gas), library)

@@ -29,6 +29,9 @@ _MATTERS = 1e-6
 _HAPPENED = 1e-9
 """Share of all amounts from which a reaction has run at all."""
 
+_ROUNDING = 1e-12
+"""Share of all amounts by which a record that is held may seem to change."""
+
 _DEPENDENT = 1e-9
 """Share of a reaction that others do not tell, below which it depends on them."""
 
@@ -51,7 +54,7 @@ def extents_of(
     total = max(fed.sum(), left.sum())
     called = {name for coefficients in named for name in coefficients}
     _require_known(called, records)
-    matter = np.maximum(fed, left) > _MATTERS * total
+    matter = (np.maximum(fed, left) > _MATTERS * total) & (np.abs(left - fed) > _ROUNDING * total)
     matter |= np.array([record.name in called for record in records], dtype=bool)
     fed_names = {record.name for record in _picked(records, fed > 0.0)}
     reactions = independent_reactions(_picked(records, matter), fed_names)

@@ -61,7 +61,7 @@ def stage_outlet(
     certified = status is Status.CERTIFIED
     entropy = _entropy_generation(stage, states.energy)
     activities = element_activities(model, state, library) if certified else ()
-    left_out = stage.chemistry.selection.leave_out
+    left_out = stage.chemistry.selection.not_missed(model.feed_records, library)
     entries = audit(model, state, library, left_out) if certified else ()
     removed = {
         record.name: amount * stage.removed[record.name]
@@ -101,7 +101,7 @@ def stage_outlet(
         notes=(
             *(() if gas is None else real_gas_notes(step, gas)),
             *(remark for stream in step.streams for remark in stream.remarks),
-            *service_notes(stage),
+            *service_notes(stage, model, library),
             *method_notes(model, state, found),
         ),
         hazards=outlet_hazards(model, state.amounts),

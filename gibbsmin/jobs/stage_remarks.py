@@ -13,6 +13,7 @@ from gibbsmin.minimise import Status
 from gibbsmin.reactor.audit import SolvedState
 from gibbsmin.reactor.conditions import Equilibria
 from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
+from gibbsmin.thermo.library import Library
 
 
 def require_an_answer(step: Step, status: Status) -> None:
@@ -57,7 +58,7 @@ def require_an_answer(step: Step, status: Status) -> None:
         )
 
 
-def service_notes(stage: StageCase) -> tuple[str, ...]:
+def service_notes(stage: StageCase, model: StageModel, library: Library) -> tuple[str, ...]:
     """What the trade proposes for the service, so that the user may overrule it."""
     service = stage.service
     if service is None:
@@ -67,6 +68,8 @@ def service_notes(stage: StageCase) -> tuple[str, ...]:
     parts = [f"considered are {', '.join(considered)}"]
     if selection.inert_where_fed:
         parts.append(f"inert where fed {', '.join(selection.inert_where_fed)}")
+    if gangue := selection.gangue(model.feed_records, library):
+        parts.append(f"unchanged for want of a candidate {', '.join(gangue)}")
     if service.key_reactions:
         parts.append(f"key reactions {'; '.join(service.key_reactions)}")
     if service.carbon_routes:

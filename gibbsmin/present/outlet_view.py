@@ -194,7 +194,7 @@ def _extents(outlet: Outlet, stage: StageOutlet) -> RenderableType:
 def _audit(stage: StageOutlet) -> RenderableType:
     rows = []
     for entry in stage.audit[:AUDIT_LENGTH]:
-        remarks = ["left out by name"] if entry.left_out else ["WARNING"] if entry.warns else []
+        remarks = ["left out"] if entry.left_out else ["WARNING"] if entry.warns else []
         remarks += [] if entry.within_range else ["beyond its range"]
         remarks += _route_remark(entry)
         gas = entry.record.phase is Phase.GAS

@@ -61,14 +61,16 @@ def element_activities(
         )
     gas_total = state.amounts[model.gas].sum()
     logs = model.mixture.log_fugacity(state.temperature, state.pressure, state.amounts)
+    held = np.any(model.balance.matrix[len(model.balance.elements) :] != 0.0, axis=0)
     for i, record in enumerate(records):
+        if record not in model.records or record.phase is not Phase.GAS or gas_total == 0.0:
+            continue
+        column = model.records.index(record)
         # A reference gas that is held apart from the others, or in a gas of which a fraction is
-        # held, still shows its own pressure.
-        apart = np.isnan(values[i]) or bool(model.fraction_rows)
-        if apart and record in model.records and record.phase is Phase.GAS and gas_total > 0.0:
-            share = state.amounts[model.records.index(record)] / gas_total
-            values[i] = share * state.pressure / STANDARD_PRESSURE
-            values[i] *= np.exp(logs[model.records.index(record)])
+        # held, shows its own pressure.
+        if np.isnan(values[i]) or held[column]:
+            share = state.amounts[column] / gas_total
+            values[i] = share * state.pressure / STANDARD_PRESSURE * np.exp(logs[column])
     found: list[ElementActivity] = []
     for symbol, record, value in zip(symbols, records, values.tolist(), strict=True):
         gas = record.phase is Phase.GAS

@@ -41,7 +41,7 @@ class AuditEntry:
     record : the record
     would_reach : mole fraction in equilibrium with the outlet (gases, else NaN)
     activity : activity against the pure phase, 1 when saturated (solids and liquids, else NaN)
-    left_out : whether the user left it out by name, so that it is listed without a warning
+    left_out : whether the user or the service leaves it out by name: it is listed, not warned of
     within_range : whether the temperature is within the record's range
     routes : where routes disagree, each with its own figure, the most favourable first
     """
@@ -110,7 +110,7 @@ def routes_at(
     potentials = logs + model.mixture.reduced_energies(state.temperature, state.pressure)
     potentials += model.mixture.log_fugacity(state.temperature, state.pressure, state.amounts)
     energies = _energies(records, state.temperature, pressure)
-    return routes_to(records, energies, model.records, state.amounts, potentials, model.reacts)
+    return routes_to(records, energies, model.records, state.amounts, potentials, model.reacting)
 
 
 def audit(
@@ -187,8 +187,7 @@ def _is_judged(model: StageModel, record: Species) -> bool:
     if not model.reacts:
         return any(record.formula == other.formula for other in model.records)
     if model.restrained:
-        organic = {"C", "H"} <= {symbol for symbol, _ in record.elements}
-        return record.phase is not Phase.GAS and not organic
+        return record.phase is not Phase.GAS and not record.organic
     return True
 
 

@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Literal
 
 from gibbsmin.errors import InputError
 from gibbsmin.reactor.balance import elements_of
 from gibbsmin.thermo.library import Library
-from gibbsmin.thermo.species import Phase, Species
+from gibbsmin.thermo.species import FEED_ONLY, Phase, Species
 
 
 @dataclass(frozen=True)
@@ -18,19 +18,51 @@ class Selection:
 
     ``consider`` is ``"all"`` (every library record of the feed's elements but ions and superseded
     forms) or a list; ``leave_out`` is taken away from it; ``inert`` passes through
-    unchanged, ``inert_where_fed`` only in a stage that it enters.
+    unchanged, ``inert_where_fed`` only in a stage that it enters.  ``too_slow`` does not form in
+    this service, and in a ``selective`` one, that of a catalyst, no gas and no organic matter
+    forms but the candidates.  With ``gangue_passes`` a solid or liquid that is fed passes unchanged
+    if no candidate holds one of its elements.
     """
 
     consider: Literal["all"] | tuple[str, ...] = "all"
     leave_out: tuple[str, ...] = ()
     inert: tuple[str, ...] = ()
     inert_where_fed: tuple[str, ...] = ()
+    too_slow: tuple[str, ...] = ()
+    selective: bool = False
+    gangue_passes: bool = False
 
-    def inert_among(self, fed: Collection[str]) -> tuple[str, ...]:
-        """Records that pass unchanged: those named, and those proposed where they are fed."""
+    def inert_among(self, feed: Sequence[Species], library: Library) -> tuple[str, ...]:
+        """Records that pass unchanged: those named, those proposed where fed, and gangue."""
+        fed = {record.name for record in feed}
+        proposed = [name for name in self.inert_where_fed if name in fed]
+        return tuple(dict.fromkeys([*self.inert, *proposed, *self.gangue(feed, library)]))
+
+    def gangue(self, feed: Sequence[Species], library: Library) -> tuple[str, ...]:
+        """Solids and liquids fed that pass for want of a candidate, such as silica with an ore."""
+        if not self.gangue_passes or self.consider == "all":
+            return ()
+        held = set(elements_of([library[name] for name in self.consider]))
         return tuple(
-            dict.fromkeys([*self.inert, *(name for name in self.inert_where_fed if name in fed)])
+            record.name
+            for record in feed
+            if record.phase is not Phase.GAS
+            and record.status != FEED_ONLY
+            and not set(elements_of([record])) <= held
         )
+
+    def not_missed(self, feed: Sequence[Species], library: Library) -> tuple[str, ...]:
+        """Records whose absence needs no warning, since the user or the service settled it."""
+        gangue = elements_of([library[name] for name in self.gangue(feed, library)])
+        others = elements_of([record for record in feed if record.phase is Phase.GAS])
+        stony = set(gangue) - set(others)
+        settled = [
+            record.name
+            for record in library.records
+            if (self.selective and (record.phase is Phase.GAS or record.organic))
+            or (stony and stony & set(elements_of([record])))
+        ]
+        return (*self.leave_out, *self.too_slow, *settled)
 
 
 def choose_candidates(
@@ -59,7 +91,7 @@ def choose_candidates(
                 f"accepted is a record of the feed: {', '.join(sorted(fed))}",
                 key="species.inert",
             )
-    considered += [library[name] for name in selection.inert_among(fed)]
+    considered += [library[name] for name in selection.inert_among(feed, library)]
     kept = [
         record
         for record in dict.fromkeys(considered)

@@ -74,7 +74,8 @@ def holds_of(
     """
     names = {record.name for record in candidates}
     fed = {record.name for record in feed}
-    holds = [frozen(name) for name in chemistry.selection.inert_among(fed) if name in fed]
+    inert = chemistry.selection.inert_among(feed, library)
+    holds = [frozen(name) for name in inert if name in fed]
     for name, conversion in chemistry.conversions.items():
         if name not in fed:
             raise InputError(

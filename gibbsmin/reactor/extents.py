@@ -3,7 +3,8 @@
 Any set of reactions that spans what the element balance leaves open describes a change as well as
 any other.  Here each reaction makes or uses one key record from the basis records, which are
 chosen so that the reactions are those of the trade: with O2 about, combustions; else reactions
-with steam, hydrogen and carbon monoxide.
+with steam, hydrogen and carbon monoxide.  A substance in several forms takes part in one of them,
+and the others come about by a change of its form.
 """
 
 from __future__ import annotations
@@ -35,7 +36,7 @@ class KeyedReaction:
 
     Attributes
     ----------
-    key : the record that takes part in no other reaction of the set; empty where the user names it
+    key : the record that this reaction tells of; empty where the user names it
     terms : coefficient by record name, products positive
     """
 
@@ -59,8 +60,17 @@ def independent_reactions(
         Names of the feed's records; a key that is one of them stands on the left.
     """
     ordered = sorted(records, key=_preference({record.name for record in records}))
+    main: dict[str, Species] = {}
+    for record in ordered:
+        main.setdefault(record.formula, record)
+    substances = list(main.values())
     reactions = [
-        _keyed(ordered, vector, fed) for vector in balances([composition(r) for r in ordered])
+        _keyed(substances, vector, fed) for vector in balances([composition(r) for r in substances])
+    ]
+    reactions += [
+        _keyed([main[record.formula], record], [Fraction(-1), Fraction(1)], fed)
+        for record in ordered
+        if record is not main[record.formula]
     ]
     place = {record.name: k for k, record in enumerate(records)}
     return tuple(sorted(reactions, key=lambda reaction: place[reaction.key]))
@@ -69,10 +79,10 @@ def independent_reactions(
 def keyed_extents(
     reactions: Sequence[KeyedReaction], names: Sequence[str], changes: FloatArray
 ) -> FloatArray:
-    """Extents ξ = Δn_key/ν_key in mol of each reaction as written.
+    """Extents ξ in mol of each reaction as written, by Δn = Σ ξ ν of the keys.
 
-    The key takes part in no other reaction, so the extent stays the same whichever traces are
-    left out of the set.
+    A key takes part in no other reaction but the changes of its form, so that the extents stay
+    the same whichever traces are left out of the set.
 
     Parameters
     ----------
@@ -81,9 +91,10 @@ def keyed_extents(
     changes
         Outlet less feed, shape (..., S), mol; the result has shape (..., R).
     """
-    columns = [list(names).index(reaction.key) for reaction in reactions]
-    coefficients = np.array([float(reaction.terms[reaction.key]) for reaction in reactions])
-    return np.asarray(changes[..., columns] / coefficients)
+    keys = [reaction.key for reaction in reactions]
+    columns = [list(names).index(key) for key in keys]
+    coefficients = np.array([[float(r.terms.get(key, 0)) for key in keys] for r in reactions])
+    return np.asarray(changes[..., columns] @ np.linalg.inv(coefficients))
 
 
 def named_extents(stoichiometry: FloatArray, changes: FloatArray) -> tuple[FloatArray, FloatArray]:
@@ -148,12 +159,14 @@ def element_selectivities(counts: FloatArray, feed: FloatArray, outlet: FloatArr
     )
 
 
-def _preference(names: Collection[str]) -> Callable[[Species], tuple[int, bool, int, float]]:
+def _preference(names: Collection[str]) -> Callable[[Species], tuple[int, bool, bool, int, float]]:
     first = _OXIDISING if "O2(g)" in names else _REDUCING
 
-    def rank(record: Species) -> tuple[int, bool, int, float]:
+    def rank(record: Species) -> tuple[int, bool, bool, int, float]:
         listed = first.index(record.name) if record.name in first else len(first)
-        return listed, record.phase is not Phase.GAS, len(record.elements), record.atoms
+        condensed = record.phase is not Phase.GAS
+        lone_atom = not condensed and record.atoms == 1
+        return listed, lone_atom, condensed, len(record.elements), record.atoms
 
     return rank
 

@@ -43,6 +43,7 @@ class StageModel:
     balance : what is conserved between both
     shift : what is added to the candidates' energies
     reacts : whether anything but the form of substances may change
+    inert : names of records that pass unchanged where others react
     """
 
     records: tuple[Species, ...]
@@ -51,6 +52,7 @@ class StageModel:
     balance: Balance
     shift: Shift
     reacts: bool
+    inert: tuple[str, ...] = ()
 
     def of_states(self, index: IntArray) -> StageModel:
         """The model of some of the states, where they differ in holds, approaches or numbers."""
@@ -65,6 +67,11 @@ class StageModel:
     def gas(self) -> BoolArray:
         """(S,) which of the candidates share the gas."""
         return self.mixture.gas
+
+    @property
+    def reacting(self) -> BoolArray:
+        """(S,) which of the candidates other substances may form from."""
+        return np.array([self.reacts and r.name not in self.inert for r in self.records], bool)
 
     @property
     def properties(self) -> PropertyTable:
@@ -166,6 +173,7 @@ def stage_model(chemistry: Chemistry, feed: Sequence[Species], library: Library)
         balance=balance.with_holds(records, feed, holds),
         shift=shift,
         reacts=chemistry.reactions == "equilibrium",
+        inert=chemistry.selection.inert_among(feed, library),
     )
 
 

@@ -55,7 +55,7 @@ def routes_to(
     present: Sequence[Species],
     amounts: FloatArray,
     potentials: FloatArray,
-    reacts: bool = True,
+    reacting: BoolArray | None = None,
 ) -> list[tuple[Route, ...]]:
     """Routes to each target from the main species present, the most favourable first.
 
@@ -66,20 +66,19 @@ def routes_to(
     ----------
     targets : the records to judge, with their g̃ (T,)
     present : the outlet's records, with their amounts and μ/RT, each (S,)
-    reacts : whether anything may form from other substances
+    reacting : which of them other substances may form from, (S,); all unless it is given
     """
-    main = _main_species(amounts)
+    able = _main_species(amounts if reacting is None else np.where(reacting, amounts, 0.0))
     there = np.flatnonzero(amounts > 0.0).tolist()
     rows = elements_of([*present, *targets])
     wanted = element_counts(targets, rows)
     columns = element_counts(present, rows)
     elementary = np.array([len(target.elements) == 1 for target in targets])
-    by_main = _has_form(targets, [present[i] for i in main])
+    by_main = _has_form(targets, [present[i] for i in _main_species(amounts)])
     itself = _has_form(targets, [present[i] for i in there]) & (~elementary | by_main)
-    itself |= not reacts
     found: list[list[Route]] = [[] for _ in targets]
     for size in range(1, _LONGEST + 1):
-        for subset in combinations(there if size == 1 else main, size):
+        for subset in combinations(there if size == 1 else able, size):
             chosen = list(subset)
             shares, _, rank, _ = np.linalg.lstsq(columns[:, chosen], wanted, rcond=None)
             if rank < size:
@@ -88,7 +87,7 @@ def routes_to(
             fits = (misses < _TOLERANCE) & (np.abs(shares) > _TOLERANCE).all(axis=0)
             if size > 1:
                 fits &= ~itself
-            elif chosen[0] not in main or not reacts:
+            elif chosen[0] not in able:
                 fits &= _has_form(targets, [present[chosen[0]]])
             fits &= elementary | (shares > 0.0).all(axis=0)
             values = shares.T @ potentials[chosen] - target_energies

@@ -41,6 +41,11 @@ class Service:
     carbon_routes: tuple[str, ...]
     sources: Mapping[str, str]
 
+    @property
+    def too_slow(self) -> tuple[str, ...]:
+        """What does not form in this service: carbon, where no route leads to it."""
+        return () if self.carbon_routes else ("C(graphite)",)
+
 
 @cache
 def services() -> Mapping[str, Service]:

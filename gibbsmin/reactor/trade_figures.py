@@ -54,13 +54,15 @@ def oxygen_demand(records: Sequence[Species]) -> FloatArray:
 def air_ratio(records: Sequence[Species], feed: FloatArray) -> FloatArray:
     """λ: oxygen fed over what the fuel fed needs for complete combustion.
 
-    Records with a demand below 0 (O2, N2O, …) bring oxygen, the others need it.  NaN without
-    fuel, or where a record of an undefined demand is fed.
+    Records of oxygen with a demand below 0 (O2, N2O, …) bring it, the others need it; chlorine
+    lowers the need, by the hydrogen that it takes.  NaN without fuel, or where a record of an
+    undefined demand is fed.
     """
     demand = oxygen_demand(records)
+    brings = (demand < 0.0) & (element_counts(records, ("O",))[0] > 0.0)
     undefined = np.any((feed > 0.0) & np.isnan(demand), axis=-1)
     demand = np.nan_to_num(demand)
-    brought, needed = feed @ np.maximum(-demand, 0.0), feed @ np.maximum(demand, 0.0)
+    brought, needed = -feed @ np.where(brings, demand, 0.0), feed @ np.where(brings, 0.0, demand)
     return np.where(undefined, np.nan, quotient(brought, needed))
 
 

@@ -130,6 +130,11 @@ class Species:
         return sum(count for _, count in self.elements)
 
     @property
+    def organic(self) -> bool:
+        """True for a record of carbon and hydrogen, with or without other elements."""
+        return {"C", "H"} <= {symbol for symbol, _ in self.elements}
+
+    @property
     def superseded(self) -> bool:
         """True for a form that is a candidate only where the user names it."""
         return self.status == SUPERSEDED

@@ -500,8 +500,8 @@ def test_a_service_that_does_not_exist() -> None:
     assert str(caught.value) == (
         'stage.stage 1.service: found the service "steam reformin"; accepted is one of steam '
         "reforming, shift, low-temperature shift, methanation, ammonia, methanol, SO2 oxidation, "
-        "sulphur recovery, sulphur recovery converter, combustion, gasification, oxide reduction, "
-        "carburising."
+        "sulphur recovery, sulphur recovery converter, sulphur condenser, combustion, "
+        "gasification, oxide reduction, carburising."
     )
 
 

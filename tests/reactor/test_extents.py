@@ -43,6 +43,12 @@ def records_of(names: str) -> list[Species]:
             "Fe0.947O(cr) CO",
             ["Fe0.947O(cr) + CO(g) = 0.947 Fe(alpha) + CO2(g)"],
         ),
+        (
+            "CH3OH CO H2 CH3OH(l)",
+            "CH3OH CO H2",
+            ["CH3OH(g) = CO(g) + 2 H2(g)", "CH3OH(g) = CH3OH(l)"],
+        ),
+        ("S2 S8 S(l) S(g)", "S2 S8", ["S8(g) = 4 S2(g)", "S2(g) = 2 S(l)", "S(l) = S(g)"]),
     ],
 )
 def test_reactions_are_those_of_the_trade(names: str, fed: str, expected: list[str]) -> None:
@@ -74,6 +80,16 @@ def test_keyed_extents_are_those_that_happened() -> None:
     names = [record.name for record in records]
     found = keyed_extents(reactions, names, np.array([OUTLET - FEED, 2 * (OUTLET - FEED)]))
     assert found == pytest.approx(np.array([[0.7, 0.2], [1.4, 0.4]]))
+
+
+def test_what_condenses_counts_to_the_reaction_that_made_it() -> None:
+    records = records_of("CO H2 CH3OH CH3OH(l)")
+    reactions = independent_reactions(records, {"CO(g)", "H2(g)"})
+    names = [record.name for record in records]
+    found = keyed_extents(reactions, names, np.array([-1.0, -2.0, 0.3, 0.7]))
+    assert dict(zip(map(str, reactions), found.tolist(), strict=True)) == pytest.approx(
+        {"CO(g) + 2 H2(g) = CH3OH(g)": 1.0, "CH3OH(g) = CH3OH(l)": 0.7}
+    )
 
 
 def test_named_extents_tell_what_they_leave_over() -> None:

@@ -49,6 +49,14 @@ def test_air_ratio_of_a_flame() -> None:
     assert np.isnan(found[2]), "air alone has no air ratio"
 
 
+def test_chlorine_takes_hydrogen_and_brings_no_oxygen() -> None:
+    records = records_of("H2 Cl2 O2")
+    feed = np.array([[1.2, 1.0, 0.05], [1.0, 1.0, 0.01]])
+    found = air_ratio(records, feed)
+    assert found[0] == pytest.approx(0.5), "0.2 mol of hydrogen are left to burn"
+    assert np.isnan(found[1]), "none is left"
+
+
 def test_ratios_of_synthesis_gas() -> None:
     assert quotient(3.0, 1.5) == pytest.approx(2.0)
     assert np.isnan(quotient(1.0, 0.0))
