@@ -23,7 +23,7 @@ _ROUNDS = 80
 _DEPTH = 3
 _GROWTH = 1.5
 _RIDGE = 1e-13
-_STRIDE = 8
+_STRIDE = 5
 _FEWEST = 64
 
 Answer = Callable[[FloatArray, IntArray], tuple[FloatArray, FloatArray]]
@@ -96,7 +96,7 @@ def settle(answer: Answer, start: FloatArray, history: History | None = None) ->
 def settle_along(answer: Answer, start: FloatArray) -> Settled:
     """The same for states of which neighbours are alike, as on a grid.
 
-    Every eighth state is settled first; all start from what lies between these, and with what the
+    Every fifth state is settled first; all start from what lies between these, and with what the
     nearest of them learned on its way.
     """
     states = len(start)
@@ -106,8 +106,7 @@ def settle_along(answer: Answer, start: FloatArray) -> Settled:
     first = settle(lambda x, index: answer(x, coarse[index]), start[coarse])
     known = np.where((first.error <= SETTLED)[:, np.newaxis], first.x, start[coarse])
     below, steps = np.divmod(np.arange(states), _STRIDE)
-    above = np.minimum(below + 1, coarse.size - 1)
-    between = known[below] + (steps / _STRIDE)[:, np.newaxis] * (known[above] - known[below])
+    between = _interpolated(known, below, steps / _STRIDE)
     learned = [(np.nan_to_num(dx)[below], np.nan_to_num(dF)[below]) for dx, dF in first.history]
     found = settle(answer, between, learned)
     left = np.flatnonzero(found.error > SETTLED)
@@ -116,6 +115,23 @@ def settle_along(answer: Answer, start: FloatArray) -> Settled:
         again = settle(lambda x, index: answer(x, left[index]), start[left])
         found.x[left], found.error[left] = again.x, again.error
     return found
+
+
+def _interpolated(known: FloatArray, below: IntArray, share: FloatArray) -> FloatArray:
+    """Values a share of the way from one known state to the next, by a cubic through four.
+
+    Where the four do not lie on a smooth curve, as at the end of a row of a grid, straight.
+    """
+    last = len(known) - 1
+    a, b, c, d = (known[np.clip(below + k, 0, last)] for k in (-1, 0, 1, 2))
+    t = share[:, np.newaxis]
+    straight = b + t * (c - b)
+    bends = a - 2.0 * b + c, b - 2.0 * c + d
+    curved = straight + t * (t - 1.0) / 6.0 * ((2.0 - t) * bends[0] + (1.0 + t) * bends[1])
+    largest = np.maximum(np.abs(bends[0]), np.abs(bends[1]))
+    smooth = (np.abs(bends[1] - bends[0]) <= 0.5 * largest + SETTLED).all(axis=1)
+    inside = (below > 0) & (below < last - 1) & smooth
+    return np.where(inside[:, np.newaxis], curved, straight)
 
 
 def _step(

@@ -15,6 +15,7 @@ Fundamentals and Computational Aspects, 2nd ed., Tie-Line (2007), ch. 2 and 3).
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -76,48 +77,73 @@ def _real_root(c2: FloatArray, c1: FloatArray, c0: FloatArray, smallest: bool) -
     return np.where(discriminant > 0.0, single, three) - c2 / 3.0
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True, eq=False)
 class Potential:
-    """f and g of F and their derivatives to V and B, each of the states' shape."""
+    """f and g of F and their derivatives to V and B, each of the states' shape.
 
-    f: FloatArray
-    f_V: FloatArray
-    f_B: FloatArray
-    f_VV: FloatArray
-    f_BV: FloatArray
-    f_BB: FloatArray
-    g: FloatArray
-    g_V: FloatArray
-    g_B: FloatArray
-    g_VV: FloatArray
-    g_BV: FloatArray
-    g_BB: FloatArray
+    ``V`` and ``B`` are molar volume and co-volume in m³/mol; f and g are homogeneous in both.
+    Each derivative is evaluated when it is first asked for.
+    """
 
+    shape: Shape
+    V: FloatArray
+    B: FloatArray
 
-def potential(shape: Shape, V: FloatArray, B: FloatArray) -> Potential:
-    """f and g at molar volume V and co-volume B in m³/mol; f and g are homogeneous in V and B."""
-    R = GAS_CONSTANT
-    width = shape.sigma - shape.epsilon
-    outer, inner = V + shape.sigma * B, V + shape.epsilon * B
-    f = np.log1p(width * B / inner) / (R * B * width)
-    f_V = -1.0 / (R * outer * inner)
-    f_VV = (outer + inner) / (R * (outer * inner) ** 2)
-    f_B = -(f + V * f_V) / B
-    f_BV = -(2.0 * f_V + V * f_VV) / B
-    f_BB = -(2.0 * f_B + V * f_BV) / B
-    free = V - B
-    g_BV = 1.0 / free**2
-    return Potential(
-        f=f,
-        f_V=f_V,
-        f_B=f_B,
-        f_VV=f_VV,
-        f_BV=f_BV,
-        f_BB=f_BB,
-        g=np.log1p(-B / V),
-        g_V=B / (V * free),
-        g_B=-1.0 / free,
-        g_VV=1.0 / V**2 - g_BV,
-        g_BV=g_BV,
-        g_BB=-g_BV,
-    )
+    @cached_property
+    def _outer(self) -> FloatArray:
+        return self.V + self.shape.sigma * self.B
+
+    @cached_property
+    def _inner(self) -> FloatArray:
+        return self.V + self.shape.epsilon * self.B
+
+    @cached_property
+    def f(self) -> FloatArray:
+        width = self.shape.sigma - self.shape.epsilon
+        ends = np.log1p(width * self.B / self._inner)
+        return np.asarray(ends / (GAS_CONSTANT * self.B * width))
+
+    @cached_property
+    def f_V(self) -> FloatArray:
+        return np.asarray(-1.0 / (GAS_CONSTANT * self._outer * self._inner))
+
+    @cached_property
+    def f_VV(self) -> FloatArray:
+        ends = self._outer + self._inner
+        return np.asarray(ends / (GAS_CONSTANT * (self._outer * self._inner) ** 2))
+
+    @cached_property
+    def f_B(self) -> FloatArray:
+        return -(self.f + self.V * self.f_V) / self.B
+
+    @cached_property
+    def f_BV(self) -> FloatArray:
+        return -(2.0 * self.f_V + self.V * self.f_VV) / self.B
+
+    @cached_property
+    def f_BB(self) -> FloatArray:
+        return -(2.0 * self.f_B + self.V * self.f_BV) / self.B
+
+    @cached_property
+    def g(self) -> FloatArray:
+        return np.log1p(-self.B / self.V)
+
+    @cached_property
+    def g_V(self) -> FloatArray:
+        return self.B / (self.V * (self.V - self.B))
+
+    @cached_property
+    def g_B(self) -> FloatArray:
+        return -1.0 / (self.V - self.B)
+
+    @cached_property
+    def g_VV(self) -> FloatArray:
+        return 1.0 / self.V**2 - self.g_BV
+
+    @cached_property
+    def g_BV(self) -> FloatArray:
+        return 1.0 / (self.V - self.B) ** 2
+
+    @cached_property
+    def g_BB(self) -> FloatArray:
+        return -self.g_BV

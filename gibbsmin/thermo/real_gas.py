@@ -28,7 +28,7 @@ from gibbsmin.thermo.attraction import (
     twu_redlich_kwong,
 )
 from gibbsmin.thermo.critical import CriticalPoint, critical_points, interactions
-from gibbsmin.thermo.cubic import Potential, Shape, compressibility, potential
+from gibbsmin.thermo.cubic import Potential, Shape, compressibility
 from gibbsmin.thermo.species import Species
 
 _ROOT_2: Final = float(np.sqrt(2.0))
@@ -191,7 +191,7 @@ class RealGas:
             pulled=pulled,
             D=D,
             B=B,
-            potential=potential(self.equation.shape, V, B),
+            potential=Potential(self.equation.shape, V, B),
         )
 
 

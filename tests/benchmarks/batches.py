@@ -3,8 +3,9 @@
     cd tests; ../.venv/bin/python -m benchmarks.batches [states]
 
 prints, on all cores: what a scan adds to the minimiser's own time on a reformer grid, what an
-adiabatic batch costs beside an isothermal one, and what error bars cost; then how a million states
-stream to a file.  Processor time counts all threads, and is moved less by what else is running.
+adiabatic batch costs beside an isothermal one, what error bars cost and what a real gas; before
+that how a million states stream to a file.  Processor time counts all threads, and is moved less
+by what else is running.
 """
 
 from __future__ import annotations
@@ -50,6 +51,23 @@ CASE: dict[str, Any] = {
     "species": {"consider": ["CH4", "C2H6", "H2O", "CO", "CO2", "H2", "N2", "O2", "C(graphite)"]},
 }
 STEAM = {"vary": "feed.steam.amounts.H2O", "first": "2 mol", "last": "4 mol", "count": 100}
+AMMONIA: dict[str, Any] = {
+    "feed": {
+        "gas": {
+            "temperature": "400 degC",
+            "pressure": "300 bar",
+            "unit": "mol",
+            "amounts": {"H2": 3.0, "N2": 1.0, "CH4": 0.1, "Ar": 0.05, "NH3": 0.1},
+        }
+    },
+    "outlet": {"temperature": "470 degC", "pressure": "150 bar"},
+    "species": {"consider": ["H2", "N2", "NH3", "CH4", "Ar"], "inert": ["CH4", "Ar"]},
+    "axis": [
+        {"vary": "outlet.temperature", "first": "350 degC", "last": "550 degC", "count": 200},
+        {"vary": "outlet.pressure", "first": "80 bar", "last": "300 bar", "count": 100},
+    ],
+}
+REAL = "Soave-Redlich-Kwong"
 REPEATS = 5
 
 
@@ -77,6 +95,17 @@ def cases(states: int) -> tuple[Case, Case]:
         "axis": [preheat | {"count": count}, STEAM],
     }
     return gibbsmin.load_case(at_temperature), gibbsmin.load_case(adiabatic)
+
+
+def real_gas_ratio(tables: dict[str, Any]) -> float:
+    """Processor time of a scan with a real gas over that with an ideal one."""
+    times = []
+    for gas in (REAL, "ideal"):
+        given = deepcopy(tables)
+        given["outlet"]["gas"] = gas
+        case = gibbsmin.load_case(given)
+        times.append(best(lambda c=case: list(gibbsmin.scan_blocks(c)), process_time))
+    return times[0] / times[1]
 
 
 def stream(states: int) -> None:
@@ -128,6 +157,22 @@ def main() -> None:
         f"scan, adiabatic                     {scans[1] / scans[0]:8.2f} times that at temperature"
     )
     print(f"scan with error bars                {bars / plain:8.2f} times that without")
+    preheat = {"vary": "feed.gas.temperature", "first": "300 degC", "last": "400 degC"}
+    adiabatic_ammonia = AMMONIA | {
+        "outlet": {"heat": "0 kJ", "pressure": "150 bar"},
+        "axis": [preheat | {"count": 200}, AMMONIA["axis"][1]],
+    }
+    outlet = {"vary": "outlet.temperature", "first": "600 degC", "last": "950 degC", "count": 200}
+    reformer = CASE | {
+        "outlet": {"temperature": "900 degC", "pressure": "40 bar"},
+        "axis": [outlet, STEAM],
+    }
+    for label, tables in (
+        ("reformer", reformer),
+        ("ammonia", AMMONIA),
+        ("ammonia, adiabatic", adiabatic_ammonia),
+    ):
+        print(f"real gas, {label:<19}{real_gas_ratio(tables):15.2f} times an ideal one")
 
 
 if __name__ == "__main__":
