@@ -61,6 +61,30 @@ class InputChanges:
     streams: Mapping[str, StreamChanges]
     stages: Mapping[str, SpecificationChanges]
 
+    def combined(self, weights: FloatArray) -> InputChanges:
+        """Columns of combinations: the changes (..., K) times weights (K, K)."""
+
+        def of(columns: Mapping[str, FloatArray]) -> dict[str, FloatArray]:
+            return {name: values @ weights for name, values in columns.items()}
+
+        records = self.records
+        return InputChanges(
+            self.inputs,
+            RecordChanges(of(records.enthalpy), of(records.entropy), records.count),
+            {
+                name: StreamChanges(
+                    each.temperature @ weights, each.pressure @ weights, of(each.amounts)
+                )
+                for name, each in self.streams.items()
+            },
+            {
+                key: SpecificationChanges(
+                    **{f.name: getattr(each, f.name) @ weights for f in fields(each)}
+                )
+                for key, each in self.stages.items()
+            },
+        )
+
 
 def record_inputs(records: Sequence[Species]) -> list[Input]:
     """Enthalpies of formation and entropies, published or by class of record."""
@@ -119,18 +143,18 @@ def input_changes(case: Case, inputs: Sequence[Input]) -> InputChanges:
     def of_records(kind: str) -> dict[str, FloatArray]:
         return {name.removesuffix(kind): column(name) for name in places if name.endswith(kind)}
 
+    def of_amount(place: str, name: str, amount: Values) -> FloatArray:
+        own = np.atleast_2d(column(f"{place}.amounts.{name}"))
+        if place not in places:
+            return own
+        return own + np.asarray(amount, dtype=float)[..., np.newaxis] * column(place)
+
     def of_stream(stream: Stream) -> StreamChanges:
         place = f"feed.{stream.name}"
         return StreamChanges(
             np.atleast_2d(column(f"{place}.temperature")),
             np.atleast_2d(column(f"{place}.pressure")),
-            {
-                name: np.atleast_2d(
-                    column(f"{place}.amounts.{name}")
-                    + np.asarray(amount, dtype=float)[..., np.newaxis] * column(place)
-                )
-                for name, amount in stream.amounts.items()
-            },
+            {name: of_amount(place, name, amount) for name, amount in stream.amounts.items()},
         )
 
     def of_stage(stage: StageCase) -> SpecificationChanges:

@@ -20,7 +20,7 @@ from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.inputs import InputChanges, input_changes
 from gibbsmin.jobs.step_results import results_of
 from gibbsmin.jobs.train import Step, run_train
-from gibbsmin.jobs.uncertainty import correlation_of, uncertain_inputs
+from gibbsmin.jobs.uncertainty import correlation_of, factor_of, uncertain_inputs
 from gibbsmin.minimise import Status, settle_form
 from gibbsmin.reactor.stage_changes import SpecificationChanges
 from gibbsmin.reactor.stream_changes import RecordChanges
@@ -103,7 +103,7 @@ def monte_carlo(case: Case, draws: int = 10_000, seed: int = 1) -> MonteCarlo:
     inputs = uncertain_inputs(case, list(run_train(case, case.library)))
     changes = input_changes(case, inputs)
     sizes = np.array([float(np.ravel(each.uncertainty)[0]) for each in inputs])
-    spread_out = _factor(correlation_of(case, inputs)) * sizes[:, np.newaxis]
+    spread_out = factor_of(correlation_of(case, inputs)) * sizes[:, np.newaxis]
     random = np.random.default_rng(seed)
     settle_form()
     cut_off, parts = 0, []
@@ -117,12 +117,6 @@ def monte_carlo(case: Case, draws: int = 10_000, seed: int = 1) -> MonteCarlo:
         parts.append([_collected(step) for step in run_train(drawn, library)])
     stages = tuple(_spread(blocks) for blocks in zip(*parts, strict=True))
     return MonteCarlo(draws, seed, stages, cut_off)
-
-
-def _factor(correlation: FloatArray) -> FloatArray:
-    """L with L Lᵀ the correlation matrix, which may be singular."""
-    values, vectors = np.linalg.eigh(correlation)
-    return np.asarray(vectors * np.sqrt(np.maximum(values, 0.0)))
 
 
 def _drawn(case: Case, changes: InputChanges, steps: FloatArray) -> tuple[Case, int]:

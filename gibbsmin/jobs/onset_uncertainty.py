@@ -18,10 +18,10 @@ from gibbsmin.jobs.axes import applied
 from gibbsmin.jobs.axis import Axis
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.crossings import beside
+from gibbsmin.jobs.error_bars import error_bars
 from gibbsmin.jobs.onset import Onset, without_phase
 from gibbsmin.jobs.search import driving_force, path_of, stage_named
 from gibbsmin.jobs.train import run_train
-from gibbsmin.jobs.uncertainty import error_bars
 
 _STEP = 1e-5
 """Share of the axis for the slope along it."""
@@ -43,13 +43,13 @@ def onset_uncertainty(case: Case, found: Onset) -> FloatArray:
         values.append(path.second.values[found.row])
     varied = applied(kept_out, axes, values, path.library)
     steps = list(run_train(varied, path.library))
-    bars = error_bars(varied, steps, path.library, of_scan=True)
+    bars = error_bars(varied, steps, path.library)
     chosen = next(
         bar
         for bar, step in zip(bars, steps, strict=True)
         if step.stage.key == stage.key and not step.joins
     )
-    of_force = chosen.uncertainty(f"driving force {found.phase}")
+    of_force = chosen.uncertainties[f"driving force {found.phase}"]
     below, above = beside(path.grid, found.position, _STEP)
     low, high = (
         driving_force(path.step(kept_out, place, found.row), found.phase)

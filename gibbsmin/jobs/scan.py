@@ -19,8 +19,8 @@ if TYPE_CHECKING:
     import xarray as xr
 
 _BLOCK = 25_000
-_BLOCK_WITH_ERROR_BARS = 1_000
-"""States of a stage solved together."""
+_BLOCK_OF_SENSITIVITIES = 1_000
+"""States of a stage solved together; fewer where each has its own sensitivities in memory."""
 
 AHEAD = 2
 """Blocks in memory at a time where they are solved here."""
@@ -116,7 +116,8 @@ def scan_blocks(
 
 def block_size(case: Case, *, uncertainty: bool) -> int:
     """States solved together: so many that numpy is quick, so few that memory stays small."""
-    size = _BLOCK_WITH_ERROR_BARS if uncertainty else _BLOCK
+    real = any(stage.chemistry.equation is not None for stage in case.stages)
+    size = _BLOCK_OF_SENSITIVITIES if uncertainty and real else _BLOCK
     return max(1, size // len(case.stages))
 
 

@@ -9,9 +9,9 @@ from typing import Any
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
+from gibbsmin.jobs.error_bars import ErrorBars
 from gibbsmin.jobs.real_gas import real_gas_columns
 from gibbsmin.jobs.scan_layout import StageLayout
-from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.jobs.step_results import results_of
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Status
@@ -24,7 +24,7 @@ _STATUSES = [status.name.lower() for status in Status]
 
 
 def columns_of(
-    step: Step, layout: StageLayout, states: int, bars: Sensitivities | None, before: str
+    step: Step, layout: StageLayout, states: int, bars: ErrorBars | None, before: str
 ) -> dict[str, Any]:
     """A stage's columns, with units in their names where they are not plain numbers.
 
@@ -36,20 +36,18 @@ def columns_of(
         "status": named(found.solution.status, _STATUSES),
         "gap": found.solution.certificate.gap,
     }
-    uncertainties = None if bars is None else bars.uncertainties
     for name, unit, factor, result, values in _values(step, layout):
         label = f"{name}, {unit}" if unit else name
         columns[label] = values / factor if factor != 1.0 else values
-        if bars is not None and uncertainties is not None:
+        if bars is not None:
             # A record that cannot be in these states is not there for sure.
-            size = 0.0 * values
-            if result in bars.results:
-                size = uncertainties[:, bars.results.index(result)] / factor
+            size = bars.uncertainties.get(result)
+            size = 0.0 * values if size is None else size / factor if factor != 1.0 else size
             columns[f"u({name}), {unit}" if unit else f"u({name})"] = size
     columns["phases"] = _phases(step)
     columns |= real_gas_columns(step.states)
     if bars is not None:
-        columns["near an onset"] = bars.near_onset.any(axis=1)
+        columns["near an onset"] = bars.near_onset
     return {
         f"{before}{key}": np.broadcast_to(v, (states,)) if isinstance(v, np.ndarray) else v
         for key, v in columns.items()

@@ -21,10 +21,10 @@ from gibbsmin.jobs.axis_place import place_of
 from gibbsmin.jobs.axis_stage import shapes_equations
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.conditions import Conditions
+from gibbsmin.jobs.error_bars import error_bars
 from gibbsmin.jobs.scan_columns import columns_of, named, reasons_of, row_numbers
 from gibbsmin.jobs.scan_layout import layouts_of
 from gibbsmin.jobs.train import Step, run_train
-from gibbsmin.jobs.uncertainty import error_bars
 
 Columns = dict[str, Any]
 
@@ -84,7 +84,7 @@ def _solved(
     steps = list(run_train(varied, library))
     bars: Sequence[Any] = [None] * len(steps)
     if uncertainty:
-        bars = list(error_bars(varied, steps, library, of_scan=True))
+        bars = error_bars(varied, steps, library)
     columns: Columns = {}
     layouts = layouts_of(varied, steps, library)
     for step, layout, bar in zip(steps, layouts, bars, strict=True):

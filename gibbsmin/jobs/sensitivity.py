@@ -18,7 +18,7 @@ from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.jobs.inputs import Input, InputChanges
 from gibbsmin.jobs.train import Step
 from gibbsmin.reactor.stage_changes import SpecificationChanges, StageChanges, stage_changes
-from gibbsmin.reactor.stream_changes import StreamChanges, inlet_changes
+from gibbsmin.reactor.stream_changes import InletChanges, StreamChanges, inlet_changes
 from gibbsmin.reactor.streams import Values
 from gibbsmin.results import WATER
 from gibbsmin.thermo.library import Library
@@ -84,10 +84,60 @@ class Sensitivities:
             else np.zeros(self.phase_amounts.shape)
             for kind in ("amount", "driving force")
         )
-        absent = self.phase_amounts == 0.0
-        with np.errstate(invalid="ignore"):
-            appearing = absent & (-self.driving_forces < 2.0 * forces)
-            return np.asarray(appearing | (~absent & (self.phase_amounts < 2.0 * amounts)))
+        return near_onset(self.phase_amounts, self.driving_forces, amounts, forces)
+
+
+def near_onset(
+    amounts: FloatArray, forces: FloatArray, of_amounts: FloatArray, of_forces: FloatArray
+) -> BoolArray:
+    """Whether two standard uncertainties of amount or driving force may make a phase come or go."""
+    absent = amounts == 0.0
+    with np.errstate(invalid="ignore"):
+        return np.asarray(np.where(absent, -forces < 2.0 * of_forces, amounts < 2.0 * of_amounts))
+
+
+class Trail:
+    """Carries the inputs' changes along a train, from each step into the next."""
+
+    def __init__(self, changes: InputChanges) -> None:
+        self._changes = changes
+        self._entering: list[StreamChanges] = []
+        self._passing: list[StreamChanges] = []
+        self._pressure: FloatArray = np.zeros(len(changes.inputs))
+
+    def entering(self, step: Step, library: Library) -> tuple[SpecificationChanges, InletChanges]:
+        """What changes of a step's specification, and of what enters it."""
+        changes = self._changes
+        if step.joins:
+            # What went around is what entered the stage that the bypass belongs to.
+            self._entering = [*self._passing, *self._entering]
+            nothing = np.zeros(changes.records.count)
+            asked = SpecificationChanges(nothing, nothing, self._pressure, nothing, nothing)
+        else:
+            named = step.streams[len(self._passing) :]
+            own = (changes.streams[stream.name] for stream in named)
+            self._entering = [*self._passing, *own]
+            asked = changes.stages[step.stage.key]
+        shared = [_scaled(e, share) for e, share in zip(self._entering, step.shares, strict=True)]
+        equation = step.stage.chemistry.equation
+        inlet = inlet_changes(
+            step.streams, shared, changes.records, step.states.inlet, library, equation
+        )
+        return asked, inlet
+
+    def leave(
+        self, step: Step, temperature: FloatArray, pressure: FloatArray, amounts: FloatArray
+    ) -> None:
+        """Take up a solved step's changes (B, K), (B, K) and (B, S, K) for the next."""
+        removed = step.stage.removed
+        # What is removed goes with a fixed share.
+        passed = {
+            record.name: amounts[:, column]
+            * (1.0 - np.reshape(removed.get(record.name, 0.0), (-1, 1)))
+            for column, record in enumerate(step.states.model.records)
+        }
+        self._passing = [StreamChanges(temperature, pressure, passed)]
+        self._pressure = pressure
 
 
 def sensitivities(
@@ -102,28 +152,9 @@ def sensitivities(
 
     ``dry`` leaves fractions of the dry gas away where it is false.
     """
-    entering: list[StreamChanges] = []
-    passing: list[StreamChanges] = []
-    pressure: FloatArray = np.zeros(len(changes.inputs))
+    trail = Trail(changes)
     for step in steps:
-        asked = changes.stages[step.stage.key]
-        if step.joins:
-            # What went around is what entered the stage that the bypass belongs to.
-            entering = [*passing, *entering]
-            nothing = np.zeros(len(changes.inputs))
-            asked = SpecificationChanges(nothing, nothing, pressure, nothing, nothing)
-        else:
-            named = step.streams[len(passing) :]
-            entering = [*passing, *(changes.streams[stream.name] for stream in named)]
-        shared = [_scaled(e, share) for e, share in zip(entering, step.shares, strict=True)]
-        inlet = inlet_changes(
-            step.streams,
-            shared,
-            changes.records,
-            step.states.inlet,
-            library,
-            step.stage.chemistry.equation,
-        )
+        asked, inlet = trail.entering(step, library)
         found = stage_changes(
             step.states,
             step.stage.specification,
@@ -133,7 +164,7 @@ def sensitivities(
             changes.records,
             library,
         )
-        passing, pressure = [_leaving(step, found)], found.pressure
+        trail.leave(step, found.temperature, found.pressure, found.amounts)
         rows = dict(_results(step, found, inlet.amounts, dry))
         model, equilibria = step.states.model, step.states.equilibria
         yield Sensitivities(
@@ -149,22 +180,10 @@ def sensitivities(
 
 
 def _scaled(change: StreamChanges, share: Values) -> StreamChanges:
+    if np.ndim(share) == 0 and share == 1.0:
+        return change
     shares = np.reshape(share, (-1, 1))
     return replace(change, amounts={name: shares * dn for name, dn in change.amounts.items()})
-
-
-def _leaving(step: Step, found: StageChanges) -> StreamChanges:
-    """The changes of what goes on from a stage; what is removed goes with a fixed share."""
-    removed = step.stage.removed
-    return StreamChanges(
-        found.temperature,
-        found.pressure,
-        {
-            record.name: found.amounts[:, column]
-            * (1.0 - np.reshape(removed.get(record.name, 0.0), (-1, 1)))
-            for column, record in enumerate(step.states.model.records)
-        },
-    )
 
 
 def _results(

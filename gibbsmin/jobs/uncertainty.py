@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Sequence
 from dataclasses import replace
 
 import numpy as np
@@ -20,7 +20,6 @@ from gibbsmin.jobs.inputs import (
 from gibbsmin.jobs.sensitivity import Sensitivities, sensitivities
 from gibbsmin.jobs.stated import StatedUncertainty
 from gibbsmin.jobs.train import Step, run_train
-from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
 
 _NEGATIVE = -1e-9
@@ -39,20 +38,10 @@ def uncertainty(case: Case) -> tuple[Sensitivities, ...]:
         as :func:`gibbsmin.jobs.predict.predict`, and for correlations that contradict each other.
     """
     library = case.library
-    return tuple(error_bars(case, list(run_train(case, library)), library))
-
-
-def error_bars(
-    case: Case, steps: Sequence[Step], library: Library, *, of_scan: bool = False
-) -> Iterable[Sensitivities]:
-    """The same for a train that is solved already, in all its states.
-
-    A scan tells uncertainties alone, so that it leaves exact inputs and dry fractions away.
-    """
-    inputs = uncertain_inputs(case, steps) if of_scan else _inputs(case, steps)
-    return sensitivities(
-        steps, input_changes(case, inputs), correlation_of(case, inputs), library, dry=not of_scan
-    )
+    steps = list(run_train(case, library))
+    inputs = _inputs(case, steps)
+    changes, correlation = input_changes(case, inputs), correlation_of(case, inputs)
+    return tuple(sensitivities(steps, changes, correlation, library))
 
 
 def uncertain_inputs(case: Case, steps: Sequence[Step]) -> list[Input]:
@@ -146,3 +135,11 @@ def correlation_of(case: Case, inputs: Sequence[Input]) -> FloatArray:
             file=case.file,
         )
     return matrix
+
+
+def factor_of(correlation: FloatArray) -> FloatArray:
+    """L with L Lᵀ the correlation matrix, which may be singular."""
+    if np.array_equal(correlation, np.eye(len(correlation))):
+        return correlation
+    values, vectors = np.linalg.eigh(correlation)
+    return np.asarray(vectors * np.sqrt(np.maximum(values, 0.0)))

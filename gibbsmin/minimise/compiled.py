@@ -118,12 +118,12 @@ def answer_heated_batch(
             Answers._make(array[part] for array in answers),
         )
 
-    _share_out(run, range(0, programme.states, block), workers)
+    share_out(run, range(0, programme.states, block), workers)
     _settle(programme, solution, figures)
     return temperatures
 
 
-def _share_out(run: Callable[[int], None], blocks: range, workers: int) -> None:
+def share_out(run: Callable[[int], None], blocks: range, workers: int) -> None:
     """Run the blocks on so many threads, of which this one is the first."""
     waiting = iter(blocks)  # taking the next one is a single step of the interpreter
 

@@ -79,11 +79,7 @@ def stage_changes(
     slopes = mixture_slopes(model.mixture, T, P, n)
     answer = _answers(states, inlet, records, slopes)
     outlet = _outlet(states, answer.amounts, records, slopes)
-    heat_in = asked.heat
-    if specification.heat_loss is not None:
-        values = lower_heating_values(states.inlet.records, library)
-        share = np.reshape(specification.heat_loss, (-1, 1))
-        heat_in = -share * np.einsum("f,bfk->bk", values, inlet.amounts)
+    heat_in = heat_changes(states, specification, asked, inlet, library)
     closed = specification.volume is not None
 
     if specification.temperature is not None:
@@ -135,6 +131,21 @@ def stage_changes(
     return changes
 
 
+def heat_changes(
+    states: StageStates,
+    specification: Specification,
+    asked: SpecificationChanges,
+    inlet: InletChanges,
+    library: Library,
+) -> FloatArray:
+    """Changes of the heat that is asked for, (K,) or (B, K), J; a loss follows the feed."""
+    if specification.heat_loss is None:
+        return asked.heat
+    values = lower_heating_values(states.inlet.records, library)
+    share = np.reshape(specification.heat_loss, (-1, 1))
+    return np.asarray(-share * np.einsum("f,bfk->bk", values, inlet.amounts))
+
+
 @dataclass(frozen=True)
 class _OutletRows:
     """Changes of the outlet's contents along the K + 2 columns, each (B, K + 2)."""
@@ -154,7 +165,7 @@ def _answers(
     T = found.temperature
     K = records.count
     energies = np.zeros((len(T), len(model.records), K + 2))
-    energies[..., :K] = _energy_changes(model, T, records)
+    energies[..., :K] = energy_changes(model, T, records)
     energies[..., K] = energy_slopes(model, T, slopes.enthalpies)
     energies[..., K + 1] = slopes.energies_by_pressure
     programme = model.programme(T, found.pressure, states.inlet.amounts)
@@ -174,7 +185,7 @@ def _answers(
     return Responses(amounts, forces, answer.regular)
 
 
-def _energy_changes(model: StageModel, T: FloatArray, records: RecordChanges) -> FloatArray:
+def energy_changes(model: StageModel, T: FloatArray, records: RecordChanges) -> FloatArray:
     """dg̃ = (dH − T dS)/RT of the candidates at constant T, with what an approach makes of it."""
     dH, dS = records.of(model.records)
 

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray
+from gibbsmin.arrays import FloatArray, shared
 from gibbsmin.reactor.inlet import Inlet
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.mixture_slopes import mixture_slopes
@@ -66,7 +66,7 @@ class StreamChanges:
 
 @dataclass(frozen=True)
 class InletChanges:
-    """K changes of a stage's streams together, in B states.
+    """K changes of a stage's streams together, in B states or, with 1 for B, in all alike.
 
     Attributes
     ----------
@@ -98,21 +98,23 @@ def inlet_changes(
         dS = Σ (S̄ dn + n dS°) + Cp dT/T − ∂V/∂T dP
         dU = dH − d(P V), without the pressure terms of solids and liquids
     """
-    B, K = len(inlet.temperature), records.count
-    amounts = np.zeros((B, len(inlet.records), K))
-    enthalpy, entropy, energy, lowest = (np.zeros((B, K)) for _ in range(4))
-    places = {record.name: place for place, record in enumerate(inlet.records)}
+    K = records.count
+    amounts: dict[str, FloatArray] = {record.name: np.zeros((1, K)) for record in inlet.records}
+    enthalpy, entropy, energy, lowest = (np.zeros((1, K)) for _ in range(4))
     for stream, change in zip(streams, changes, strict=True):
         part = [library[name] for name in stream.amounts]
-        of_stream = _mixture_changes(stream, change, part, records, equation, B)
-        for place, amount in zip((places[r.name] for r in part), of_stream[0], strict=True):
-            amounts[:, place] += amount
-        enthalpy += of_stream[1]
-        entropy += of_stream[2]
-        energy += of_stream[3]
-        pressure = np.broadcast_to(np.asarray(stream.pressure, dtype=float), (B,))
-        lowest = np.where((pressure == inlet.lowest_pressure)[:, None], change.pressure, lowest)
-    return InletChanges(amounts, enthalpy, entropy, energy, lowest)
+        of_stream = _mixture_changes(stream, change, part, records, equation)
+        for name in stream.amounts:
+            if name in change.amounts:
+                amounts[name] = amounts[name] + change.amounts[name]
+        enthalpy = enthalpy + of_stream[0]
+        entropy = entropy + of_stream[1]
+        energy = energy + of_stream[2]
+        if change.pressure.any():
+            is_lowest = np.asarray(stream.pressure == inlet.lowest_pressure)[:, np.newaxis]
+            lowest = np.where(is_lowest, change.pressure, lowest)
+    fed = np.stack(np.broadcast_arrays(*amounts.values()), axis=1)
+    return InletChanges(fed, enthalpy, entropy, energy, lowest)
 
 
 def _mixture_changes(
@@ -121,16 +123,18 @@ def _mixture_changes(
     part: Sequence[Species],
     records: RecordChanges,
     equation: Equation | None,
-    states: int,
-) -> tuple[list[FloatArray], FloatArray, FloatArray, FloatArray]:
-    """dn of each record, and dH, dS and dU of one stream."""
+) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """dH, dS and dU of one stream."""
     mixture = Mixture.of(PropertyTable.of(part), equation)
-    T = np.broadcast_to(np.asarray(stream.temperature, dtype=float), (states,))
-    P = np.broadcast_to(np.asarray(stream.pressure, dtype=float), (states,))
-    n = np.stack([np.broadcast_to(v, (states,)) for v in stream.amounts.values()], axis=1)
+    values = [shared(v) for v in (stream.temperature, stream.pressure, *stream.amounts.values())]
+    T, P, *each = np.broadcast_arrays(*map(np.atleast_1d, values))
+    n = np.stack(each, axis=1)
+    dH, dS = (n @ own for own in records.of(part))
+    dn = [change.amounts[name] for name in stream.amounts if name in change.amounts]
+    if not any(changed.any() for changed in (change.temperature, change.pressure, *dn)):
+        return dH, dS, dH
     nothing = np.zeros((1, records.count))
     dn = [change.amounts.get(record.name, nothing) for record in part]
-    dH, dS = records.of(part)
     slopes = mixture_slopes(mixture, T, P, n)
     log_dT = change.temperature / T[:, np.newaxis]
     log_dP = change.pressure / P[:, np.newaxis]
@@ -140,13 +144,12 @@ def _mixture_changes(
         return np.asarray(row)
 
     pV, Cp = slopes.room, slopes.heat_capacity
-    enthalpy = total(slopes.enthalpies, Cp * T, slopes.enthalpy_by_pressure) + n @ dH
+    enthalpy = total(slopes.enthalpies, Cp * T, slopes.enthalpy_by_pressure) + dH
     room = total(slopes.rooms, pV * slopes.expansion, pV * (1.0 + slopes.compression))
     of_solids = total(mixture.pressure_terms(P), 0.0 * T, P * (n @ mixture.volumes))
     return (
-        dn,
         enthalpy,
-        total(slopes.entropies, Cp, slopes.entropy_by_pressure) + n @ dS,
+        total(slopes.entropies, Cp, slopes.entropy_by_pressure) + dS,
         enthalpy - room - of_solids,
     )
 

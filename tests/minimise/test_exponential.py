@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 from numba import njit
 
+from gibbsmin.minimise.compiling import OPTIONS
 from gibbsmin.minimise.kernel.exponential import exponentials
-from gibbsmin.minimise.kernel.form import _OPTIONS
 from gibbsmin.minimise.kernel.storage import Point
 
 
@@ -21,7 +21,7 @@ def test_both_forms_give_the_exponential() -> None:
         [np.linspace(-699.0, 299.0, 5001), np.linspace(-1.0, 1.0, 1001), [0.0, -1e-17, 1e-300]]
     )
     point = point_of(exponent)
-    for form in (exponentials, njit(**_OPTIONS)(exponentials)):
+    for form in (exponentials, njit(**OPTIONS)(exponentials)):
         point.fraction[:] = 0.0
         form(point, exponent.size)
         ratio = point.fraction / np.exp(exponent)

@@ -1,0 +1,1 @@
+"""Loops over the states of a stage, written for the compiler; they also run as they stand."""
