@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import re
 from pathlib import Path
 
 import pandas as pd
@@ -101,7 +102,13 @@ def test_a_target_out_of_reach_tells_the_range(tmp_path: Path) -> None:
     path = tmp_path / "case.toml"
     path.write_text(TARGET.replace('"4 %"', '"99 %"'))
     output = run(path, "onset")
-    assert "  no answer: on the axis the result runs from " in output
+    (sentence,) = re.findall(
+        r"  no answer: on the axis the result runs from ([\d.]+) % to ([\d.]+) %, and 99.000 % is "
+        r"wanted\.",
+        output,
+    )
+    lowest, highest = map(float, sentence)
+    assert 0.0 < lowest < highest < 99.0
 
 
 def test_a_value_that_is_jumped_over_is_said_so_and_not_called_an_answer(tmp_path: Path) -> None:

@@ -29,6 +29,7 @@ class Target:
     ----------
     result, stage : what is looked at and the stage it is of
     wanted : its value in SI
+    unit, per_unit : the unit in which values of the result are told, and the SI value of one
     axis, second : what varies, and what varies from row to row where there is such an axis
     row : (Z,) which value of the second axis each answer belongs to; 0 without one
     position, shown : (Z,) on the axis, in SI and in the user's unit
@@ -44,6 +45,8 @@ class Target:
     result: str
     stage: str
     wanted: float
+    unit: str
+    per_unit: float
     axis: Axis
     second: Axis | None
     row: IntArray
@@ -81,11 +84,11 @@ def target(case: Case) -> Target:
     stage = stage_named(case, case.target.stage, "target.stage")
     path = path_of(case, stage, case.library)
     try:
-        read, result = result_of(case.target.result, case)
+        result = result_of(case.target.result, case)
     except InputError as error:
         raise error.at(key="target.result", file=case.file) from None
     try:
-        wanted = read(case.target.value)
+        wanted = result.read(case.target.value)
     except InputError as error:
         raise error.at(key="target.value", file=case.file) from None
 
@@ -108,6 +111,8 @@ def target(case: Case) -> Target:
         result=case.target.result,
         stage=stage.name,
         wanted=wanted,
+        unit=result.unit,
+        per_unit=result.per_unit,
         axis=path.axis,
         second=path.second,
         row=found.row[met],
@@ -136,4 +141,4 @@ def _values(
         return np.zeros(0), np.zeros(0, dtype=bool)
     step = path.step(case, position, row)
     certified = step.states.equilibria.solution.certified
-    return np.where(certified, result(step), np.nan), certified
+    return np.where(certified, result.of(step), np.nan), certified

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
+from dataclasses import dataclass
 
 import numpy as np
 
@@ -18,6 +19,7 @@ from gibbsmin.thermo.species import Phase, Species
 from gibbsmin.units import (
     Measure,
     read_amount,
+    read_entropy,
     read_heat,
     read_pressure,
     read_share,
@@ -25,31 +27,58 @@ from gibbsmin.units import (
     shown,
 )
 
-Result = Callable[[Step], FloatArray]
 Reader = Callable[[object], float]
 
-_OF_STAGE: Mapping[str, Result] = {
+
+@dataclass(frozen=True)
+class Result:
+    """A number of a solved stage.
+
+    Attributes
+    ----------
+    of : takes it in SI, (B,), from the stage
+    read : how its value is read, in SI
+    unit, per_unit : in which it is told, and the SI value of one
+    """
+
+    of: Callable[[Step], FloatArray]
+    read: Reader
+    unit: str
+    per_unit: float
+
+
+_OF_STAGE: Mapping[str, Callable[[Step], FloatArray]] = {
     "temperature": lambda step: step.states.equilibria.temperature,
     "pressure": lambda step: step.states.equilibria.pressure,
     "heat": lambda step: step.states.energy.heat,
     "shaft work": lambda step: step.states.energy.shaft_work,
+    "entropy generation": lambda step: step.states.energy.entropy_generation,
+    "lost work": lambda step: (
+        step.stage.surroundings_temperature * step.states.energy.entropy_generation
+    ),
 }
+_SHORT = "y"
+"""What the columns of a scan call a fraction."""
 
 
-def result_of(text: str, case: Case) -> tuple[Reader, Result]:
-    """How a result's value is read, and how it is taken from a solved stage.
+def result_of(text: str, case: Case) -> Result:
+    """A result by its name, which may be that of a scan's column.
 
-    Results are ``temperature``, ``pressure``, ``heat``, ``shaft work`` and, with a species,
-    ``fraction``, ``dry fraction``, ``amount``, ``conversion`` and ``activity``.
+    Results are ``temperature``, ``pressure``, ``heat``, ``shaft work``, ``entropy generation``,
+    ``lost work`` and, with a species, ``fraction`` (or ``y``), ``dry fraction``, ``amount``,
+    ``conversion`` and ``activity``.  A unit after a comma, as in a column's name, says nothing.
 
     Raises
     ------
     InputError
         for another text; a record that is no candidate is told when the result is taken.
     """
-    if text in _OF_STAGE:
-        return _reader_of_stage(text, case), _OF_STAGE[text]
-    kind, _, species = text.rpartition(" ")
+    name = text.partition(", ")[0]
+    unit, per_unit = _told_in(name, case)
+    if name in _OF_STAGE:
+        return Result(_OF_STAGE[name], _reader_of_stage(name, case), unit, per_unit)
+    kind, _, species = name.rpartition(" ")
+    kind = "fraction" if kind == _SHORT else kind
     if kind not in _OF_SPECIES:
         raise InputError(
             f'found "{text}", which is no result',
@@ -58,7 +87,24 @@ def result_of(text: str, case: Case) -> tuple[Reader, Result]:
         )
     record = resolve(species, case.library)
     of = _OF_SPECIES[kind]
-    return _reader_of_species(kind, record, case), lambda step: of(step, record.name)
+    read = _reader_of_species(kind, record, case)
+    return Result(lambda step: of(step, record.name), read, unit, per_unit)
+
+
+def _told_in(name: str, case: Case) -> tuple[str, float]:
+    """The unit in which a result is told, and the SI value of one."""
+    is_flow = case.feeds[0].is_flow
+    energy = "kW" if is_flow else "kJ"
+    units = {
+        "temperature": ("K", 1.0),
+        "pressure": ("bar", 1e5),
+        "entropy generation": (f"{energy}/K", 1e3),
+        "amount": ("mol/s" if is_flow else "mol", 1.0),
+        "activity": ("", 1.0),
+    }
+    if name in _OF_STAGE:
+        return units.get(name, (energy, 1e3))
+    return units.get(name.partition(" ")[0], ("%", 0.01))
 
 
 def _reader_of_stage(result: str, case: Case) -> Reader:
@@ -67,10 +113,12 @@ def _reader_of_stage(result: str, case: Case) -> Reader:
         return read_temperature
     if result == "pressure":
         return lambda given: read_pressure(given, case.site_pressure)
+    is_entropy = result == "entropy generation"
 
     def read(given: object) -> float:
-        measure = read_heat(given)
-        _require_counting_alike("a heat", measure, case.feeds[0])
+        measure = read_entropy(given) if is_entropy else read_heat(given)
+        what = "an entropy" if is_entropy else "a heat"
+        _require_counting_alike(what, measure, case.feeds[0])
         return measure.value
 
     return read

@@ -117,11 +117,13 @@ def _target_sentences(found: Target) -> Iterator[str]:
     for row in range(found.lowest.size):
         lost = row in found.lost_row
         if row not in answered and not lost and np.isfinite(found.lowest[row]):
+            ends = (found.lowest[row], found.highest[row], found.wanted)
+            low, high, wanted = (
+                f"{significant(float(end) / found.per_unit)} {found.unit}".rstrip() for end in ends
+            )
             yield (
                 f"{_row_name(found.second, row)}no answer: on the axis the result runs from "
-                f"{significant(float(found.lowest[row]))} to "
-                f"{significant(float(found.highest[row]))} in SI units, and "
-                f"{significant(found.wanted)} is wanted."
+                f"{low} to {high}, and {wanted} is wanted."
             )
     for row, (low, high) in zip(found.lost_row.tolist(), found.lost.T.tolist(), strict=True):
         yield (

@@ -22,7 +22,7 @@ from gibbsmin.units.reading import (
     shown,
     to_unit,
 )
-from gibbsmin.units.specific import read_density, read_heating_value
+from gibbsmin.units.specific import read_density, read_entropy, read_heating_value
 from gibbsmin.units.unit import Dimension, Unit
 
 __all__ = [
@@ -32,6 +32,7 @@ __all__ = [
     "read_amount",
     "read_amount_unit",
     "read_density",
+    "read_entropy",
     "read_heat",
     "read_heating_value",
     "read_molar_energy",

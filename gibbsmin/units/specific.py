@@ -1,14 +1,15 @@
-"""Reads quantities per mass or volume: heating values and densities."""
+"""Reads quantities per mass, volume or kelvin: heating values, densities and entropies."""
 
 from __future__ import annotations
 
 from gibbsmin.errors import UnitError
-from gibbsmin.units.reading import read_amount, read_heat, read_volume, shown
+from gibbsmin.units.reading import Measure, read_amount, read_heat, read_volume, shown
 from gibbsmin.units.unit import Dimension
 
 _HEATING_VALUE = (
     'accepted is a heat of a mass such as "28.5 MJ/kg", "6800 kcal/kg" or "12200 Btu/lb"'
 )
+_ENTROPY = 'accepted is an entropy such as "12 kJ/K" or an entropy flow such as "3 kW/K"'
 _DENSITY = 'accepted is a density such as "0.96 kg/L" or "960 kg/m3"'
 
 
@@ -36,6 +37,17 @@ def read_density(given: object) -> float:
     if amount.unit.dimension is not Dimension.MASS or amount.value <= 0.0:
         raise UnitError(f"found {shown(given)}, which is no mass of a volume", _DENSITY)
     return amount.value / room
+
+
+def read_entropy(given: object) -> Measure:
+    """An entropy in J/K or a flow of it in W/K, of either sign."""
+    heat, per = _parts(given, _ENTROPY)
+    if per != "K":
+        raise UnitError(f"found {shown(given)}, which is no heat per kelvin", _ENTROPY)
+    try:
+        return read_heat(heat)
+    except UnitError:
+        raise UnitError(f"found {shown(given)}", _ENTROPY) from None
 
 
 def _parts(given: object, accepted: str) -> tuple[str, str]:

@@ -60,11 +60,11 @@ def test_rows_are_the_grid_and_equal_single_predictions() -> None:
             assert table[column][row] == pytest.approx(y if gas else n, rel=1e-10, abs=1e-14)
         assert table["heat, kW"][row] == pytest.approx(stage.heat / 1e3, rel=1e-10)
         assert table["entropy generation, kW/K"][row] == pytest.approx(
-            stage.entropy.value / 1e3, rel=1e-9
+            stage.entropy.value / 1e3, rel=1e-10
         )
         for name, conversion in stage.conversion.items():
             found = table[f"conversion {name}"][row]
-            assert found == pytest.approx(conversion, rel=1e-9, abs=1e-12)
+            assert found == pytest.approx(conversion, rel=1e-10, abs=1e-12)
 
 
 def test_carbon_comes_with_little_steam_and_goes_with_much() -> None:
@@ -81,7 +81,7 @@ def test_blocks_are_the_whole_in_pieces() -> None:
     together = pd.concat(pieces, ignore_index=True)
     numbers = whole.select_dtypes("number").columns
     # the warm start of a block depends on its neighbours; the answers do not
-    np.testing.assert_allclose(together[numbers], whole[numbers], rtol=1e-9, atol=1e-12)
+    np.testing.assert_allclose(together[numbers], whole[numbers], rtol=1e-10, atol=1e-12)
 
 
 def test_a_logarithmic_axis_and_an_amount() -> None:

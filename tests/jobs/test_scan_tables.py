@@ -159,7 +159,7 @@ def test_rows_of_every_kind_of_axis_equal_single_predictions(
                 stage.temperature, rel=1e-10
             )
             assert table[f"{before}heat, kJ"][row] == pytest.approx(
-                stage.heat / 1e3, rel=1e-9, abs=1e-9
+                stage.heat / 1e3, rel=1e-10, abs=1e-9
             )
 
 

@@ -62,6 +62,31 @@ def test_an_answer_meets_its_target_in_a_prediction(result: str, value: Any, wan
         assert reached(final, result) == pytest.approx(wanted, rel=1e-8)
 
 
+def test_lost_work_and_entropy_generation_are_targets_of_one_place() -> None:
+    """Lost work is the temperature of the surroundings, 298.15 K, times the entropy generated."""
+    (entropy,) = find("entropy generation", "0.05 kJ/K").shown.tolist()
+    outlet = {"temperature": f"{entropy!r} degC", "pressure": "20 bar"}
+    final = gibbsmin.predict(gibbsmin.load_case(deepcopy(CASE) | {"outlet": outlet})).final
+    assert final.entropy.value == pytest.approx(50.0, rel=1e-8)
+    assert find("lost work", f"{0.05 * 298.15} kJ").shown == pytest.approx([entropy], rel=1e-10)
+
+
+@pytest.mark.parametrize(
+    ("column", "result", "value"),
+    [
+        ("y H2(g)", "fraction H2", "40 %"),
+        ("heat, kJ", "heat", "150 kJ"),
+        ("amount C(graphite), mol", "amount C(graphite)", "0 mol"),
+        ("entropy generation, kJ/K", "entropy generation", "0.05 kJ/K"),
+    ],
+)
+def test_a_scan_s_columns_name_results_too(column: str, result: str, value: str) -> None:
+    assert column in gibbsmin.scan(gibbsmin.load_case(deepcopy(CASE) | {"axis": [IN_T]})).table
+    by_column, by_result = find(column, value), find(result, value)
+    assert by_column.shown.tolist() == by_result.shown.tolist()
+    assert by_column.wanted == by_result.wanted
+
+
 def reached(final: StageOutlet, result: str) -> float:
     """A result of a predicted stage."""
     kind, _, species = result.rpartition(" ")
@@ -151,8 +176,8 @@ def test_a_second_axis_gives_a_curve_of_answers() -> None:
             "slip",
             "5 %",
             'target.result: found "slip", which is no result; accepted is temperature, pressure, '
-            "heat, shaft work, or one of fraction, dry fraction, conversion, amount, activity with "
-            'a species, such as "dry fraction CH4".',
+            "heat, shaft work, entropy generation, lost work, or one of fraction, dry fraction, "
+            'conversion, amount, activity with a species, such as "dry fraction CH4".',
         ),
         (
             "dry fraction CH4",
@@ -165,6 +190,30 @@ def test_a_second_axis_gives_a_curve_of_answers() -> None:
             "5 bar",
             'target.value: found "5 bar", which is a pressure; accepted is a heat such as '
             '"1.5 MW", "2 Gcal/h" or "30 kJ".',
+        ),
+        (
+            "entropy generation",
+            "150 kJ",
+            'target.value: found "150 kJ"; accepted is an entropy such as "12 kJ/K" or an entropy '
+            'flow such as "3 kW/K".',
+        ),
+        (
+            "entropy generation",
+            "0.15 kJ/mol",
+            'target.value: found "0.15 kJ/mol", which is no heat per kelvin; accepted is an '
+            'entropy such as "12 kJ/K" or an entropy flow such as "3 kW/K".',
+        ),
+        (
+            "entropy generation",
+            "5 bar/K",
+            'target.value: found "5 bar/K"; accepted is an entropy such as "12 kJ/K" or an entropy '
+            'flow such as "3 kW/K".',
+        ),
+        (
+            "entropy generation",
+            "0.15 kW/K",
+            'target.value: found an entropy in "kW", while the feeds are in "mol"; accepted is a '
+            "quantity, as the feeds are.",
         ),
         (
             "heat",
