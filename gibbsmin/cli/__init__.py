@@ -7,10 +7,12 @@ need when they run, so that help and errors come at once.
 # Importing a command's module adds it to the application, in the order of the help.
 from gibbsmin.cli import predicting, scanning, searching, checking, records  # isort: skip
 from gibbsmin.cli.app import app
+from gibbsmin.cli.output import print_in_plain_letters
 
 __all__ = ["app", "checking", "main", "predicting", "records", "scanning", "searching"]
 
 
 def main() -> None:
     """Entry point of the console command."""
+    print_in_plain_letters()
     app()

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from errno import EPIPE
 from pathlib import Path
 from typing import Annotated, Any
 
@@ -9,7 +10,7 @@ import typer
 from typer.core import TyperGroup
 
 from gibbsmin.cli.output import INPUT_ERROR
-from gibbsmin.errors import GibbsminError
+from gibbsmin.errors import GibbsminError, InputError
 
 
 class _Commands(TyperGroup):
@@ -20,6 +21,13 @@ class _Commands(TyperGroup):
             return super().invoke(ctx)
         except GibbsminError as error:
             typer.echo(str(error), err=True)
+            raise typer.Exit(INPUT_ERROR) from None
+        except OSError as error:
+            # Where the reader of a pipe has gone, typer ends in silence.
+            if error.errno == EPIPE:
+                raise
+            reason = (error.strerror or str(error)).lower()
+            typer.echo(f"The output cannot be written: {reason}.", err=True)
             raise typer.Exit(INPUT_ERROR) from None
 
 
@@ -55,9 +63,12 @@ def commands() -> None:
     """Chemical equilibrium for process and plant engineers."""
 
 
-def require_plot_ending_of(plot: str) -> None:
-    """Refuse a plot that could not be written before any work is done."""
+def require_plot_ending_of(plot: str, **choices: object) -> None:
+    """Refuse a plot that could not be written, and choices for a plot that is not asked for."""
     if plot:
         from gibbsmin.present.plots.style import require_plot_ending
 
         require_plot_ending(Path(plot))
+        return
+    for name in (name for name, choice in choices.items() if choice):
+        raise InputError(f"found --{name} without a plot", "accepted is --plot FILE beside it")

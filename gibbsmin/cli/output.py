@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import codecs
+import io
 import json
 import sys
 from typing import TYPE_CHECKING, Any, Final
@@ -20,12 +22,39 @@ SOME_NOT_USED: Final = 1
 _PIPED_WIDTH: Final = 200
 
 
+# A terminal narrower than this breaks lines by itself, which leaves figures legible.
+_NARROWEST: Final = 80
+
+_PLAIN: Final = {
+    "−": "-", "–": "-", "°": "deg", "Δ": "d", "λ": "lambda", "σ": "sigma", "φ": "phi", "ν": "nu",
+    "ξ": "xi", "±": "+-", "×": "x", "·": "*", "≥": ">=", "≤": "<=", "²": "2", "³": "3", "½": "1/2",
+    "→": "->", "…": "...", "≈": "~",
+}  # fmt: skip
+"""What stands for a character that the output's encoding lacks; a lost minus would be a lie."""
+
+
+def _in_plain_letters(error: UnicodeError) -> tuple[str, int]:
+    if not isinstance(error, UnicodeEncodeError):
+        raise error
+    lacking = error.object[error.start : error.end]
+    return "".join(_PLAIN.get(letter, "?") for letter in lacking), error.end
+
+
+def print_in_plain_letters() -> None:
+    """Have standard output and error tell in plain letters what their encoding lacks."""
+    codecs.register_error("plain letters", _in_plain_letters)
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="plain letters")
+
+
 def print_view(renderable: RenderableType) -> None:
     """A view, as wide as the terminal; plain where it goes elsewhere."""
     from rich.console import Console
 
     if sys.stdout.isatty():
-        Console(highlight=False, markup=False).print(renderable)
+        width = max(Console().width, _NARROWEST)
+        Console(width=width, highlight=False, markup=False).print(renderable)
         return
     console = Console(width=_PIPED_WIDTH, highlight=False, markup=False)
     with console.capture() as capture:

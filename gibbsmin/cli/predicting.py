@@ -52,7 +52,7 @@ def predict(
 
     if out:
         require_ending(Path(out))
-    require_plot_ending_of(plot)
+    require_plot_ending_of(plot, show=show, stage=stage)
     if plot:
         from gibbsmin.present.plots.train_plots import require_kind
 

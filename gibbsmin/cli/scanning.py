@@ -60,7 +60,7 @@ def scan(
         )
     path = Path(out)
     require_scan_ending(path)
-    require_plot_ending_of(plot)
+    require_plot_ending_of(plot, show=show, stage=stage, log=log)
     loaded = load_case(case)
     parts: list[str | bytes] = [version("gibbsmin"), Path(case).read_bytes(), str(uncertainty)]
     # A library file may change while the case that names it does not.
