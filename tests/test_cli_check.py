@@ -64,7 +64,7 @@ def test_one_sample_reads_from_the_verdict_down(case: Path) -> None:
     assert (code, err) == (0, "")
     lines = out.splitlines()
     assert lines[0] == "Invented reformer"
-    assert lines[1] == "Monday, 8 h: 862.00 °C (1135.15 K), 25.000 bar, ideal gas"
+    assert lines[1] == "Monday, 8 h: 862.00 °C (1135.15 K), 25.000 bar"
     assert lines[3].startswith("Short of equilibrium: CH4(g) + H2O(g) = CO(g) + 3 H2(g); T − T_eq")
     places = [
         lines.index(title)

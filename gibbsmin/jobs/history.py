@@ -99,6 +99,10 @@ def _adjustment(sample: SampleCheck, name: str) -> float:
     return float("nan")
 
 
+def _signed(value: float) -> str:
+    return f"{value:+.3g}".replace("-", "\N{MINUS SIGN}")
+
+
 def trend_sentences(checks: Checks, series: tuple[Series, ...]) -> list[str]:
     """What drifts or changes, in words, with the tests and their rate of false alarms."""
     said = []
@@ -110,13 +114,13 @@ def trend_sentences(checks: Checks, series: tuple[Series, ...]) -> list[str]:
         drifts, changes = trend.drifts(SIGNIFICANCE), trend.changes(SIGNIFICANCE)
         if changes and trend.change_probability <= trend.drift_probability:
             said.append(
-                f"{each.name} changes by {trend.step:+.3g}{unit} at "
+                f"{each.name} changes by {_signed(trend.step)}{unit} at "
                 f"{checks.samples[trend.change].label} "
                 f"(p = {trend.change_probability:.1g})."
             )
         elif drifts:
             said.append(
-                f"{each.name} drifts by {trend.slope:+.3g}{unit} from sample to sample "
+                f"{each.name} drifts by {_signed(trend.slope)}{unit} from sample to sample "
                 f"(p = {trend.drift_probability:.1g})."
             )
     tested = sum(each.trend is not None for each in series)

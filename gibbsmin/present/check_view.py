@@ -47,7 +47,7 @@ def _sample(sample: SampleCheck) -> list[RenderableType]:
     judgement = sample.judgement
     conditions = f"{temperature(sample.temperature.value)}, {pressure(sample.pressure.value)}"
     parts: list[RenderableType] = [
-        Text(f"{sample.label}: {conditions}, ideal gas"),
+        Text(f"{sample.label}: {conditions}"),
         Text(""),
         heading(judgement.headline),
     ]
@@ -59,7 +59,7 @@ def _sample(sample: SampleCheck) -> list[RenderableType]:
     for reaction in sample.reactions:
         parts += _reaction(reaction)
     parts += [heading("Gas, beside equilibrium at the measured conditions"), _composition(sample)]
-    parts.append(pairs(_lines(sample)))
+    parts.append(pairs(figures_of(sample)))
     if sample.solids:
         parts += [heading("Solids and liquids that the gas could form"), _solids(sample)]
     parts += sentences("Notes", sample.notes)
@@ -165,7 +165,8 @@ def _composition(sample: SampleCheck) -> RenderableType:
     return table(headers, rows, words=("of the dry gas",))
 
 
-def _lines(sample: SampleCheck) -> Iterator[tuple[str, str]]:
+def figures_of(sample: SampleCheck) -> Iterator[tuple[str, str]]:
+    """The temperature of best fit, excess Gibbs energy and entropies, each with its value."""
     fit, energetics = sample.equilibrium, sample.energetics
     if fit.temperature.value == fit.temperature.value:
         limits = Interval(

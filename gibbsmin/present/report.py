@@ -11,6 +11,7 @@ import numpy as np
 from gibbsmin.errors import OutputError
 from gibbsmin.jobs.history import Series, history_of, trend_sentences
 from gibbsmin.present.check_table import check_table
+from gibbsmin.present.check_view import figures_of
 from gibbsmin.present.files import write_text
 from gibbsmin.present.quantities import fraction, significant
 from gibbsmin.results import CAUTIONS
@@ -43,7 +44,10 @@ def report_page(checks: Checks) -> str:
     return environment.get_template("check.html").render(
         checks=checks,
         shown=_shown(checks),
-        counts=Counter(sample.judgement.verdict.value for sample in checks.samples),
+        counts=Counter(
+            sample.judgement.verdict.value.removeprefix("sample ") for sample in checks.samples
+        ),
+        figures_of=figures_of,
         history=_history(checks),
         trends=trend_sentences(checks, series),
         plots=_plots(checks, series),
