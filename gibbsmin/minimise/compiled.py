@@ -12,13 +12,23 @@ import numpy as np
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.form import forms
 from gibbsmin.minimise.kernel.memory import in_one_memory
-from gibbsmin.minimise.kernel.storage import Answers, network_of, scratch_for
+from gibbsmin.minimise.kernel.storage import (
+    Answers,
+    Network,
+    lane_scratch_for,
+    network_of,
+    scratch_for,
+)
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution
 from gibbsmin.minimise.status import Method, Status
 
 _BLOCK = 16384
+
+_WINDOW = 2048
+_KEPT = 256
+_LARGEST_KEPT = 2_000  # entries of a tableau
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -79,7 +89,7 @@ def answer_heated_batch(
     if programme.states == 0:
         return temperatures
     network = network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
-    solve = forms.choose(network, programme.states)
+    form = forms.choose(network, programme.states)
     tolerances = np.array(
         [settings.gap_tolerance, settings.balance_tolerance, settings.stationarity_tolerance]
     )
@@ -92,6 +102,8 @@ def answer_heated_batch(
         solution.status,
         solution.method,
     )
+    places = _places(network)
+    heated = bool(temperatures.any())
     workers = min(settings.threads or os.cpu_count() or 1, programme.states)
     rounds = -(-programme.states // (_BLOCK * workers))
     block = -(-programme.states // (rounds * workers))  # so that all workers end together
@@ -102,20 +114,29 @@ def answer_heated_batch(
 
     def run(first: int) -> None:
         part = slice(first, first + block)
-        scratch = scratch_for(network, pieces, breaks)
-        own_network, scratch = in_one_memory((network, scratch))
+        energies, supplies = programme.energies[part], programme.supplies[part]
+        own_answers = Answers._make(array[part] for array in answers)
+        if form.solve_in_lanes is not None and places > 0 and not heated:
+            waiting = min(block, _WINDOW)
+            own_network, lanes = in_one_memory(
+                (network, lane_scratch_for(network, places, waiting))
+            )
+            form.solve_in_lanes(own_network, lanes, energies, supplies, tolerances, own_answers)
+            if (own_answers.status == Status.CERTIFIED).all():
+                return
+        own_network, scratch = in_one_memory((network, scratch_for(network, pieces, breaks)))
         scratch.heat.target[1:3] = warmth.limits
-        solve(
+        form.solve_states(
             own_network,
             scratch,
-            programme.energies[part],
-            programme.supplies[part],
+            energies,
+            supplies,
             tolerances,
             settings.warm_start,
             warmth.contents[part],
             offsets[part],
             temperatures[part],
-            Answers._make(array[part] for array in answers),
+            own_answers,
         )
 
     share_out(run, range(0, programme.states, block), workers)
@@ -140,6 +161,12 @@ def share_out(run: Callable[[int], None], blocks: range, workers: int) -> None:
         work()
         for helper in helping:
             helper.result()
+
+
+def _places(network: Network) -> int:
+    """How many tableaus a worker keeps; none where bases are as many as states."""
+    rows, species = network.matrix.shape
+    return _KEPT if rows * (species + rows) <= _LARGEST_KEPT else 0
 
 
 def _settle(programme: Programme, solution: Solution, figures: np.ndarray) -> None:

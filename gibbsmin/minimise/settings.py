@@ -26,7 +26,8 @@ class Settings:
         otherwise the conic method answers every state.
     warm_start
         Whether the compiled method starts a state from the one before it in the batch where
-        that is near (default).  The answer is the same to 1e-10.
+        that is near (default).  The answer is the same to 1e-10.  Small systems are solved eight
+        states at a time instead, which is faster than a start from a neighbour.
     threads
         Threads of the compiled method; 0 (default) for as many as there are processors.
 

@@ -18,16 +18,19 @@ from gibbsmin.minimise.certificate import certify
 from gibbsmin.minimise.compiled import answer_batch
 from gibbsmin.minimise.dispatch import unanswered
 from gibbsmin.minimise.kernel.form import forms, interpreted
-from gibbsmin.minimise.kernel.storage import network_of
+from gibbsmin.minimise.kernel.storage import Network, network_of
 
 NAMES = ["reformer", "combustion", "sulphur", "big"]
 COMPILED_NOW = 10**9  # states that no interpreter would take
 
 
+def network_of_programme(programme: Programme) -> Network:
+    return network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
+
+
 def compiled(programme: Programme, settings: Settings | None = None) -> Solution:
     """Answer by the kernel alone, in its compiled form."""
-    network = network_of(programme.matrix, programme.gas, programme.direction, programme.atoms)
-    assert forms.choose(network, COMPILED_NOW) is not interpreted
+    assert forms.choose(network_of_programme(programme), COMPILED_NOW) is not interpreted
     solution = unanswered(programme)
     answer_batch(programme, settings or Settings(), solution)
     return solution
@@ -99,8 +102,32 @@ def test_warm_answers_equal_cold_ones(name: str) -> None:
     np.testing.assert_allclose(warm.amounts / total, cold.amounts / total, atol=1e-10, rtol=0)
 
 
-def test_batch_equals_a_loop_of_single_states() -> None:
-    programme = ordinary("sulphur", 50)
+@pytest.mark.parametrize("name", ["reformer", "combustion", "sulphur"])
+def test_most_states_are_answered_in_lanes(name: str, monkeypatch: pytest.MonkeyPatch) -> None:
+    """And as one state after the other is."""
+    programme = ordinary(name, 2_000)
+    settle_form()
+    form = forms.choose(network_of_programme(programme), COMPILED_NOW)
+    solutions = []
+    for part in (
+        form._replace(solve_states=lambda *_: None),
+        form._replace(solve_in_lanes=None),
+    ):
+        monkeypatch.setattr(forms, "choose", lambda *_, part=part: part)
+        solutions.append(unanswered(programme))
+        answer_batch(programme, Settings(warm_start=False), solutions[-1])
+    in_lanes, alone = solutions
+    answered = in_lanes.certified
+    assert answered.mean() > 0.8
+    assert alone.certified.all()
+    total = alone.amounts.sum(axis=1, keepdims=True)
+    difference = np.abs(in_lanes.amounts - alone.amounts) / total
+    assert difference[answered].max() < 1e-12
+
+
+@pytest.mark.parametrize("name", ["reformer", "combustion", "sulphur"])
+def test_batch_equals_a_loop_of_single_states(name: str) -> None:
+    programme = ordinary(name, 50)
     batch = compiled(programme, Settings(warm_start=False))
     for state in range(programme.states):
         single = compiled(programme.subset(state))

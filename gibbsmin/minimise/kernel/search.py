@@ -46,7 +46,7 @@ def search_temperature(network: Network, scratch: Scratch) -> float:
         evaluate_energies(state, heat, T)
         scratch.temperature[0] = 0.0
         log_total = nan
-        if start_from_costs(network, state, tableau, scratch.equations, True):
+        if start_from_costs(network, state, tableau, scratch.pivots, scratch.equations, True):
             renew_reduced(state, tableau)
             log_total = guess_fractions(tableau, point, scratch.equations, network.gases)
             log_total = minimise_from(

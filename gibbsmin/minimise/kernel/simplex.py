@@ -11,8 +11,23 @@ from __future__ import annotations
 from math import inf, log
 
 from gibbsmin.arrays import FloatArray
-from gibbsmin.minimise.kernel.storage import ZERO, Equations, Network, State, Tableau
-from gibbsmin.minimise.kernel.tableau import build, exchange, forbid, renew_supply, retire
+from gibbsmin.minimise.kernel.pivots import (
+    after_exchange,
+    after_retiring,
+    copy_tableau,
+    first_place,
+    seen_from,
+)
+from gibbsmin.minimise.kernel.storage import (
+    FORBIDDEN,
+    ZERO,
+    Equations,
+    Network,
+    Pivots,
+    State,
+    Tableau,
+)
+from gibbsmin.minimise.kernel.tableau import exclude, renew_costs, renew_supply, retire
 
 _FEASIBLE = 1e-11  # residual supply, relative to its terms, that counts as unmet
 _OPTIMAL = 1e-9
@@ -20,26 +35,53 @@ _PIVOTS_PER_ROW = 60
 
 
 def start_from_costs(
-    network: Network, state: State, tableau: Tableau, equations: Equations, diluted: bool
+    network: Network,
+    state: State,
+    tableau: Tableau,
+    pivots: Pivots,
+    equations: Equations,
+    diluted: bool,
 ) -> bool:
     """Find the basis of least linear cost; False where the supplies are infeasible.
 
-    ``diluted`` adds to each gas the logarithm of the largest fraction that the supplies allow.
     Species and rows that the supplies force to zero leave the tableau.
     """
-    restrict_to_face(network, state, tableau)
-    build(network, state, tableau)
-    set_costs(network, state, tableau, equations.step, diluted)
-    find_feasible(state, tableau, equations.weight)
-    if not expel_artificials(state, tableau):
+    place = find_basis(network, state, tableau, pivots, equations, diluted)
+    if place < 0:
         return False
-    improve(state, tableau)
-    renew_supply(state, tableau)
+    copy_tableau(pivots, place, tableau.entries, tableau.basis)
+    tableau.rank[0] = pivots.rank[place]
     remove_forced_zeros(state, tableau)
     return True
 
 
-def restrict_to_face(network: Network, state: State, tableau: Tableau) -> None:
+def find_basis(
+    network: Network,
+    state: State,
+    tableau: Tableau,
+    pivots: Pivots,
+    equations: Equations,
+    diluted: bool,
+) -> int:
+    """The place of the basis of least linear cost; −1 where the supplies are infeasible.
+
+    ``diluted`` adds to each gas the logarithm of the largest fraction that the supplies allow.
+    Reduced costs and supplies are left in the tableau.
+    """
+    restrict_to_face(network, state)
+    place = first_place(network, state, pivots)
+    for j in range(state.supplies.size):
+        tableau.supply[j] = abs(state.supplies[j])
+    set_costs(network, state, tableau, equations.step, diluted)
+    place = find_feasible(state, tableau, pivots, place, equations.weight)
+    place = expel_artificials(state, tableau, pivots, place)
+    if place >= 0:
+        place = improve(state, tableau, pivots, place)
+        renew_supply(state, seen_from(pivots, place, tableau))
+    return place
+
+
+def restrict_to_face(network: Network, state: State) -> None:
     """Forbid the species of each one-signed row without supply."""
     rows, species = network.matrix.shape
     for i in range(species):
@@ -48,7 +90,8 @@ def restrict_to_face(network: Network, state: State, tableau: Tableau) -> None:
         if state.supplies[e] == 0.0 and network.sign[e] != 0:
             for i in range(species):
                 if network.matrix[e, i] != 0.0:
-                    forbid(state, tableau, i)
+                    state.face[i] = False
+                    state.energies[i] = FORBIDDEN
 
 
 def set_costs(
@@ -67,29 +110,32 @@ def set_costs(
     for e in range(rows):
         bounds = network.sign[e] != 0 and state.supplies[e] != 0.0
         log_supply[e] = log(abs(state.supplies[e])) - half if bounds else inf
+    reduced = tableau.reduced
     for i in range(species):
-        cost = state.energies[i] if state.face[i] else 0.0
-        if dilute and i < network.gases and state.face[i]:
-            share = 0.0
-            for p in range(network.first[i], network.first[i + 1]):
-                share = min(share, log_supply[network.row[p]] - network.log_entry[p])
-            cost += share
-        tableau.reduced[i] = cost
+        reduced[i] = 0.0
+    if dilute:
+        for e in range(rows):
+            for i in range(network.gases):
+                reduced[i] = min(reduced[i], log_supply[e] - network.log_matrix[e, i])
+    for i in range(species):
+        reduced[i] = reduced[i] + state.energies[i] if state.face[i] else 0.0
 
 
-def find_feasible(state: State, tableau: Tableau, price: FloatArray) -> None:
+def find_feasible(
+    state: State, tableau: Tableau, pivots: Pivots, place: int, price: FloatArray
+) -> int:
     """Phase one: drive the artificial variables to zero, least cost per unit of supply first.
 
     ``price`` holds what one unit of each species takes off their sum.
     """
-    reduced, entries = tableau.reduced, tableau.entries
+    reduced = tableau.reduced
     species = reduced.size
-    rows = entries.shape[0]
+    rows = tableau.supply.size
     for i in range(species):
         price[i] = 0.0
     for j in range(rows):
         for i in range(species):
-            price[i] += entries[j, i]
+            price[i] += pivots.entries[place, j, i]
     for _ in range(_PIVOTS_PER_ROW * rows):
         column = -1
         best = inf
@@ -98,21 +144,25 @@ def find_feasible(state: State, tableau: Tableau, price: FloatArray) -> None:
                 best = reduced[i] / price[i]
                 column = i
         if column < 0:
-            return
-        row = leaving_row(tableau, column)
-        exchange(tableau, row, column)
-        clean_supply(state, tableau)
+            return place
+        row = leaving_row(seen_from(pivots, place, tableau), column)
+        place = enter(state, tableau, pivots, place, row, column)
         factor = price[column]
         for i in range(species):
-            price[i] -= factor * entries[row, i]
+            price[i] -= factor * pivots.entries[place, row, i]
         price[column] = 0.0
+    return place
 
 
-def clean_supply(state: State, tableau: Tableau) -> None:
-    """Recompute the supplies of the basis and hold them at or above zero."""
-    renew_supply(state, tableau)
-    for j in range(tableau.rank[0]):
-        tableau.supply[j] = max(tableau.supply[j], 0.0)
+def enter(state: State, tableau: Tableau, pivots: Pivots, place: int, row: int, column: int) -> int:
+    """Exchange, and hold the supplies of the basis at or above zero."""
+    following = after_exchange(pivots, place, row, column)
+    seen = seen_from(pivots, following, tableau)
+    renew_costs(seen, row, column)
+    renew_supply(state, seen)
+    for j in range(seen.rank[0]):
+        seen.supply[j] = max(seen.supply[j], 0.0)
+    return following
 
 
 def leaving_row(tableau: Tableau, column: int) -> int:
@@ -132,33 +182,37 @@ def leaving_row(tableau: Tableau, column: int) -> int:
     return row
 
 
-def expel_artificials(state: State, tableau: Tableau) -> bool:
-    """Replace artificial variables at zero, retire rows without species; False: infeasible."""
-    entries, reduced, species = tableau.entries, tableau.reduced, tableau.reduced.size
+def expel_artificials(state: State, tableau: Tableau, pivots: Pivots, place: int) -> int:
+    """Replace artificial variables at zero, retire rows without species; −1: infeasible."""
+    reduced, supply, species = tableau.reduced, tableau.supply, tableau.reduced.size
     j = 0
-    while j < tableau.rank[0]:
-        if tableau.basis[j] < species:
+    while j < pivots.rank[place]:
+        if pivots.basis[place, j] < species:
             j += 1
             continue
+        entries = pivots.entries[place]
         size = 0.0
         for e in range(state.supplies.size):
             size += abs(entries[j, species + e] * state.supplies[e])
-        if tableau.supply[j] > _FEASIBLE * size:
-            return False
-        tableau.supply[j] = 0.0
+        if supply[j] > _FEASIBLE * size:
+            return -1
+        supply[j] = 0.0
         column = -1
         for i in range(species):
             if abs(entries[j, i]) > ZERO and (column < 0 or reduced[i] < reduced[column]):
                 column = i
         if column < 0:
-            retire(tableau, j)
+            last = pivots.rank[place] - 1
+            supply[j], supply[last] = supply[last], supply[j]
+            place = after_retiring(pivots, place, j)
         else:
-            exchange(tableau, j, column)
+            place = after_exchange(pivots, place, j, column)
+            renew_costs(seen_from(pivots, place, tableau), j, column)
             j += 1
-    return True
+    return place
 
 
-def improve(state: State, tableau: Tableau) -> None:
+def improve(state: State, tableau: Tableau, pivots: Pivots, place: int) -> int:
     """Phase two: enter the most negative reduced cost until none is left."""
     reduced = tableau.reduced
     for _ in range(_PIVOTS_PER_ROW * tableau.supply.size):
@@ -167,30 +221,34 @@ def improve(state: State, tableau: Tableau) -> None:
             if reduced[i] < reduced[column]:
                 column = i
         if reduced[column] > -_OPTIMAL:
-            return
-        row = leaving_row(tableau, column)
+            return place
+        row = leaving_row(seen_from(pivots, place, tableau), column)
         if row < 0:
-            return
-        exchange(tableau, row, column)
-        clean_supply(state, tableau)
+            return place
+        place = enter(state, tableau, pivots, place, row, column)
+    return place
 
 
 def remove_forced_zeros(state: State, tableau: Tableau) -> None:
-    """Drop rows without supply whose entries have one sign, and their species, repeatedly."""
+    """Drop rows that force their species to zero, and those species, repeatedly."""
     entries, species = tableau.entries, tableau.reduced.size
     j = 0
     while j < tableau.rank[0]:
-        one_signed = tableau.supply[j] == 0.0
-        if one_signed:
-            for i in range(species):
-                if entries[j, i] < 0.0:
-                    one_signed = False
-                    break
-        if not one_signed:
+        if not forces_zero(tableau, j):
             j += 1
             continue
         for i in range(species):
             if entries[j, i] > 0.0:
-                forbid(state, tableau, i)
+                exclude(state, tableau, i)
         retire(tableau, j)
         j = 0
+
+
+def forces_zero(tableau: Tableau, j: int) -> bool:
+    """Whether a row has no supply and entries of one sign only."""
+    if tableau.supply[j] != 0.0:
+        return False
+    for i in range(tableau.reduced.size):
+        if tableau.entries[j, i] < 0.0:
+            return False
+    return True

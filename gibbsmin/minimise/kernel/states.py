@@ -2,25 +2,28 @@
 
 from __future__ import annotations
 
-from math import inf, isfinite, isnan, nan
+from math import inf, isnan, nan
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.heat import evaluate_energies, guess_temperature, load_heated
+from gibbsmin.minimise.kernel.loading import (
+    CERTIFIED,
+    COMPILED,
+    INFEASIBLE,
+    INVALID,
+    RECOVERY,
+    UNCERTIFIED,
+    is_proved,
+    load_state,
+    whole_face,
+)
 from gibbsmin.minimise.kernel.log_newton import guess_fractions, minimise_from
-from gibbsmin.minimise.kernel.proof import BALANCE, GAP, STATIONARITY, prove
+from gibbsmin.minimise.kernel.proof import prove
 from gibbsmin.minimise.kernel.search import search_temperature
 from gibbsmin.minimise.kernel.simplex import start_from_costs
-from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch, State
+from gibbsmin.minimise.kernel.storage import Answers, Network, Scratch
 from gibbsmin.minimise.kernel.tableau import renew_reduced
 from gibbsmin.minimise.kernel.warm import resume
-from gibbsmin.minimise.status import Method, Status
-
-CERTIFIED = int(Status.CERTIFIED)
-UNCERTIFIED = int(Status.UNCERTIFIED)
-INFEASIBLE = int(Status.INFEASIBLE)
-INVALID = int(Status.INVALID)
-COMPILED = int(Method.COMPILED)
-RECOVERY = int(Method.RECOVERY)
 
 WARM, COLD, LAST = 0, 1, 4
 """Ways to start a state: from the states before, cold, and the recovery steps up to the last."""
@@ -50,7 +53,10 @@ def solve_states(
     state, tableau, point = scratch.state, scratch.tableau, scratch.point
     run = 0  # states certified in a row, on which the next may build
     for s in range(energies.shape[0]):
-        status = UNCERTIFIED if load(network, state, energies[s], supplies[s]) else INVALID
+        if answers.status[s] == CERTIFIED:  # in lanes, which leave nothing to build on
+            run = 0
+            continue
+        status = UNCERTIFIED if load_state(network, state, energies[s], supplies[s]) else INVALID
         start = temperatures[s]
         heated = start > 0.0
         way = WARM if warm and run > 0 else COLD
@@ -70,7 +76,7 @@ def solve_states(
                 )
             else:
                 run = 0
-                load(network, state, energies[s], supplies[s])
+                load_state(network, state, energies[s], supplies[s])
                 scratch.temperature[0] = start
                 if heated:
                     load_heated(network, scratch, contents[s], offsets[s])
@@ -118,7 +124,7 @@ def start_cold(network: Network, scratch: Scratch, way: int) -> float:
     if heated and way > COLD:
         return search_temperature(network, scratch)
     diluted = way <= COLD + 1
-    if not start_from_costs(network, state, tableau, scratch.equations, diluted):
+    if not start_from_costs(network, state, tableau, scratch.pivots, scratch.equations, diluted):
         return inf
     if heated:
         T = guess_temperature(state, tableau, scratch.heat, scratch.temperature[0])
@@ -135,40 +141,10 @@ def keeps(way: int) -> bool:
     return way in (WARM, COLD, COLD + 2)
 
 
-def load(network: Network, state: State, energies: FloatArray, supplies: FloatArray) -> bool:
-    """Copy one state into the scratch, gases first; False where a value is not finite."""
-    finite = True
-    for i in range(energies.size):
-        value = energies[network.order[i]]
-        finite = finite and isfinite(value)
-        state.energies[i] = value
-    for e in range(supplies.size):
-        finite = finite and isfinite(supplies[e])
-        state.supplies[e] = supplies[e]
-    return finite
-
-
-def is_proved(figures: FloatArray, tolerances: FloatArray) -> bool:
-    """Whether gap, balance and stationarity are all within their tolerances."""
-    return bool(
-        figures[GAP] <= tolerances[GAP]
-        and figures[BALANCE] <= tolerances[BALANCE]
-        and figures[STATIONARITY] <= tolerances[STATIONARITY]
-    )
-
-
 def remember(log_totals: FloatArray, log_total: float) -> None:
     """Put ln N before the two latest."""
     log_totals[2], log_totals[1] = log_totals[1], log_totals[0]
     log_totals[0] = log_total
-
-
-def whole_face(state: State) -> bool:
-    """Whether no species is forced to zero, so that the tableau serves the next state too."""
-    for i in range(state.face.size):
-        if not state.face[i]:
-            return False
-    return True
 
 
 def store(network: Network, scratch: Scratch, answers: Answers, s: int) -> None:

@@ -13,6 +13,7 @@ import numpy as np
 import numpy.typing as npt
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
+from gibbsmin.minimise.kernel.vector import LANES
 
 ZERO = 1e-9
 """Tableau entries below this are no pivots."""
@@ -24,9 +25,9 @@ FORBIDDEN = 1e30
 class Network(NamedTuple):
     """The part of a programme that all its states share.
 
-    ``matrix`` is A (rows, species) with the gases first, ``gases`` their number.  ``first``,
-    ``row``, ``entry`` and ``log_entry`` list the nonzero entries of A column by column (a, and
-    ln|a|).  ``sign`` of a row is +1 or −1 when all its entries have that sign, else 0.
+    ``matrix`` is A (rows, species) with the gases first, ``gases`` their number, ``log_matrix``
+    ln|a|.  ``first``, ``row`` and ``entry`` list the nonzero entries of A column by column.
+    ``sign`` of a row is +1 or −1 when all its entries have that sign, else 0.
     """
 
     matrix: FloatArray
@@ -39,7 +40,7 @@ class Network(NamedTuple):
     first: IntArray
     row: IntArray
     entry: FloatArray
-    log_entry: FloatArray
+    log_matrix: FloatArray
 
 
 class State(NamedTuple):
@@ -83,6 +84,25 @@ class Tableau(NamedTuple):
     rank: IntArray
 
 
+class Pivots(NamedTuple):
+    """Tableaus by the pivots that led to them (:mod:`gibbsmin.minimise.kernel.pivots`).
+
+    ``root[0]`` is the latest of the first places, ``child`` of a place the latest of those that
+    one step leads to, ``sibling`` the one before it; ``key`` is the step, ``sign`` of a first place
+    the signs of the supplies.  ``taken[0]`` places are taken; the last one is spare.
+    """
+
+    entries: FloatArray
+    basis: IntArray
+    rank: IntArray
+    sign: IntArray
+    key: IntArray
+    child: IntArray
+    sibling: IntArray
+    root: IntArray
+    taken: IntArray
+
+
 class Point(NamedTuple):
     """Where the iteration stands.
 
@@ -121,6 +141,70 @@ class Proof(NamedTuple):
     size: FloatArray
 
 
+class Lanes(NamedTuple):
+    """Eight states of one basis side by side, a state a column; rows as in the tuples above.
+
+    ``part`` and ``listed`` list the nonzero entries of the basis' gas rows, those of the k-th
+    unknown from ``part[2k]`` on, negative ones from ``part[2k + 1]`` on.
+    ``sums`` are Σ y and the amount of gas, ``odds`` by how much the condensed phases are at odds
+    with the basis.  ``held`` is the member of the window in each lane, ``spent`` its iterations.
+    From ``energies`` on is what only the proof needs.
+    """
+
+    reduced: FloatArray
+    supply: FloatArray
+    log_fraction: FloatArray
+    log_total: FloatArray
+    amounts: FloatArray
+    sums: FloatArray
+    gain: FloatArray
+    loss: FloatArray
+    per_part: FloatArray
+    weight: FloatArray
+    jacobian: FloatArray
+    step: FloatArray
+    residual: FloatArray
+    odds: FloatArray
+    held: IntArray
+    spent: IntArray
+    part: IntArray
+    listed: IntArray
+    energies: FloatArray
+    feed: FloatArray
+    multipliers: FloatArray
+    forces: FloatArray
+    unmet: FloatArray
+    size: FloatArray
+    figures: FloatArray
+
+
+class Window(NamedTuple):
+    """States that wait for the lanes: where each starts and stands, and the place of its basis.
+
+    ``order`` lists the members place by place, those of place p from ``begin[p]`` on.
+    """
+
+    place: IntArray
+    reduced: FloatArray
+    supply: FloatArray
+    log_fraction: FloatArray
+    log_total: FloatArray
+    order: IntArray
+    begin: IntArray
+
+
+class LaneScratch(NamedTuple):
+    """One worker's memory for states in lanes."""
+
+    state: State
+    tableau: Tableau
+    pivots: Pivots
+    point: Point
+    equations: Equations
+    lanes: Lanes
+    window: Window
+
+
 class Scratch(NamedTuple):
     """One worker's memory, reused from state to state; ``log_totals`` are the last three ln N.
 
@@ -129,6 +213,7 @@ class Scratch(NamedTuple):
 
     state: State
     tableau: Tableau
+    pivots: Pivots
     point: Point
     equations: Equations
     proof: Proof
@@ -156,6 +241,8 @@ def network_of(
     A = np.ascontiguousarray(matrix[:, order])
     columns, rows = np.nonzero(A.T)
     entry = A[rows, columns]
+    with np.errstate(divide="ignore"):
+        log_matrix = np.log(np.abs(A))
     sign = np.where((A >= 0).all(axis=1), 1, np.where((A <= 0).all(axis=1), -1, 0))
     return Network(
         matrix=A,
@@ -168,7 +255,7 @@ def network_of(
         first=np.searchsorted(columns, np.arange(A.shape[1] + 1)).astype(np.int64),
         row=rows.astype(np.int64),
         entry=entry,
-        log_entry=np.log(np.abs(entry)),
+        log_matrix=log_matrix,
     )
 
 
@@ -185,6 +272,7 @@ def scratch_for(network: Network, pieces: FloatArray, breaks: FloatArray) -> Scr
             reduced=np.zeros(species),
             rank=np.zeros(1, dtype=np.int64),
         ),
+        pivots_for(rows, species, 0),
         Point(
             np.zeros(rows),
             np.zeros(species),
@@ -215,4 +303,86 @@ def scratch_for(network: Network, pieces: FloatArray, breaks: FloatArray) -> Scr
         ),
         log_totals=np.zeros(3),
         temperature=np.zeros(1),
+    )
+
+
+def lane_scratch_for(network: Network, places: int, members: int) -> LaneScratch:
+    """Memory for so many tableaus to keep, and so many states to wait for the lanes."""
+    rows, species = network.matrix.shape
+    like = scratch_for(network, np.zeros((7, 0)), np.zeros((0, 0)))
+    return LaneScratch(
+        like.state,
+        like.tableau,
+        pivots_for(rows, species, places),
+        like.point,
+        like.equations,
+        lanes_for(rows, species),
+        window_for(rows, species, places, members),
+    )
+
+
+def lanes_for(rows: int, species: int) -> Lanes:
+    """Memory for eight states."""
+
+    def none(count: int) -> FloatArray:
+        return np.zeros((count, LANES))
+
+    return Lanes(
+        reduced=none(species),
+        supply=none(rows),
+        log_fraction=none(rows),
+        log_total=none(1),
+        amounts=none(species),
+        sums=none(2),
+        gain=none(rows),
+        loss=none(rows),
+        per_part=none(2 * rows),
+        weight=none(rows * species),
+        jacobian=none((rows + 1) ** 2),
+        step=none(rows + 1),
+        residual=none(1),
+        odds=none(1),
+        held=np.zeros(LANES, dtype=np.int64),
+        spent=np.zeros(LANES, dtype=np.int64),
+        part=np.zeros(2 * rows + 1, dtype=np.int64),
+        listed=np.zeros(rows * species, dtype=np.int64),
+        energies=none(species),
+        feed=none(rows),
+        multipliers=none(rows),
+        forces=none(species),
+        unmet=none(rows),
+        size=none(rows),
+        figures=none(3),
+    )
+
+
+def window_for(rows: int, species: int, places: int, members: int) -> Window:
+    """Memory for the states that wait for the lanes."""
+    return Window(
+        place=np.zeros(members, dtype=np.int64),
+        reduced=np.zeros((members, species)),
+        supply=np.zeros((members, rows)),
+        log_fraction=np.zeros((members, rows)),
+        log_total=np.zeros(members),
+        order=np.zeros(members, dtype=np.int64),
+        begin=np.zeros(places + 3, dtype=np.int64),
+    )
+
+
+def pivots_for(rows: int, species: int, places: int) -> Pivots:
+    """Memory for some tableaus to keep, and the spare one."""
+
+    def none(*shape: int) -> IntArray:
+        return np.full(shape, -1, dtype=np.int64)
+
+    return Pivots(
+        entries=np.zeros((places + 1, rows, species + rows)),
+        basis=none(places + 1, rows),
+        rank=none(places + 1),
+        sign=none(places + 1, rows),
+        key=none(places + 1),
+        child=none(places + 1),
+        sibling=none(places + 1),
+        root=none(1),
+        taken=np.zeros(1, dtype=np.int64),
     )

@@ -1,42 +1,34 @@
-"""The tableau B⁻¹[A | I] of a basis B and its exchange step."""
+"""The tableau B⁻¹[A | I] of a basis B and its exchange step.
+
+Supplies are not carried along but renewed from b itself.
+"""
 
 from __future__ import annotations
 
-from gibbsmin.minimise.kernel.storage import FORBIDDEN, Network, State, Tableau
+from gibbsmin.arrays import FloatArray, IntArray
+from gibbsmin.minimise.kernel.storage import FORBIDDEN, State, Tableau
 
 _ROUND_OFF = 1e-12
 _SNAP = 1e-14
 
 
-def build(network: Network, state: State, tableau: Tableau) -> None:
-    """Start from the artificial basis, rows turned so that no supply is negative."""
-    entries, matrix = tableau.entries, network.matrix
-    rows, species = matrix.shape
-    for j in range(rows):
-        sign = -1.0 if state.supplies[j] < 0.0 else 1.0
-        for i in range(species):
-            entries[j, i] = sign * matrix[j, i] if state.face[i] else 0.0
-        for e in range(rows):
-            entries[j, species + e] = 0.0
-        entries[j, species + j] = sign
-        tableau.basis[j] = species + j
-        tableau.supply[j] = sign * state.supplies[j]
-    tableau.rank[0] = rows
-
-
 def exchange(tableau: Tableau, row: int, column: int) -> None:
-    """Let ``column`` take the place of the basis member of ``row`` (Gauss–Jordan step).
+    """Let ``column`` take the place of the basis member of ``row``; reduced costs follow."""
+    turn(tableau.entries, tableau.basis, row, column)
+    renew_costs(tableau, row, column)
 
-    Reduced costs and supplies follow.  Entries at round-off are set to zero: the matrix is made
-    of small counts, and a spurious 1e-17 would couple a trace element to an abundant one.
+
+def turn(entries: FloatArray, basis: IntArray, row: int, column: int) -> None:
+    """The Gauss–Jordan step of an exchange.
+
+    Entries at round-off are set to zero: the matrix is made of small counts, and a spurious
+    1e-17 would couple a trace element to an abundant one.
     """
-    entries, reduced, supply = tableau.entries, tableau.reduced, tableau.supply
     rows, width = entries.shape
     inverse = 1.0 / entries[row, column]
     for i in range(width):
         entries[row, i] *= inverse
     entries[row, column] = 1.0
-    supply[row] *= inverse
     for j in range(rows):
         factor = entries[j, column]
         if j != row and factor != 0.0:
@@ -44,12 +36,16 @@ def exchange(tableau: Tableau, row: int, column: int) -> None:
                 value = entries[j, i] - factor * entries[row, i]
                 entries[j, i] = value if abs(value) > _ROUND_OFF else 0.0
             entries[j, column] = 0.0
-            supply[j] -= factor * supply[row]
+    basis[row] = column
+
+
+def renew_costs(tableau: Tableau, row: int, column: int) -> None:
+    """Reduced costs once ``column`` stands in ``row``."""
+    entries, reduced = tableau.entries, tableau.reduced
     factor = reduced[column]
     for i in range(reduced.size):
         reduced[i] -= factor * entries[row, i]
     reduced[column] = 0.0
-    tableau.basis[row] = column
 
 
 def renew_supply(state: State, tableau: Tableau) -> None:
@@ -82,16 +78,20 @@ def renew_reduced(state: State, tableau: Tableau) -> None:
 
 def retire(tableau: Tableau, row: int) -> None:
     """Move a row that binds nothing beyond the rank."""
-    last = tableau.rank[0] - 1
-    entries, basis, supply = tableau.entries, tableau.basis, tableau.supply
-    for i in range(entries.shape[1]):
-        entries[row, i], entries[last, i] = entries[last, i], entries[row, i]
-    basis[row], basis[last] = basis[last], basis[row]
+    supply, last = tableau.supply, tableau.rank[0] - 1
+    set_aside(tableau.entries, tableau.basis, row, last)
     supply[row], supply[last] = supply[last], supply[row]
     tableau.rank[0] = last
 
 
-def forbid(state: State, tableau: Tableau, column: int) -> None:
+def set_aside(entries: FloatArray, basis: IntArray, row: int, last: int) -> None:
+    """Exchange two rows."""
+    for i in range(entries.shape[1]):
+        entries[row, i], entries[last, i] = entries[last, i], entries[row, i]
+    basis[row], basis[last] = basis[last], basis[row]
+
+
+def exclude(state: State, tableau: Tableau, column: int) -> None:
     """Take a species off the face: the supplies allow none of it."""
     state.face[column] = False
     state.energies[column] = FORBIDDEN
