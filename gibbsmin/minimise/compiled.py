@@ -27,7 +27,7 @@ from gibbsmin.minimise.status import Method, Status
 _BLOCK = 16384
 
 _WINDOW = 2048
-_KEPT = 256
+_KEPT = 128
 _LARGEST_KEPT = 2_000  # entries of a tableau
 
 
