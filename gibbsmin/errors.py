@@ -75,15 +75,3 @@ class BalanceError(InputError):
 
 class OutputError(InputError):
     """A file that cannot be written."""
-
-
-class CertificationError(GibbsminError, ArithmeticError):
-    """A single state whose answer could not be proved right."""
-
-    def __init__(self, status: str, reason: str) -> None:
-        super().__init__(status, reason)
-        self.status = status
-        self.reason = reason
-
-    def __str__(self) -> str:
-        return f"The state could not be certified ({self.status}): {self.reason}."

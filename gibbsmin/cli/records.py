@@ -92,12 +92,11 @@ def reaction(
 
     H2O(g) means that form at all temperatures, H2O whichever form is stable.
     """
+    from gibbsmin.jobs.reaction import reaction as study_of
     from gibbsmin.jobs.remarks import own_records_notes
     from gibbsmin.present.reaction_view import reaction_document, reaction_view
     from gibbsmin.present.species_view import usual_temperatures
     from gibbsmin.thermo.library import load_library
-    from gibbsmin.thermo.reaction import Reaction
-    from gibbsmin.thermo.reaction_path import study_reaction
     from gibbsmin.thermo.temperatures import read_temperatures
 
     temperatures = (
@@ -109,9 +108,8 @@ def reaction(
         from gibbsmin.jobs.own_library import read_library_file
 
         own = read_library_file(Path(file), library).records
-    chosen = Reaction.read(text, library.overruled(own))
-    study = study_reaction(chosen, temperatures)
-    taking_part = [form for _, substance in chosen.terms for form in substance.forms]
+    study = study_of(text, temperatures, library.overruled(own))
+    taking_part = [form for _, substance in study.reaction.terms for form in substance.forms]
     notes = own_records_notes(record for record in own if record in taking_part)
     if as_json:
         print_json({**reaction_document(study), **({"notes": list(notes)} if notes else {})})

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-import json
+from os import PathLike
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -12,8 +12,8 @@ from gibbsmin.present.files import (
     harmless_names,
     output_suffix,
     write_csv,
+    write_json,
     write_tables,
-    write_text,
     write_whole,
 )
 from gibbsmin.results import CAUTIONS
@@ -30,7 +30,7 @@ def require_check_ending(path: Path) -> str:
     return output_suffix(path, ENDINGS)
 
 
-def write_checks(checks: Checks, path: Path) -> None:
+def write_checks(checks: Checks, path: str | PathLike[str]) -> None:
     """Write the samples in the form that the file's ending names: one row a sample.
 
     The workbook has a second sheet with assumptions, sources and cautions.
@@ -40,10 +40,10 @@ def write_checks(checks: Checks, path: Path) -> None:
     OutputError
         for another ending or a file that cannot be written.
     """
+    path = Path(path)
     suffix = require_check_ending(path)
     if suffix == ".json":
-        document = check_document(checks)
-        write_text(path, json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False) + "\n")
+        write_json(path, check_document(checks))
         return
     table = check_table(checks)
     if suffix == ".parquet":

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+import json
 import os
 import tempfile
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Iterable, Mapping
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from gibbsmin.errors import OutputError
 
@@ -63,6 +64,12 @@ def write_whole(path: Path, write: Callable[[Path], None]) -> None:
 def write_text(path: Path, text: str) -> None:
     """Write UTF-8 text whole."""
     write_whole(path, lambda scratch: _dump(scratch, text))
+
+
+def write_json(path: Path, document: Mapping[str, Any]) -> None:
+    """A document as UTF-8 JSON with a line for each entry."""
+    text = json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False)
+    write_text(path, f"{text}\n")
 
 
 def write_tables(path: Path, tables: dict[str, pd.DataFrame]) -> None:

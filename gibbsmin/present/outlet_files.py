@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-import json
 from collections.abc import Sequence
+from os import PathLike
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -11,7 +11,7 @@ import numpy as np
 
 from gibbsmin.jobs.monte_carlo import MonteCarlo
 from gibbsmin.jobs.sensitivity import Sensitivities
-from gibbsmin.present.files import output_suffix, write_csv, write_tables, write_text
+from gibbsmin.present.files import output_suffix, write_csv, write_json, write_tables
 from gibbsmin.present.monte_carlo_view import spread_table
 from gibbsmin.present.outlet_document import outlet_document
 from gibbsmin.present.quantities import amount_unit, amounts_in, heat_unit, molar_unit
@@ -31,7 +31,7 @@ def require_ending(path: Path) -> str:
 
 def write_outlet(
     outlet: Outlet,
-    path: Path,
+    path: str | PathLike[str],
     error_bars: Sequence[Sensitivities] = (),
     spread: MonteCarlo | None = None,
 ) -> None:
@@ -44,10 +44,10 @@ def write_outlet(
     OutputError
         for another ending or a file that cannot be written.
     """
+    path = Path(path)
     suffix = require_ending(path)
     if suffix == ".json":
-        document = outlet_document(outlet, error_bars, spread)
-        write_text(path, json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False) + "\n")
+        write_json(path, outlet_document(outlet, error_bars, spread))
     elif suffix == ".csv":
         write_csv(path, composition_table(outlet, error_bars))
     else:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import Counter
 from dataclasses import dataclass
+from os import PathLike
 from pathlib import Path
 
 import numpy as np
@@ -58,7 +59,7 @@ def report_page(checks: Checks) -> str:
     )
 
 
-def write_report(checks: Checks, path: Path) -> None:
+def write_report(checks: Checks, path: str | PathLike[str]) -> None:
     """Write the page whole.
 
     Raises
@@ -66,6 +67,7 @@ def write_report(checks: Checks, path: Path) -> None:
     OutputError
         for another ending than .html or .htm, or a file that cannot be written.
     """
+    path = Path(path)
     require_report_ending(path)
     write_text(path, report_page(checks))
 

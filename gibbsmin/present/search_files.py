@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-import json
+from os import PathLike
 from pathlib import Path
 from typing import Any
 
-from gibbsmin.present.files import harmless_names, write_csv, write_tables, write_text
+from gibbsmin.present.files import harmless_names, write_csv, write_json, write_tables
 from gibbsmin.present.outlet_files import require_ending
 from gibbsmin.present.search_document import search_table
 
 
-def write_search(document: dict[str, Any], path: Path) -> None:
+def write_search(document: dict[str, Any], path: str | PathLike[str]) -> None:
     """Write an onset's or target's document in the form that the file's ending names.
 
     Raises
@@ -19,9 +19,10 @@ def write_search(document: dict[str, Any], path: Path) -> None:
     OutputError
         for another ending or a file that cannot be written.
     """
+    path = Path(path)
     suffix = require_ending(path)
     if suffix == ".json":
-        write_text(path, json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False) + "\n")
+        write_json(path, document)
         return
     table = search_table(document)
     table.columns = harmless_names(table.columns)

@@ -19,7 +19,7 @@ from gibbsmin.reactor.conditions import (
     at_volume,
 )
 from gibbsmin.reactor.inlet import Inlet
-from gibbsmin.reactor.model import StageModel
+from gibbsmin.reactor.model import HIGHEST_TEMPERATURE, LOWEST_TEMPERATURE, StageModel
 from gibbsmin.reactor.streams import Values
 
 
@@ -45,6 +45,26 @@ class Specification:
     pressure: Values | None = None
     pressure_drop: Values | None = None
     volume: Values | None = None
+
+    def outlet_temperature(self, inlet: Inlet) -> FloatArray | None:
+        """K, (B,); None where another condition takes its place.
+
+        Raises
+        ------
+        InputError
+            for one at which no record tells anything.
+        """
+        if self.temperature is None:
+            return None
+        T = _each(self.temperature, inlet)
+        outside = T[(T < LOWEST_TEMPERATURE) | (T > HIGHEST_TEMPERATURE)]
+        if outside.size:
+            raise InputError(
+                f"found a temperature of {outside[0]:g} K",
+                f"accepted is one from {LOWEST_TEMPERATURE:g} K to {HIGHEST_TEMPERATURE:g} K",
+                key="temperature",
+            )
+        return T
 
     def outlet_pressure(self, inlet: Inlet) -> FloatArray | None:
         """Pa, (B,); None in a closed vessel.
@@ -101,15 +121,15 @@ def _why(model: StageModel, inlet: Inlet, states: IntArray) -> npt.NDArray[np.in
 
 def _solved(model: StageModel, specification: Specification, inlet: Inlet) -> Equilibria:
     feed, start = inlet.amounts, inlet.temperature
-    P = specification.outlet_pressure(inlet)
+    T, P = specification.outlet_temperature(inlet), specification.outlet_pressure(inlet)
     heat = _each(0.0 if specification.heat is None else specification.heat, inlet)
     if P is None:
         volume = _each(specification.volume, inlet)
-        if specification.temperature is not None:
-            return at_volume(model, _each(specification.temperature, inlet), volume, feed)
+        if T is not None:
+            return at_volume(model, T, volume, feed)
         return at_energy_and_volume(model, inlet.internal_energy + heat, volume, feed, start)
-    if specification.temperature is not None:
-        return at_temperature(model, _each(specification.temperature, inlet), P, feed)
+    if T is not None:
+        return at_temperature(model, T, P, feed)
     if specification.entropy_of_feed:
         return at_entropy(model, inlet.entropy, P, feed, start)
     return at_enthalpy(model, inlet.enthalpy + heat, P, feed, start)

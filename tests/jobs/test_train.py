@@ -292,6 +292,11 @@ def test_a_bypass_joins_the_outlet() -> None:
             "volume.",
         ),
         (
+            {"temperature": "85000 K"},
+            "stage.stage 1.temperature: found a temperature of 85000 K; accepted is one from "
+            "100 K to 6000 K.",
+        ),
+        (
             {"temperature": None, "heat": "-9000 kJ"},
             "stage.stage 1.heat: found a heat of -9000 kJ, which no temperature between 100 K and "
             "6000 K meets; accepted is another heat, or a temperature in its place.",
