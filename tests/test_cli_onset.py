@@ -98,6 +98,14 @@ def test_a_target_is_found_by_the_same_command(target_case: Path, tmp_path: Path
     assert len(pd.read_excel(out, sheet_name="answers")) == 1
 
 
+def test_error_bars_of_a_target_are_refused(target_case: Path) -> None:
+    result = CliRunner().invoke(app, ["onset", str(target_case), "--uncertainty"])
+    assert result.exit_code == 2
+    assert result.stderr == (
+        "found --uncertainty beside a target; accepted is it with an [onset] table.\n"
+    )
+
+
 def test_a_target_out_of_reach_tells_the_range(tmp_path: Path) -> None:
     path = tmp_path / "case.toml"
     path.write_text(TARGET.replace('"4 %"', '"99 %"'))

@@ -9,6 +9,7 @@ import typer
 
 from gibbsmin.cli.app import AsJson, Plot, app, require_plot_ending_of
 from gibbsmin.cli.output import NOT_CERTIFIED, print_json, print_view
+from gibbsmin.errors import InputError
 
 
 @app.command(short_help="Find where a phase first forms, or where a target is met.")
@@ -44,6 +45,10 @@ def onset(
     require_plot_ending_of(plot)
     loaded = load_case(case)
     if loaded.onset is None and loaded.target is not None:
+        if uncertainty:
+            raise InputError(
+                "found --uncertainty beside a target", "accepted is it with an [onset] table"
+            )
         answers = target_of(loaded)
         document, view = target_document(answers), target_view(answers, loaded.title)
         certified = bool(answers.certified.all())

@@ -21,7 +21,7 @@ from gibbsmin.jobs.stage_schema import NOTHING, OutletTable, SpeciesTable, Stage
 from gibbsmin.jobs.table_schema import MISSING, Table
 from gibbsmin.jobs.uncertainty_schema import CorrelationTable, read_uncertainty_table
 from gibbsmin.jobs.validation import validated
-from gibbsmin.units import read_pressure, shown
+from gibbsmin.units import read_site_pressure, shown
 
 
 def _title(given: object) -> str:
@@ -59,7 +59,7 @@ def _correlations(given: object) -> tuple[Any, ...]:
 
 
 Title = Annotated[str, BeforeValidator(_title)]
-SitePressure = Annotated[float, BeforeValidator(read_pressure)]
+SitePressure = Annotated[float, BeforeValidator(read_site_pressure)]
 
 
 class CaseTable(Table):
@@ -99,7 +99,7 @@ def validate(tables: Mapping[str, Any]) -> CaseTable:
         was often meant to be.
     """
     try:
-        site_pressure = read_pressure(tables.get("site_pressure", "101.325 kPa"))
+        site_pressure = read_site_pressure(tables.get("site_pressure", "101.325 kPa"))
     except InputError as error:
         raise error.at(key="site_pressure") from None
     return validated(CaseTable, tables, {"site_pressure": site_pressure})

@@ -25,6 +25,7 @@ from gibbsmin.units import (
     read_heat,
     read_molar_energy,
     read_pressure,
+    read_pressure_drop,
     read_share,
     read_temperature,
     read_temperature_difference,
@@ -53,6 +54,10 @@ def _names_or_all(given: object) -> Literal["all"] | tuple[str, ...]:
 
 def _pressure(given: object, info: ValidationInfo) -> float:
     return read_pressure(given, site_pressure(info))
+
+
+def _pressure_drop(given: object) -> float | None:
+    return None if given is None else read_pressure_drop(given)
 
 
 def read_text(given: object) -> str:
@@ -173,7 +178,7 @@ class OutletTable(Table):
     heat_loss: Annotated[float | None, BeforeValidator(read_share)] = None
     entropy: Annotated[Literal["feed"] | None, word("feed")] = None
     pressure: Annotated[float | None, BeforeValidator(_pressure)] = None
-    pressure_drop: Annotated[float | None, BeforeValidator(read_pressure)] = None
+    pressure_drop: Annotated[float | None, BeforeValidator(_pressure_drop)] = None
     volume: Annotated[float | None, BeforeValidator(read_volume)] = None
     service: Annotated[str, BeforeValidator(read_text)] | None = None
     boundary_temperature: Annotated[float | None, BeforeValidator(read_temperature)] = None

@@ -60,12 +60,12 @@ def significant(value: float, digits: int = 5) -> str:
 
 
 def fraction(value: float) -> str:
-    """A mole fraction: mol % from 0.01 %, then ppm, then a power of ten; "–" for NaN."""
+    """A share of either sign: % from 0.01 %, then ppm, then a power of ten; "–" for NaN."""
     if math.isnan(value):
         return "–"
-    if value >= 1e-4:
+    if abs(value) >= 1e-4:
         return f"{significant(100 * value)} %"
-    if value >= 1e-8:
+    if abs(value) >= 1e-8:
         return f"{significant(1e6 * value, 4)} ppm"
     return "0" if value == 0.0 else f"{value:.1e}"
 

@@ -72,13 +72,19 @@ class Specification:
         Raises
         ------
         InputError
-            when the drop leaves no pressure.
+            when the drop leaves no pressure, or is a rise.
         """
         if self.pressure is not None:
             return _each(self.pressure, inlet)
         if self.pressure_drop is None:
             return None
         drop = _each(self.pressure_drop, inlet)
+        if np.any(drop < 0.0):
+            raise InputError(
+                f"found a drop of {drop.min() / 1e5:g} bar",
+                "accepted is a drop of zero or more, or a pressure in its place",
+                key="pressure_drop",
+            )
         pressure = inlet.lowest_pressure - drop
         if np.any(pressure <= 0.0):
             state = int(np.argmin(pressure))

@@ -52,6 +52,9 @@ _PRESSURE = _Kind(
     frozenset({Dimension.PRESSURE}),
     'accepted is a pressure such as "25 bar" (absolute) or "24 barg"',
 )
+_PRESSURE_DROP = _Kind(
+    frozenset({Dimension.PRESSURE}), 'accepted is a difference of pressures such as "0.5 bar"'
+)
 _HEAT = _Kind(
     frozenset({Dimension.ENERGY, Dimension.POWER}),
     'accepted is a heat such as "1.5 MW", "2 Gcal/h" or "30 kJ"',
@@ -74,7 +77,7 @@ _AMOUNT = _Kind(
 _NAMED = {
     "temperature": _TEMPERATURE,
     "pressure": _PRESSURE,
-    "pressure_drop": _PRESSURE,
+    "pressure_drop": _PRESSURE_DROP,
     "heat": _HEAT,
     "volume": _VOLUME,
 }
@@ -111,6 +114,25 @@ def read_pressure(given: object, site_pressure: float = STANDARD_ATMOSPHERE) -> 
     pascal = _measure(given, _PRESSURE, site_pressure).value
     if pascal <= 0.0:
         raise UnitError(f"found {shown(given)}, which is not above vacuum", _PRESSURE.accepted)
+    return pascal
+
+
+def read_site_pressure(given: object) -> float:
+    """The absolute pressure in Pa that gauge pressures stand on, and so no gauge pressure."""
+    measure = _measure(given, _PRESSURE, STANDARD_ATMOSPHERE)
+    if measure.unit.offset:
+        raise UnitError(
+            f"found {shown(given)}, which is a gauge pressure",
+            'accepted is an absolute pressure such as "1.013 bar"',
+        )
+    return read_pressure(given)
+
+
+def read_pressure_drop(given: object) -> float:
+    """A difference of pressures in Pa, zero or more: ``"0.5 barg"`` is 0.5 bar."""
+    pascal = _measure(given, _PRESSURE_DROP, 0.0).value
+    if pascal < 0.0:
+        raise UnitError(f"found {shown(given)}, which is negative", _PRESSURE_DROP.accepted)
     return pascal
 
 

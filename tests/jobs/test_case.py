@@ -258,6 +258,12 @@ def test_composition_of_air_sums_to_one() -> None:
             "1.013",
             f'site_pressure: found "1.013", a number without a unit; {PRESSURE}',
         ),
+        (
+            "site_pressure",
+            "0 barg",
+            'site_pressure: found "0 barg", which is a gauge pressure; accepted is an absolute '
+            'pressure such as "1.013 bar".',
+        ),
         ("feed", REMOVED, f"feed: found nothing; {STREAMS}"),
         ("feed", {}, f"feed: found nothing; {STREAMS}"),
         ("feed", [1], f"feed: found a list; {STREAMS}"),

@@ -350,6 +350,11 @@ def test_a_bypass_joins_the_outlet() -> None:
             "steam.",
         ),
         (
+            {"pressure": None, "pressure_drop": "-1 bar"},
+            'stage.stage 1.pressure_drop: found "-1 bar", which is negative; accepted is a '
+            'difference of pressures such as "0.5 bar".',
+        ),
+        (
             {"pressure": None, "pressure_drop": "40 bar"},
             "stage.stage 1.pressure_drop: found a drop of 40 bar from 29 bar; accepted is a drop "
             "that "
@@ -484,6 +489,15 @@ def test_a_service_proposes_what_the_case_leaves_open() -> None:
     assert [record.name for record in only(given).records] == [
         "CH4(g)", "H2O(g)", "CO(g)", "CO2(g)", "H2(g)", "N2(g)",
     ]  # fmt: skip
+
+
+@pytest.mark.parametrize(
+    ("drop", "pressure"), [("0 bar", 29e5), ("0.5 bar", 28.5e5), ("0.5 barg", 28.5e5)]
+)
+def test_a_drop_is_a_difference_of_pressures(drop: str, pressure: float) -> None:
+    tables = reformer(pressure_drop=drop)
+    del tables["stage"][0]["pressure"]
+    assert only(tables).pressure == pytest.approx(pressure, rel=1e-12)
 
 
 def test_two_stages_of_one_name_are_refused() -> None:

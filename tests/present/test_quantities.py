@@ -28,7 +28,15 @@ def test_significant(value: float, text: str) -> None:
 
 @pytest.mark.parametrize(
     ("value", "text"),
-    [(0.5, "50.000 %"), (1e-4, "0.010000 %"), (3.14e-5, "31.40 ppm"), (2e-9, "2.0e-09"), (0, "0")],
+    [
+        (0.5, "50.000 %"),
+        (1e-4, "0.010000 %"),
+        (3.14e-5, "31.40 ppm"),
+        (2e-9, "2.0e-09"),
+        (0, "0"),
+        (-1.1, "-110.00 %"),
+        (-3.14e-5, "-31.40 ppm"),
+    ],
 )
 def test_fraction(value: float, text: str) -> None:
     assert fraction(value) == text
