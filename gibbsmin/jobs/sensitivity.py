@@ -18,7 +18,12 @@ from gibbsmin.arrays import BoolArray, FloatArray
 from gibbsmin.jobs.inputs import Input, InputChanges
 from gibbsmin.jobs.train import Step
 from gibbsmin.reactor.stage_changes import SpecificationChanges, StageChanges, stage_changes
-from gibbsmin.reactor.stream_changes import InletChanges, StreamChanges, inlet_changes
+from gibbsmin.reactor.stream_changes import (
+    InletChanges,
+    StreamChanges,
+    stream_changes,
+    with_records,
+)
 from gibbsmin.reactor.streams import Values
 from gibbsmin.results import WATER
 from gibbsmin.thermo.library import Library
@@ -106,7 +111,7 @@ class Trail:
         self._pressure: FloatArray = np.zeros(len(changes.inputs))
 
     def entering(self, step: Step, library: Library) -> tuple[SpecificationChanges, InletChanges]:
-        """What changes of a step's specification, and of what enters it."""
+        """What changes of a step's specification, and of its streams but for their records."""
         changes = self._changes
         if step.joins:
             # What went around is what entered the stage that the bypass belongs to.
@@ -120,8 +125,8 @@ class Trail:
             asked = changes.stages[step.stage.key]
         shared = [_scaled(e, share) for e, share in zip(self._entering, step.shares, strict=True)]
         equation = step.stage.chemistry.equation
-        inlet = inlet_changes(
-            step.streams, shared, changes.records, step.states.inlet, library, equation
+        inlet = stream_changes(
+            step.streams, shared, changes.records.count, step.states.inlet, library, equation
         )
         return asked, inlet
 
@@ -155,6 +160,7 @@ def sensitivities(
     trail = Trail(changes)
     for step in steps:
         asked, inlet = trail.entering(step, library)
+        inlet = with_records(inlet, changes.records, step.states.inlet)
         found = stage_changes(
             step.states,
             step.stage.specification,

@@ -79,7 +79,8 @@ def stage_deviations(
     """Follow K independent standard uncertainties through a solved stage.
 
     ``solve`` is the kernel's entry in one of its forms; ``passes`` whether a next stage takes the
-    changes of what leaves.  The others are those of
+    changes of what leaves.  The changes of the inlet are those of
+    :func:`gibbsmin.reactor.stream_changes.stream_changes`.  The others are those of
     :func:`gibbsmin.reactor.stage_changes.stage_changes`.
     """
     B, (m, S) = len(states.equilibria.temperature), states.model.balance.matrix.shape
@@ -87,9 +88,9 @@ def stage_deviations(
     laid = _laid(states, specification, boundary_temperature, inlet, records)
     own = _states(states, specification)
     given = _given(states, specification, asked, inlet, records, library)
-    rows = B if passes else 0
-    passed = Passed(np.empty((rows, K)), np.empty((rows, K)), np.empty((rows, S, K)))
-    out = np.empty((FIRST + S + laid.condensed.size + F, B))
+    left = B if passes else 0
+    passed = Passed(np.empty((left, K)), np.empty((left, K)), np.empty((left, S, K)))
+    out = np.empty((B, FIRST + S + laid.condensed.size + F))
     workers = min(os.cpu_count() or 1, max(B, 1))
     block = -(-max(B, 1) // workers)
 
@@ -98,8 +99,9 @@ def stage_deviations(
         solve(laid, own, given, scratch, passed, out, first, min(first + block, B))
 
     share_out(run, range(0, B, block), workers)
-    by_record, forces, conversions = np.split(out[FIRST:], [S, S + laid.condensed.size])
-    temperature, pressure, heat, generated = out[:FIRST]
+    rows = np.ascontiguousarray(out.T)
+    by_record, forces, conversions = np.split(rows[FIRST:], [S, S + laid.condensed.size])
+    temperature, pressure, heat, generated = rows[:FIRST]
     return StageDeviations(
         temperature, pressure, heat, generated, by_record, forces, conversions, passed
     )
@@ -114,6 +116,7 @@ def _laid(
 ) -> Laid:
     model, fed = states.model, states.inlet.records
     dH, dS = records.of(model.records)
+    fed_dH, fed_dS = records.of(fed)
     if specification.temperature is not None:
         kind = AT_TEMPERATURE
     else:
@@ -128,6 +131,8 @@ def _laid(
         forms=_forms(fed, model.records),
         enthalpies=_plain(dH),
         entropies=_plain(dS),
+        fed_enthalpies=_plain(fed_dH),
+        fed_entropies=_plain(fed_dS),
         kind=kind,
         closed=specification.volume is not None,
         boundary_follows=boundary_temperature is None,
@@ -181,13 +186,10 @@ def _given(
     model, T = states.model, states.equilibria.temperature
     K, closed = records.count, specification.volume is not None
     content = inlet.internal_energy if closed else inlet.enthalpy
-    heat = heat_changes(states, specification, asked, inlet, library)
-    if specification.temperature is not None:
-        thermal = asked.temperature
-    elif specification.entropy_of_feed:
-        thermal, heat = inlet.entropy, np.zeros(K)
+    if specification.entropy_of_feed:
+        heat = np.zeros(K)
     else:
-        thermal = content + heat
+        heat = heat_changes(states, specification, asked, inlet, library)
     if closed:
         room = asked.volume
     elif specification.pressure is not None:
@@ -195,7 +197,7 @@ def _given(
     else:
         room = inlet.lowest_pressure - asked.pressure_drop
     energies = energy_changes(model, T, records) if model.shift.keys else np.zeros((0, 0, K))
-    rows = (content, inlet.entropy, heat, thermal, room)
+    rows = (content, inlet.entropy, heat, asked.temperature, room)
     return Given(energies, _plain(inlet.amounts), *[_rows_of(values) for values in rows])
 
 

@@ -8,7 +8,7 @@ amount at every temperature, since its heat capacity stays as it is.
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -90,7 +90,7 @@ def inlet_changes(
     library: Library,
     equation: Equation | None = None,
 ) -> InletChanges:
-    """Sum up the streams' changes; the inlet is that of these streams.
+    """Sum up the changes of the streams and of their records; the inlet is that of these streams.
 
     With partial molar H̄ and S̄, mixing included, V of the gas and V̄ its partial molar volume:
 
@@ -98,18 +98,42 @@ def inlet_changes(
         dS = Σ (S̄ dn + n dS°) + Cp dT/T − ∂V/∂T dP
         dU = dH − d(P V), without the pressure terms of solids and liquids
     """
-    K = records.count
-    amounts: dict[str, FloatArray] = {record.name: np.zeros((1, K)) for record in inlet.records}
-    enthalpy, entropy, energy, lowest = (np.zeros((1, K)) for _ in range(4))
+    own = stream_changes(streams, changes, records.count, inlet, library, equation)
+    return with_records(own, records, inlet)
+
+
+def with_records(own: InletChanges, records: RecordChanges, inlet: Inlet) -> InletChanges:
+    """The streams' own changes with those of the inlet's records."""
+    dH, dS = (inlet.amounts @ each for each in records.of(inlet.records))
+    return replace(
+        own,
+        enthalpy=own.enthalpy + dH,
+        entropy=own.entropy + dS,
+        internal_energy=own.internal_energy + dH,
+    )
+
+
+def stream_changes(
+    streams: Sequence[Stream],
+    changes: Sequence[StreamChanges],
+    count: int,
+    inlet: Inlet,
+    library: Library,
+    equation: Equation | None = None,
+) -> InletChanges:
+    """The same but for the records' numbers, of ``count`` changes."""
+    amounts = {record.name: np.zeros((1, count)) for record in inlet.records}
+    enthalpy, entropy, energy, lowest = (np.zeros((1, count)) for _ in range(4))
     for stream, change in zip(streams, changes, strict=True):
         part = [library[name] for name in stream.amounts]
-        of_stream = _mixture_changes(stream, change, part, records, equation)
-        for name in stream.amounts:
-            if name in change.amounts:
-                amounts[name] = amounts[name] + change.amounts[name]
-        enthalpy = enthalpy + of_stream[0]
-        entropy = entropy + of_stream[1]
-        energy = energy + of_stream[2]
+        dn = [change.amounts.get(record.name, np.zeros((1, count))) for record in part]
+        for record, amount in zip(part, dn, strict=True):
+            amounts[record.name] = amounts[record.name] + amount
+        if any(changed.any() for changed in (change.temperature, change.pressure, *dn)):
+            of_stream = _mixture_changes(stream, change, part, dn, equation)
+            enthalpy = enthalpy + of_stream[0]
+            entropy = entropy + of_stream[1]
+            energy = energy + of_stream[2]
         if change.pressure.any():
             is_lowest = np.asarray(stream.pressure == inlet.lowest_pressure)[:, np.newaxis]
             lowest = np.where(is_lowest, change.pressure, lowest)
@@ -121,7 +145,7 @@ def _mixture_changes(
     stream: Stream,
     change: StreamChanges,
     part: Sequence[Species],
-    records: RecordChanges,
+    dn: Sequence[FloatArray],
     equation: Equation | None,
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
     """dH, dS and dU of one stream."""
@@ -129,12 +153,6 @@ def _mixture_changes(
     values = [shared(v) for v in (stream.temperature, stream.pressure, *stream.amounts.values())]
     T, P, *each = np.broadcast_arrays(*map(np.atleast_1d, values))
     n = np.stack(each, axis=1)
-    dH, dS = (n @ own for own in records.of(part))
-    dn = [change.amounts[name] for name in stream.amounts if name in change.amounts]
-    if not any(changed.any() for changed in (change.temperature, change.pressure, *dn)):
-        return dH, dS, dH
-    nothing = np.zeros((1, records.count))
-    dn = [change.amounts.get(record.name, nothing) for record in part]
     slopes = mixture_slopes(mixture, T, P, n)
     log_dT = change.temperature / T[:, np.newaxis]
     log_dP = change.pressure / P[:, np.newaxis]
@@ -144,12 +162,12 @@ def _mixture_changes(
         return np.asarray(row)
 
     pV, Cp = slopes.room, slopes.heat_capacity
-    enthalpy = total(slopes.enthalpies, Cp * T, slopes.enthalpy_by_pressure) + dH
+    enthalpy = total(slopes.enthalpies, Cp * T, slopes.enthalpy_by_pressure)
     room = total(slopes.rooms, pV * slopes.expansion, pV * (1.0 + slopes.compression))
     of_solids = total(mixture.pressure_terms(P), 0.0 * T, P * (n @ mixture.volumes))
     return (
         enthalpy,
-        total(slopes.entropies, Cp, slopes.entropy_by_pressure) + dS,
+        total(slopes.entropies, Cp, slopes.entropy_by_pressure),
         enthalpy - room - of_solids,
     )
 

@@ -15,6 +15,7 @@ from reactor.test_stage_changes import (
     STATES,
     Changes,
     Data,
+    K,
     make_changes,
     make_data,
     solved,
@@ -30,7 +31,7 @@ from gibbsmin.reactor.kernel.form import deviation_form
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.reactor.stage_changes import StageChanges, stage_changes
-from gibbsmin.reactor.stream_changes import InletChanges, inlet_changes
+from gibbsmin.reactor.stream_changes import InletChanges, inlet_changes, stream_changes
 from gibbsmin.thermo.library import load_library
 
 FloatArray = npt.NDArray[np.float64]
@@ -52,9 +53,13 @@ def both(
     inlet = inlet_changes(
         data.streams, changes.streams, changes.records, states.inlet, data.library
     )
-    rest = (data.specification, boundary, changes.asked, inlet, changes.records, data.library)
-    found = stage_changes(states, *rest)
-    return states, inlet, found, stage_deviations(solve, states, *rest, passes=True)
+    asked = (data.specification, boundary, changes.asked)
+    found = stage_changes(states, *asked, inlet, changes.records, data.library)
+    own = stream_changes(data.streams, changes.streams, K, states.inlet, data.library)
+    deviations = stage_deviations(
+        solve, states, *asked, own, changes.records, data.library, passes=True
+    )
+    return states, inlet, found, deviations
 
 
 def root(changes: FloatArray) -> FloatArray:

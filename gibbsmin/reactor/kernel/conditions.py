@@ -21,14 +21,15 @@ from gibbsmin.reactor.kernel.storage import (
 def settle_conditions(laid: Laid, states: States, given: Given, scratch: Scratch, b: int) -> bool:
     """Put d ln T and d ln P into the specification, and both into every change of the amounts.
 
-    Rows of contents then hold their whole change along the K columns, and the last two columns of
-    the contents' scratch row are free.
+    What is taken up of enthalpy (or energy) and entropy then stands in the contents.
     """
     pV = fill_contents(laid, states, scratch, b)
+    take_off_inlet(laid, states, given, scratch, b)
     contents, T, P = scratch.contents, states.temperature[b], states.pressure[b]
     width = contents.shape[1]
     count = width - 2
-    thermal = given.thermal[b if given.thermal.shape[0] > 1 else 0]
+    heat = given.heat[b if given.heat.shape[0] > 1 else 0]
+    temperature = given.temperature[b if given.temperature.shape[0] > 1 else 0]
     room = given.room[b if given.room.shape[0] > 1 else 0]
     asked = contents[1] if laid.kind == AT_ENTROPY else contents[0]
     a, c = (1.0, 0.0) if laid.kind == AT_TEMPERATURE else (asked[count], asked[count + 1])
@@ -38,7 +39,12 @@ def settle_conditions(laid: Laid, states: States, given: Given, scratch: Scratch
     determinant = a * e - c * d
     log_T, log_P = scratch.solved[0], scratch.solved[1]
     for k in range(count):
-        of_T = thermal[k] / T if laid.kind == AT_TEMPERATURE else thermal[k] - asked[k]
+        if laid.kind == AT_TEMPERATURE:
+            of_T = temperature[k] / T
+        elif laid.kind == AT_ENTROPY:
+            of_T = -asked[k]
+        else:
+            of_T = heat[k] - asked[k]
         if laid.closed:
             of_P = contents[2, k] / pV - room[k] / states.volume[b]
         else:
@@ -103,3 +109,14 @@ def fill_contents(laid: Laid, states: States, scratch: Scratch, b: int) -> float
         pressure_work = P * of_solids
     content[count + 1] += pressure_work
     return pV
+
+
+def take_off_inlet(laid: Laid, states: States, given: Given, scratch: Scratch, b: int) -> None:
+    """Less what enters, by its own changes and by those of its records' numbers."""
+    content, entropy = scratch.contents[0], scratch.contents[1]
+    count = content.size - 2
+    add(content, -1.0, given.content[b if given.content.shape[0] > 1 else 0], count)
+    add(entropy, -1.0, given.entropy[b if given.entropy.shape[0] > 1 else 0], count)
+    for f in range(laid.fed_enthalpies.shape[0]):
+        add(content, -states.fed[b, f], laid.fed_enthalpies[f], count)
+        add(entropy, -states.fed[b, f], laid.fed_entropies[f], count)

@@ -37,14 +37,14 @@ def deviate_states(
     first: int,
     last: int,
 ) -> None:
-    """Write the deviations of the states from first up to last into the columns of ``out``."""
+    """Write the deviations of the states from first up to last into the rows of ``out``."""
     for b in range(first, last):
         found = states.usable[b] and respond(laid, states, given, scratch, b)
         if found and settle_conditions(laid, states, given, scratch, b):
             write_deviations(laid, states, given, scratch, passed, out, b)
             continue
-        for r in range(out.shape[0]):
-            out[r, b] = nan
+        for r in range(out.shape[1]):
+            out[b, r] = nan
         if passed.temperature.shape[0] > 0:
             passed.temperature[b] = nan
             passed.pressure[b] = nan
@@ -65,24 +65,21 @@ def write_deviations(
     T, P, n, gas = states.temperature[b], states.pressure[b], states.amounts[b], laid.gas
     log_T, log_P = scratch.solved[0], scratch.solved[1]
     row = scratch.contents[3]
-    out[TEMPERATURE, b] = T * deviation(log_T, count)
-    out[PRESSURE, b] = P * deviation(log_P, count)
+    out[b, TEMPERATURE] = T * deviation(log_T, count)
+    out[b, PRESSURE] = P * deviation(log_P, count)
 
-    entering = given.content[b if given.content.shape[0] > 1 else 0]
     heat_in = given.heat[b if given.heat.shape[0] > 1 else 0]
     for k in range(count):
         if laid.kind == AT_TEMPERATURE:
-            row[k] = scratch.contents[0, k] - entering[k]
+            row[k] = scratch.contents[0, k]
         else:
             row[k] = heat_in[k]
-    out[HEAT, b] = deviation(row, count)
-    entropy_in = given.entropy[b if given.entropy.shape[0] > 1 else 0]
+    out[b, HEAT] = deviation(row, count)
     boundary = states.boundary[b]
     along = states.heat[b] / boundary**2 * T if laid.boundary_follows else 0.0
     for k in range(count):
-        generated = scratch.contents[1, k] - entropy_in[k]
-        row[k] = generated - row[k] / boundary + along * log_T[k]
-    out[ENTROPY_GENERATION, b] = nan if states.needs_compressor[b] else deviation(row, count)
+        row[k] = scratch.contents[1, k] - row[k] / boundary + along * log_T[k]
+    out[b, ENTROPY_GENERATION] = nan if states.needs_compressor[b] else deviation(row, count)
 
     total = 0.0
     for k in range(count):
@@ -99,12 +96,12 @@ def write_deviations(
             for k in range(count):
                 change = changes[k] - y * row[k]
                 squares += change * change
-            out[place, b] = sqrt(squares) / total
+            out[b, place] = sqrt(squares) / total
         else:
-            out[place, b] = deviation(scratch.amounts[i], count)
+            out[b, place] = deviation(scratch.amounts[i], count)
         place += 1
     for c in range(laid.condensed.size):
-        out[place, b] = deviation(scratch.energies[laid.condensed[c]], count)
+        out[b, place] = deviation(scratch.energies[laid.condensed[c]], count)
         place += 1
     write_conversions(laid, states, given, scratch, out, place, b)
     if passed.temperature.shape[0] > 0:
@@ -144,4 +141,4 @@ def write_conversions(
             for j in range(laid.same.shape[1]):
                 if laid.same[f, j]:
                     add(row, left, changed[j], count)
-        out[place + f, b] = deviation(row, count) / entering
+        out[b, place + f] = deviation(row, count) / entering

@@ -23,7 +23,8 @@ class Laid(NamedTuple):
     ``matrix`` (m, S) is A and ``feed`` (m, F) its columns of the feed's records.  ``condensed``
     lists the columns that are no gases, ``same`` (F, F) and ``forms`` (F, S) tell which records
     are forms of a fed one.  ``enthalpies`` and ``entropies`` (S, K) are changes of the records'
-    numbers.  ``kind`` is one of the three above.
+    numbers, those after ``fed_`` (F, K) of the records that enter.  ``kind`` is one of the three
+    above.
     """
 
     matrix: FloatArray
@@ -35,6 +36,8 @@ class Laid(NamedTuple):
     forms: BoolArray
     enthalpies: FloatArray
     entropies: FloatArray
+    fed_enthalpies: FloatArray
+    fed_entropies: FloatArray
     kind: int
     closed: bool
     boundary_follows: bool
@@ -70,8 +73,9 @@ class Given(NamedTuple):
     """K changes of what enters and of what is asked; a first axis of 1 stands for all states.
 
     ``energies`` (B, S, K) are changes of g̃ that the records' numbers alone do not give, or empty.
-    ``thermal`` is the change of the temperature, content or entropy that is asked for, ``room``
-    that of the pressure or, in a closed vessel, of the volume.
+    ``content`` and ``entropy`` are those of what enters, but for the records' numbers.  ``heat``
+    and ``temperature`` are asked for, and so is ``room``: the pressure or, in a closed vessel, the
+    volume.
     """
 
     energies: FloatArray
@@ -79,7 +83,7 @@ class Given(NamedTuple):
     content: FloatArray
     entropy: FloatArray
     heat: FloatArray
-    thermal: FloatArray
+    temperature: FloatArray
     room: FloatArray
 
 
@@ -104,4 +108,4 @@ class Scratch(NamedTuple):
     right: FloatArray  # (m + 1, J)
     solved: FloatArray  # (m + 1, J)
     scale: FloatArray  # (m + 1,)
-    contents: FloatArray  # (4, J): enthalpy or energy, entropy, room of the gas, a row at hand
+    contents: FloatArray  # (4, J): taken up of enthalpy or energy, of entropy, P V, a row at hand
