@@ -129,10 +129,10 @@ def _laid(
         condensed=np.flatnonzero(~model.gas),
         same=_forms(fed, fed),
         forms=_forms(fed, model.records),
-        enthalpies=_plain(dH),
-        entropies=_plain(dS),
-        fed_enthalpies=_plain(fed_dH),
-        fed_entropies=_plain(fed_dS),
+        enthalpies=_widened(dH),
+        entropies=_widened(dS),
+        fed_enthalpies=_widened(fed_dH),
+        fed_entropies=_widened(fed_dS),
         kind=kind,
         closed=specification.volume is not None,
         boundary_follows=boundary_temperature is None,
@@ -140,6 +140,11 @@ def _laid(
         gas_constant=GAS_CONSTANT,
         standard_pressure=STANDARD_PRESSURE,
     )
+
+
+def _widened(columns: FloatArray) -> FloatArray:
+    """With 0 along ln T and ln P."""
+    return np.pad(columns, ((0, 0), (0, 2)))
 
 
 def _forms(fed: Sequence[Species], records: Sequence[Species]) -> BoolArray:

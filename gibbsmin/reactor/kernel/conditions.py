@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from math import log
 
+from gibbsmin.arrays import FloatArray
 from gibbsmin.reactor.kernel.rows import add
 from gibbsmin.reactor.kernel.storage import (
     AT_ENTROPY,
@@ -18,7 +19,7 @@ from gibbsmin.reactor.kernel.storage import (
 )
 
 
-def settle_conditions(laid: Laid, states: States, given: Given, scratch: Scratch, b: int) -> bool:
+def settle_conditions(laid: Laid, states: States, given: Given, scratch: Scratch, b: int) -> None:
     """Put d ln T and d ln P into the specification, and both into every change of the amounts.
 
     What is taken up of enthalpy (or energy) and entropy then stands in the contents.
@@ -51,17 +52,24 @@ def settle_conditions(laid: Laid, states: States, given: Given, scratch: Scratch
             of_P = room[k] / P
         log_T[k] = (of_T * e - c * of_P) / determinant
         log_P[k] = (a * of_P - of_T * d) / determinant
+    moved = False
+    for k in range(count):
+        moved |= log_T[k] != 0.0 or log_P[k] != 0.0
+    if not moved:
+        return
     for i in range(laid.gas.size):
-        for row in (scratch.amounts[i], scratch.energies[i]):
-            along_T, along_P = row[count], row[count + 1]
-            for k in range(count):
-                row[k] += along_T * log_T[k] + along_P * log_P[k]
-    for r in range(2):
-        row = contents[r]
-        along_T, along_P = row[count], row[count + 1]
-        for k in range(count):
-            row[k] += along_T * log_T[k] + along_P * log_P[k]
-    return True
+        follow(scratch.amounts[i], log_T, log_P, count)
+        if not laid.gas[i]:
+            follow(scratch.energies[i], log_T, log_P, count)
+    follow(contents[0], log_T, log_P, count)
+    follow(contents[1], log_T, log_P, count)
+
+
+def follow(row: FloatArray, log_T: FloatArray, log_P: FloatArray, count: int) -> None:
+    """What d ln T and d ln P make of a row."""
+    along_T, along_P = row[count], row[count + 1]
+    for k in range(count):
+        row[k] += along_T * log_T[k] + along_P * log_P[k]
 
 
 def fill_contents(laid: Laid, states: States, scratch: Scratch, b: int) -> float:
@@ -92,10 +100,10 @@ def fill_contents(laid: Laid, states: States, scratch: Scratch, b: int) -> float
         elif laid.closed:
             per_mole -= laid.volumes[i] * (P - P0)
         if gas[i] or n[i] > 0.0:
-            add(content, per_mole, changes, width)
-            add(entropy, disorder, changes, width)
-            add(content, n[i], laid.enthalpies[i], count)
-            add(entropy, n[i], laid.entropies[i], count)
+            of_H, of_S = laid.enthalpies[i], laid.entropies[i]
+            for k in range(width):
+                content[k] += per_mole * changes[k] + n[i] * of_H[k]
+                entropy[k] += disorder * changes[k] + n[i] * of_S[k]
     pV: float = total * R * T
     Cp = states.heat_capacity[b]
     content[count] += Cp * T

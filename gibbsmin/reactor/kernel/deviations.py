@@ -39,8 +39,8 @@ def deviate_states(
 ) -> None:
     """Write the deviations of the states from first up to last into the rows of ``out``."""
     for b in range(first, last):
-        found = states.usable[b] and respond(laid, states, given, scratch, b)
-        if found and settle_conditions(laid, states, given, scratch, b):
+        if states.usable[b] and respond(laid, states, given, scratch, b):
+            settle_conditions(laid, states, given, scratch, b)
             write_deviations(laid, states, given, scratch, passed, out, b)
             continue
         for r in range(out.shape[1]):

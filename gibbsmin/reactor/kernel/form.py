@@ -20,6 +20,7 @@ _INLINED = {
     "respond",
     "fill_contents",
     "take_off_inlet",
+    "follow",
     "settle_conditions",
     "write_conversions",
     "write_deviations",

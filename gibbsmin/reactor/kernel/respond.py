@@ -87,7 +87,7 @@ def fill_energies(laid: Laid, states: States, given: Given, scratch: Scratch, b:
     R = laid.gas_constant
     T, P = states.temperature[b], states.pressure[b]
     RT = R * T
-    count = laid.enthalpies.shape[1]
+    count = laid.enthalpies.shape[1] - 2
     own = given.energies.shape[0] == 0
     for i in range(laid.gas.size):
         row = scratch.energies[i]

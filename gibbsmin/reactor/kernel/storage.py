@@ -22,8 +22,8 @@ class Laid(NamedTuple):
 
     ``matrix`` (m, S) is A and ``feed`` (m, F) its columns of the feed's records.  ``condensed``
     lists the columns that are no gases, ``same`` (F, F) and ``forms`` (F, S) tell which records
-    are forms of a fed one.  ``enthalpies`` and ``entropies`` (S, K) are changes of the records'
-    numbers, those after ``fed_`` (F, K) of the records that enter.  ``kind`` is one of the three
+    are forms of a fed one.  ``enthalpies`` and ``entropies`` (S, J) are changes of the records'
+    numbers, those after ``fed_`` (F, J) of the records that enter.  ``kind`` is one of the three
     above.
     """
 

@@ -84,9 +84,8 @@ def solve_gas(laid: Laid, n: FloatArray, total: float, scratch: Scratch, count: 
             weighted = n[i] * work[scratch.rows[p], i]
             if weighted == 0.0:
                 continue
-            for q in range(count):
+            for q in range(p + 1):
                 system[p, q] += weighted * work[scratch.rows[q], i]
-            system[p, count] += weighted
             system[count, p] += weighted
             add(right[p], weighted, scratch.energies[i], width)
         add(right[count], n[i], scratch.energies[i], width)
@@ -98,8 +97,9 @@ def solve_gas(laid: Laid, n: FloatArray, total: float, scratch: Scratch, count: 
         return False
     scale[count] = 1.0 / sqrt(largest)
     for p in range(size):
-        for q in range(size):
+        for q in range(p + 1):
             system[p, q] *= scale[p] * scale[q]
+            system[q, p] = system[p, q]
     if not invert(system, size):
         return False
     for p in range(size):
