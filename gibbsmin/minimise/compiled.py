@@ -26,6 +26,7 @@ from gibbsmin.minimise.status import Method, Status
 
 _BLOCK = 16384
 
+_STRIDE = 6  # of the coarse grid that warm starts in lanes follow
 _WINDOW = 2048
 _KEPT = 128
 _LARGEST_KEPT = 2_000  # entries of a tableau
@@ -103,6 +104,7 @@ def answer_heated_batch(
         solution.method,
     )
     places = _places(network)
+    stride = _STRIDE if settings.warm_start else 1
     heated = bool(temperatures.any())
     workers = min(settings.threads or os.cpu_count() or 1, programme.states)
     rounds = -(-programme.states // (_BLOCK * workers))
@@ -121,7 +123,9 @@ def answer_heated_batch(
             own_network, lanes = in_one_memory(
                 (network, lane_scratch_for(network, places, waiting))
             )
-            form.solve_in_lanes(own_network, lanes, energies, supplies, tolerances, own_answers)
+            form.solve_in_lanes(
+                own_network, lanes, energies, supplies, tolerances, stride, own_answers
+            )
             if (own_answers.status == Status.CERTIFIED).all():
                 return
         own_network, scratch = in_one_memory((network, scratch_for(network, pieces, breaks)))

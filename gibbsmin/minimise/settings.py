@@ -25,9 +25,9 @@ class Settings:
         Whether the compiled method goes first (default), the conic one taking what it leaves;
         otherwise the conic method answers every state.
     warm_start
-        Whether the compiled method starts a state from the one before it in the batch where
-        that is near (default).  The answer is the same to 1e-10.  Small systems are solved eight
-        states at a time instead, which is faster than a start from a neighbour.
+        Whether the compiled method starts a state from others of the batch where those are near
+        (default): the one before it, or in small systems, of which it solves eight states at a
+        time, a coarse grid.  The answer is the same to 1e-10.
     threads
         Threads of the compiled method; 0 (default) for as many as there are processors.
 

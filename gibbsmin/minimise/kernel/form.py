@@ -33,12 +33,18 @@ _MODULES = (
 )
 _VECTORS = ("vector", "vector_code")
 _SIDE_BY_SIDE = ("elementary", "lane_equations", "lane_newton", "lane_proof")
-_LANES = (*_MODULES, *_SIDE_BY_SIDE, "lane_batch")
+_LANES = (*_MODULES, *_SIDE_BY_SIDE, "lane_between", "lane_batch")
 _INNERMOST = {
     "exponential",
     "logarithm",
     "start_state",
     "take_given",
+    "put_in",
+    "curve",
+    "set_node",
+    "on_curve",
+    "follow_curve",
+    "retired_rows_hold",
     "store_lane",
     "take_state",
     "keep_state",

@@ -7,8 +7,9 @@ Which path a state takes depends on that state alone, so that a batch equals a l
 from __future__ import annotations
 
 from gibbsmin.arrays import FloatArray
+from gibbsmin.minimise.kernel.lane_between import start_between
 from gibbsmin.minimise.kernel.lane_equations import evaluate_lanes, judge_phases
-from gibbsmin.minimise.kernel.lane_newton import solve_group, take_state
+from gibbsmin.minimise.kernel.lane_newton import put_in, solve_group, take_state
 from gibbsmin.minimise.kernel.lane_proof import prove_lanes
 from gibbsmin.minimise.kernel.loading import (
     CERTIFIED,
@@ -20,13 +21,13 @@ from gibbsmin.minimise.kernel.loading import (
 from gibbsmin.minimise.kernel.log_newton import guess_fractions
 from gibbsmin.minimise.kernel.pivots import forget_all, seen_from, spare_place
 from gibbsmin.minimise.kernel.residuals import list_unknowns
-from gibbsmin.minimise.kernel.simplex import find_basis, forces_zero
-from gibbsmin.minimise.kernel.storage import Answers, Lanes, LaneScratch, Network, Tableau, Window
+from gibbsmin.minimise.kernel.simplex import feeds_gas, find_basis
+from gibbsmin.minimise.kernel.storage import Answers, Lanes, LaneScratch, Network, Window
 from gibbsmin.minimise.kernel.tableau import renew_reduced
 from gibbsmin.minimise.kernel.vector import LANES
 
-_LEFT = -1
-"""Place of a state that is not for the lanes."""
+_LEFT, _UNTRIED = -1, -2
+"""Places of a state that the lanes could not prove, and of one they have yet to take."""
 
 
 def solve_in_lanes(
@@ -35,38 +36,73 @@ def solve_in_lanes(
     energies: FloatArray,
     supplies: FloatArray,
     tolerances: FloatArray,
+    stride: int,
     answers: Answers,
 ) -> None:
-    """Answer what the lanes can prove, window by window."""
+    """Answer what the lanes can prove, one stretch of states after another.
+
+    With a stride above 1, a coarse grid of every so many states is solved first, and those
+    between start from a curve through it.
+    """
     states = energies.shape[0]
-    first = 0
-    while first < states:
-        unused = scratch.pivots.taken[0] == 0
-        end = min(first + scratch.window.place.size, states)
-        last = start_window(network, scratch, energies, supplies, first, end)
-        solve_window(network, scratch, energies, supplies, tolerances, answers, first, last)
-        if last < end:
-            forget_all(scratch.pivots)
-            if last == first and unused:
-                last += 1  # more pivots than the memory holds: not for the lanes
-        first = last
+    stretch = scratch.window.kept.size
+    for first in range(0, states, stretch):
+        last = min(first + stretch, states)
+        for s in range(first, last):
+            scratch.window.kept[s - first] = _UNTRIED
+        if stride > 1:
+            solve_cold(
+                network, scratch, energies, supplies, tolerances, answers, first, last, stride
+            )
+            count = start_between(
+                network, scratch, energies, supplies, answers, first, last, stride
+            )
+            solve_members(network, scratch, energies, supplies, tolerances, answers, first, count)
+        solve_cold(network, scratch, energies, supplies, tolerances, answers, first, last, 1)
 
 
-def start_window(
+def solve_cold(
     network: Network,
     scratch: LaneScratch,
     energies: FloatArray,
     supplies: FloatArray,
+    tolerances: FloatArray,
+    answers: Answers,
     first: int,
-    end: int,
-) -> int:
-    """Start the states from ``first`` on while tableaus can be kept; return where that ends."""
-    for s in range(first, end):
-        place = start_state(network, scratch, energies[s], supplies[s], s - first)
-        if place == spare_place(scratch.pivots):
-            return s
-        scratch.window.place[s - first] = place
-    return end
+    last: int,
+    stride: int,
+) -> None:
+    """Solve every so many states of a stretch by itself, but for those already tried."""
+    window, pivots = scratch.window, scratch.pivots
+    count = 0
+    s = first
+    while s < last:
+        place = _LEFT
+        if window.kept[s - first] == _UNTRIED:
+            unused = pivots.taken[0] == 0
+            place = start_state(network, scratch, energies[s], supplies[s], count)
+            if place == spare_place(pivots) and not unused:
+                solve_members(
+                    network, scratch, energies, supplies, tolerances, answers, first, count
+                )
+                forget_all(pivots)
+                forget_places(window, last - first)
+                count = 0
+                continue
+            window.kept[s - first] = _LEFT
+            if place >= 0 and place != spare_place(pivots):
+                window.place[count] = place
+                window.state[count] = s
+                count += 1
+        s += stride
+    solve_members(network, scratch, energies, supplies, tolerances, answers, first, count)
+
+
+def forget_places(window: Window, count: int) -> None:
+    """Keep of each state only whether it was tried."""
+    for at in range(count):
+        if window.kept[at] != _UNTRIED:
+            window.kept[at] = _LEFT
 
 
 def start_state(
@@ -92,30 +128,12 @@ def start_state(
     if not feeds_gas(seen, network.gases):
         return _LEFT
     renew_reduced(state, seen)
-    window.log_total[member] = guess_fractions(
-        seen, scratch.point, scratch.equations, network.gases
-    )
-    for i in range(tableau.reduced.size):
-        window.reduced[member, i] = tableau.reduced[i]
-    for j in range(tableau.supply.size):
-        window.supply[member, j] = tableau.supply[j]
-        window.log_fraction[member, j] = scratch.point.log_fraction[j]
+    log_total = guess_fractions(seen, scratch.point, scratch.equations, network.gases)
+    put_in(window, member, tableau, scratch.point, log_total)
     return place
 
 
-def feeds_gas(tableau: Tableau, gases: int) -> bool:
-    """Whether a gas row has a supply of its own, and no row forces species to zero."""
-    fed = False
-    for j in range(tableau.rank[0]):
-        if tableau.supply[j] == 0.0:
-            if forces_zero(tableau, j):
-                return False
-        elif tableau.basis[j] < gases:
-            fed = True
-    return fed
-
-
-def solve_window(
+def solve_members(
     network: Network,
     scratch: LaneScratch,
     energies: FloatArray,
@@ -123,11 +141,11 @@ def solve_window(
     tolerances: FloatArray,
     answers: Answers,
     first: int,
-    last: int,
+    count: int,
 ) -> None:
     """Solve the states of each basis, and prove and store what was solved."""
     window, equations, lanes = scratch.window, scratch.equations, scratch.lanes
-    sort_by_place(window, scratch.pivots.taken[0], last - first)
+    sort_by_place(window, scratch.pivots.taken[0], count)
     for place in range(scratch.pivots.taken[0]):
         begin, end = window.begin[place], window.begin[place + 1]
         if begin == end:
@@ -141,30 +159,31 @@ def solve_window(
             for lane in range(LANES):
                 member = window.order[min(eight + lane, settled - 1)]
                 take_state(seen, lanes, window, lane, member)
-                take_given(network, lanes, energies, supplies, lane, first + member)
+                take_given(network, lanes, energies, supplies, lane, window.state[member])
             evaluate_lanes(seen, equations.unknown, size, lanes, network.gases)
             judge_phases(seen, equations.unknown, size, lanes, network.gases)
             prove_lanes(network, seen, lanes)
             for lane in range(min(LANES, settled - eight)):
-                s = first + window.order[eight + lane]
-                store_lane(network, lanes, tolerances, answers, lane, s)
+                member = window.order[eight + lane]
+                s = window.state[member]
+                if store_lane(network, lanes, tolerances, answers, lane, s):
+                    window.kept[s - first] = place
+                    window.kept_total[s - first] = window.log_total[member]
 
 
 def sort_by_place(window: Window, places: int, count: int) -> None:
-    """List the window's members place by place, those of one place in their own order."""
+    """List the first members of the window place by place, those of one place in order."""
     begin = window.begin
     for place in range(places + 2):
         begin[place] = 0
     for member in range(count):
-        if window.place[member] != _LEFT:
-            begin[window.place[member] + 2] += 1
+        begin[window.place[member] + 2] += 1
     for place in range(places):
         begin[place + 2] += begin[place + 1]
     for member in range(count):
-        if window.place[member] != _LEFT:
-            at = begin[window.place[member] + 1]
-            window.order[at] = member
-            begin[window.place[member] + 1] = at + 1
+        at = begin[window.place[member] + 1]
+        window.order[at] = member
+        begin[window.place[member] + 1] = at + 1
 
 
 def take_given(
@@ -189,12 +208,12 @@ def store_lane(
     answers: Answers,
     lane: int,
     s: int,
-) -> None:
-    """Write a lane's answer where its certificate stands."""
+) -> bool:
+    """Write a lane's answer where its certificate stands; return whether it does."""
     for k in range(tolerances.size):
         answers.figures[s, k] = lanes.figures[k, lane]
     if not is_proved(answers.figures[s], tolerances):
-        return
+        return False
     for i in range(network.order.size):
         column = network.order[i]
         answers.amounts[s, column] = lanes.amounts[i, lane]
@@ -203,3 +222,4 @@ def store_lane(
         answers.multipliers[s, e] = lanes.multipliers[e, lane]
     answers.status[s] = CERTIFIED
     answers.method[s] = COMPILED
+    return True

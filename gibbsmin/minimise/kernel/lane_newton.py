@@ -16,7 +16,7 @@ from gibbsmin.minimise.kernel.lane_equations import (
     list_entries,
     solve_lanes,
 )
-from gibbsmin.minimise.kernel.storage import Lanes, Tableau, Window
+from gibbsmin.minimise.kernel.storage import Lanes, Point, Tableau, Window
 from gibbsmin.minimise.kernel.vector import LANES, larger, load, magnitude, smaller, spread, store
 
 _LAST = 1e-7  # residual from which one step more leaves less than round-off
@@ -77,6 +77,16 @@ def solve_group(
                 following += 1
                 busy += 1
     return settled
+
+
+def put_in(window: Window, member: int, tableau: Tableau, point: Point, log_total: float) -> None:
+    """Let a state that was started wait in the window."""
+    for i in range(tableau.reduced.size):
+        window.reduced[member, i] = tableau.reduced[i]
+    for j in range(tableau.supply.size):
+        window.supply[member, j] = tableau.supply[j]
+        window.log_fraction[member, j] = point.log_fraction[j]
+    window.log_total[member] = log_total
 
 
 def take_state(tableau: Tableau, lanes: Lanes, window: Window, lane: int, member: int) -> None:

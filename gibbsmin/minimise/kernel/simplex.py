@@ -252,3 +252,15 @@ def forces_zero(tableau: Tableau, j: int) -> bool:
         if tableau.entries[j, i] < 0.0:
             return False
     return True
+
+
+def feeds_gas(tableau: Tableau, gases: int) -> bool:
+    """Whether a gas row has a supply of its own, and no row forces species to zero."""
+    fed = False
+    for j in range(tableau.rank[0]):
+        if tableau.supply[j] == 0.0:
+            if forces_zero(tableau, j):
+                return False
+        elif tableau.basis[j] < gases:
+            fed = True
+    return fed

@@ -179,11 +179,14 @@ class Lanes(NamedTuple):
 
 
 class Window(NamedTuple):
-    """States that wait for the lanes: where each starts and stands, and the place of its basis.
+    """States that wait for the lanes: which each is, where it stands, the place of its basis.
 
-    ``order`` lists the members place by place, those of place p from ``begin[p]`` on.
+    ``order`` lists the members place by place, those of place p from ``begin[p]`` on.  ``kept`` and
+    ``kept_total`` are place and ln N of each state of the stretch at hand that was proved.
+    ``node`` and ``weight`` are up to four states of it with a curve through them.
     """
 
+    state: IntArray
     place: IntArray
     reduced: FloatArray
     supply: FloatArray
@@ -191,6 +194,10 @@ class Window(NamedTuple):
     log_total: FloatArray
     order: IntArray
     begin: IntArray
+    kept: IntArray
+    kept_total: FloatArray
+    node: IntArray
+    weight: FloatArray
 
 
 class LaneScratch(NamedTuple):
@@ -359,6 +366,7 @@ def lanes_for(rows: int, species: int) -> Lanes:
 def window_for(rows: int, species: int, places: int, members: int) -> Window:
     """Memory for the states that wait for the lanes."""
     return Window(
+        state=np.zeros(members, dtype=np.int64),
         place=np.zeros(members, dtype=np.int64),
         reduced=np.zeros((members, species)),
         supply=np.zeros((members, rows)),
@@ -366,6 +374,10 @@ def window_for(rows: int, species: int, places: int, members: int) -> Window:
         log_total=np.zeros(members),
         order=np.zeros(members, dtype=np.int64),
         begin=np.zeros(places + 3, dtype=np.int64),
+        kept=np.zeros(members, dtype=np.int64),
+        kept_total=np.zeros(members),
+        node=np.zeros(4, dtype=np.int64),
+        weight=np.zeros(4),
     )
 
 
