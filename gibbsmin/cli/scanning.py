@@ -45,7 +45,7 @@ def scan(
 
     from gibbsmin.jobs.case import load_case
     from gibbsmin.jobs.conditions import Conditions, conditions_from, conditions_of
-    from gibbsmin.jobs.remarks import own_records_notes
+    from gibbsmin.jobs.scan_remarks import scan_remarks
     from gibbsmin.present.cluster import connected
     from gibbsmin.present.conditions_file import read_conditions
     from gibbsmin.present.scan_files import require_scan_ending
@@ -85,7 +85,7 @@ def scan(
         typer.echo("Broken off; the same command goes on where this stopped.", err=True)
         raise typer.Exit(BROKEN_OFF) from None
     print_view(tally.summary(path))
-    for note in own_records_notes(loaded.own_records):
+    for note in scan_remarks(loaded, conditions):
         print_view(note)
     if plot:
         from gibbsmin.jobs.scan import Scan

@@ -31,9 +31,10 @@ def onset(
     A second axis gives the boundary curve.  Exit code 1 means that an answer is not certified.
     """
     from gibbsmin.jobs.case import load_case
+    from gibbsmin.jobs.conditions import conditions_of
     from gibbsmin.jobs.onset import onset as onset_of
     from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
-    from gibbsmin.jobs.remarks import own_records_notes
+    from gibbsmin.jobs.scan_remarks import scan_remarks
     from gibbsmin.jobs.target import target as target_of
     from gibbsmin.present.outlet_files import require_ending
     from gibbsmin.present.search_document import onset_document, target_document
@@ -69,7 +70,7 @@ def onset(
             from gibbsmin.present.plots.style import write_plot
 
             write_plot(plot_onset(loaded, crossings), Path(plot))
-    notes = own_records_notes(loaded.own_records)
+    notes = scan_remarks(loaded, conditions_of(loaded))
     if notes:
         document["notes"] = list(notes)
     if out:

@@ -184,35 +184,38 @@ def changed_gas_warning(before: StageCase, stage: StageCase) -> str:
 
 
 def ideal_gas_warning(states: StageStates) -> str:
-    """How an equation of state would move the first state's main fractions, empty if within 1 %.
+    """How an equation of state would move the main fractions, empty if within 1 % in all states.
 
     An estimate: the fugacity coefficients of the ideal gas's composition, and one solution with
-    them.
+    them.  Of several states the one that moves most is told.
     """
     model, found = states.model, states.equilibria
-    n = found.amounts[:1]
-    if not n[0, model.gas].any():
+    n, T, P = found.amounts, found.temperature, found.pressure
+    solved = found.solution.certified & n[:, model.gas].any(axis=1)
+    if not solved.any():
         return ""
     real = Mixture.of(model.properties, Equation.SOAVE_REDLICH_KWONG)
-    T, P = found.temperature[:1], found.pressure[:1]
-    logs = real.log_fugacity(T, P, n)
-    programme = model.programme(T, P, states.inlet.amounts[:1])
+    programme = model.programme(T, P, states.inlet.amounts)
+    logs = real.log_fugacity(T, P, np.where(solved[:, np.newaxis], n, 0.0))
     moved = minimise(replace(programme, energies=programme.energies + logs)).amounts
-    before, after = (_fractions(model.gas, amounts[0]) for amounts in (n, moved))
-    change = np.where(before >= _MAIN, after / np.where(before > 0.0, before, 1.0) - 1.0, 0.0)
-    place = int(np.argmax(np.abs(change)))
-    if not abs(change[place]) > _MOVED:
+    before, after = (_fractions(model.gas, amounts) for amounts in (n, moved))
+    counted = (before >= _MAIN) & solved[:, np.newaxis]
+    change = np.where(counted, after / np.where(counted, before, 1.0) - 1.0, 0.0)
+    state, place = np.unravel_index(int(np.nanargmax(np.abs(change))), change.shape)
+    if not abs(change[state, place]) > _MOVED:
         return ""
+    where = f" at {T[state]:.5g} K and {P[state] / 1e5:.4g} bar" if len(n) > 1 else ""
     return (
         f"The gas is taken as ideal; an equation of state would move {model.records[place].name} "
-        f"from about {100 * before[place]:.3g} % to {100 * after[place]:.3g} %: set gas = "
-        f'"{Equation.SOAVE_REDLICH_KWONG.value}".'
+        f"from about {100 * before[state, place]:.3g} % to {100 * after[state, place]:.3g} %"
+        f'{where}: set gas = "{Equation.SOAVE_REDLICH_KWONG.value}".'
     )
 
 
 def _fractions(gas: BoolArray, amounts: FloatArray) -> FloatArray:
     n = np.where(gas, amounts, 0.0)
-    return np.asarray(n / n.sum())
+    total = n.sum(axis=1, keepdims=True)
+    return np.asarray(n / np.where(total > 0.0, total, np.nan))
 
 
 def _gas_state(states: StageStates) -> GasState | None:

@@ -1,0 +1,48 @@
+"""What is said of many states at once."""
+
+from __future__ import annotations
+
+from copy import deepcopy
+from typing import Any
+
+import gibbsmin
+from gibbsmin.jobs.conditions import conditions_of
+from gibbsmin.jobs.scan_remarks import scan_remarks
+
+AMMONIA: dict[str, Any] = {
+    "feed": {
+        "gas": {
+            "temperature": "400 degC",
+            "pressure": "300 bar",
+            "unit": "mol",
+            "amounts": {"H2": 3.0, "N2": 1.0},
+        }
+    },
+    "outlet": {"temperature": "450 degC", "pressure": "150 bar"},
+    "species": {"consider": ["H2", "N2", "NH3"]},
+    "axis": [{"vary": "outlet.pressure", "values": ["1 bar", "200 bar", "10 bar"]}],
+}
+
+
+def remarks(**top: Any) -> tuple[str, ...]:
+    case = gibbsmin.load_case(deepcopy(AMMONIA) | top)
+    return scan_remarks(case, conditions_of(case))
+
+
+def test_an_ideal_gas_is_told_of_in_the_state_where_it_misleads_most() -> None:
+    (told,) = remarks()
+    assert told.startswith("The gas is taken as ideal; an equation of state would move ")
+    assert told.endswith(' at 723.15 K and 200 bar: set gas = "Soave-Redlich-Kwong".')
+
+
+def test_nothing_is_said_at_low_pressure_or_of_a_real_gas() -> None:
+    assert remarks(axis=[{"vary": "outlet.pressure", "values": ["1 bar", "2 bar"]}]) == ()
+    assert remarks(outlet=AMMONIA["outlet"] | {"gas": "Peng-Robinson"}) == ()
+
+
+def test_states_that_are_refused_or_unsolved_do_not_hide_the_others() -> None:
+    drops = {"vary": "outlet.pressure_drop", "values": ["1 bar", "310 bar"]}
+    assert remarks(outlet={"temperature": "450 degC", "pressure_drop": "1 bar"}, axis=[drops]) == ()
+    heats = {"vary": "outlet.heat", "values": ["-5000 kJ", "0 kJ"]}
+    (told,) = remarks(outlet={"heat": "0 kJ", "pressure": "250 bar"}, axis=[heats])
+    assert told.endswith(' and 250 bar: set gas = "Soave-Redlich-Kwong".')
