@@ -42,6 +42,7 @@ _INNERMOST = {
     "put_in",
     "curve",
     "set_node",
+    "same_phases",
     "on_curve",
     "follow_curve",
     "retired_rows_hold",

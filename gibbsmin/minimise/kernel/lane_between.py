@@ -29,20 +29,22 @@ def start_between(
     last: int,
     stride: int,
 ) -> int:
-    """Put the states between solved ones of one basis into the window; return their number."""
+    """Put the states between solved ones of equal phases into the window; return their number."""
     window = scratch.window
     intervals = (last - first - 1) // stride
     count = 0
     for k in range(intervals):
         begin = first + k * stride
         place = window.kept[k * stride]
-        if place < 0 or window.kept[(k + 1) * stride] != place:
+        if not same_phases(scratch, place, window.kept[(k + 1) * stride], network.gases):
             continue
         seen = seen_from(scratch.pivots, place, scratch.tableau)
         for s in range(begin + 1, begin + stride):
             if not load_state(network, scratch.state, energies[s], supplies[s]):
                 continue
-            nodes = curve(network, window, seen, energies, supplies, first, k, intervals, stride, s)
+            nodes = curve(
+                network, scratch, seen, energies, supplies, first, k, intervals, stride, s
+            )
             if nodes == 0 or not retired_rows_hold(scratch.state, seen):
                 continue
             renew_supply(scratch.state, seen)
@@ -57,9 +59,31 @@ def start_between(
     return count
 
 
+def same_phases(scratch: LaneScratch, place: int, other: int, gases: int) -> bool:
+    """Whether two solved states have the same condensed phases: potentials turn where one ends."""
+    if place == other:
+        return place >= 0
+    if place < 0 or other < 0:
+        return False
+    pivots = scratch.pivots
+    balance = 0
+    for j in range(pivots.rank[place]):
+        member = pivots.basis[place, j]
+        if member >= gases:
+            balance += 1
+            found = False
+            for h in range(pivots.rank[other]):
+                found = found or pivots.basis[other, h] == member
+            if not found:
+                return False
+    for h in range(pivots.rank[other]):
+        balance -= pivots.basis[other, h] >= gases
+    return balance == 0
+
+
 def curve(
     network: Network,
-    window: Window,
+    scratch: LaneScratch,
     tableau: Tableau,
     energies: FloatArray,
     supplies: FloatArray,
@@ -73,12 +97,14 @@ def curve(
 
     Return how many they are, 0 where neither does.
     """
+    window = scratch.window
     place = window.kept[k * stride]
     start = min(max(k - 1, 0), intervals - 3)
     cubic = intervals >= 3
     if cubic:
         for p in range(4):
-            cubic = cubic and window.kept[(start + p) * stride] == place
+            node = window.kept[(start + p) * stride]
+            cubic = cubic and same_phases(scratch, place, node, network.gases)
     if cubic:
         t = (s - first) / stride - start
         set_node(window, 0, first + start * stride, -(t - 1.0) * (t - 2.0) * (t - 3.0) / 6.0)
