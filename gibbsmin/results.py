@@ -142,13 +142,13 @@ class StageOutlet:
     heat : heat added, or removed when negative
     shaft_work : work put in by the shaft, or gained when negative
     entropy : entropy generation and lost work
+    notes, hazards : sentences on how the figures came about, and on what is toxic or flammable
     activities : p(O2), a(C), … of the elements present
     figures : molar mass, density, heat capacities and what else follows from the state
     extents : of an independent set of reactions
     yields : where each element went
     audit : records that are not in the outlet, the most weighty first
-    warnings, notes, hazards : sentences on what limits the figures, on how they came about, and
-        on what is toxic or flammable in the outlet
+    warnings : sentences on what limits the figures, or why there are none
     real_gas : what its equation of state says; None for an ideal gas
     """
 
@@ -166,14 +166,14 @@ class StageOutlet:
     heat: float
     shaft_work: float
     entropy: EntropyGeneration
-    activities: tuple[ElementActivity, ...]
-    figures: tuple[Figure, ...]
-    extents: tuple[Extent, ...]
-    yields: tuple[ElementYield, ...]
-    audit: tuple[AuditEntry, ...]
-    warnings: tuple[str, ...]
     notes: tuple[str, ...]
     hazards: tuple[str, ...]
+    activities: tuple[ElementActivity, ...] = ()
+    figures: tuple[Figure, ...] = ()
+    extents: tuple[Extent, ...] = ()
+    yields: tuple[ElementYield, ...] = ()
+    audit: tuple[AuditEntry, ...] = ()
+    warnings: tuple[str, ...] = ()
     real_gas: RealGasOutlet | None = None
 
     @property

@@ -25,11 +25,8 @@ def warnings(
     entries: Sequence[AuditEntry],
     gas_warnings: Iterable[str],
     entropy_remark: str,
-    status: Status,
 ) -> tuple[str, ...]:
     """Sentences on what limits the figures, the gravest first."""
-    if status is not Status.CERTIFIED:
-        return (f"Not certified, so no figure is given: {status.sentence}",)
     sentences = [
         *_audit_warnings(entries[:AUDIT_LENGTH]),
         *_range_warnings(model, feeds, state),
@@ -39,6 +36,11 @@ def warnings(
     if entropy_remark:
         sentences.append(f"Entropy: {entropy_remark}.")
     return tuple(sentences)
+
+
+def uncertified_warning(status: Status) -> str:
+    """Why there are no figures."""
+    return f"Not certified, so no figure is given: {status.sentence}"
 
 
 def own_records_notes(records: Iterable[Species]) -> tuple[str, ...]:

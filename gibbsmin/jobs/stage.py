@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import replace
 
 import numpy as np
 
@@ -17,7 +18,7 @@ from gibbsmin.jobs.real_gas import (
     real_gas_outlet,
     real_gas_warnings,
 )
-from gibbsmin.jobs.remarks import outlet_hazards, warnings
+from gibbsmin.jobs.remarks import outlet_hazards, uncertified_warning, warnings
 from gibbsmin.jobs.stage_remarks import method_notes, require_an_answer, service_notes
 from gibbsmin.jobs.train import Step
 from gibbsmin.minimise import Method, Status
@@ -58,18 +59,7 @@ def stage_outlet(
         amounts=found.amounts[0],
         multipliers=found.solution.multipliers[0],
     )
-    certified = status is Status.CERTIFIED
-    entropy = _entropy_generation(stage, states.energy)
-    activities = element_activities(model, state, library) if certified else ()
-    left_out = stage.chemistry.selection.not_missed(model.feed_records, library)
-    entries = audit(model, state, library, left_out) if certified else ()
-    removed = {
-        record.name: amount * stage.removed[record.name]
-        for record, amount in zip(model.records, state.amounts.tolist(), strict=True)
-        if record.name in stage.removed
-    }
-    gas = real_gas_outlet(step, ideal) if certified else None
-    return StageOutlet(
+    outlet = StageOutlet(
         name=stage.name,
         status=status,
         method=tuple(Method)[found.solution.method[0]],
@@ -77,34 +67,54 @@ def stage_outlet(
         pressure=state.pressure,
         records=model.records,
         amounts=state.amounts,
-        removed=removed,
+        removed={
+            record.name: amount * stage.removed[record.name]
+            for record, amount in zip(model.records, state.amounts.tolist(), strict=True)
+            if record.name in stage.removed
+        },
         certificate=_certificate(found),
         element_potentials=element_potentials(model, state),
         conversion=conversion(states.inlet, model.records, state.amounts),
         heat=float(states.energy.heat[0]),
         shaft_work=float(states.energy.shaft_work[0]),
-        entropy=entropy,
-        activities=activities,
-        figures=figures_of(step, activities, library) if certified else (),
-        extents=extents_of(states, stage.extents) if certified else (),
-        yields=yields_of(states) if certified else (),
-        audit=entries,
-        warnings=warnings(
-            model,
-            step.streams,
-            state,
-            entries,
-            _gas_warnings(step, gas, before) if certified else (),
-            entropy.remark,
-            status,
-        ),
+        entropy=_entropy_generation(stage, states.energy),
         notes=(
-            *(() if gas is None else real_gas_notes(step, gas)),
             *(remark for stream in step.streams for remark in stream.remarks),
             *service_notes(stage, model, library),
             *method_notes(model, state, found),
         ),
         hazards=outlet_hazards(model, state.amounts),
+    )
+    if status is not Status.CERTIFIED:
+        return replace(outlet, warnings=(uncertified_warning(status),))
+    return _with_findings(outlet, step, state, library, ideal, before)
+
+
+def _with_findings(
+    outlet: StageOutlet,
+    step: Step,
+    state: SolvedState,
+    library: Library,
+    ideal: Step | None,
+    before: StageCase | None,
+) -> StageOutlet:
+    """What only a certified state tells."""
+    stage, states = step.stage, step.states
+    model = states.model
+    activities = element_activities(model, state, library)
+    left_out = stage.chemistry.selection.not_missed(model.feed_records, library)
+    entries = audit(model, state, library, left_out)
+    gas = real_gas_outlet(step, ideal)
+    gas_warnings = _gas_warnings(step, gas, before)
+    return replace(
+        outlet,
+        activities=activities,
+        figures=figures_of(step, activities, library),
+        extents=extents_of(states, stage.extents),
+        yields=yields_of(states),
+        audit=entries,
+        warnings=warnings(model, step.streams, state, entries, gas_warnings, outlet.entropy.remark),
+        notes=(*(() if gas is None else real_gas_notes(step, gas)), *outlet.notes),
         real_gas=gas,
     )
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from dataclasses import asdict
 from typing import Any
 
 import numpy as np
@@ -67,28 +68,9 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
         "method": stage.method.name.lower(),
         "temperature_K": stage.temperature,
         "pressure_bar": stage.pressure / 1e5,
-        "certificate": {
-            "gap": stage.certificate.gap,
-            "balance": stage.certificate.balance,
-            "stationarity": stage.certificate.stationarity,
-        },
+        "certificate": asdict(stage.certificate),
         "unit": unit,
-        "species": [
-            {
-                "name": record.name,
-                "phase": record.phase.value,
-                "amount": amount,
-                "mole_fraction": wet,
-                "dry_mole_fraction": dry,
-            }
-            for record, amount, wet, dry in zip(
-                stage.records,
-                amounts_in(unit, stage.records, stage.amounts).tolist(),
-                stage.mole_fractions.tolist(),
-                stage.dry_mole_fractions.tolist(),
-                strict=True,
-            )
-        ],
+        "species": _species(unit, stage),
         "removed": dict(zip(stage.removed, _removed(unit, stage).tolist(), strict=True)),
         "conversion": dict(stage.conversion),
         "heat": {"value": stage.heat / 1e3, "unit": energy},
@@ -108,30 +90,39 @@ def _stage(outlet: Outlet, stage: StageOutlet) -> dict[str, Any]:
             {"name": a.label, "record": a.record, "value": a.value, "unit": a.unit}
             for a in stage.activities
         ],
-        "figures": [
-            {"name": figure.name, "value": figure.value, "unit": figure.unit}
-            for figure in stage.figures
-        ],
+        "figures": [asdict(figure) for figure in stage.figures],
         "extents": [
             {"reaction": extent.reaction, "value": to_unit(extent.value, _moles(outlet))}
             for extent in stage.extents
         ],
         "extent_unit": _moles(outlet),
-        "yields": [
-            {
-                "element": found.element,
-                "record": found.record,
-                "share": found.share,
-                "selectivity": found.selectivity,
-            }
-            for found in stage.yields
-        ],
+        "yields": [asdict(found) for found in stage.yields],
         "real_gas": _real_gas(stage),
         "warnings": list(stage.warnings),
         "notes": list(stage.notes),
         "hazards": list(stage.hazards),
         "audit": [_audit_entry(entry) for entry in stage.audit[:AUDIT_LENGTH]],
     }
+
+
+def _species(unit: str, stage: StageOutlet) -> list[dict[str, Any]]:
+    columns = zip(
+        stage.records,
+        amounts_in(unit, stage.records, stage.amounts).tolist(),
+        stage.mole_fractions.tolist(),
+        stage.dry_mole_fractions.tolist(),
+        strict=True,
+    )
+    return [
+        {
+            "name": record.name,
+            "phase": record.phase.value,
+            "amount": amount,
+            "mole_fraction": wet,
+            "dry_mole_fraction": dry,
+        }
+        for record, amount, wet, dry in columns
+    ]
 
 
 def _real_gas(stage: StageOutlet) -> dict[str, Any] | None:
@@ -147,10 +138,7 @@ def _real_gas(stage: StageOutlet) -> dict[str, Any] | None:
         "settled": gas.settled,
         "stable": gas.stable,
         "second_phase": dict(gas.second_phase),
-        "comparison": [
-            {"name": c.name, "unit": c.unit, "ideal": c.ideal, "real": c.real}
-            for c in gas.comparison
-        ],
+        "comparison": [asdict(each) for each in gas.comparison],
     }
 
 
