@@ -13,8 +13,10 @@ from gibbsmin.thermo.species import Species
 
 def _amount_of(substance: Species, records: Sequence[Species], amounts: FloatArray) -> FloatArray:
     """Of all forms of a substance, (B,); NaN where the amounts (B, S) are not known."""
-    forms = np.array([float(record.formula == substance.formula) for record in records])
-    return np.asarray(amounts @ forms)
+    forms = [k for k, record in enumerate(records) if record.formula == substance.formula]
+    if len(forms) == 1:
+        return amounts[:, forms[0]]
+    return np.asarray(amounts[:, forms].sum(axis=1) + 0.0 * amounts[:, 0])
 
 
 def conversions(

@@ -14,6 +14,7 @@ thus counted from the elements in their reference states at 298.15 K.
 
 from __future__ import annotations
 
+import threading
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 from functools import lru_cache
@@ -200,16 +201,30 @@ class PropertyTable:
         return result.take(places, axis=0).reshape((*T.shape, S))
 
 
+class _Remembered(threading.local):
+    """The last large batch of temperatures of a thread, and what :func:`_distinct` found."""
+
+    T: FloatArray = np.zeros(0)
+    found: tuple[FloatArray, IntArray] = (np.zeros(0), np.zeros(0, dtype=np.int64))
+
+
+_remembered = _Remembered()
+
+
 def _distinct(T: FloatArray) -> tuple[FloatArray, IntArray]:
     """The different temperatures, and which of them stands at each place (flat)."""
     if T.size < _MANY:
         distinct, places = np.unique(T, return_inverse=True)
         return distinct, places.reshape(-1)
+    # G, H and S of a batch are asked for one after another, at the same temperatures.
+    if np.array_equal(_remembered.T, T):
+        return _remembered.found
     # Hashing is many times faster than sorting; only large batches wait for pandas to load.
     import pandas as pd
 
     places, distinct = pd.factorize(T.reshape(-1), use_na_sentinel=False)
-    return np.asarray(distinct), np.asarray(places)
+    _remembered.T, _remembered.found = T.copy(), (np.asarray(distinct), np.asarray(places))
+    return _remembered.found
 
 
 def _checked(T: npt.ArrayLike) -> FloatArray:
