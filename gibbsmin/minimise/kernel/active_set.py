@@ -27,16 +27,21 @@ def seat_gas(state: State, tableau: Tableau, point: Point, row: int, column: int
 
 def drop_phase(state: State, tableau: Tableau, point: Point, gases: int, row: int) -> bool:
     """Let the gas that carries most of the row take the place of its condensed member."""
+    column = carrier(tableau, point, gases, row)
+    if column >= 0:
+        seat_gas(state, tableau, point, row, column)
+    return column >= 0
+
+
+def carrier(tableau: Tableau, point: Point, gases: int, row: int) -> int:
+    """The gas that carries most of a row, −1 where none does."""
     column = -1
     most = 0.0
     for i in range(gases):
         entry = abs(tableau.entries[row, i])
         if entry > ZERO and entry * point.amounts[i] > most:
             column, most = i, entry * point.amounts[i]
-    if column < 0:
-        return False
-    seat_gas(state, tableau, point, row, column)
-    return True
+    return column
 
 
 def most_supersaturated(state: State, tableau: Tableau, point: Point, gases: int) -> int:
@@ -55,7 +60,15 @@ def most_supersaturated(state: State, tableau: Tableau, point: Point, gases: int
 def add_phase(
     state: State, tableau: Tableau, point: Point, gases: int, column: int, keep: bool
 ) -> bool:
-    """Seat a phase in the row of the member that leaves for it.
+    """Seat a phase in the row of the member that leaves for it."""
+    row = leaving_member(tableau, point, gases, column, keep)
+    if row >= 0:
+        seat_phase(state, tableau, point, row, column)
+    return row >= 0
+
+
+def leaving_member(tableau: Tableau, point: Point, gases: int, column: int, keep: bool) -> int:
+    """The row of the member that leaves for a phase, −1 where there is none.
 
     With ``keep`` all present phases stay until a solution shows one below zero, and the
     scarcest gas member of the phase's substance leaves; otherwise, or where no gas member
@@ -79,10 +92,7 @@ def add_phase(
                 ratio = max(amount, 0.0) / entry
                 if ratio < least:
                     row, least = j, ratio
-    if row < 0:
-        return False
-    seat_phase(state, tableau, point, row, column)
-    return True
+    return row
 
 
 def seat_phase(state: State, tableau: Tableau, point: Point, row: int, column: int) -> None:

@@ -1,15 +1,17 @@
 """A block of states in lanes: start each, gather those of one basis, solve and prove them together.
 
 What is not proved here keeps its status, for :mod:`gibbsmin.minimise.kernel.states` to answer.
-Which path a state takes depends on that state alone, so that a batch equals a loop of its states.
+Without a coarse grid the path of a state depends on that state alone, as long as there is memory
+for the tableaus it meets, so that a batch equals a loop of its states.
 """
 
 from __future__ import annotations
 
 from gibbsmin.arrays import FloatArray
+from gibbsmin.minimise.kernel.active_set import carrier, leaving_member, most_supersaturated
 from gibbsmin.minimise.kernel.lane_between import start_between
 from gibbsmin.minimise.kernel.lane_equations import evaluate_lanes, judge_phases
-from gibbsmin.minimise.kernel.lane_newton import put_in, solve_group, take_state
+from gibbsmin.minimise.kernel.lane_newton import put_in, solve_group, take_out, take_state
 from gibbsmin.minimise.kernel.lane_proof import prove_lanes
 from gibbsmin.minimise.kernel.loading import (
     CERTIFIED,
@@ -19,15 +21,17 @@ from gibbsmin.minimise.kernel.loading import (
     whole_face,
 )
 from gibbsmin.minimise.kernel.log_newton import guess_fractions
-from gibbsmin.minimise.kernel.pivots import forget_all, seen_from, spare_place
-from gibbsmin.minimise.kernel.residuals import list_unknowns
+from gibbsmin.minimise.kernel.pivots import after_exchange, forget_all, seen_from, spare_place
+from gibbsmin.minimise.kernel.residuals import evaluate_condensed, evaluate_gas, list_unknowns
 from gibbsmin.minimise.kernel.simplex import feeds_gas, find_basis
 from gibbsmin.minimise.kernel.storage import Answers, Lanes, LaneScratch, Network, Window
-from gibbsmin.minimise.kernel.tableau import renew_reduced
+from gibbsmin.minimise.kernel.tableau import renew_reduced, renew_supply
 from gibbsmin.minimise.kernel.vector import LANES
 
 _LEFT, _UNTRIED = -1, -2
 """Places of a state that the lanes could not prove, and of one they have yet to take."""
+
+_ROUNDS = 4
 
 
 def solve_in_lanes(
@@ -143,6 +147,72 @@ def solve_members(
     first: int,
     count: int,
 ) -> None:
+    """Solve the states in the window, again where phases enter or leave."""
+    window = scratch.window
+    for _ in range(_ROUNDS):
+        solve_round(network, scratch, energies, supplies, tolerances, answers, first, count)
+        turned = False
+        for member in range(count):
+            place = window.place[member]
+            window.place[member] = _LEFT
+            if place != _LEFT and window.turns[member]:
+                s = window.state[member]
+                following = turn(network, scratch, energies[s], supplies[s], place, member)
+                window.place[member] = following
+                turned = turned or following != _LEFT
+        if not turned:
+            return
+
+
+def turn(
+    network: Network,
+    scratch: LaneScratch,
+    energies: FloatArray,
+    supplies: FloatArray,
+    place: int,
+    member: int,
+) -> int:
+    """Let a phase leave or enter the basis of a state; return the place of the new one.
+
+    The choice is that of :func:`gibbsmin.minimise.kernel.log_newton.update_phases`.
+    """
+    state, point, gases = scratch.state, scratch.point, network.gases
+    load_state(network, state, energies, supplies)
+    seen = seen_from(scratch.pivots, place, scratch.tableau)
+    log_total = take_out(scratch.window, member, seen, point)
+    evaluate_gas(seen, point, gases, log_total)
+    row = evaluate_condensed(seen, point, gases, True)
+    if row >= 0:
+        column = carrier(seen, point, gases, row)
+    else:
+        column = most_supersaturated(state, seen, point, gases)
+        if column >= 0:
+            row = leaving_member(seen, point, gases, column, True)
+    if column < 0 or row < 0:
+        return _LEFT
+    following = after_exchange(scratch.pivots, place, row, column)
+    if following == spare_place(scratch.pivots):
+        return _LEFT
+    point.log_fraction[row] = point.exponent[column] if column < gases else 0.0
+    turned = seen_from(scratch.pivots, following, scratch.tableau)
+    renew_supply(state, turned)
+    if not feeds_gas(turned, gases):
+        return _LEFT
+    renew_reduced(state, turned)
+    put_in(scratch.window, member, turned, point, log_total)
+    return following
+
+
+def solve_round(
+    network: Network,
+    scratch: LaneScratch,
+    energies: FloatArray,
+    supplies: FloatArray,
+    tolerances: FloatArray,
+    answers: Answers,
+    first: int,
+    count: int,
+) -> None:
     """Solve the states of each basis, and prove and store what was solved."""
     window, equations, lanes = scratch.window, scratch.equations, scratch.lanes
     sort_by_place(window, scratch.pivots.taken[0], count)
@@ -177,13 +247,15 @@ def sort_by_place(window: Window, places: int, count: int) -> None:
     for place in range(places + 2):
         begin[place] = 0
     for member in range(count):
-        begin[window.place[member] + 2] += 1
+        if window.place[member] != _LEFT:
+            begin[window.place[member] + 2] += 1
     for place in range(places):
         begin[place + 2] += begin[place + 1]
     for member in range(count):
-        at = begin[window.place[member] + 1]
-        window.order[at] = member
-        begin[window.place[member] + 1] = at + 1
+        if window.place[member] != _LEFT:
+            at = begin[window.place[member] + 1]
+            window.order[at] = member
+            begin[window.place[member] + 1] = at + 1
 
 
 def take_given(

@@ -1,7 +1,8 @@
 """Newton's method on eight states of one basis at a time, each at its own pace.
 
 The method is that of :mod:`gibbsmin.minimise.kernel.log_newton` without its exchanges: a state that
-needs another basis, or many iterations, is left to that module.  A lane whose state is done takes
+needs another basis leaves the lanes with its place marked, one that needs many iterations for
+good.  A lane whose state is done takes
 the next one.  No lane feels its neighbours, so that the answer depends on the state alone.
 """
 
@@ -67,8 +68,12 @@ def solve_group(
             at_odds = residual < _NEAR and not lanes.odds[0, lane] <= _AT_ODDS
             if not (done or at_odds or lanes.spent[lane] == _ITERATIONS):
                 continue
+            member = lanes.held[lane]
+            window.turns[member] = at_odds
+            if done or at_odds:
+                keep_state(tableau, lanes, window, lane)
             if done and not at_odds:
-                window.order[settled] = keep_state(tableau, lanes, window, lane)
+                window.order[settled] = member
                 settled += 1
             lanes.held[lane] = _IDLE
             busy -= 1
@@ -89,6 +94,16 @@ def put_in(window: Window, member: int, tableau: Tableau, point: Point, log_tota
     window.log_total[member] = log_total
 
 
+def take_out(window: Window, member: int, tableau: Tableau, point: Point) -> float:
+    """Take a state of the window up where it stands; return its ln N."""
+    for i in range(tableau.reduced.size):
+        tableau.reduced[i] = window.reduced[member, i]
+    for j in range(tableau.supply.size):
+        tableau.supply[j] = window.supply[member, j]
+        point.log_fraction[j] = window.log_fraction[member, j]
+    return float(window.log_total[member])
+
+
 def take_state(tableau: Tableau, lanes: Lanes, window: Window, lane: int, member: int) -> None:
     """Load a state of the window into a lane."""
     lanes.held[lane] = member
@@ -101,13 +116,12 @@ def take_state(tableau: Tableau, lanes: Lanes, window: Window, lane: int, member
     lanes.log_total[0, lane] = window.log_total[member]
 
 
-def keep_state(tableau: Tableau, lanes: Lanes, window: Window, lane: int) -> int:
-    """Write where a lane stands back to its state of the window, and return which that is."""
+def keep_state(tableau: Tableau, lanes: Lanes, window: Window, lane: int) -> None:
+    """Write where a lane stands back to its state of the window."""
     member = lanes.held[lane]
     for j in range(tableau.supply.size):
         window.log_fraction[member, j] = lanes.log_fraction[j, lane]
     window.log_total[member] = lanes.log_total[0, lane]
-    return int(member)
 
 
 def take_lane_steps(unknown: IntArray, size: int, lanes: Lanes) -> None:

@@ -181,13 +181,15 @@ class Lanes(NamedTuple):
 class Window(NamedTuple):
     """States that wait for the lanes: which each is, where it stands, the place of its basis.
 
-    ``order`` lists the members place by place, those of place p from ``begin[p]`` on.  ``kept`` and
-    ``kept_total`` are place and ln N of each state of the stretch at hand that was proved.
-    ``node`` and ``weight`` are up to four states of it with a curve through them.
+    ``turns`` says which came to need another basis.  ``order`` lists the members place by place,
+    those of place p from ``begin[p]`` on.  ``kept`` and ``kept_total`` are place and ln N of each
+    state of the stretch at hand that was proved; ``node`` and ``weight`` up to four states of it
+    with a curve through them.
     """
 
     state: IntArray
     place: IntArray
+    turns: BoolArray
     reduced: FloatArray
     supply: FloatArray
     log_fraction: FloatArray
@@ -368,6 +370,7 @@ def window_for(rows: int, species: int, places: int, members: int) -> Window:
     return Window(
         state=np.zeros(members, dtype=np.int64),
         place=np.zeros(members, dtype=np.int64),
+        turns=np.zeros(members, dtype=np.bool_),
         reduced=np.zeros((members, species)),
         supply=np.zeros((members, rows)),
         log_fraction=np.zeros((members, rows)),
