@@ -86,6 +86,18 @@ def test_json_and_tables_hold_the_same_crossings(onset_case: Path, tmp_path: Pat
     book = tmp_path / "onset.xlsx"
     run(onset_case, "onset", "--out", str(book))
     assert pd.read_excel(book, sheet_name="crossings").shape == table.shape
+    column_file = tmp_path / "onset.parquet"
+    run(onset_case, "onset", "--out", str(column_file))
+    pd.testing.assert_frame_equal(pd.read_parquet(column_file), table)
+
+
+def test_a_file_of_another_kind_is_refused_before_any_work(onset_case: Path) -> None:
+    result = CliRunner().invoke(app, ["onset", str(onset_case), "--out", "onset.txt"])
+    assert result.exit_code == 2
+    assert result.stderr == (
+        'onset.txt: found the ending ".txt"; accepted is a file that ends in .csv, .xlsx, .json, '
+        ".parquet.\n"
+    )
 
 
 def test_a_target_is_found_by_the_same_command(target_case: Path, tmp_path: Path) -> None:

@@ -19,7 +19,7 @@ def onset(
     ],
     as_json: AsJson = False,
     out: Annotated[
-        str, typer.Option(metavar="FILE", help="Write a .csv, .xlsx or .json file as well.")
+        str, typer.Option(metavar="FILE", help="Write a .csv, .xlsx, .parquet or .json file.")
     ] = "",
     uncertainty: Annotated[
         bool, typer.Option("--uncertainty", help="Tell how sure each onset is.")
@@ -36,13 +36,12 @@ def onset(
     from gibbsmin.jobs.onset_uncertainty import onset_uncertainty
     from gibbsmin.jobs.scan_remarks import scan_remarks
     from gibbsmin.jobs.target import target as target_of
-    from gibbsmin.present.outlet_files import require_ending
     from gibbsmin.present.search_document import onset_document, target_document
-    from gibbsmin.present.search_files import write_search
+    from gibbsmin.present.search_files import require_search_ending, write_search
     from gibbsmin.present.search_view import onset_view, target_view
 
     if out:
-        require_ending(Path(out))
+        require_search_ending(Path(out))
     require_plot_ending_of(plot)
     loaded = load_case(case)
     if loaded.onset is None and loaded.target is not None:

@@ -27,7 +27,18 @@ _SHEET_ROWS = 1_048_575
 
 def require_scan_ending(path: Path) -> str:
     """The file's ending, refused before any work is done where no scan can be written so."""
-    suffix = output_suffix(path, ENDINGS)
+    return require_written(path, ENDINGS)
+
+
+def require_written(path: Path, accepted: tuple[str, ...]) -> str:
+    """The file's ending, one of those accepted; .parquet only where pyarrow can write it.
+
+    Raises
+    ------
+    OutputError
+        for another ending, and for .parquet without pyarrow.
+    """
+    suffix = output_suffix(path, accepted)
     if suffix == ".parquet":
         try:
             import pyarrow  # noqa: F401 an extra that may be missing
@@ -61,7 +72,12 @@ def write_blocks(blocks: Iterator[pd.DataFrame], path: Path) -> None:
     elif suffix == ".csv":
         write_whole(path, lambda scratch: _fill_csv(blocks, scratch))
     else:
-        write_whole(path, lambda scratch: _fill_parquet(blocks, scratch))
+        write_parquet(blocks, path)
+
+
+def write_parquet(blocks: Iterator[pd.DataFrame], path: Path) -> None:
+    """Write tables of the same columns one after another into one file."""
+    write_whole(path, lambda scratch: _fill_parquet(blocks, scratch))
 
 
 def _write_workbook(blocks: Iterator[pd.DataFrame], path: Path) -> None:

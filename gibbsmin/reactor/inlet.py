@@ -57,7 +57,8 @@ def inlet_of(
             amounts[:, names.index(name)] += part.amounts[..., column]
 
     def total(values: Iterable[FloatArray]) -> FloatArray:
-        return sum(values, np.zeros(shape))
+        # Parts that all states share are added once, not in each of them.
+        return np.array(np.broadcast_to(sum(values, np.zeros(())), shape))
 
     moles = total(part.moles for part in parts)
     carries_gas = _most([part.gas for part in parts]) > 0.0
