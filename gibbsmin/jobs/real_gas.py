@@ -15,7 +15,8 @@ from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.results import Comparison, RealGasOutlet
 from gibbsmin.thermo.critical import FugacityBias, fugacity_biases, interactions
-from gibbsmin.thermo.real_gas import Equation, GasState
+from gibbsmin.thermo.gas_state import GasState
+from gibbsmin.thermo.real_gas import Equation
 from gibbsmin.thermo.species import Phase
 from gibbsmin.thermo.stability import stability
 

@@ -17,8 +17,9 @@ import numpy.typing as npt
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray, shared
 from gibbsmin.constants import GAS_CONSTANT, STANDARD_PRESSURE
+from gibbsmin.thermo.gas_state import GasState
 from gibbsmin.thermo.properties import PropertyTable
-from gibbsmin.thermo.real_gas import Equation, GasState, RealGas
+from gibbsmin.thermo.real_gas import Equation, RealGas
 from gibbsmin.thermo.species import Phase
 
 _SMALLEST = np.finfo(np.float64).smallest_subnormal

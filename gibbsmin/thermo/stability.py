@@ -18,7 +18,8 @@ from dataclasses import dataclass
 import numpy as np
 
 from gibbsmin.arrays import BoolArray, FloatArray, IntArray
-from gibbsmin.thermo.real_gas import GasState, RealGas
+from gibbsmin.thermo.gas_state import GasState
+from gibbsmin.thermo.real_gas import RealGas
 
 _ROUNDS = 40
 _SETTLED = 1e-8
