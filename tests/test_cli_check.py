@@ -71,7 +71,8 @@ def test_one_sample_reads_from_the_verdict_down(case: Path) -> None:
         for title in (
             "What is fact", "What is likely", "What to look at next", "Measurements", "Reactions",
             "Gas, beside equilibrium at the measured conditions",
-            "Solids and liquids that the gas could form", "Assumptions", "Cautions",
+            "Solids and liquids that the gas could form", "Assumptions", "Hazards of the gas",
+            "Cautions",
         )
     ]  # fmt: skip
     assert places == sorted(places)
@@ -84,7 +85,7 @@ def test_json_holds_what_was_found_and_no_nan(case: Path) -> None:
     assert code == 0
     document = json.loads(out, parse_constant=pytest.fail)
     assert set(document) == {
-        "title", "stage", "samples", "not_used", "assumptions", "sources", "cautions"
+        "title", "stage", "samples", "not_used", "hazards", "assumptions", "sources", "cautions"
     }  # fmt: skip
     (sample,) = document["samples"]
     assert sample["label"] == "Monday, 8 h"
@@ -102,6 +103,7 @@ def test_json_holds_what_was_found_and_no_nan(case: Path) -> None:
     assert shift["reaction"] == "CO(g) + H2O(g) = CO2(g) + H2(g)"
     assert sample["excess_gibbs_energy_J_per_mol"] > 0
     assert any("JANAF" in source for source in document["sources"])
+    assert document["hazards"] == ["Toxic: CO.", "Flammable: H2, CO, CH4."]
     assert document["cautions"] == list(CAUTIONS)
 
 

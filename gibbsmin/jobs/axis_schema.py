@@ -11,16 +11,20 @@ from gibbsmin.jobs.stage_schema import read_text, word
 from gibbsmin.jobs.table_schema import Table
 from gibbsmin.units import shown
 
+_MOST = 10_000_000
+"""Values of an axis; more are a slip of the hand, and would fill the memory."""
+
 
 def _values(given: object) -> tuple[Any, ...]:
     if not isinstance(given, list | tuple) or not given:
-        raise InputError(f"found {shown(given)}", 'accepted is a list such as ["600 degC", "1 K"]')
+        found = "an empty list" if given in ([], ()) else shown(given)
+        raise InputError(f"found {found}", 'accepted is a list such as ["600 degC", "700 degC"]')
     return tuple(given)
 
 
 def _count(given: object) -> int:
-    if isinstance(given, bool) or not isinstance(given, int) or given < 2:
-        raise InputError(f"found {shown(given)}", "accepted is a whole number from 2")
+    if isinstance(given, bool) or not isinstance(given, int) or not 2 <= given <= _MOST:
+        raise InputError(f"found {shown(given)}", f"accepted is a whole number from 2 to {_MOST}")
     return given
 
 

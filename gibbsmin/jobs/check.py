@@ -18,7 +18,7 @@ from gibbsmin.jobs.sample_plan import (
     elements_fed,
     reactor_of,
 )
-from gibbsmin.jobs.sample_remarks import assumptions_of, notes_of, sources_of
+from gibbsmin.jobs.sample_remarks import assumptions_of, hazards_in, notes_of, sources_of
 from gibbsmin.jobs.sample_sense import require_elements, require_sense
 from gibbsmin.jobs.sample_table import samples_from
 from gibbsmin.jobs.train import run_train
@@ -89,6 +89,7 @@ def check(case: Case, samples: pd.DataFrame | None = None, file: str = "") -> Ch
         stage=stage.name,
         samples=tuple(found),
         faults=tuple(sorted([*faults, *more], key=lambda fault: fault.row)),
+        hazards=hazards_in(found, library),
         assumptions=assumptions_of(reactor, taken),
         sources=sources_of(found, library),
     )

@@ -55,10 +55,15 @@ def own_records_notes(records: Iterable[Species]) -> tuple[str, ...]:
 
 def outlet_hazards(model: StageModel, amounts: FloatArray) -> tuple[str, ...]:
     """The toxic and flammable species of the outlet by name."""
+    return hazards_of(record.formula for record in _mattering(model.records, amounts))
+
+
+def hazards_of(formulas: Iterable[str]) -> tuple[str, ...]:
+    """Which of these substances are toxic, and which flammable."""
     known = hazards()
-    present = [record for record in _mattering(model.records, amounts) if record.formula in known]
-    toxic = list(dict.fromkeys(r.formula for r in present if known[r.formula].toxic))
-    flammable = list(dict.fromkeys(r.formula for r in present if known[r.formula].flammable))
+    present = [formula for formula in dict.fromkeys(formulas) if formula in known]
+    toxic = [formula for formula in present if known[formula].toxic]
+    flammable = [formula for formula in present if known[formula].flammable]
     named = (("Toxic", toxic), ("Flammable", flammable))
     return tuple(f"{kind}: {', '.join(formulas)}." for kind, formulas in named if formulas)
 

@@ -4,6 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 
+import numpy as np
+
+from gibbsmin.jobs.remarks import hazards_of
 from gibbsmin.jobs.sample import PlantSample
 from gibbsmin.jobs.sample_plan import Reactor
 from gibbsmin.jobs.sample_reading import STEAM_RATIO
@@ -14,6 +17,20 @@ NOT_COUNTED = (
     "The uncertainty of the thermochemical values is the same in all samples; it is told beside "
     "each reaction (u of the data) and not counted in the verdict."
 )
+
+
+_PRESENT = 1e-6
+"""Fraction of the dry gas from which a substance is there."""
+
+
+def hazards_in(found: Sequence[SampleCheck], library: Library) -> tuple[str, ...]:
+    """The toxic and flammable species of the samples' gas by name."""
+    return hazards_of(
+        library[species.record].formula
+        for sample in found
+        for species in sample.composition
+        if max(np.nan_to_num([species.measured, species.reconciled.value])) > _PRESENT
+    )
 
 
 def assumptions_of(reactor: Reactor, samples: Sequence[PlantSample]) -> tuple[str, ...]:

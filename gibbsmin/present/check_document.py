@@ -28,6 +28,7 @@ def check_document(checks: Checks) -> dict[str, Any]:
             {"label": fault.label, "row": fault.row, "reason": fault.sentence}
             for fault in checks.faults
         ],
+        "hazards": list(checks.hazards),
         "assumptions": list(checks.assumptions),
         "sources": list(checks.sources),
         "cautions": list(CAUTIONS),

@@ -62,6 +62,7 @@ def _remarks(checks: Checks) -> pd.DataFrame:
     kinds = (
         ("assumption", checks.assumptions),
         ("source", checks.sources),
+        ("hazard", checks.hazards),
         ("caution", CAUTIONS),
     )
     rows = [(kind, sentence) for kind, sentences in kinds for sentence in sentences]

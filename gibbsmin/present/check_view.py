@@ -39,6 +39,7 @@ def check_view(checks: Checks) -> RenderableType:
         parts += _history(checks)
         parts += sentences("Over time", trend_sentences(checks, history_of(checks)))
     parts += sentences("Assumptions", checks.assumptions)
+    parts += sentences("Hazards of the gas", checks.hazards)
     parts += sentences("Cautions", CAUTIONS)
     return Group(*parts)
 

@@ -33,8 +33,9 @@ _MANYFOLD = 1000.0
 
 
 def outlet_view(outlet: Outlet) -> RenderableType:
-    """Everything known of an outlet, stage by stage."""
-    parts: list[RenderableType] = [heading(outlet.title)]
+    """Everything known of an outlet, stage by stage; what several stages note is told once."""
+    parts: list[RenderableType] = [heading(outlet.title)] if outlet.title else []
+    told: set[str] = set()
     for stage in outlet.stages:
         parts += [_conditions(stage), Text("")]
         if stage.status is Status.CERTIFIED:
@@ -49,7 +50,8 @@ def outlet_view(outlet: Outlet) -> RenderableType:
         if stage.audit:
             parts += [heading("Not in the outlet, nearest to it first"), _audit(stage)]
         parts += sentences("Warnings", stage.warnings)
-        parts += sentences("Notes", stage.notes)
+        parts += sentences("Notes", [note for note in stage.notes if note not in told])
+        told |= set(stage.notes)
         parts += sentences("Hazards of the outlet", stage.hazards)
     if len(outlet.stages) > 1:
         parts += [heading("All stages together"), _totals(outlet)]

@@ -324,6 +324,7 @@ class Checks:
     stage : the stage that the samples leave
     samples : those that could be used
     faults : those that could not
+    hazards : what is toxic or flammable in the gas, as sentences
     assumptions : how the measurements were taken and which thresholds were set, as sentences
     sources : of the thermochemical values, full citations
     """
@@ -332,5 +333,6 @@ class Checks:
     stage: str
     samples: tuple[SampleCheck, ...]
     faults: tuple[SampleFault, ...]
+    hazards: tuple[str, ...]
     assumptions: tuple[str, ...]
     sources: tuple[str, ...]

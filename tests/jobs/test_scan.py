@@ -267,7 +267,16 @@ values = ["300 K", "320 K", "340 K"]
         ({"values": [1]}, "axis.1.vary: found neither; accepted is vary or ratio."),
         (
             {**TEMPERATURES, "count": 1},
-            "axis.1.count: found 1; accepted is a whole number from 2.",
+            "axis.1.count: found 1; accepted is a whole number from 2 to 10000000.",
+        ),
+        (
+            {**TEMPERATURES, "count": 10**9},
+            "axis.1.count: found 1000000000; accepted is a whole number from 2 to 10000000.",
+        ),
+        (
+            {"vary": "outlet.temperature", "values": []},
+            "axis.1.values: found an empty list; accepted is a list such as "
+            '["600 degC", "700 degC"].',
         ),
     ],
 )
