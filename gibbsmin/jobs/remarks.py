@@ -14,6 +14,9 @@ from gibbsmin.reactor.streams import Stream, first
 from gibbsmin.thermo.hazards import hazards
 from gibbsmin.thermo.species import OWN, Phase, Species
 
+_RADICALS = ("H", "O", "OH", "N", "S", "F", "Cl", "Br", "I")
+"""Fragments that a flame makes and a cold gas does not hold (common practice)."""
+
 _MATTERS = 1e-6
 """A record matters from this share of the outlet's amounts."""
 
@@ -30,6 +33,7 @@ def warnings(
     sentences = [
         *_audit_warnings(entries[:AUDIT_LENGTH]),
         *_range_warnings(model, feeds, state),
+        *_unchanged_warnings(model, state),
         *(warning for feed in feeds for warning in feed.warnings),
     ]
     sentences += gas_warnings
@@ -82,6 +86,28 @@ def _audit_warnings(entries: Sequence[AuditEntry]) -> Iterator[str]:
             yield (
                 f"{entry.record.name} is not considered, yet its activity is "
                 f"{entry.activity:.3g}: it would form{beyond}."
+            )
+
+
+def _unchanged_warnings(model: StageModel, state: SolvedState) -> Iterator[str]:
+    """Where nothing reacts: what passes as it came, and in a plant would not."""
+    if model.reacts:
+        return
+    gases = [r for r in _mattering(model.records, state.amounts) if r.phase is Phase.GAS]
+    radicals = [record.name for record in gases if record.formula in _RADICALS]
+    if radicals:
+        yield (
+            "Nothing reacts here, so that fragments which recombine in a cooling gas stay in it "
+            f"({', '.join(radicals)}): leave them out of the stage before, or let this one react."
+        )
+    lone = {r.formula for r in model.records if r.phase is not Phase.GAS and r.atoms == 1}
+    for symbol in sorted(lone):
+        others = [r.name for r in gases if r.atoms > 1 and [e for e, _ in r.elements] == [symbol]]
+        if others:
+            yield (
+                f"Solid or liquid {symbol} forms from lone atoms alone where nothing reacts, not "
+                f"from {', '.join(others)}: let the stage react"
+                + (', by service = "sulphur condenser".' if symbol == "S" else ".")
             )
 
 

@@ -106,3 +106,20 @@ def test_what_is_inert_shows_its_own_pressure() -> None:
     (nitrogen,) = (each for each in stage.activities if each.record == "N2(g)")
     column = [record.name for record in stage.records].index("N2(g)")
     assert nitrogen.value == pytest.approx(5.0 * stage.mole_fractions[column], rel=1e-9)
+
+
+def test_what_passes_a_cooler_unchanged_and_would_not_is_warned_of() -> None:
+    gas = {"S2": 1.0, "S(g)": 0.01, "OH": 0.02, "H2O": 3.0, "N2": 6.0}
+    stage = outlet(
+        {"gas": stream(gas, "1500 K")},
+        reactions="none",
+        condense=["S(l)"],
+        temperature="420 K",
+        pressure="1 bar",
+    )
+    assert stage.warnings[-2:] == (
+        "Nothing reacts here, so that fragments which recombine in a cooling gas stay in it "
+        "(OH(g)): leave them out of the stage before, or let this one react.",
+        "Solid or liquid S forms from lone atoms alone where nothing reacts, not from S2(g): let "
+        'the stage react, by service = "sulphur condenser".',
+    )
