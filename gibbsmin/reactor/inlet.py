@@ -58,7 +58,8 @@ def inlet_of(
 
     def total(values: Iterable[FloatArray]) -> FloatArray:
         # Parts that all states share are added once, not in each of them.
-        return np.array(np.broadcast_to(sum(values, np.zeros(())), shape))
+        added = np.asarray(sum(values, np.zeros(())))
+        return added if added.shape == shape else np.array(np.broadcast_to(added, shape))
 
     moles = total(part.moles for part in parts)
     carries_gas = _most([part.gas for part in parts]) > 0.0
