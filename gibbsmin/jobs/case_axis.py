@@ -61,8 +61,7 @@ def read_axes(tables: Sequence[AxisTable], holders: Holders) -> tuple[Axis, ...]
         key, name = item_key("axis", index), table.vary or table.ratio or ""
         with placed(f"{key}.vary"):
             read = _reader(name, table.ratio is not None, holders)
-        with placed(f"{key}.values"):
-            axes.append(_axis(name, table, read))
+        axes.append(_axis(name, table, read, key))
     return tuple(axes)
 
 
@@ -88,18 +87,29 @@ def axis_of_column(
     return Axis(name, shown_values * factor + offset, shown_values, unit, scale)
 
 
-def _axis(name: str, table: AxisTable, read: _Reader) -> Axis:
-    given = table.values if table.values is not None else (table.first, table.last)
-    inside, units = zip(*(read(value) for value in given), strict=True)
+def _axis(name: str, table: AxisTable, read: _Reader, key: str) -> Axis:
+    if table.values is not None:
+        with placed(f"{key}.values"):
+            readings = [read(value) for value in table.values]
+    else:
+        readings = []
+        for end, value in (("first", table.first), ("last", table.last)):
+            with placed(f"{key}.{end}"):
+                readings.append(read(value))
+    inside, units = zip(*readings, strict=True)
     if len(set(units)) > 1:
         raise UnitError(
-            f'found values in "{units[0]}" and in another unit', "accepted is one unit in an axis"
+            f'found values in "{units[0]}" and in another unit',
+            "accepted is one unit in an axis",
+            key=f"{key}.{'last' if table.values is None else 'values'}",
         )
     factor, offset = _scale(read, units[0])
     shown_values = _without_rounding((np.array(inside) - offset) / factor)
     if table.count is not None:
         first, last = shown_values.tolist()
-        shown_values = _without_rounding(_spaced(first, last, table.count, table.spacing))
+        with placed(key):
+            spaced = _spaced(first, last, table.count, table.spacing)
+        shown_values = _without_rounding(spaced)
     return Axis(name, shown_values * factor + offset, shown_values, units[0], table.scale or "")
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Protocol
@@ -151,13 +152,26 @@ def _axis(column: str, cells: Sequence[object], case: Case) -> Axis:
         place_of(name, case.feeds, case.stages, case.library)
     values = np.empty(len(cells))
     for row, cell in enumerate(cells):
-        if isinstance(cell, bool) or not isinstance(cell, int | float) or not np.isfinite(cell):
+        values[row] = _number(cell)
+        if not np.isfinite(values[row]):
             empty = cell is None or cell != cell
             raise InputError(
                 f"found {'an empty cell' if empty else shown(cell)}",
                 "accepted is a number",
                 key=f"row {row + 2}",
             )
-        values[row] = cell
     holders = Holders(case.feeds, case.stages, case.site_pressure, case.library)
     return axis_of_column(name, unit.strip(), scale.strip(), values, holders)
+
+
+def _number(cell: object) -> float:
+    """A cell's number, NaN where it has none.
+
+    Where one cell of a column is a word, a file's other cells arrive as text, too.
+    """
+    if isinstance(cell, bool) or not isinstance(cell, int | float | str):
+        return math.nan
+    try:
+        return float(cell)
+    except ValueError:
+        return math.nan

@@ -180,4 +180,5 @@ def _dot(a: FloatArray, b: FloatArray) -> FloatArray:
 def _log(x: FloatArray) -> FloatArray:
     """ln x, finite at 0: there x ln x is 0."""
     positive = np.asarray(np.maximum(x, _SMALLEST))
-    return np.log(positive, out=positive)
+    np.log(positive, out=positive)
+    return positive

@@ -221,13 +221,23 @@ values = ["300 K", "320 K", "340 K"]
         ),
         (
             {**TEMPERATURES, "first": "600 bar"},
-            'axis.1.values: found "600 bar", which is a pressure; accepted is a temperature such '
+            'axis.1.first: found "600 bar", which is a pressure; accepted is a temperature such '
             'as "850 degC" or "1123 K".',
         ),
         (
             {**TEMPERATURES, "last": "1200 K"},
+            'axis.1.last: found values in "degC" and in another unit; accepted is one unit in '
+            "an axis.",
+        ),
+        (
+            {"vary": "outlet.temperature", "values": ["600 degC", "1200 K"]},
             'axis.1.values: found values in "degC" and in another unit; accepted is one unit in '
             "an axis.",
+        ),
+        (
+            {**TEMPERATURES, "first": "-10 degC", "spacing": "logarithmic"},
+            "axis.1: found an end that is not above zero; accepted are ends above zero for a "
+            "logarithmic axis.",
         ),
         (
             {**TEMPERATURES, "vary": "feed.gas.colour"},

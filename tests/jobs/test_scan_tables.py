@@ -236,6 +236,16 @@ def test_a_table_of_conditions_is_a_row_a_state(tmp_path: Path) -> None:
             'cond.csv: column "stage.reformer.temperature, degC", row 3: found "hot"; accepted '
             "is a number.",
         ),
+        (  # what a file gives where one cell of a column is a word
+            {"stage.reformer.temperature, degC": ["800", "hot", "820"]},
+            'cond.csv: column "stage.reformer.temperature, degC", row 3: found "hot"; accepted '
+            "is a number.",
+        ),
+        (
+            {"stage.reformer.temperature, degC": [800.0, True]},
+            'cond.csv: column "stage.reformer.temperature, degC", row 3: found true; accepted '
+            "is a number.",
+        ),
         (
             {"H2O/CH4": [3.0]},
             'cond.csv: column "H2O/CH4": found a ratio without the stream that is scaled to meet '
