@@ -244,6 +244,31 @@ def test_an_adiabatic_stage_of_a_train_is_searched_as_well() -> None:
     assert found.completeness[0].text.startswith("Complete to the grid used")
 
 
+def test_carbon_comes_and_goes_with_oxygen_as_the_stage_heats_itself() -> None:
+    """Cold, methane is stable; hot, oxygen and steam take up the carbon.  Enough steam keeps it
+    away.  Every crossing lies on the boundary in temperature of its own feed."""
+    oxygen = {"ratio": "O2/CH4", "scale": "oxygen", "first": 0.01, "last": 0.9, "count": 30}
+    steam = {"vary": "feed.steam.amounts.H2O", "values": ["0.9 mol", "1.1 mol", "1.25 mol"]}
+    tables = case(oxygen, steam)
+    tables["feed"]["oxygen"] = {**STEAM, "amounts": {"O2": 0.5}}
+    for stream in tables["feed"].values():
+        stream["temperature"] = "650 K"
+    tables["species"]["consider"].append("O2")
+    tables["outlet"] = {"heat": "0 kJ", "pressure": "1 bar"}
+    found = onset(tables)
+    assert found.row.tolist() == [0, 0, 1, 1]
+    assert found.forms.tolist() == [True, False, True, False]
+    assert found.certified.all()
+    assert not found.there.any()
+    for ratio, row, T in zip(found.shown, found.row, found.temperature, strict=True):
+        still = deepcopy(tables)
+        still["feed"]["oxygen"]["amounts"]["O2"] = ratio
+        still["feed"]["steam"]["amounts"]["H2O"] = steam["values"][row]
+        still["outlet"] = {"temperature": "900 K", "pressure": "1 bar"}
+        still["axis"] = [IN_T | {"first": f"{T - 20} K", "last": f"{T + 20} K", "count": 5}]
+        assert onset(still).shown == pytest.approx([T], abs=1e-6)
+
+
 def test_crossings_of_a_known_function_are_all_found() -> None:
     """sin over three rows of different phase: every zero, and pairs between grid points."""
 
