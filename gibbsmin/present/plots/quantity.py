@@ -103,7 +103,11 @@ def numbers(found: Scan) -> list[str]:
     """The columns of results that are numbers, without their uncertainties."""
     axes = {column_of(axis) for axis in found.axes}
     columns = [str(c) for c in found.table.select_dtypes("number") if c not in axes]
-    return [c for c in columns if not c.rpartition(": ")[2].startswith("u(")]
+    return [c for c in columns if not _is_uncertainty(c)]
+
+
+def _is_uncertainty(column: str) -> bool:
+    return column.rpartition(": ")[2].startswith("u(")
 
 
 def prefix(found: Scan, stage: str) -> str:
@@ -195,6 +199,8 @@ def remarks(found: Scan, shown: Sequence[Quantity]) -> list[str]:
     sentences = []
     if any(each.band is not None for each in shown):
         sentences.append("Bands: one standard uncertainty to either side.")
+    elif shown and any(_is_uncertainty(str(column)) for column in found.table):
+        sentences.append("No band: the scan does not tell how sure this is.")
     statuses = [str(c) for c in found.table if str(c).rpartition(": ")[2] == "status"]
     answered = (found.table[statuses].astype(str) == "certified").all(axis=1)
     missing = int((~answered).sum())

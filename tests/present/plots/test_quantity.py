@@ -123,5 +123,8 @@ def test_heat_has_the_prefix_that_suits() -> None:
 def test_the_foot_tells_of_bands_and_of_missing_states(found: Any) -> None:
     shown = quantity(found, "heat")
     assert remarks(found, [shown]) == ["Bands: one standard uncertainty to either side."]
+    shown = quantity(found, "dry fraction H2")
+    sentence = "No band: the scan does not tell how sure this is."
+    assert remarks(found, [shown]) == [sentence]
     table = found.table.assign(status=["certified", "unmet", "certified", "unmet", "certified"])
     assert remarks(replace(found, table=table), []) == ["2 of 5 states have no answer."]
