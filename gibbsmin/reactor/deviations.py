@@ -33,7 +33,7 @@ from gibbsmin.reactor.kernel.storage import (
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.stage import StageStates
 from gibbsmin.reactor.stage_changes import SpecificationChanges, energy_changes, heat_changes
-from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges
+from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges, spread
 from gibbsmin.reactor.streams import Values
 from gibbsmin.thermo.library import Library
 from gibbsmin.thermo.species import Species
@@ -85,7 +85,7 @@ def stage_deviations(
     """
     B, (m, S) = len(states.equilibria.temperature), states.model.balance.matrix.shape
     F, K = len(states.inlet.records), records.count
-    laid = _laid(states, specification, boundary_temperature, inlet, records)
+    laid = _laid(states, specification, boundary_temperature, records)
     own = _states(states, specification)
     given = _given(states, specification, asked, inlet, records, library)
     left = B if passes else 0
@@ -111,7 +111,6 @@ def _laid(
     states: StageStates,
     specification: Specification,
     boundary_temperature: Values | None,
-    inlet: InletChanges,
     records: RecordChanges,
 ) -> Laid:
     model, fed = states.model, states.inlet.records
@@ -136,7 +135,6 @@ def _laid(
         kind=kind,
         closed=specification.volume is not None,
         boundary_follows=boundary_temperature is None,
-        fed_changes=bool(inlet.amounts.any()),
         gas_constant=GAS_CONSTANT,
         standard_pressure=STANDARD_PRESSURE,
     )
@@ -200,10 +198,13 @@ def _given(
     elif specification.pressure is not None:
         room = asked.pressure
     else:
-        room = inlet.lowest_pressure - asked.pressure_drop
+        lowest = spread(inlet.lowest_pressure, inlet.columns, K)
+        room = lowest - asked.pressure_drop
     energies = energy_changes(model, T, records) if model.shift.keys else np.zeros((0, 0, K))
     rows = (content, inlet.entropy, heat, asked.temperature, room)
-    return Given(energies, _plain(inlet.amounts), *[_rows_of(values) for values in rows])
+    return Given(
+        energies, inlet.columns, _plain(inlet.amounts), *[_rows_of(values) for values in rows]
+    )
 
 
 def _rows_of(values: FloatArray) -> FloatArray:

@@ -19,7 +19,7 @@ from gibbsmin.reactor.mixture_slopes import MixtureSlopes, mixture_slopes
 from gibbsmin.reactor.model import StageModel
 from gibbsmin.reactor.specification import Specification
 from gibbsmin.reactor.stage import StageStates
-from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges
+from gibbsmin.reactor.stream_changes import InletChanges, RecordChanges, spread
 from gibbsmin.reactor.streams import Values
 from gibbsmin.thermo.library import Library
 
@@ -143,7 +143,8 @@ def heat_changes(
         return asked.heat
     values = lower_heating_values(states.inlet.records, library)
     share = np.reshape(specification.heat_loss, (-1, 1))
-    return np.asarray(-share * np.einsum("f,bfk->bk", values, inlet.amounts))
+    lost = share * np.einsum("f,bfk->bk", values, inlet.amounts)
+    return spread(-lost, inlet.columns, len(asked.heat))
 
 
 @dataclass(frozen=True)

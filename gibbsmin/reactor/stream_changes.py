@@ -8,11 +8,11 @@ amount at every temperature, since its heat capacity stays as it is.
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 
-from gibbsmin.arrays import FloatArray, shared
+from gibbsmin.arrays import FloatArray, IntArray, shared
 from gibbsmin.reactor.inlet import Inlet
 from gibbsmin.reactor.mixture import Mixture
 from gibbsmin.reactor.mixture_slopes import mixture_slopes
@@ -63,23 +63,37 @@ class StreamChanges:
     pressure: FloatArray
     amounts: Mapping[str, FloatArray]
 
+    def of(self, columns: IntArray) -> StreamChanges:
+        """Some of the changes."""
+        amounts = {name: values[:, columns] for name, values in self.amounts.items()}
+        return StreamChanges(self.temperature[:, columns], self.pressure[:, columns], amounts)
+
 
 @dataclass(frozen=True)
 class InletChanges:
-    """K changes of a stage's streams together, in B states or, with 1 for B, in all alike.
+    """L of K changes of a stage's streams together, in B states or, with 1 for B, in all alike.
 
     Attributes
     ----------
-    amounts : (B, F, K) of the inlet's records, mol
-    enthalpy, entropy, internal_energy : (B, K)
-    lowest_pressure : (B, K) of the stream whose pressure the outlet's follows
+    columns : (L,) which of the K they are; the others change nothing of the inlet
+    amounts : (B, F, L) of the inlet's records, mol
+    enthalpy, entropy, internal_energy : (B, L)
+    lowest_pressure : (B, L) of the stream whose pressure the outlet's follows
     """
 
+    columns: IntArray
     amounts: FloatArray
     enthalpy: FloatArray
     entropy: FloatArray
     internal_energy: FloatArray
     lowest_pressure: FloatArray
+
+
+def spread(values: FloatArray, columns: IntArray, count: int) -> FloatArray:
+    """Values (..., L) in their columns of K, with 0 in the others."""
+    whole = np.zeros((*values.shape[:-1], count))
+    whole[..., columns] = values
+    return whole
 
 
 def inlet_changes(
@@ -90,7 +104,7 @@ def inlet_changes(
     library: Library,
     equation: Equation | None = None,
 ) -> InletChanges:
-    """Sum up the changes of the streams and of their records; the inlet is that of these streams.
+    """All K changes of the streams and of their records; the inlet is that of these streams.
 
     With partial molar H̄ and S̄, mixing included, V of the gas and V̄ its partial molar volume:
 
@@ -103,13 +117,19 @@ def inlet_changes(
 
 
 def with_records(own: InletChanges, records: RecordChanges, inlet: Inlet) -> InletChanges:
-    """The streams' own changes with those of the inlet's records."""
+    """The streams' own changes with those of the inlet's records, all K."""
     dH, dS = (inlet.amounts @ each for each in records.of(inlet.records))
-    return replace(
-        own,
-        enthalpy=own.enthalpy + dH,
-        entropy=own.entropy + dS,
-        internal_energy=own.internal_energy + dH,
+
+    def whole(values: FloatArray) -> FloatArray:
+        return spread(values, own.columns, records.count)
+
+    return InletChanges(
+        np.arange(records.count),
+        whole(own.amounts),
+        whole(own.enthalpy) + dH,
+        whole(own.entropy) + dS,
+        whole(own.internal_energy) + dH,
+        whole(own.lowest_pressure),
     )
 
 
@@ -121,12 +141,20 @@ def stream_changes(
     library: Library,
     equation: Equation | None = None,
 ) -> InletChanges:
-    """The same but for the records' numbers, of ``count`` changes."""
-    amounts = {record.name: np.zeros((1, count)) for record in inlet.records}
-    enthalpy, entropy, energy, lowest = (np.zeros((1, count)) for _ in range(4))
+    """Those of K = ``count`` changes that the streams themselves feel."""
+    felt = np.zeros(count, dtype=bool)
     for stream, change in zip(streams, changes, strict=True):
+        own = (change.amounts[name] for name in stream.amounts if name in change.amounts)
+        for values in (change.temperature, change.pressure, *own):
+            felt |= values.any(axis=0)
+    columns = np.flatnonzero(felt)
+    nothing = np.zeros((1, columns.size))
+    amounts = {record.name: nothing for record in inlet.records}
+    enthalpy, entropy, energy, lowest = nothing, nothing, nothing, nothing
+    for stream, all_changes in zip(streams, changes, strict=True):
+        change = all_changes.of(columns)
         part = [library[name] for name in stream.amounts]
-        dn = [change.amounts.get(record.name, np.zeros((1, count))) for record in part]
+        dn = [change.amounts.get(record.name, nothing) for record in part]
         for record, amount in zip(part, dn, strict=True):
             amounts[record.name] = amounts[record.name] + amount
         if any(changed.any() for changed in (change.temperature, change.pressure, *dn)):
@@ -138,7 +166,7 @@ def stream_changes(
             is_lowest = np.asarray(stream.pressure == inlet.lowest_pressure)[:, np.newaxis]
             lowest = np.where(is_lowest, change.pressure, lowest)
     fed = np.stack(np.broadcast_arrays(*amounts.values()), axis=1)
-    return InletChanges(fed, enthalpy, entropy, energy, lowest)
+    return InletChanges(columns, fed, enthalpy, entropy, energy, lowest)
 
 
 def _mixture_changes(

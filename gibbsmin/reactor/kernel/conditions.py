@@ -123,8 +123,11 @@ def take_off_inlet(laid: Laid, states: States, given: Given, scratch: Scratch, b
     """Less what enters, by its own changes and by those of its records' numbers."""
     content, entropy = scratch.contents[0], scratch.contents[1]
     count = content.size - 2
-    add(content, -1.0, given.content[b if given.content.shape[0] > 1 else 0], count)
-    add(entropy, -1.0, given.entropy[b if given.entropy.shape[0] > 1 else 0], count)
+    of_content = given.content[b if given.content.shape[0] > 1 else 0]
+    of_entropy = given.entropy[b if given.entropy.shape[0] > 1 else 0]
+    for c in range(given.columns.size):
+        content[given.columns[c]] -= of_content[c]
+        entropy[given.columns[c]] -= of_entropy[c]
     for f in range(laid.fed_enthalpies.shape[0]):
         add(content, -states.fed[b, f], laid.fed_enthalpies[f], count)
         add(entropy, -states.fed[b, f], laid.fed_entropies[f], count)

@@ -137,8 +137,8 @@ def write_conversions(
                 leaving += n[i]
                 add(row, -1.0, scratch.amounts[i], count)
         left = leaving / entering
-        if laid.fed_changes:
-            for j in range(laid.same.shape[1]):
-                if laid.same[f, j]:
-                    add(row, left, changed[j], count)
+        for j in range(laid.same.shape[1]):
+            if laid.same[f, j]:
+                for c in range(given.columns.size):
+                    row[given.columns[c]] += left * changed[j, c]
         out[b, place + f] = deviation(row, count) / entering

@@ -109,13 +109,12 @@ def fill_supplies(laid: Laid, given: Given, scratch: Scratch, b: int) -> bool:
     for r in range(m):
         for k in range(width):
             supplies[r, k] = 0.0
-    if not laid.fed_changes:
-        return True
+    columns = given.columns
     changed = given.fed[b if given.fed.shape[0] > 1 else 0]
     for f in range(laid.feed.shape[1]):
         touched = False
-        for k in range(changed.shape[1]):
-            touched = touched or changed[f, k] != 0.0
+        for c in range(columns.size):
+            touched = touched or changed[f, c] != 0.0
         if not touched:
             continue
         for r in range(m):
@@ -124,5 +123,6 @@ def fill_supplies(laid: Laid, given: Given, scratch: Scratch, b: int) -> bool:
                 if abs(share) > _ROUNDING:
                     return False
             else:
-                add(supplies[r], share, changed[f], width - 2)
+                for c in range(columns.size):
+                    supplies[r, columns[c]] += share * changed[f, c]
     return True

@@ -41,7 +41,6 @@ class Laid(NamedTuple):
     kind: int
     closed: bool
     boundary_follows: bool
-    fed_changes: bool
     gas_constant: float
     standard_pressure: float
 
@@ -73,12 +72,14 @@ class Given(NamedTuple):
     """K changes of what enters and of what is asked; a first axis of 1 stands for all states.
 
     ``energies`` (B, S, K) are changes of g̃ that the records' numbers alone do not give, or empty.
-    ``content`` and ``entropy`` are those of what enters, but for the records' numbers.  ``heat``
+    ``fed`` (B, F, L), ``content`` and ``entropy`` (B, L) are those of what enters, but for the
+    records' numbers, in L of the ``columns``; in the others it does not change.  ``heat``
     and ``temperature`` are asked for, and so is ``room``: the pressure or, in a closed vessel, the
     volume.
     """
 
     energies: FloatArray
+    columns: IntArray
     fed: FloatArray
     content: FloatArray
     entropy: FloatArray
