@@ -213,6 +213,11 @@ def test_heats_and_temperature_differences() -> None:
         (read_temperature, "1e999 K", f'found "1e999 K", which is not finite; {TEMPERATURE}'),
         (
             read_temperature,
+            "1e300 K",
+            f'found "1e300 K", which is too large to reckon with; {TEMPERATURE}',
+        ),
+        (
+            read_temperature,
             "-300 degC",
             f'found "-300 degC", which is not above absolute zero; {TEMPERATURE}',
         ),

@@ -22,6 +22,8 @@ _QUANTITY = re.compile(
     re.IGNORECASE,
 )
 _SHOWN_LENGTH = 60
+_LARGEST = 1e30
+"""Of any quantity in SI units: beyond every reactor, and its powers do not overflow."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,8 +94,8 @@ def read_temperature(given: object) -> float:
     Raises
     ------
     UnitError
-        as every reader here: what is no number with a fitting, unambiguous unit, or is not
-        finite, is refused in one sentence.
+        as every reader here: what is no number with a fitting, unambiguous unit, is not finite,
+        or is beyond 1e30 in SI units, is refused in one sentence.
     """
     kelvin = _measure(given, _TEMPERATURE, STANDARD_ATMOSPHERE).value
     if kelvin <= 0.0:
@@ -244,6 +246,8 @@ def _measure(given: object, kind: _Kind, site_pressure: float) -> Measure:
 def _finite(value: float, unit: Unit, given: object, kind: _Kind) -> Measure:
     if not math.isfinite(value):
         raise UnitError(f"found {shown(given)}, which is not finite", kind.accepted)
+    if abs(value) > _LARGEST:
+        raise UnitError(f"found {shown(given)}, which is too large to reckon with", kind.accepted)
     return Measure(value, unit)
 
 

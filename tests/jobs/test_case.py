@@ -367,6 +367,11 @@ def test_composition_of_air_sums_to_one() -> None:
         ),
         (
             "feed/gas/amounts/CH4",
+            1e300,
+            f"feed.gas.amounts.CH4: found 1e+300, which is too large to reckon with; {AMOUNT}",
+        ),
+        (
+            "feed/gas/amounts/CH4",
             True,
             f"feed.gas.amounts.CH4: found true, which is no quantity; {AMOUNT}",
         ),
