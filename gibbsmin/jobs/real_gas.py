@@ -127,7 +127,7 @@ def real_gas_warnings(step: Step, outlet: RealGasOutlet) -> Iterator[str]:
             f"reference equations up to {_HIGHEST_PRESSURE / 1e5:g} bar, and may miss by more "
             "beyond."
         )
-    elif state.B[0] > _DENSEST * state.V[0]:
+    if state.B[0] > _DENSEST * state.V[0]:
         yield (
             f"The gas is dense: its molecules take {100 * float(state.B[0] / state.V[0]):.0f} % of "
             f"the volume, and {outlet.equation} is trusted up to {100 * _DENSEST:g} %."

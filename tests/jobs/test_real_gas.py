@@ -14,7 +14,8 @@ from gibbsmin.jobs.case import load_case
 from gibbsmin.jobs.onset import onset
 from gibbsmin.present.outlet_document import outlet_document
 from gibbsmin.results import StageOutlet
-from gibbsmin.thermo.real_gas import Equation
+from gibbsmin.thermo.library import load_library
+from gibbsmin.thermo.real_gas import Equation, RealGas
 
 SYNTHESIS: dict[str, Any] = {
     "feed": {
@@ -123,6 +124,22 @@ def test_a_pressure_beyond_the_equations_trust_is_warned_of() -> None:
         "300 bar, and may miss by more beyond."
     ]
     assert not warnings_with(outlet_of(), "The gas is at")
+
+
+@pytest.mark.parametrize(("pressure", "beyond"), [("250 bar", False), ("1000 bar", True)])
+def test_a_dense_gas_is_warned_of_at_any_pressure(pressure: str, beyond: bool) -> None:
+    ammonia = {"amounts": {"NH3": 1}, "consider": ["NH3"], "reactions": "none"}
+    dense = outlet_of(**ammonia, pressure=pressure, temperature="450 K")
+    gas = RealGas.of(Equation.SOAVE_REDLICH_KWONG, [load_library()["NH3(g)"]])
+    state = gas.state(450.0, float(pressure.split()[0]) * 1e5, [1.0])
+    share = 100.0 * float(state.B / state.V)
+    assert share > 25.0
+    assert warnings_with(dense, "The gas is dense") == [
+        f"The gas is dense: its molecules take {share:.0f} % of the volume, and "
+        "Soave-Redlich-Kwong is trusted up to 25 %."
+    ]
+    assert bool(warnings_with(dense, "The gas is at")) is beyond
+    assert not warnings_with(outlet_of(), "The gas is dense")
 
 
 def test_gases_without_critical_constants_are_named_where_they_matter() -> None:
