@@ -238,6 +238,16 @@ def test_heats_and_temperature_differences() -> None:
             f'found "850 T", whose unit "T" could be the tonne or the tesla; {TEMPERATURE}',
         ),
         (read_pressure, "-2 barg", f'found "-2 barg", which is not above vacuum; {PRESSURE}'),
+        (
+            read_pressure,
+            "9e24 bar",
+            'found "9e24 bar"; accepted is a pressure from 1e-20 to 1e20 Pa.',
+        ),
+        (
+            read_pressure,
+            "1e-300 bar",
+            'found "1e-300 bar"; accepted is a pressure from 1e-20 to 1e20 Pa.',
+        ),
         (read_pressure, "25 degC", f'found "25 degC", which is a temperature; {PRESSURE}'),
         (
             read_pressure,

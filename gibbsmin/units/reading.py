@@ -24,6 +24,8 @@ _QUANTITY = re.compile(
 _SHOWN_LENGTH = 60
 _LARGEST = 1e30
 """Of any quantity in SI units: beyond every reactor, and its powers do not overflow."""
+_LARGEST_PRESSURE = 1e20
+"""Pa; cubic equations of state take its sixth power.  The least is its reciprocal."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -112,10 +114,12 @@ def read_temperature_difference(given: object) -> float:
 
 
 def read_pressure(given: object, site_pressure: float = STANDARD_ATMOSPHERE) -> float:
-    """A positive absolute pressure in Pa; gauge pressures are above ``site_pressure``, Pa."""
+    """An absolute pressure, 1e-20 to 1e20 Pa; gauge ones are above ``site_pressure``, Pa."""
     pascal = _measure(given, _PRESSURE, site_pressure).value
     if pascal <= 0.0:
         raise UnitError(f"found {shown(given)}, which is not above vacuum", _PRESSURE.accepted)
+    if not 1.0 / _LARGEST_PRESSURE <= pascal <= _LARGEST_PRESSURE:
+        raise UnitError(f"found {shown(given)}", "accepted is a pressure from 1e-20 to 1e20 Pa")
     return pascal
 
 
