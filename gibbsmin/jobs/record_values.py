@@ -31,10 +31,12 @@ _MOMENT_UNITS = {"kg m2": 1.0, "g cm2": 1e-7, "u A2": 1e-23 / AVOGADRO_CONSTANT}
 
 
 def read_number(given: object) -> float:
-    """A finite number."""
-    if isinstance(given, bool) or not isinstance(given, int | float) or not abs(given) < _HUGE:
+    """A finite number below 1e100 in size."""
+    if isinstance(given, bool) or not isinstance(given, int | float) or given != given:
         found = "found nothing" if given is None else f"found {shown(given)}"
         raise InputError(found, "accepted is a number")
+    if not abs(given) < _HUGE:
+        raise InputError(f"found {shown(given)}", f"accepted is a number below {_HUGE:g} in size")
     return float(given)
 
 

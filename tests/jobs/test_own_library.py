@@ -476,6 +476,11 @@ MISTAKES = {
         SHOMATE.replace("A = 14.0", "A = nan"),
         "record.XeO4(g).heat_capacity.1.A: found nan; accepted is a number.",
     ),
+    "a number past all use": (
+        SHOMATE.replace("A = 14.0", "A = 1e300"),
+        "record.XeO4(g).heat_capacity.1.A: found 1e+300; accepted is a number below 1e+100 in "
+        "size.",
+    ),
     "a unit that is none": (
         SHOMATE.replace('unit = "cal/(mol K)"', 'unit = "cal/mol"'),
         'record.XeO4(g).heat_capacity.1.unit: found "cal/mol", which is no unit of it; accepted '
