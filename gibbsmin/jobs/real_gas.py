@@ -184,17 +184,18 @@ def changed_gas_warning(before: StageCase, stage: StageCase) -> str:
     )
 
 
-def ideal_gas_warning(states: StageStates) -> str:
-    """How an equation of state would move the main fractions, empty if within 1 % in all states.
+def ideal_gas_warning(states: StageStates, *, of_many: bool = False) -> tuple[float, str]:
+    """How an equation of state would move the main fractions: the largest change, and a sentence.
 
     An estimate: the fugacity coefficients of the ideal gas's composition, and one solution with
-    them.  Of several states the one that moves most is told.
+    them.  Of several states the one that moves most is told, with its conditions where it is one
+    ``of_many``.  The sentence is empty where all changes are within 1 %.
     """
     model, found = states.model, states.equilibria
     n, T, P = found.amounts, found.temperature, found.pressure
     solved = found.solution.certified & n[:, model.gas].any(axis=1)
     if not solved.any():
-        return ""
+        return 0.0, ""
     real = Mixture.of(model.properties, Equation.SOAVE_REDLICH_KWONG)
     programme = model.programme(T, P, states.inlet.amounts)
     logs = real.log_fugacity(T, P, np.where(solved[:, np.newaxis], n, 0.0))
@@ -203,10 +204,11 @@ def ideal_gas_warning(states: StageStates) -> str:
     counted = (before >= _MAIN) & solved[:, np.newaxis]
     change = np.where(counted, after / np.where(counted, before, 1.0) - 1.0, 0.0)
     state, place = np.unravel_index(int(np.nanargmax(np.abs(change))), change.shape)
-    if not abs(change[state, place]) > _MOVED:
-        return ""
-    where = f" at {T[state]:.5g} K and {P[state] / 1e5:.4g} bar" if len(n) > 1 else ""
-    return (
+    size = abs(float(change[state, place]))
+    if not size > _MOVED:
+        return size, ""
+    where = f" at {T[state]:.5g} K and {P[state] / 1e5:.4g} bar" if of_many else ""
+    return size, (
         f"The gas is taken as ideal; an equation of state would move {model.records[place].name} "
         f"from about {100 * before[state, place]:.3g} % to {100 * after[state, place]:.3g} %"
         f'{where}: set gas = "{Equation.SOAVE_REDLICH_KWONG.value}".'

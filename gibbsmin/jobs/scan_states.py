@@ -61,7 +61,7 @@ def columns_of_states(
         return _solved(case, conditions.axes, values, uncertainty)
 
     parts: list[_Part] = []
-    for rows in _of_one_equation(case, conditions.axes, values):
+    for rows in of_one_equation(case, conditions.axes, values):
         try:
             parts += _parts(solve, values, rows)
         except InputError:
@@ -94,7 +94,7 @@ def _solved(
     return steps, columns
 
 
-def _of_one_equation(
+def of_one_equation(
     case: Case, axes: Sequence[Axis], values: Sequence[FloatArray]
 ) -> Iterator[IntArray]:
     """Rows that share what shapes their equations."""

@@ -124,7 +124,7 @@ def _gas_warnings(step: Step, gas: RealGasOutlet | None, before: StageCase | Non
         yield found
     if gas is not None:
         yield from real_gas_warnings(step, gas)
-    elif step.stage.chemistry.equation is None and (found := ideal_gas_warning(step.states)):
+    elif step.stage.chemistry.equation is None and (found := ideal_gas_warning(step.states)[1]):
         yield found
 
 

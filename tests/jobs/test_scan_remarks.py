@@ -41,8 +41,24 @@ def test_nothing_is_said_at_low_pressure_or_of_a_real_gas() -> None:
 
 
 def test_states_that_are_refused_or_unsolved_do_not_hide_the_others() -> None:
-    drops = {"vary": "outlet.pressure_drop", "values": ["1 bar", "310 bar"]}
-    assert remarks(outlet={"temperature": "450 degC", "pressure_drop": "1 bar"}, axis=[drops]) == ()
+    drops = {"vary": "outlet.pressure_drop", "values": ["1 bar", "310 bar", "290 bar"]}
+    drop = {"temperature": "450 degC", "pressure_drop": "1 bar"}
+    (told,) = remarks(outlet=drop, axis=[drops])
+    assert told.endswith(' at 723.15 K and 299 bar: set gas = "Soave-Redlich-Kwong".')
     heats = {"vary": "outlet.heat", "values": ["-5000 kJ", "0 kJ"]}
     (told,) = remarks(outlet={"heat": "0 kJ", "pressure": "250 bar"}, axis=[heats])
     assert told.endswith(' and 250 bar: set gas = "Soave-Redlich-Kwong".')
+
+
+def test_states_of_different_equations_are_looked_at_apart() -> None:
+    """A held share of the wet gas shapes the balance, so that no batch holds two of them."""
+    gas = AMMONIA["feed"]["gas"] | {"amounts": {"H2": 3.0, "CO": 1.0, "CO2": 1.0, "H2O": 1.0}}
+    held = {"vary": "outlet.held_fraction.CH3OH", "values": ["1 %", "5 %"]}
+    outlet = {
+        "temperature": "250 degC",
+        "pressure": "150 bar",
+        "held_fraction": {"CH3OH": "5 % wet"},
+    }
+    species = {"consider": ["H2", "CO", "CO2", "H2O", "CH3OH"]}
+    (told,) = remarks(feed={"gas": gas}, outlet=outlet, axis=[held], species=species)
+    assert told.endswith(' at 523.15 K and 150 bar: set gas = "Soave-Redlich-Kwong".')
