@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, fields, replace
+from itertools import islice
 from typing import Any, Final
 
 import numpy as np
@@ -19,7 +20,7 @@ from gibbsmin.errors import InputError
 from gibbsmin.jobs.case import Case
 from gibbsmin.jobs.inputs import InputChanges, input_changes
 from gibbsmin.jobs.step_results import results_of
-from gibbsmin.jobs.train import Step, run_train
+from gibbsmin.jobs.train import Step, answered, run_train
 from gibbsmin.jobs.uncertainty import correlation_of, factor_of, uncertain_inputs
 from gibbsmin.minimise import Status, settle_form
 from gibbsmin.reactor.stage_changes import SpecificationChanges
@@ -72,7 +73,7 @@ class MonteCarlo:
     Attributes
     ----------
     draws, seed : how many, and from which start of the random numbers
-    stages : one entry a step of the train, a joined bypass too
+    stages : one entry a step that a prediction tells, a joined bypass too
     cut_off : how many amounts were drawn below zero, and taken as zero
     """
 
@@ -100,7 +101,8 @@ def monte_carlo(case: Case, draws: int = 10_000, seed: int = 1) -> MonteCarlo:
             f"accepted is a number from {FEWEST} to {MOST}",
             key="monte-carlo",
         )
-    inputs = uncertain_inputs(case, list(run_train(case, case.library)))
+    told = list(answered(run_train(case, case.library)))
+    inputs = uncertain_inputs(case, told)
     changes = input_changes(case, inputs)
     sizes = np.array([float(np.ravel(each.uncertainty)[0]) for each in inputs])
     spread_out = factor_of(correlation_of(case, inputs)) * sizes[:, np.newaxis]
@@ -114,7 +116,7 @@ def monte_carlo(case: Case, draws: int = 10_000, seed: int = 1) -> MonteCarlo:
         drawn, below_zero = _drawn(case, changes, steps)
         cut_off += below_zero
         library = case.library.deviating(_deviations(changes.records, steps))
-        parts.append([_collected(step) for step in run_train(drawn, library)])
+        parts.append([_collected(step) for step in islice(run_train(drawn, library), len(told))])
     stages = tuple(_spread(blocks) for blocks in zip(*parts, strict=True))
     return MonteCarlo(draws, seed, stages, cut_off)
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -55,6 +55,14 @@ def run_train(case: Case, library: Library) -> Iterator[Step]:
         streams = [*passing, *(by_name[name] for name in stage.feeds)]
         for step in _steps(stage, streams, case, library):
             yield step
+
+
+def answered(steps: Iterable[Step]) -> Iterator[Step]:
+    """The steps of a single state, up to the first without a certified answer: there it ends."""
+    for step in steps:
+        yield step
+        if not step.states.equilibria.solution.certified[0]:
+            return
 
 
 def has_bypass(stage: StageCase) -> bool:

@@ -19,7 +19,7 @@ from gibbsmin.jobs.inputs import (
 )
 from gibbsmin.jobs.sensitivity import Sensitivities, sensitivities
 from gibbsmin.jobs.stated import StatedUncertainty
-from gibbsmin.jobs.train import Step, run_train
+from gibbsmin.jobs.train import Step, answered, run_train
 from gibbsmin.thermo.species import Species
 
 _NEGATIVE = -1e-9
@@ -29,8 +29,8 @@ _NEGATIVE = -1e-9
 def uncertainty(case: Case) -> tuple[Sensitivities, ...]:
     """First-order error bars and sensitivities of a case's stages, in order.
 
-    Every step of the train, a joined bypass too, has an entry.  Inputs are the enthalpies of
-    formation and entropies of all records that take part, and the numbers of the case itself.
+    Every step that a prediction tells has an entry, a joined bypass too.  Inputs are the enthalpies
+    of formation and entropies of all records that take part, and the numbers of the case itself.
 
     Raises
     ------
@@ -38,7 +38,7 @@ def uncertainty(case: Case) -> tuple[Sensitivities, ...]:
         as :func:`gibbsmin.jobs.predict.predict`, and for correlations that contradict each other.
     """
     library = case.library
-    steps = list(run_train(case, library))
+    steps = list(answered(run_train(case, library)))
     inputs = _inputs(case, steps)
     changes, correlation = input_changes(case, inputs), correlation_of(case, inputs)
     return tuple(sensitivities(steps, changes, correlation, library))

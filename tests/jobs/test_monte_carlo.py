@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from copy import deepcopy
+from pathlib import Path
 from typing import Any
 
 import numpy as np
@@ -12,6 +13,7 @@ from scipy.stats import norm
 import gibbsmin
 from gibbsmin.errors import InputError
 from gibbsmin.jobs.monte_carlo import QUANTILES
+from gibbsmin.present.monte_carlo_view import draw_sentences
 
 REFORMER: dict[str, Any] = {
     "feed": {
@@ -179,4 +181,29 @@ def test_numbers_of_draws_that_are_refused(draws: int) -> None:
         gibbsmin.monte_carlo(gibbsmin.load_case(deepcopy(REFORMER)), draws)
     assert str(error.value) == (
         f"monte-carlo: found {draws} draws; accepted is a number from 100 to 200000."
+    )
+
+
+def test_what_ends_a_prediction_ends_its_error_bars(
+    monkeypatch: pytest.MonkeyPatch, tmp_path: Path
+) -> None:
+    """An unanswered stage is the last one told, and no draw of it counts."""
+    monkeypatch.setattr("gibbsmin.reactor.settle._ROUNDS", 1)
+    tables = deepcopy(REFORMER)
+    stage = tables.pop("outlet") | {"gas": "Peng-Robinson"}
+    tables["stage"] = [stage | {"name": "first"}, stage | {"name": "second"}]
+    del tables["uncertainty"]["outlet.temperature"], tables["uncertainty"]["outlet.pressure"]
+    case = gibbsmin.load_case(tables)
+    outlet = gibbsmin.predict(case)
+    assert [told.certified for told in outlet.stages] == [False]
+    (bars,) = gibbsmin.uncertainty(case)
+    assert np.isnan(bars.uncertainty("heat")).all()
+    found = gibbsmin.monte_carlo(case, 100)
+    (spread,) = found.stages
+    assert spread.solved == 0
+    assert np.isnan(spread.means).all()
+    for ending in (".json", ".csv", ".xlsx"):
+        gibbsmin.write_outlet(outlet, tmp_path / f"outlet{ending}", (bars,), found)
+    assert draw_sentences(found)[1] == (
+        "first: 100 of the draws have no certified answer and are left out."
     )
