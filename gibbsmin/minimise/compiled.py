@@ -11,14 +11,9 @@ import numpy as np
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.form import forms
+from gibbsmin.minimise.kernel.lane_storage import lane_scratch_for
 from gibbsmin.minimise.kernel.memory import in_one_memory
-from gibbsmin.minimise.kernel.storage import (
-    Answers,
-    Network,
-    lane_scratch_for,
-    network_of,
-    scratch_for,
-)
+from gibbsmin.minimise.kernel.storage import Answers, Network, network_of, scratch_for
 from gibbsmin.minimise.programme import Programme
 from gibbsmin.minimise.settings import Settings
 from gibbsmin.minimise.solution import Solution

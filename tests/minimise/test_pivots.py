@@ -10,10 +10,11 @@ from benchmarks.systems import ordinary, torture
 from numpy.testing import assert_array_equal
 
 from gibbsmin.minimise import Programme
+from gibbsmin.minimise.kernel.lane_storage import lane_scratch_for
 from gibbsmin.minimise.kernel.loading import load_state
 from gibbsmin.minimise.kernel.pivots import spare_place
 from gibbsmin.minimise.kernel.simplex import find_basis
-from gibbsmin.minimise.kernel.storage import lane_scratch_for, network_of
+from gibbsmin.minimise.kernel.storage import network_of
 
 
 @pytest.mark.parametrize("places", [3, 200])

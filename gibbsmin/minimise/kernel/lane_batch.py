@@ -13,6 +13,7 @@ from gibbsmin.minimise.kernel.lane_between import start_between
 from gibbsmin.minimise.kernel.lane_equations import evaluate_lanes, judge_phases
 from gibbsmin.minimise.kernel.lane_newton import put_in, solve_group, take_out, take_state
 from gibbsmin.minimise.kernel.lane_proof import prove_lanes
+from gibbsmin.minimise.kernel.lane_storage import Lanes, LaneScratch, Window
 from gibbsmin.minimise.kernel.loading import (
     CERTIFIED,
     COMPILED,
@@ -24,7 +25,7 @@ from gibbsmin.minimise.kernel.log_newton import guess_fractions
 from gibbsmin.minimise.kernel.pivots import after_exchange, forget_all, seen_from, spare_place
 from gibbsmin.minimise.kernel.residuals import evaluate_condensed, evaluate_gas, list_unknowns
 from gibbsmin.minimise.kernel.simplex import feeds_gas, find_basis
-from gibbsmin.minimise.kernel.storage import Answers, Lanes, LaneScratch, Network, Window
+from gibbsmin.minimise.kernel.storage import Answers, Network
 from gibbsmin.minimise.kernel.tableau import renew_reduced, renew_supply
 from gibbsmin.minimise.kernel.vector import LANES
 

@@ -8,10 +8,11 @@ from __future__ import annotations
 
 from gibbsmin.arrays import FloatArray
 from gibbsmin.minimise.kernel.lane_newton import put_in
+from gibbsmin.minimise.kernel.lane_storage import LaneScratch, Window
 from gibbsmin.minimise.kernel.loading import load_state
 from gibbsmin.minimise.kernel.pivots import seen_from
 from gibbsmin.minimise.kernel.simplex import feeds_gas
-from gibbsmin.minimise.kernel.storage import Answers, LaneScratch, Network, Tableau, Window
+from gibbsmin.minimise.kernel.storage import Answers, Network, Tableau
 from gibbsmin.minimise.kernel.tableau import renew_reduced, renew_supply
 from gibbsmin.minimise.kernel.warm import retired_rows_hold
 

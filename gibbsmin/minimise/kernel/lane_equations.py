@@ -11,7 +11,8 @@ from __future__ import annotations
 
 from gibbsmin.arrays import FloatArray, IntArray
 from gibbsmin.minimise.kernel.elementary import exponential, logarithm
-from gibbsmin.minimise.kernel.storage import Lanes, Tableau
+from gibbsmin.minimise.kernel.lane_storage import Lanes
+from gibbsmin.minimise.kernel.storage import Tableau
 from gibbsmin.minimise.kernel.vector import larger, load, magnitude, spread, store
 
 _TOGETHER = 4

@@ -17,7 +17,8 @@ from gibbsmin.minimise.kernel.lane_equations import (
     list_entries,
     solve_lanes,
 )
-from gibbsmin.minimise.kernel.storage import Lanes, Point, Tableau, Window
+from gibbsmin.minimise.kernel.lane_storage import Lanes, Window
+from gibbsmin.minimise.kernel.storage import Point, Tableau
 from gibbsmin.minimise.kernel.vector import LANES, larger, load, magnitude, smaller, spread, store
 
 _LAST = 1e-7  # residual from which one step more leaves less than round-off

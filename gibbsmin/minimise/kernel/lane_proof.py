@@ -10,8 +10,9 @@ from __future__ import annotations
 from math import inf, log
 
 from gibbsmin.minimise.kernel.elementary import logarithm
+from gibbsmin.minimise.kernel.lane_storage import Lanes
 from gibbsmin.minimise.kernel.proof import BALANCE, GAP, STATIONARITY
-from gibbsmin.minimise.kernel.storage import Lanes, Network, Tableau
+from gibbsmin.minimise.kernel.storage import Network, Tableau
 from gibbsmin.minimise.kernel.vector import (
     larger,
     load,
