@@ -221,7 +221,35 @@ def test_random_draws_stand_beside_first_order_error_bars(case: Path, tmp_path: 
     assert rows["probability of C(graphite)"][2] == 0.0
 
 
-def test_too_few_draws_are_one_sentence(case: Path) -> None:
-    code, out, err = run("predict", case, "--monte-carlo", "12")
-    assert (code, out) == (2, "")
-    assert err == "monte-carlo: found 12 draws; accepted is a number from 100 to 200000.\n"
+def test_quantiles_stand_beside_fractions_in_a_csv(case: Path, tmp_path: Path) -> None:
+    out = tmp_path / "outlet.csv"
+    code, _, err = run("predict", case, "--monte-carlo", "200", "--out", out)
+    assert (code, err) == (0, "")
+    with out.open(encoding="utf-8", newline="") as file:
+        rows = {row["species"]: row for row in csv.DictReader(file)}
+    low, middle, high = (
+        float(rows["CO(g)"][f"mole_fraction_quantile_{level}"]) for level in (0.025, 0.5, 0.975)
+    )
+    assert low < middle < high
+    assert middle == pytest.approx(float(rows["CO(g)"]["mole_fraction"]), rel=0.01)
+
+
+@pytest.mark.parametrize(
+    ("options", "sentence"),
+    [
+        (
+            ["--monte-carlo", "12"],
+            "monte-carlo: found 12 draws; accepted is a number from 100 to 200000.\n",
+        ),
+        (
+            ["--monte-carlo", "0"],
+            "monte-carlo: found 0 draws; accepted is a number from 100 to 200000.\n",
+        ),
+        (["--seed", "4"], "found --seed without draws; accepted is --monte-carlo N beside it.\n"),
+    ],
+)
+def test_draws_that_are_refused_are_one_sentence(
+    case: Path, options: list[str], sentence: str
+) -> None:
+    code, out, err = run("predict", case, *options)
+    assert (code, out, err) == (2, "", sentence)

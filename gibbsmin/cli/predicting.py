@@ -9,6 +9,7 @@ import typer
 
 from gibbsmin.cli.app import AsJson, Plot, Stage, app, require_plot_ending_of
 from gibbsmin.cli.output import NOT_CERTIFIED, print_json, print_view
+from gibbsmin.errors import InputError
 
 
 @app.command(short_help="Give the outlet of a case at equilibrium.")
@@ -22,14 +23,14 @@ def predict(
         bool, typer.Option("--uncertainty", help="Give error bars and what makes them.")
     ] = False,
     draws: Annotated[
-        int,
+        int | None,
         typer.Option(
             "--monte-carlo", metavar="N", help="Draw the unsure numbers N times, and solve each."
         ),
-    ] = 0,
+    ] = None,
     seed: Annotated[
-        int, typer.Option(metavar="K", min=0, help="Where the random draws start.")
-    ] = 1,
+        int | None, typer.Option(metavar="K", help="Where the random draws start; else 1.")
+    ] = None,
     plot: Plot = "",
     show: Annotated[
         str, typer.Option(metavar="WORD", help='What to plot: "beds", "cooling" or "lost work".')
@@ -52,6 +53,8 @@ def predict(
 
     if out:
         require_ending(Path(out))
+    if seed is not None and draws is None:
+        raise InputError("found --seed without draws", "accepted is --monte-carlo N beside it")
     require_plot_ending_of(plot, show=show, stage=stage)
     if plot:
         from gibbsmin.present.plots.train_plots import require_kind
@@ -59,8 +62,10 @@ def predict(
         require_kind(show)
     loaded = load_case(case)
     outlet = predict_case(loaded)
-    bars = error_bars_of(loaded) if uncertainty or draws else ()
-    spread = monte_carlo(loaded, draws, seed) if draws else None
+    spread = None
+    if draws is not None:
+        spread = monte_carlo(loaded, draws) if seed is None else monte_carlo(loaded, draws, seed)
+    bars = () if spread is None and not uncertainty else error_bars_of(loaded)
     if out:
         write_outlet(outlet, Path(out), bars, spread)
     if as_json:

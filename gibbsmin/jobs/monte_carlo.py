@@ -65,6 +65,12 @@ class Spread:
         """Standard deviation of one result, in SI."""
         return float(self.deviations[self.results.index(result)])
 
+    def quantile(self, result: str, place: int) -> float:
+        """One of the quantiles of one result, in SI; NaN for what is no result."""
+        if result not in self.results:
+            return float("nan")
+        return float(self.quantiles[place, self.results.index(result)])
+
 
 @dataclass(frozen=True)
 class MonteCarlo:
@@ -92,7 +98,7 @@ def monte_carlo(case: Case, draws: int = 10_000, seed: int = 1) -> MonteCarlo:
     Raises
     ------
     InputError
-        for a number of draws that is not accepted, and as
+        for a number of draws or a seed that is not accepted, and as
         :func:`gibbsmin.jobs.uncertainty.uncertainty`.
     """
     if not FEWEST <= draws <= MOST:
@@ -100,6 +106,10 @@ def monte_carlo(case: Case, draws: int = 10_000, seed: int = 1) -> MonteCarlo:
             f"found {draws} draws",
             f"accepted is a number from {FEWEST} to {MOST}",
             key="monte-carlo",
+        )
+    if seed < 0:
+        raise InputError(
+            f"found {seed}", "accepted is a whole number that is not negative", key="seed"
         )
     told = list(answered(run_train(case, case.library)))
     inputs = uncertain_inputs(case, told)

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from gibbsmin.jobs.monte_carlo import MonteCarlo
+from gibbsmin.jobs.monte_carlo import QUANTILES, MonteCarlo
 from gibbsmin.jobs.sensitivity import Sensitivities
 from gibbsmin.present.files import output_suffix, write_csv, write_json, write_tables
 from gibbsmin.present.monte_carlo_view import spread_table
@@ -37,7 +37,7 @@ def write_outlet(
 ) -> None:
     """Write an outlet in the form that the file's ending names, with its error bars if given.
 
-    A .csv file holds the composition alone, and so no spread over random draws.
+    A .csv file holds the composition alone, with what error bars and draws tell of its fractions.
 
     Raises
     ------
@@ -49,12 +49,12 @@ def write_outlet(
     if suffix == ".json":
         write_json(path, outlet_document(outlet, error_bars, spread))
     elif suffix == ".csv":
-        write_csv(path, composition_table(outlet, error_bars))
+        write_csv(path, composition_table(outlet, error_bars, spread))
     else:
         write_tables(
             path,
             {
-                "composition": composition_table(outlet, error_bars),
+                "composition": composition_table(outlet, error_bars, spread),
                 "figures": _figures(outlet),
                 "reactions": _reactions(outlet),
                 "yields": _yields(outlet),
@@ -66,7 +66,11 @@ def write_outlet(
         )
 
 
-def composition_table(outlet: Outlet, error_bars: Sequence[Sensitivities] = ()) -> pd.DataFrame:
+def composition_table(
+    outlet: Outlet,
+    error_bars: Sequence[Sensitivities] = (),
+    spread: MonteCarlo | None = None,
+) -> pd.DataFrame:
     """The outlet's frame with its amounts in the reported unit, which the column's name states."""
     unit = amount_unit(outlet.unit, outlet.is_flow)
     table = outlet.to_frame()
@@ -85,6 +89,13 @@ def composition_table(outlet: Outlet, error_bars: Sequence[Sensitivities] = ()) 
                 for stage, found in zip(outlet.stages, error_bars, strict=True)
                 for record in stage.records
             ]
+        if spread is not None:
+            for place, level in enumerate(QUANTILES):
+                table[f"{column}_quantile_{level}"] = [
+                    found.quantile(f"{kind} {record.name}", place)
+                    for stage, found in zip(outlet.stages, spread.stages, strict=True)
+                    for record in stage.records
+                ]
     return table
 
 

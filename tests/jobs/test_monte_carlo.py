@@ -146,6 +146,12 @@ def test_numbers_of_draws_that_are_refused(draws: int) -> None:
     )
 
 
+def test_a_negative_seed_is_refused() -> None:
+    with pytest.raises(InputError) as error:
+        gibbsmin.monte_carlo(gibbsmin.load_case(deepcopy(REFORMER)), 100, seed=-1)
+    assert str(error.value) == "seed: found -1; accepted is a whole number that is not negative."
+
+
 def test_what_ends_a_prediction_ends_its_error_bars(
     monkeypatch: pytest.MonkeyPatch, tmp_path: Path
 ) -> None:
